@@ -1,0 +1,1 @@
+"""The grammar of Tarn, as package data."""

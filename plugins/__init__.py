@@ -1,0 +1,1 @@
+"""The dispersions that ship with eoscore, one small file each."""
