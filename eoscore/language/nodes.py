@@ -1,4 +1,4 @@
-"""The frozen nodes of a parsed Tarn file. Equality ignores where a node stands, so a printed and re-read file is equal."""
+"""The frozen nodes of a parsed Tarn file. Equality ignores where a node stands, so a re-read print is equal."""
 
 from __future__ import annotations
 
