@@ -1,0 +1,114 @@
+"""What an answer is: frozen records that mirror the JSON document; SI numbers in arrays shaped like the grid."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+from typing import TYPE_CHECKING, Any
+
+import numpy as np
+
+if TYPE_CHECKING:
+    from collections.abc import Mapping
+
+    from numpy.typing import NDArray
+
+    from eoscore.errors import Complaint
+
+__all__ = ["Answer", "Caution", "DerivedAnswer", "Finding", "FoundAnswer", "Given", "Reason", "Report"]
+
+
+@dataclass(frozen=True)
+class Given:
+    """A condition of the question: its SI value and unit."""
+
+    value: float
+    unit: str
+
+
+@dataclass(frozen=True)
+class Reason:
+    """Why there is no value, and at which points of the grid (index tuples; `()` without a grid)."""
+
+    text: str
+    points: tuple[tuple[int, ...], ...] = ((),)
+
+
+@dataclass(frozen=True)
+class Caution:
+    """Something a practitioner would want to know before trusting a number, with its size in the text."""
+
+    code: str
+    text: str
+
+
+@dataclass(frozen=True)
+class Finding:
+    """One quantity of a `find`: SI numbers shaped like the grid; `freq` and `r_min` have a last axis of their own.
+
+    `value` is nan where there is no answer, and `reasons` say why. `error` is the absolute numerical error,
+    `sigma` one standard deviation carried from the input (None where no input had one), `budget` the share of
+    the variance of each uncertain literal, named as in the file.
+    """
+
+    value: NDArray[np.float64]
+    unit: str
+    error: NDArray[np.float64]
+    route: str
+    sigma: NDArray[np.float64] | None = None
+    reasons: tuple[Reason, ...] = ()
+    budget: Mapping[str, NDArray[np.float64]] = field(default_factory=dict)
+
+    @property
+    def why(self) -> str | None:
+        """The words where there is no value, None where there is one."""
+        return "; ".join(reason.text for reason in self.reasons) or None
+
+    def worst(self) -> float:
+        """The largest relative numerical error among the points that have a value; 0 where none has."""
+        value, error = np.abs(self.value), np.where(np.isfinite(self.value), self.error, 0.0)
+        scale = np.where(value > 0.0, value, np.nanmax(value, initial=0.0, where=np.isfinite(value)))
+        with np.errstate(divide="ignore", invalid="ignore"):
+            return float(np.nanmax(np.where(error > 0.0, error / scale, 0.0), initial=0.0))
+
+
+@dataclass(frozen=True)
+class FoundAnswer:
+    """The answer to a `find`."""
+
+    line: int
+    question: str
+    gas: str
+    place: str | None
+    origins: tuple[str, ...]
+    given: Mapping[str, Given]
+    over: Mapping[str, NDArray[np.float64]]
+    over_units: Mapping[str, str]
+    found: Mapping[str, Finding]
+    cautions: tuple[Caution, ...] = ()
+    verb: str = "find"
+
+
+@dataclass(frozen=True)
+class DerivedAnswer:
+    """The answer to a `derive`: for each quantity a mapping as the JSON document wants it."""
+
+    line: int
+    question: str
+    gas: str
+    place: str | None
+    given: Mapping[str, Given]
+    formulas: Mapping[str, Mapping[str, Any]]
+    cautions: tuple[Caution, ...] = ()
+    verb: str = "derive"
+
+
+Answer = FoundAnswer | DerivedAnswer
+
+
+@dataclass(frozen=True)
+class Report:
+    """All answers to a file, in the order asked, and the complaints where it is at fault."""
+
+    file: str
+    answers: tuple[Answer, ...] = ()
+    complaints: tuple[Complaint, ...] = ()

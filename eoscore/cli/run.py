@@ -1,0 +1,150 @@
+"""`eoscore run FILE`: answer every question of a file, in order."""
+
+from __future__ import annotations
+
+import sys
+from dataclasses import dataclass
+from pathlib import Path
+from typing import TYPE_CHECKING, Any, TypeVar
+
+import click
+
+from eoscore.cli.exits import ANSWERED, FAULTY, INACCURATE, internal_fault
+from eoscore.cli.reading import Text
+from eoscore.errors import Complaint, TarnError
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
+
+    from eoscore.answer.record import Report
+
+__all__ = ["Asked", "answer_text", "asking", "run"]
+
+_F = TypeVar("_F", bound="Callable[..., Any]")
+
+
+def asking(function: _F) -> _F:
+    """The options of every verb that answers questions."""
+    for option in reversed(
+        (
+            click.option(
+                "--set",
+                "settings",
+                multiple=True,
+                metavar="NAME=VALUE",
+                help='Override a parameter: "P=2 W".',
+            ),
+            click.option(
+                "--json", "as_json", is_flag=True, help="Write one JSON document on standard output."
+            ),
+            click.option(
+                "--out",
+                type=click.Path(path_type=Path),
+                callback=_writable,
+                metavar="FILE",
+                help="Write grids to FILE.csv, FILE.nc or FILE.json.",
+            ),
+            click.option(
+                "--accuracy",
+                type=click.FloatRange(0.0, 1.0, min_open=True, max_open=True),
+                default=1e-6,
+                show_default=True,
+                help="Relative error wanted of every number.",
+            ),
+            click.option(
+                "--workers",
+                type=click.IntRange(1),
+                default=1,
+                show_default=True,
+                help="Processes that share a grid.",
+            ),
+        )
+    ):
+        function = option(function)
+    return function
+
+
+def _writable(_context: click.Context, _parameter: click.Parameter, target: Path | None) -> Path | None:
+    if target is not None:
+        from eoscore.show.saving import unwritable
+
+        if reason := unwritable(target):
+            raise click.BadParameter(reason)
+    return target
+
+
+@dataclass(frozen=True)
+class Asked:
+    """What the options of a run ask for."""
+
+    settings: tuple[str, ...]
+    as_json: bool
+    out: Path | None
+    accuracy: float
+    workers: int
+
+
+@click.command()
+@click.argument("file")
+@asking
+def run(file: str, **options: Any) -> int:
+    """Answer every question of FILE in order; - reads standard input."""
+    return answer_text(Text.of(file), Asked(**options))
+
+
+def answer_text(text: Text, asked: Asked) -> int:
+    """Answer a text's questions, show and save the answers; the exit status."""
+    report = _report(text, asked)
+    if asked.out is not None and not report.complaints:
+        from eoscore.show.saving import save
+
+        for path in save(report, asked.out):
+            click.echo(f"wrote {path}", err=True)
+    _show(report, asked.as_json)
+    if report.complaints:
+        return FAULTY
+    return INACCURATE if _complain_of_accuracy(report, asked.accuracy) else ANSWERED
+
+
+def _report(text: Text, asked: Asked) -> Report:
+    from eoscore.answer.record import Report
+
+    try:
+        answers = text.lab(asked.settings).answers(accuracy=asked.accuracy, workers=asked.workers)
+        return Report(text.name, answers)
+    except TarnError as fault:
+        return Report(text.name, complaints=fault.complaints)
+    except (click.ClickException, OSError, MemoryError):
+        raise
+    except Exception as fault:
+        if not asked.as_json:
+            raise
+        # Whoever reads the document shall find a document, even when the fault is ours.
+        return Report(text.name, complaints=(Complaint(text.name, 1, 1, 1, 1, internal_fault(fault)),))
+
+
+def _show(report: Report, as_json: bool) -> None:
+    if report.complaints:
+        from eoscore.show.complaint import complaints_text
+
+        click.echo(complaints_text(report.complaints), err=True)
+    if as_json:
+        from eoscore.show.document import json_text
+
+        sys.stdout.write(json_text(report))
+    elif report.answers:
+        from eoscore.show.page import print_report
+
+        print_report(report, sys.stdout)
+
+
+def _complain_of_accuracy(report: Report, accuracy: float) -> bool:
+    """Say on standard error which numbers missed the accuracy wanted; whether any did."""
+    missed = False
+    for answer in report.answers:
+        for name, finding in getattr(answer, "found", {}).items():
+            if finding.worst() > accuracy:
+                missed = True
+                sentence = f"line {answer.line}: {name} reached {finding.worst():.0e}, wanted {accuracy:g}"
+                click.echo(f"eoscore: {sentence}", err=True)
+    return missed

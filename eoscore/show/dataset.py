@@ -1,0 +1,81 @@
+"""Grids as labelled arrays: an xarray Dataset, and netCDF through h5netcdf (extra `grid`)."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING, Any
+
+from eoscore.errors import EoscoreError
+
+if TYPE_CHECKING:
+    from pathlib import Path
+
+    import xarray
+
+    from eoscore.answer.record import Finding, FoundAnswer, Report
+
+__all__ = ["MissingExtraError", "dataset", "write_netcdf"]
+
+_ENTRIES = {"freq": "direction", "r_min": "coordinate"}  # the last axis of quantities that are lists
+
+
+class MissingExtraError(EoscoreError, ImportError):
+    """A feature wants packages that are not installed: which, and the extra that brings them."""
+
+    def __init__(self, wanted: str, extra: str) -> None:
+        self.wanted, self.extra = wanted, extra
+        super().__init__(f"{wanted} is not installed; pip install 'eoscore[{extra}]' brings it")
+
+
+def dataset(answer: FoundAnswer, file: str = "<text>") -> xarray.Dataset:
+    """One question as a Dataset: dimensions named as in `over`, SI units in the attribute `units`.
+
+    Raises
+    ------
+    MissingExtraError
+        Where xarray is not installed.
+    """
+    try:
+        import xarray
+    except ImportError:
+        raise MissingExtraError("xarray", "grid") from None
+    from eoscore import __version__
+
+    variables: dict[str, Any] = {}
+    for name, finding in answer.found.items():
+        variables |= _variables(name, finding, tuple(answer.over))
+    coordinates = {
+        name: ((name,), values, {"units": answer.over_units[name]}) for name, values in answer.over.items()
+    }
+    about = {"file": file, "question": answer.question, "version": f"eoscore {__version__}"}
+    given = {f"given_{name}": f"{value.value!r} {value.unit}" for name, value in answer.given.items()}
+    return xarray.Dataset(variables, coordinates, about | given)
+
+
+def write_netcdf(report: Report, answer: FoundAnswer, path: Path) -> None:
+    """Write one question's grid as netCDF 4.
+
+    Raises
+    ------
+    MissingExtraError
+        Where xarray or h5netcdf is not installed.
+    """
+    data = dataset(answer, report.file)
+    try:
+        data.to_netcdf(path, engine="h5netcdf")
+    except (ImportError, ValueError) as fault:
+        if "h5netcdf" not in str(fault):
+            raise
+        raise MissingExtraError("h5netcdf", "grid") from None
+
+
+def _variables(name: str, finding: Finding, axes: tuple[str, ...]) -> dict[str, Any]:
+    dims = axes + ((_ENTRIES.get(name, f"{name}_entry"),) if finding.value.ndim > len(axes) else ())
+    attributes = {"units": finding.unit, "route": finding.route}
+    words = {"why": finding.why} if finding.why else {}
+    variables: dict[str, Any] = {
+        name: (dims, finding.value, attributes | words),
+        f"{name}_error": (dims, finding.error, {"units": finding.unit}),
+    }
+    if finding.sigma is not None:
+        variables[f"{name}_sigma"] = (dims, finding.sigma, {"units": finding.unit})
+    return variables

@@ -1,0 +1,74 @@
+"""A grid of answers as one table, and as rows for other formats; the first name runs slowest."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from eoscore.show.prefix import fitting, written
+from eoscore.show.table import columns
+
+if TYPE_CHECKING:
+    from collections.abc import Iterator
+
+    from numpy.typing import NDArray
+    from rich.table import Table
+
+    from eoscore.answer.record import FoundAnswer
+
+__all__ = ["Column", "grid_columns", "grid_table"]
+
+_ROWS = 40  # more rows than this are cut in the middle
+
+
+class Column:
+    """One column of a grid in long form: a head, an SI unit and a number per point (nan for none)."""
+
+    def __init__(
+        self, name: str, unit: str, values: NDArray[np.float64], sigma: NDArray[np.float64] | None = None
+    ) -> None:
+        self.name, self.unit, self.values, self.sigma = name, unit, values, sigma
+
+
+def grid_columns(answer: FoundAnswer) -> Iterator[Column]:
+    """The axes, then the quantities, flattened in C order; `freq` and `r_min` give a column per entry."""
+    shape = tuple(values.size for values in answer.over.values())
+    meshes = np.meshgrid(*answer.over.values(), indexing="ij")
+    for name, mesh in zip(answer.over, meshes, strict=True):
+        yield Column(name, answer.over_units[name], mesh.reshape(-1))
+    for name, finding in answer.found.items():
+        flat = finding.value.reshape(int(np.prod(shape)), -1)
+        sigma = None if finding.sigma is None else finding.sigma.reshape(flat.shape)
+        for entry in range(flat.shape[1]):
+            label = name if finding.value.ndim == len(shape) else f"{name}_{entry + 1}"
+            part = None if sigma is None else sigma[:, entry]
+            yield Column(label, finding.unit, flat[:, entry], part)
+
+
+def grid_table(answer: FoundAnswer) -> Table:
+    """The grid for a screen: one prefix per column, cut in the middle where it is long."""
+    parts = list(grid_columns(answer))
+    heads, texts = zip(*(_written_column(part) for part in parts), strict=True)
+    table = columns(*heads)
+    for column in table.columns:
+        column.justify = "right"
+    rows = list(zip(*texts, strict=True))
+    half = _ROWS // 2
+    for row in rows if len(rows) <= _ROWS else rows[:half]:
+        table.add_row(*row)
+    if len(rows) > _ROWS:
+        table.add_row(*["…"] * len(parts))
+        for row in rows[-half:]:
+            table.add_row(*row)
+        table.caption = f"{len(rows) - 2 * half} rows more; --out FILE.csv writes them all"
+    return table
+
+
+def _written_column(part: Column) -> tuple[str, list[str]]:
+    finite = np.abs(part.values[np.isfinite(part.values) & (part.values != 0.0)])
+    factor, unit = fitting(float(np.median(finite)), part.unit) if finite.size else (1.0, part.unit)
+    sigmas = [None] * part.values.size if part.sigma is None else (part.sigma / factor).tolist()
+    head = part.name if unit == "1" else f"{part.name} ({unit})"
+    pairs = zip((part.values / factor).tolist(), sigmas, strict=True)
+    return head, [written(value, sigma) for value, sigma in pairs]

@@ -1,0 +1,93 @@
+"""Answers as calm aligned tables on a terminal, plain text when it is none."""
+
+from __future__ import annotations
+
+from typing import IO, TYPE_CHECKING
+
+from eoscore.answer.record import DerivedAnswer
+from eoscore.show.grid_table import grid_table
+from eoscore.show.prefix import quantity
+from eoscore.show.table import columns, console_on
+
+if TYPE_CHECKING:
+    from collections.abc import Iterator
+
+    from rich.console import Console
+    from rich.table import Table
+
+    from eoscore.answer.record import Answer, Finding, FoundAnswer, Report
+
+__all__ = ["print_report"]
+
+
+def print_report(report: Report, stream: IO[str]) -> None:
+    """Write every answer of a report to a text stream."""
+    console = console_on(stream)
+    for number, answer in enumerate(report.answers):
+        if number:
+            console.print()
+        _print_answer(answer, console)
+
+
+def _print_answer(answer: Answer, console: Console) -> None:
+    console.print(f"line {answer.line}: {answer.question}", style="bold")
+    if isinstance(answer, DerivedAnswer):
+        for line in _formula_lines(answer):
+            console.print(line)
+    elif answer.over:
+        console.print(grid_table(answer))
+    else:
+        console.print(_single_table(answer))
+    for line in _notes(answer):
+        console.print(line)
+
+
+def _single_table(answer: FoundAnswer) -> Table:
+    table = columns("quantity", "value", "numerical error", "route")
+    for name, finding in answer.found.items():
+        table.add_row(name, *_cells(finding))
+    return table
+
+
+def _cells(finding: Finding) -> tuple[str, str, str]:
+    if finding.reasons and finding.value.ndim == 0:
+        return "-", "", finding.route
+    values = finding.value.reshape(-1)
+    sigmas = [None] * values.size if finding.sigma is None else finding.sigma.reshape(-1).tolist()
+    shown = ", ".join(quantity(v, finding.unit, s) for v, s in zip(values.tolist(), sigmas, strict=True))
+    return shown, error_text(finding), finding.route
+
+
+def error_text(finding: Finding) -> str:
+    """The largest relative numerical error as a power of ten that is not below it."""
+    worst = finding.worst()
+    return "exact" if worst == 0.0 else f"{worst:.0e} relative"
+
+
+def _notes(answer: Answer) -> Iterator[str]:
+    """Reasons, shares of the variance and cautions, each a line of its own below the table."""
+    if not isinstance(answer, DerivedAnswer):
+        for name, finding in answer.found.items():
+            for reason in finding.reasons:
+                at = f" at {len(reason.points)} points" if answer.over else ""
+                yield f"  {name}{at}: no value, because {reason.text}"
+            if finding.budget and not answer.over:
+                yield f"  {name}: its uncertainty comes from {_budget(finding)}"
+    for caution in answer.cautions:
+        yield f"  Caution ({caution.code}): {caution.text}"
+
+
+def _budget(finding: Finding) -> str:
+    shares = {name: float(share.reshape(-1)[0]) for name, share in finding.budget.items()}
+    ordered = sorted(shares.items(), key=lambda item: -item[1])
+    return ", ".join(f"{name} ({100.0 * share:.0f} %)" for name, share in ordered if share >= 5e-3)
+
+
+def _formula_lines(answer: DerivedAnswer) -> Iterator[str]:
+    for name, formula in answer.formulas.items():
+        yield f"  {name} = {formula.get('text')}"
+        value, unit = formula.get("value"), formula.get("unit", "1")
+        if value is not None:
+            yield f"      = {quantity(value, unit)}"
+        if formula.get("why"):
+            yield f"      {formula['why']}"

@@ -1,0 +1,32 @@
+"""The look of every table: open, aligned, plain where the output is no terminal."""
+
+from __future__ import annotations
+
+from typing import IO, TYPE_CHECKING
+
+if TYPE_CHECKING:
+    from rich.console import Console
+    from rich.table import Table
+
+__all__ = ["columns", "console_on"]
+
+_PLAIN_WIDTH = 110  # columns when the output is not a terminal
+
+
+def console_on(stream: IO[str]) -> Console:
+    """A rich console on a text stream that takes every text literally."""
+    from rich.console import Console
+
+    width = None if stream.isatty() else _PLAIN_WIDTH
+    return Console(file=stream, width=width, highlight=False, emoji=False, markup=False)
+
+
+def columns(*names: str) -> Table:
+    """An open table: a rule under the head, no frame."""
+    from rich.box import SIMPLE_HEAD
+    from rich.table import Table
+
+    table = Table(box=SIMPLE_HEAD, show_edge=False, pad_edge=False, header_style="bold", padding=(0, 2, 0, 0))
+    for name in names:
+        table.add_column(name, overflow="fold")
+    return table
