@@ -13,7 +13,7 @@ if TYPE_CHECKING:
 
     from eoscore.source import Span
 
-__all__ = ["Complaint", "EoscoreError", "NoAnswerError", "PluginError", "TarnError", "UnknownIsotopeError"]
+__all__ = ["Complaint", "EoscoreError", "NoAnswerError", "PluginError", "TarnError"]
 
 
 class EoscoreError(Exception):
@@ -77,12 +77,3 @@ class PluginError(EoscoreError, TypeError):
     def __init__(self, plugin: str, found: str, wanted: str) -> None:
         self.plugin, self.found, self.wanted = plugin, found, wanted
         super().__init__(f"plugin {plugin!r} is refused: found {found}; wanted {wanted}")
-
-
-class UnknownIsotopeError(EoscoreError, LookupError):
-    """An isotope that the mass table does not hold: what came, and the nearest that it holds (`near`)."""
-
-    def __init__(self, isotope: str, near: Sequence[str]) -> None:
-        self.isotope, self.near = isotope, tuple(near)
-        instead = f"did you mean {' or '.join(near)}?" if near else "write an element and a mass number: Sr-84"
-        super().__init__(f"{isotope} is not in the table of isotope masses (AME2020); {instead}")
