@@ -27,7 +27,7 @@ def constant(value: float) -> Formula:
 
 def variable(name: str) -> Formula:
     """A real variable."""
-    return intern(Formula, "variable", name=name)
+    return Formula.named(name)
 
 
 def call(name: str, *args: Formula | float) -> Formula:

@@ -74,6 +74,11 @@ class Formula(Node):
             return value
         return intern(Formula, "constant", value=float(value))
 
+    @classmethod
+    def named(cls, name: str) -> Formula:
+        """A real variable."""
+        return intern(Formula, "variable", name=name)
+
     def derivative(self, name: str) -> Formula:
         """The exact derivative by a variable, kept for the next time it is asked for."""
         if name not in self._derivatives:

@@ -55,9 +55,9 @@ def power_of(exponent: float) -> Callable[..., Any]:
     named: dict[float, Callable[..., Any]] = {2.0: np.square, 0.5: np.sqrt, -1.0: np.reciprocal}
     if exponent in named:
         return named[exponent]
-    if exponent.is_integer() and 2 < abs(exponent) <= 64:
+    if exponent.is_integer() and abs(exponent) <= 64:
         return lambda x: _repeated(x, int(exponent))
-    if (2 * exponent).is_integer() and abs(exponent) <= 8:
+    if (exponent + 0.5).is_integer() and abs(exponent) <= 8:
         return lambda x: np.sqrt(x) * _repeated(x, math.floor(exponent))
     return lambda x: np.power(x, exponent)
 
