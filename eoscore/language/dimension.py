@@ -3,8 +3,10 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
-from fractions import Fraction
-from typing import Final
+from typing import TYPE_CHECKING, Final
+
+if TYPE_CHECKING:
+    from fractions import Fraction
 
 BASES: Final = ("kg", "m", "s", "A", "K", "mol", "cd")
 _NOTHING: Final = (0,) * len(BASES)
