@@ -63,7 +63,7 @@ def write_netcdf(report: Report, answer: FoundAnswer, path: Path) -> None:
     try:
         data.to_netcdf(path, engine="h5netcdf")
     except (ImportError, ValueError) as fault:
-        if "h5netcdf" not in str(fault):
+        if "h5netcdf" not in str(fault) and "h5py" not in str(fault):
             raise
         raise MissingExtraError("h5netcdf", "grid") from None
 

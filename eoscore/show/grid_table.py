@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -17,7 +18,7 @@ if TYPE_CHECKING:
 
     from eoscore.answer.record import FoundAnswer
 
-__all__ = ["Column", "grid_columns", "grid_table"]
+__all__ = ["Column", "grid_columns", "grid_table", "hidden_rows"]
 
 _ROWS = 40  # more rows than this are cut in the middle
 
@@ -61,8 +62,13 @@ def grid_table(answer: FoundAnswer) -> Table:
         table.add_row(*["…"] * len(parts))
         for row in rows[-half:]:
             table.add_row(*row)
-        table.caption = f"{len(rows) - 2 * half} rows more; --out FILE.csv writes them all"
     return table
+
+
+def hidden_rows(answer: FoundAnswer) -> int:
+    """How many rows of a grid its table leaves out."""
+    rows = math.prod(values.size for values in answer.over.values())
+    return rows - 2 * (_ROWS // 2) if rows > _ROWS else 0
 
 
 def _written_column(part: Column) -> tuple[str, list[str]]:

@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import IO, TYPE_CHECKING
 
 from eoscore.answer.record import DerivedAnswer
-from eoscore.show.grid_table import grid_table
+from eoscore.show.grid_table import grid_table, hidden_rows
 from eoscore.show.prefix import quantity
 from eoscore.show.table import columns, console_on
 
@@ -15,7 +15,7 @@ if TYPE_CHECKING:
     from rich.console import Console
     from rich.table import Table
 
-    from eoscore.answer.record import Answer, Finding, FoundAnswer, Report
+    from eoscore.answer.record import Answer, Caution, Finding, FoundAnswer, Report
 
 __all__ = ["print_report"]
 
@@ -23,10 +23,13 @@ __all__ = ["print_report"]
 def print_report(report: Report, stream: IO[str]) -> None:
     """Write every answer of a report to a text stream."""
     console = console_on(stream)
+    told: set[Caution] = set()
     for number, answer in enumerate(report.answers):
         if number:
             console.print()
         _print_answer(answer, console)
+        for line in _caution_lines(answer, told):
+            console.print(line)
 
 
 def _print_answer(answer: Answer, console: Console) -> None:
@@ -36,6 +39,8 @@ def _print_answer(answer: Answer, console: Console) -> None:
             console.print(line)
     elif answer.over:
         console.print(grid_table(answer))
+        if hidden := hidden_rows(answer):
+            console.print(f"  {hidden} rows more; --out FILE.csv writes them all")
     else:
         console.print(_single_table(answer))
     for line in _notes(answer):
@@ -65,7 +70,7 @@ def error_text(finding: Finding) -> str:
 
 
 def _notes(answer: Answer) -> Iterator[str]:
-    """Reasons, shares of the variance and cautions, each a line of its own below the table."""
+    """Reasons and shares of the variance, each a line of its own below the table."""
     if not isinstance(answer, DerivedAnswer):
         for name, finding in answer.found.items():
             for reason in finding.reasons:
@@ -73,8 +78,17 @@ def _notes(answer: Answer) -> Iterator[str]:
                 yield f"  {name}{at}: no value, because {reason.text}"
             if finding.budget and not answer.over:
                 yield f"  {name}: its uncertainty comes from {_budget(finding)}"
+
+
+def _caution_lines(answer: Answer, told: set[Caution]) -> Iterator[str]:
+    """A caution in full where it comes first, by its code where it was told before."""
+    again = [caution.code for caution in answer.cautions if caution in told]
     for caution in answer.cautions:
-        yield f"  Caution ({caution.code}): {caution.text}"
+        if caution not in told:
+            yield f"  Caution ({caution.code}): {caution.text}"
+    if again:
+        yield f"  Cautions as above: {', '.join(again)}"
+    told.update(answer.cautions)
 
 
 def _budget(finding: Finding) -> str:

@@ -1,0 +1,71 @@
+"""What a person reads."""
+
+from __future__ import annotations
+
+import io
+import math
+
+import pytest
+
+from eoscore.answer.record import DerivedAnswer
+from eoscore.show.page import print_report
+
+from .records import answer, finding, report
+
+
+def page(*answers):
+    stream = io.StringIO()
+    print_report(report(*answers), stream)
+    return stream.getvalue()
+
+
+def test_a_single_answer_shows_value_error_route_budget_and_caution():
+    text = page(answer({"T_c": finding(7.03e-7, sigma=1.4e-8, error=1e-15, budget={"P": 0.75, "w": 0.25})}))
+    for words in ("line 7: find T_c", "703(14) nK", "1e-09 relative", "closed form", "P (75 %), w (25 %)"):
+        assert words in text
+    assert "Caution (shallow): the depth is only 4 kT." in text
+
+
+def test_a_missing_number_is_told_in_words():
+    text = page(answer({"T_c": finding(math.nan, why="the trap is open")}))
+    assert "T_c: no value, because the trap is open" in text
+    assert "nan" not in text
+
+
+def test_lists_show_every_entry():
+    assert "55 Hz, 1.2 kHz" in page(answer({"freq": finding([55.0, 1200.0], "Hz")}))
+
+
+def test_plain_text_has_no_control_codes():
+    assert "\x1b" not in page(answer({"T_c": finding(1.0)}))
+
+
+def test_a_grid_has_one_prefix_per_column():
+    text = page(answer({"T_c": finding([1e-7, 2e-6])}, over={"P": [0.6, 6.0]}, units={"P": "W"}))
+    assert "T_c (µK)" in text
+    assert "P (W)" in text
+    assert " 0.1\n" in text
+
+
+def test_a_long_grid_is_cut_in_the_middle():
+    text = page(answer({"T_c": finding(range(1000))}, over={"P": range(1000)}))
+    assert "960 rows more" in text
+    assert len(text.splitlines()) < 60
+
+
+@pytest.mark.parametrize("words", ["[bold]T_c[/bold]", ":warning:", "100 %"])
+def test_texts_are_taken_literally(words):
+    assert words in page(answer({"T_c": finding(1.0)}, question=words))
+
+
+def test_the_same_caution_is_told_once():
+    text = page(answer({"T_c": finding(1.0)}), answer({"T_c": finding(2.0)}))
+    assert text.count("the depth is only 4 kT.") == 1
+    assert text.count("shallow") == 2
+
+
+def test_formulas_show_text_and_value():
+    formulas = {"T_c": {"text": "hbar*omega*(N/zeta(3))**(1/3)/k_B", "value": 7e-7, "unit": "K"}}
+    text = page(DerivedAnswer(3, "derive T_c for a in b", "a", "b", {}, formulas))
+    assert "T_c = hbar*omega" in text
+    assert "700 nK" in text
