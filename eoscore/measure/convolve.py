@@ -1,0 +1,134 @@
+"""The measure of a sum of independent energies: the convolution of their measures."""
+
+from __future__ import annotations
+
+from functools import cache
+from itertools import pairwise
+from math import inf
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from eoscore.measure.powers import Powers
+from eoscore.measure.rules import graded, legendre
+from eoscore.measure.sampled import Sampled
+
+if TYPE_CHECKING:
+    from collections.abc import Iterator
+
+    from eoscore.measure.base import FloatArray, Measure
+
+__all__ = ["convolve"]
+
+ROUNDING = 2e-14  # of the quadrature below, measured against Beta functions
+BLOCK = 64  # energies taken at once, so that the arrays stay in the cache
+POWER = 4  # v leaves a break as t^4: takes 1/sqrt and ln out of a density
+
+
+def convolve(a: Measure, b: Measure) -> Measure:
+    """Omega(E) = int dOmega_a(v) Omega_b(E - v): how much of both spaces lies below E together.
+
+    Sums of powers combine exactly, C1 v^k1 with C2 v^k2 to C1 C2 v^(k1+k2) Gamma(k1+1) Gamma(k2+1) /
+    Gamma(k1+k2+1) (DLMF 5.12.1); a flat floor is a factor; all else is graded quadrature. The top is the lower
+    one of the two: whichever piece leaks first lets the particle out.
+    """
+    top = min(a.top, b.top)
+    error = a.error + b.error
+    route = a.route if b.powers() else b.route if a.powers() else f"{a.route} * {b.route}"
+    for one, other in ((a, b), (b, a)):
+        factor = _factor(one)
+        if factor is not None:
+            return other.scaled(factor).cut(top)
+    terms_a, terms_b = a.powers(), b.powers()
+    if terms_a and terms_b:
+        terms = [(c1 * c2 * _joined(k1, k2), k1 + k2) for c1, k1 in terms_a for c2, k2 in terms_b]
+        return Powers(terms, top, error=error, route=route)
+    feet = [m.foot for m in (a, b) if isinstance(m, Sampled)]
+    return Sampled(
+        lambda energies: _volume(a, b, energies),
+        a.exponent + b.exponent,
+        scale=min(a.scale, b.scale),
+        foot=max(feet, default=None),
+        top=top,
+        error=error + ROUNDING,
+        route=route,
+        breaks=_joined_breaks(a, b),
+    )
+
+
+def _factor(measure: Measure) -> float | None:
+    """The volume of a measure that is nothing but a flat floor without top."""
+    terms = measure.powers()
+    return terms[0][0] if terms and len(terms) == 1 and terms[0][1] == 0 else None
+
+
+def _joined(k1: float, k2: float) -> float:
+    from scipy.special import beta
+
+    return float((k1 + k2 + 1) * beta(k1 + 1, k2 + 1))
+
+
+def _joined_breaks(a: Measure, b: Measure) -> tuple[float, ...]:
+    """Where a break of one meets the bottom or a break of the other, close ones taken as one."""
+    sums = sorted(p + q for p in (0.0, *a.breaks) for q in (0.0, *b.breaks))
+    apart = [e for e, before in zip(sums, [-inf, *sums], strict=False) if e - before > 1e-12 * e]
+    return tuple(apart)
+
+
+def _volume(a: Measure, b: Measure, energies: FloatArray) -> FloatArray:
+    """The convolution at energies (n,).
+
+    Split at v = E/2 and the upper half taken by parts, so that each measure enters through its own density only
+    near its own bottom, where the rule is graded.
+    """
+    blocks = [energies[i : i + BLOCK] for i in range(0, energies.size, BLOCK)]
+    floor_a, floor_b = a.floor, b.floor
+    parts = [
+        _half(a, b, e)
+        + _half(b, a, e)
+        + floor_a * b.volume(e)
+        + floor_b * a.volume(e)
+        - a.volume(e / 2) * b.volume(e / 2)
+        for e in blocks
+    ]
+    return np.concatenate(parts)
+
+
+def _half(a: Measure, b: Measure, energies: FloatArray) -> FloatArray:
+    """int_0^{E/2} a'(v) Omega_b(E - v) dv at energies (n,)."""
+    total = np.zeros_like(energies)
+    for v, dv in _rules(a, b, energies):
+        total += np.sum(dv * a.density(v) * b.volume(energies[:, None] - v), axis=1)
+    return total
+
+
+def _rules(a: Measure, b: Measure, energies: FloatArray) -> Iterator[tuple[FloatArray, FloatArray]]:
+    """Rules (n, nodes) that together cover [0, E/2], with the breaks of both measures on their ends."""
+    middle = energies / 2
+    knots = [np.minimum(p, middle) for p in a.breaks]
+    knots += [np.where(energies > q, np.minimum(energies - q, middle), middle) for q in b.breaks]
+    edges = np.sort(np.array([*knots, middle]), axis=0)
+    t, dt = graded(a.exponent or 1.0)
+    first = edges[0] if len(edges) == 1 else edges[0] / 2
+    yield first[:, None] * t, first[:, None] * dt
+    if len(edges) > 1:
+        yield _towards(edges[0], -first)
+        for lo, hi in pairwise(edges):
+            yield _towards(lo, (hi - lo) / 2)
+            yield _towards(hi, (lo - hi) / 2)
+
+
+def _towards(end: FloatArray, length: FloatArray) -> tuple[FloatArray, FloatArray]:
+    """A rule on the stretch of a signed length that begins at `end`, for a density that is singular there."""
+    t, dt = _halving()
+    v = end[:, None] + length[:, None] * t**POWER
+    return v, np.abs(length)[:, None] * POWER * t ** (POWER - 1) * dt
+
+
+@cache
+def _halving(panels: int = 6, order: int = 14) -> tuple[FloatArray, FloatArray]:
+    """Nodes t and weights on [0, 1], in panels that halve towards 0: a break may lie just outside, too."""
+    x, w = legendre(order)
+    edges = np.concatenate([[0.0], 0.5 ** np.arange(panels - 1, -1, -1)])
+    length = np.diff(edges)[:, None]
+    return (edges[:-1, None] + length * x).ravel(), (length * w).ravel()

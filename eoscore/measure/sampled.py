@@ -1,0 +1,159 @@
+"""A measure known by its volume function, kept as Chebyshev series that are made when first asked for."""
+
+from __future__ import annotations
+
+from math import inf
+from threading import Lock
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from eoscore.measure.base import FloatArray, Foot, Measure, Nodes
+from eoscore.measure.panel import ORDER, Panel, points, stretches, to_series
+from eoscore.measure.rules import RATIO, legendre
+from eoscore.measure.table import Table
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
+
+    from numpy.typing import ArrayLike
+
+__all__ = ["Sampled"]
+
+FINEST = {"log": 2.0**-6, "left": 2.0**-14, "right": 2.0**-14}  # panels this short in t are not halved
+SHARPEST = 1e-14  # relative tail of a series at which a panel counts as resolved
+NOISE = 1e-6  # a tail below this that halving does not lower is the rounding of the function itself
+
+
+class Sampled(Measure):
+    """Omega from a function of energies (n,) -> (n,) in (foot, top], as piecewise series of Omega / v^exponent.
+
+    scale: an energy (J) of the order at which Omega begins to leave its pure power.
+    foot: below it Omega is taken as that power; by default so low that no double would show the difference.
+    error: relative bound on the function's own values; the tails of the series are added to it.
+    """
+
+    def __init__(
+        self,
+        function: Callable[[FloatArray], FloatArray],
+        exponent: float,
+        *,
+        scale: float,
+        foot: float | None = None,
+        top: float = inf,
+        error: float = 0.0,
+        route: str,
+        breaks: tuple[float, ...] = (),
+    ) -> None:
+        breaks = tuple(b for b in breaks if 0 < b < top)
+        scale = min(scale, top, *breaks)
+        super().__init__(exponent, top=top, error=error, route=route, breaks=breaks, scale=scale)
+        self._function = function
+        self.foot = foot if foot is not None else scale * 2.0**-52
+        self._ahead = stretches(self.foot, self.breaks, top)
+        self._lock = Lock()
+        self._table: Table | None = None
+        self._reach = self.foot
+        self._tail = 0.0
+
+    @property
+    def error(self) -> float:
+        """See `Measure.error`."""
+        return self._error + self._tail
+
+    def volume(self, v: ArrayLike) -> FloatArray:
+        """See `Measure.volume`."""
+        energy = np.clip(np.asarray(v, dtype=float), 0.0, self.top)
+        flat = energy.ravel()
+        ratio = self._up_to(flat).value(np.maximum(flat, self.foot))
+        return np.reshape(ratio * (flat / self.scale) ** self.exponent, energy.shape)
+
+    def density(self, v: ArrayLike) -> FloatArray:
+        """See `Measure.density`."""
+        energy = np.asarray(v, dtype=float)
+        flat = energy.ravel()
+        inside = (flat > 0) & (flat < self.top)
+        flat = np.where(inside, flat, self.foot)
+        ratio, slope = self._up_to(flat).value_and_derivative(np.maximum(flat, self.foot))
+        slope = np.where(flat < self.foot, 0.0, slope)
+        density = (flat / self.scale) ** self.exponent * (self.exponent * ratio / flat + slope)
+        return np.where(inside, density, 0.0).reshape(energy.shape)
+
+    def nodes(self, upto: float = inf) -> Nodes:
+        """See `Measure.nodes`."""
+        end = self.end(upto)
+        table = self._up_to(np.array([end]))
+        foot = Foot(
+            float(table.value(np.array([self.foot]))[0]) / self.scale**self.exponent, self.exponent, self.foot
+        )
+        rules = [
+            self._rule(panel, series, end) for panel, series in zip(table.panels, table.series, strict=True)
+        ]
+        return Nodes(np.concatenate([v for v, _ in rules]), np.concatenate([w for _, w in rules]), foot)
+
+    def _rule(self, panel: Panel, series: FloatArray, end: float) -> tuple[FloatArray, FloatArray]:
+        """Nodes and weights dOmega on the part of a panel below `end`."""
+        if panel.first >= end:
+            return np.empty(0), np.empty(0)
+        stop = panel.stop if panel.last <= end else panel.place(end)
+        parts = int(np.ceil(np.log(min(panel.last, end) / panel.first) / np.log(RATIO)))
+        edges = np.linspace(panel.start, stop, max(parts, 1) + 1)
+        x, w = legendre(ORDER)
+        t = (edges[:-1, None] + np.diff(edges)[:, None] * x).ravel()
+        dt = (np.diff(edges)[:, None] * w).ravel()
+        v, slope = panel.energy(t), panel.slope(t)
+        place = 2 * (t - panel.start) / (panel.stop - panel.start) - 1
+        ratio = np.polynomial.chebyshev.chebval(place, series)
+        bend = np.polynomial.chebyshev.chebval(place, np.polynomial.chebyshev.chebder(series))
+        bend *= 2 / (panel.stop - panel.start)
+        return v, dt * (v / self.scale) ** self.exponent * (self.exponent * ratio / v * slope + bend)
+
+    def _up_to(self, v: FloatArray) -> Table:
+        """The table with panels at least up to the greatest of these energies."""
+        wanted = min(float(v.max(initial=self.foot)), self.top)
+        table = self._table
+        if table is None or wanted > self._reach:
+            with self._lock:
+                while self._table is None or wanted > self._reach:
+                    self._extend()
+                table = self._table
+        return table
+
+    def _extend(self) -> None:
+        """Add the next stretch, in panels fine enough for their series to converge."""
+        stretch = next(self._ahead)
+        done: list[tuple[Panel, FloatArray]] = []
+        waiting = [(stretch, inf)]
+        while waiting:
+            series, tails = self._sample([panel for panel, _ in waiting])
+            halved: list[tuple[Panel, float]] = []
+            for (panel, before), row, tail in zip(waiting, series, tails, strict=True):
+                if self._resolved(panel, tail, before):
+                    done.append((panel, row))
+                    self._tail = max(self._tail, tail)
+                else:
+                    halved += [(half, tail) for half in panel.halves()]
+            waiting = halved
+        done.sort(key=lambda pair: (pair[0].first, pair[0].start))
+        panels = tuple(panel for panel, _ in done)
+        series = np.array([row for _, row in done])
+        if self._table is not None:
+            panels, series = self._table.panels + panels, np.concatenate([self._table.series, series])
+        self._table = Table(panels, series)
+        self._reach = stretch.hi
+
+    def _resolved(self, panel: Panel, tail: float, before: float) -> bool:
+        """Whether a series is as good as it gets; `before` is the tail of the panel that was halved for it."""
+        if tail <= max(SHARPEST, self._error) or panel.stop - panel.start <= FINEST[panel.kind]:
+            return True
+        return NOISE > tail > before / 2
+
+    def _sample(self, panels: list[Panel]) -> tuple[FloatArray, list[float]]:
+        """Series of Omega / (v/scale)^exponent on panels, and the relative size of their last coefficients."""
+        s = points()
+        v = np.array([p.energy(p.start + (p.stop - p.start) * s) for p in panels])
+        omega = self._function(v.ravel()).reshape(v.shape)
+        values = omega / (v / self.scale) ** self.exponent
+        series = values @ to_series().T
+        tails = np.abs(series[:, -3:]).max(axis=1) / np.abs(values).max(axis=1)
+        return series, [float(tail) for tail in tails]
