@@ -13,7 +13,7 @@ if TYPE_CHECKING:
 
     from eoscore.source import Span
 
-__all__ = ["Complaint", "EoscoreError", "NoAnswerError", "PluginError", "TarnError"]
+__all__ = ["Complaint", "EoscoreError", "LawError", "NoAnswerError", "PluginError", "TarnError"]
 
 
 class EoscoreError(Exception):
@@ -77,3 +77,11 @@ class PluginError(EoscoreError, TypeError):
     def __init__(self, plugin: str, found: str, wanted: str) -> None:
         self.plugin, self.found, self.wanted = plugin, found, wanted
         super().__init__(f"plugin {plugin!r} is refused: found {found}; wanted {wanted}")
+
+
+class LawError(EoscoreError, AssertionError):
+    """A dispersion breaks laws of its contract: its name, and each broken law in words."""
+
+    def __init__(self, dispersion: str, broken: Sequence[str]) -> None:
+        self.dispersion, self.broken = dispersion, tuple(broken)
+        super().__init__("\n  ".join([f"the dispersion {dispersion!r} breaks its contract:", *self.broken]))

@@ -12,7 +12,6 @@ from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
 import numpy as np
-from numpy.typing import NDArray
 
 from eoscore.constants import K_B
 from eoscore.errors import NoAnswerError
@@ -22,7 +21,7 @@ from eoscore.gas.rest import boltzmann_of
 if TYPE_CHECKING:
     from collections.abc import Iterable
 
-    from numpy.typing import ArrayLike
+    from numpy.typing import ArrayLike, NDArray
 
     from eoscore.gas.multiples import Rule
     from eoscore.gas.rest import Boltzmann
@@ -35,19 +34,21 @@ BLOCK = 32  # states summed together: 32 x some hundred multiples stay in the ca
 
 @dataclass(frozen=True)
 class LevelMoments:
-    """Sums over states of energy e and occupation f = 1/(e^{(e - mu)/kT} -+ 1), all of the shape of mu and T.
+    """Sums over states of energy e with t = (e - mu)/kT and occupation f(t), all of the shape of mu and T.
 
-    J = -+kT sum ln(1 +- f) in J (the grand potential), N = sum f, U = sum e f in J; with the weight f (1 +- f):
-    NN = sum, NE = sum e in J, EE = sum e^2 in J^2. Then S = (U - mu N - J)/T, dN/dmu = NN/kT,
-    dN/dT = (NE - mu NN)/kT^2, dU/dmu = NE/kT, dU/dT = (EE - mu NE)/kT^2.
+    N = sum f; U = sum e f in J; S = the entropy in units of k_B; Y = -J/kT, J the grand potential; and with the
+    weight w = -df/dt the moments B0 = sum w, B1 = sum w t, B2 = sum w t^2: dN/dmu = B0/kT, dN/dT = B1/T,
+    dS/dT = B2/T. Relative accuracy 1e-13; a Fermi gas at large eta = mu/kT loses a factor eta in S and B1, eta^2
+    in B2, because they are small differences there.
     """
 
-    J: FloatArray
     N: FloatArray
     U: FloatArray
-    NN: FloatArray
-    NE: FloatArray
-    EE: FloatArray
+    S: FloatArray
+    Y: FloatArray
+    B0: FloatArray
+    B1: FloatArray
+    B2: FloatArray
 
 
 @dataclass(frozen=True)
@@ -74,7 +75,7 @@ class OscillatorLevels:
         kT, flat = K_B * T.ravel(), mu.ravel()
         step = 1 if self.statistics == "fermi" else BLOCK  # the line of a Fermi gas depends on mu/kT
         blocks = [self._block(flat[i : i + step], kT[i : i + step]) for i in range(0, flat.size, step)]
-        sums = np.concatenate(blocks, axis=1) if blocks else np.zeros((6, 0))
+        sums = np.concatenate(blocks, axis=1) if blocks else np.zeros((7, 0))
         return LevelMoments(*(each.reshape(mu.shape) for each in sums))
 
     def _check(self, mu: FloatArray, T: FloatArray) -> None:
@@ -84,27 +85,29 @@ class OscillatorLevels:
             raise NoAnswerError("mu came above the lowest level; a Bose gas has mu at or below it")
 
     def _block(self, mu: FloatArray, kT: FloatArray) -> FloatArray:
-        """The six sums, shape (6, points), of points that share their rules."""
+        """The seven sums, shape (7, points), of points that share their rules."""
         rest = boltzmann_of(self.rest, kT, mu)
-        total = np.zeros((6, mu.size))
         alpha = -mu / kT
+        y, n, x, b0, x1, x2 = total = np.zeros((6, mu.size))
         for rule in self._rules(alpha, kT):
             beta = rule.at / kT[:, None]
             with np.errstate(under="ignore"):
                 weight = rule.weight * np.exp(-rule.at * alpha[:, None])
-                z0, z1, z2 = self._partition(beta, rest)
+                z0, z1, z2 = self._partition(beta, rest, kT[:, None])
                 for row, (power, z) in enumerate(((-1, z0), (0, z0), (0, z1), (1, z0), (1, z1), (1, z2))):
                     total[row] += np.real((weight * rule.at**power * z).sum(axis=1))
-        total[0] *= -kT
-        return total
+        b1, b2 = x1 + alpha * b0, x2 + 2 * alpha * x1 + alpha**2 * b0
+        return np.stack([n, kT * x, y + x + alpha * n, y, b0, b1, b2])
 
     def _rules(self, alpha: FloatArray, kT: FloatArray) -> Iterable[Rule]:
         if self.statistics == "fermi":
             return fermi_rules(-float(alpha[0]))
         return multiples_of(self.statistics, float(np.min(alpha + min(self.quanta) / kT)))
 
-    def _partition(self, beta: NDArray[np.inexact], rest: Boltzmann) -> tuple[NDArray[np.inexact], ...]:
-        """Z of the states with a quantum, -dZ/db and d2Z/db2 at inverse energies beta, real or complex."""
+    def _partition(
+        self, beta: NDArray[np.inexact], rest: Boltzmann, kT: FloatArray
+    ) -> tuple[NDArray[np.inexact], ...]:
+        """Z of the states with a quantum, -dZ/db / kT and d2Z/db2 / kT^2 at inverse energies b."""
         r0, r1, r2 = rest(beta)
         log_levels, mean, variance = 0.0 * beta, 0.0 * beta, 0.0 * beta
         for quantum in self.quanta:
@@ -116,4 +119,8 @@ class OscillatorLevels:
         excited = np.expm1(log_levels)
         b0 = excited + 1
         b1, b2 = b0 * mean, b0 * (mean**2 + variance)
-        return excited * r0, b1 * r0 + excited * r1, b2 * r0 + 2 * b1 * r1 + excited * r2
+        return (
+            excited * r0,
+            (b1 * r0 + excited * r1) / kT,
+            (b2 * r0 + 2 * b1 * r1 + excited * r2) / kT**2,
+        )

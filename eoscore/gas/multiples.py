@@ -12,12 +12,13 @@ from functools import cache
 from typing import TYPE_CHECKING, NamedTuple
 
 import numpy as np
-from numpy.typing import NDArray
 
 from eoscore.errors import NoAnswerError
 
 if TYPE_CHECKING:
     from collections.abc import Iterator
+
+    from numpy.typing import NDArray
 
 __all__ = ["Rule", "fermi_rules", "multiples_of"]
 
@@ -72,8 +73,8 @@ def fermi_rules(eta: float) -> Iterator[Rule]:
     as e^{-2 pi c/step} (Trefethen and Weideman, SIAM Review 56, 385, 2014). With c = 4/eta nothing cancels.
     """
     if eta <= -1.0:
-        l = np.arange(1.0, DIGITS / -eta + 2)
-        yield Rule(l, np.where(l % 2 == 1, 1.0, -1.0))
+        at = np.arange(1.0, DIGITS / -eta + 2)
+        yield Rule(at, np.where(at % 2 == 1, 1.0, -1.0))
         return
     if eta > FERMI_LIMIT:
         why = f"mu/kT is {eta:.3g}; sums over levels of a Fermi gas are made up to {FERMI_LIMIT:.0g}: raise T"

@@ -9,10 +9,12 @@ import numpy as np
 from numpy.typing import NDArray
 from scipy.special import gamma
 
+from eoscore.measure.rules import graded
+
 if TYPE_CHECKING:
     from eoscore.measure.base import FloatArray, Measure, Nodes
 
-__all__ = ["Boltzmann", "boltzmann_of"]
+__all__ = ["Boltzmann", "boltzmann_of", "thermal_nodes"]
 
 Triple = tuple[NDArray[np.inexact], NDArray[np.inexact], NDArray[np.inexact]]
 DIGITS = 42.0  # e^-42 = 6e-19 is dropped
@@ -29,8 +31,7 @@ class Boltzmann(Protocol):
 def boltzmann_of(measure: Measure, kT: FloatArray, mu: FloatArray) -> Boltzmann:
     """R of a measure: closed for untruncated sums of powers, else a sum over nodes.
 
-    The nodes serve states at energies kT and chemical potentials mu (J, 1D arrays): they reach as far as the
-    states are occupied, and above mu = 0, where the occupation is a step, no panel is wider than 2 kT.
+    The nodes serve states at energies kT and chemical potentials mu (J, 1D arrays).
     """
     terms = measure.powers()
     if terms is not None and measure.top == np.inf:
@@ -38,6 +39,15 @@ def boltzmann_of(measure: Measure, kT: FloatArray, mu: FloatArray) -> Boltzmann:
     upto = float(np.max(np.maximum(mu, 0.0) + DIGITS * kT))
     v, w = _stepped(measure, float(kT.min()), upto) if np.any(mu > 0) else _atoms(measure.nodes(upto))
     return lambda beta: _of_atoms(v, w, beta)
+
+
+def thermal_nodes(measure: Measure, kT: float, mu: float) -> tuple[FloatArray, FloatArray]:
+    """Energies above 0 and weights for sums of occupations: as far as states at kT and mu (J) are occupied.
+
+    Above mu = 0, where the occupation is a step, no panel is wider than 2 kT.
+    """
+    upto = max(mu, 0.0) + DIGITS * kT
+    return _stepped(measure, kT, upto) if mu > 0 else _atoms(measure.nodes(upto))
 
 
 def _of_powers(terms: tuple[tuple[float, float], ...], beta: NDArray[np.inexact]) -> Triple:
@@ -52,10 +62,13 @@ def _of_powers(terms: tuple[tuple[float, float], ...], beta: NDArray[np.inexact]
 
 
 def _atoms(nodes: Nodes) -> tuple[FloatArray, FloatArray]:
-    """The nodes with the foot as one point more, at its mean energy: e^{-bE} is straight across the foot."""
+    """The nodes with the foot as atoms: one at 0 for a flat floor, else graded towards 0 once more."""
     foot = nodes.foot
-    centre = foot.edge * foot.exponent / (foot.exponent + 1)
-    return np.append(nodes.v, centre), np.append(nodes.w, foot.volume)
+    if foot.exponent == 0:
+        return np.append(0.0, nodes.v), np.append(foot.volume, nodes.w)
+    t, weight = graded(foot.exponent)
+    below = foot.volume * foot.exponent * weight * t ** (foot.exponent - 1)
+    return np.append(foot.edge * t, nodes.v), np.append(below, nodes.w)
 
 
 def _stepped(measure: Measure, kT: float, upto: float) -> tuple[FloatArray, FloatArray]:

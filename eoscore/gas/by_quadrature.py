@@ -1,0 +1,139 @@
+"""Reference values for the laws: what an energy formula gives when SciPy integrates it, and nothing else."""
+
+from __future__ import annotations
+
+from itertools import pairwise
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from eoscore.gas.momentum import ball
+
+if TYPE_CHECKING:
+    from collections.abc import Callable, Sequence
+
+    from numpy.typing import NDArray
+
+    from eoscore.gas.dispersion import Dispersion
+    from eoscore.measure.base import FloatArray
+
+__all__ = ["SCAN", "inside", "partition", "volume_below"]
+
+SCAN = np.geomspace(1e-40, 1e-12, 20_000)  # |p| in kg m/s, from below any trap to above any accelerator
+FADED = 60.0  # e^-60 = 9e-27 is dropped
+
+
+def inside(dispersion: Dispersion, momenta: Sequence[FloatArray]) -> NDArray[np.bool_]:
+    """Where the momenta (one array per component) lie inside every wall."""
+    given = dict(zip(dispersion.field.coordinates, momenta, strict=True))
+    zone = np.ones(np.broadcast_shapes(*(p.shape for p in momenta)), dtype=bool)
+    for wall in dispersion.field.walls:
+        zone &= np.asarray(wall.evaluate(given)) > 0
+    return zone
+
+
+def partition(dispersion: Dispersion, beta: float, d: int) -> tuple[float, float]:
+    """int d^dp e^{-beta (E - min E)} in (kg m/s)^d, and an estimate of its error."""
+    return (_isotropic if dispersion.field.coordinates == ("p",) else _cartesian)(dispersion, beta, d)
+
+
+def volume_below(dispersion: Dispersion, energy: float, d: int) -> float:
+    """The volume in (kg m/s)^d where an isotropic E - min E < energy, by root finding."""
+    limit = _least(dispersion) + energy
+
+    def below(p: FloatArray) -> FloatArray:
+        return np.where(inside(dispersion, [p]), limit - dispersion.energy_at(p), -np.inf)
+
+    shells = _stretches(below)
+    return ball(d) * sum(hi**d - lo**d for lo, hi in shells)
+
+
+def _least(dispersion: Dispersion) -> float:
+    """The least energy of an isotropic formula, refined about the lowest point of the scan."""
+    from scipy.optimize import minimize_scalar
+
+    energy = np.where(inside(dispersion, [SCAN]), dispersion.energy_at(SCAN), np.inf)
+    k = int(np.argmin(energy))
+    if k in (0, len(SCAN) - 1):
+        return float(energy[k])
+    found = minimize_scalar(
+        lambda p: float(dispersion.energy_at(p)), bounds=(SCAN[k - 1], SCAN[k + 1]), method="bounded"
+    )
+    return min(float(energy[k]), float(found.fun))
+
+
+def _stretches(function: Callable[[FloatArray], FloatArray]) -> list[tuple[float, float]]:
+    """The intervals of |p| where a function is positive, their ends by bisection to all digits."""
+    held = function(SCAN) > 0
+    ends = [0.0] if held[0] else []
+    for k in np.flatnonzero(held[1:] != held[:-1]):
+        lo, hi = np.log(SCAN[k]), np.log(SCAN[k + 1])
+        for _ in range(60):
+            middle = (lo + hi) / 2
+            same = (function(np.exp(np.array([middle]))) > 0)[0] == held[k]
+            lo, hi = (middle, hi) if same else (lo, middle)
+        ends.append(float(np.exp((lo + hi) / 2)))
+    return list(zip(ends[::2], [*ends[1::2], *([SCAN[-1]] if held[-1] else [])], strict=True))
+
+
+def _isotropic(dispersion: Dispersion, beta: float, d: int) -> tuple[float, float]:
+    from scipy.integrate import quad
+
+    least = _least(dispersion)
+
+    def filled(p: FloatArray) -> FloatArray:
+        return np.where(inside(dispersion, [p]), FADED - beta * (dispersion.energy_at(p) - least), -np.inf)
+
+    def integrand(p: float) -> float:
+        return float(d * ball(d) * p ** (d - 1) * np.exp(-beta * (dispersion.energy_at(p) - least)))
+
+    value = error = 0.0
+    for lo, hi in _stretches(filled):
+        for a, b in pairwise([lo, *(lo + (hi - lo) * np.array([1e-4, 1e-2, 0.1, 0.3, 1.0]))]):
+            part, off = quad(integrand, a, b, epsabs=0, epsrel=1e-12, limit=200)
+            value, error = value + part, error + off
+    return value, error
+
+
+def _cartesian(dispersion: Dispersion, beta: float, d: int) -> tuple[float, float]:
+    """Tensor Gauss-Legendre in panels over the box that holds the thermal particles; two orders give the error."""
+    box = [_extent(dispersion, beta, axis, d) for axis in range(d)]
+    fine, rough = (_on_grid(dispersion, beta, box, order) for order in (14, 11))
+    return fine, abs(fine - rough)
+
+
+def _extent(dispersion: Dispersion, beta: float, axis: int, d: int) -> list[tuple[float, float]]:
+    """The stretches of one momentum that hold thermal particles while the others are zero, either sign."""
+    found: list[tuple[float, float]] = []
+    for sign in (-1.0, 1.0):
+
+        def along(p: FloatArray, sign: float = sign) -> list[FloatArray]:
+            return [sign * p if i == axis else np.zeros_like(p) for i in range(d)]
+
+        zone = inside(dispersion, along(SCAN))
+        least = float(np.min(dispersion.energy_at(*along(SCAN))[zone]))
+
+        def filled(
+            p: FloatArray, least: float = least, along: Callable[[FloatArray], list[FloatArray]] = along
+        ) -> FloatArray:
+            heat = FADED - beta * (dispersion.energy_at(*along(p)) - least)
+            return np.where(inside(dispersion, along(p)), heat, -np.inf)
+
+        found += [(min(sign * a, sign * b), max(sign * a, sign * b)) for a, b in _stretches(filled)]
+    return found
+
+
+def _on_grid(dispersion: Dispersion, beta: float, box: list[list[tuple[float, float]]], order: int) -> float:
+    x, w = np.polynomial.legendre.leggauss(order)
+    nodes, weights = [], []
+    for stretches in box:
+        edges = [np.linspace(lo, hi, 5) for lo, hi in stretches]
+        pairs = [(a, b) for e in edges for a, b in pairwise(e)]
+        nodes.append(np.concatenate([(a + b) / 2 + (b - a) / 2 * x for a, b in pairs]))
+        weights.append(np.concatenate([(b - a) / 2 * w for a, b in pairs]))
+    momenta = np.meshgrid(*nodes, indexing="ij", sparse=True)
+    energy = np.where(inside(dispersion, momenta), dispersion.energy_at(*momenta), np.inf)
+    total = np.exp(-beta * (energy - energy.min()))
+    for each in reversed(weights):
+        total = total @ each
+    return float(total)

@@ -1,0 +1,44 @@
+"""The energy of a dispersion, written in Tarn, as a formula and as a SymPy expression."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING, Any
+
+from eoscore.formula.field import Field
+from eoscore.language.kind import dimension
+
+if TYPE_CHECKING:
+    from eoscore.gas.dispersion import Dispersion
+    from eoscore.language.units import Dimension
+
+__all__ = ["compiled", "symbolic"]
+
+MOMENTUM, ENERGY = "kg.m/s", "J"
+
+
+def compiled(dispersion: Dispersion) -> Field:
+    """The energy text and its walls as formulas; TarnError where a text does not read or has another dimension."""
+    from eoscore.language.compile import compile_text
+
+    momenta = {name: dimension(MOMENTUM) for name in dispersion.momentum}
+    values: dict[str, tuple[float, Dimension]] = {
+        p.name: (dispersion.values[p.name], dimension(p.unit))
+        for p in dispersion.parameters
+        if p.name in dispersion.values
+    }
+    if dispersion.mass is not None:
+        values["m"] = (dispersion.mass, dimension("kg"))
+    return Field(
+        dispersion.momentum,
+        compile_text(dispersion.energy, momenta, values, dimension(ENERGY)),
+        tuple(compile_text(wall, momenta, values, dimension(MOMENTUM)) for wall in dispersion.walls),
+    )
+
+
+def symbolic(dispersion: Dispersion) -> Any:
+    """The energy text over SymPy symbols of the momenta, the parameters and m."""
+    from eoscore.language.symbolic import symbolic_text
+
+    return symbolic_text(
+        dispersion.energy, [*dispersion.momentum, *(p.name for p in dispersion.parameters), "m"]
+    )
