@@ -111,9 +111,10 @@ class OscillatorLevels:
         r0, r1, r2 = rest(beta)
         log_levels, mean, variance = 0.0 * beta, 0.0 * beta, 0.0 * beta
         for quantum in self.quanta:
-            fading = np.exp(-beta * quantum)
-            occupied = fading / -np.expm1(-beta * quantum)
-            log_levels = log_levels - np.log1p(-fading)
+            fading, lost = np.exp(-beta * quantum), -np.expm1(-beta * quantum)
+            occupied = fading / lost
+            # each form where it keeps its digits: many levels, or hardly one
+            log_levels = log_levels - np.where(np.abs(fading) > 0.5, np.log(lost), np.log1p(-fading))
             mean = mean + quantum * occupied
             variance = variance + quantum**2 * occupied * (1 + occupied)
         excited = np.expm1(log_levels)
