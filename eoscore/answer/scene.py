@@ -15,7 +15,7 @@ if TYPE_CHECKING:
 
     from numpy.typing import NDArray
 
-    from eoscore.language import Binding
+    from eoscore.language.program import Binding
     from eoscore.state import HeldGas, Reading
 
 __all__ = ["Scene"]

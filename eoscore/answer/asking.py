@@ -1,0 +1,79 @@
+"""From a question to its answer."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+from eoscore.answer.assembly import assembled
+from eoscore.answer.cautions import cautions_for
+from eoscore.answer.chain import Chain
+from eoscore.answer.record import Caution, FoundAnswer, Given
+from eoscore.answer.scene import Scene
+from eoscore.answer.uncertainty import with_uncertainty
+from eoscore.answer.unit import unit_of_dimension
+
+if TYPE_CHECKING:
+    from collections.abc import Iterable, Mapping
+
+    from eoscore.answer.chain import Part
+    from eoscore.answer.record import Answer, Finding
+    from eoscore.language.program import Program
+    from eoscore.language.question import Question
+
+__all__ = ["answer_to"]
+
+
+def answer_to(program: Program, question: Question, accuracy: float = 1e-6) -> Answer:
+    """The answer to one question; where there is no number, words."""
+    if question.verb == "derive":
+        from eoscore.answer.deriving import derived
+
+        return derived(program, question, words_of(question), given_of(question))
+    chain = Chain(program, question)
+    parts = chain.parts()
+    findings = {name: assembled(chain.grid, [part.readings[name] for part in parts]) for name in chain.names}
+    findings = with_uncertainty(chain, parts, findings)
+    return FoundAnswer(
+        line=question.line,
+        question=words_of(question),
+        gas=question.gas,
+        place=question.place,
+        origins=question.origins,
+        given=given_of(question),
+        over={axis.name: axis.values for axis in question.over},
+        over_units={axis.name: unit_of_dimension(axis.dimension) for axis in question.over},
+        found=findings,
+        cautions=_cautions(parts, findings, accuracy),
+    )
+
+
+def words_of(question: Question) -> str:
+    """The question as it stands in the file, on one line."""
+    lines = (line.partition("#")[0] for line in question.node.span.text.splitlines())
+    return " ".join(" ".join(lines).split())
+
+
+def given_of(question: Question) -> dict[str, Given]:
+    """The conditions and the new values of parameters, in SI."""
+    every = {**question.given, **question.values}
+    return {name: Given(each.value, unit_of_dimension(each.dimension)) for name, each in every.items()}
+
+
+def _cautions(parts: list[Part], findings: Mapping[str, Finding], accuracy: float) -> tuple[Caution, ...]:
+    """Each caution once: the first and the last stop of a grid speak for all."""
+    ends = [parts[0], parts[-1]] if len(parts) > 1 else parts
+    found: dict[str, Caution] = {}
+    for part in ends:
+        if part.held is not None:
+            for caution in cautions_for(Scene(part.binding, part.held, part.given, part.readings)):
+                found.setdefault(caution.code, caution)
+    for caution in _inaccurate(findings.items(), accuracy):
+        found.setdefault(caution.code, caution)
+    return tuple(found.values())
+
+
+def _inaccurate(findings: Iterable[tuple[str, Finding]], accuracy: float) -> Iterable[Caution]:
+    missed = [f"{name} ({finding.worst():.0e})" for name, finding in findings if finding.worst() > accuracy]
+    if missed:
+        text = f"the relative error wanted, {accuracy:g}, was not reached by {', '.join(missed)}."
+        yield Caution("accuracy", text)

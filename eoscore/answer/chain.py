@@ -1,0 +1,147 @@
+"""The whole way from a question to its readings, for one set of values of the uncertain literals.
+
+What does not change between two stops of a grid, or between two values of a literal, is held once: bindings are
+compared by their facts, and equal facts share one held gas.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field, fields
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from eoscore.answer.grid import Grid, Stop
+from eoscore.answer.holding import held_gas
+from eoscore.answer.unit import quantity_unit, unit_of_dimension
+from eoscore.errors import NoAnswerError
+from eoscore.language.quantities import QUANTITIES
+from eoscore.state.reading import Reason, reading_of
+
+if TYPE_CHECKING:
+    from collections.abc import Hashable, Mapping
+
+    from numpy.typing import NDArray
+
+    from eoscore.language.program import Binding, Program
+    from eoscore.language.question import Question
+    from eoscore.state import HeldGas, Reading
+
+__all__ = ["Chain", "Part"]
+
+_ENTRIES = ("freq", "r_min")
+
+
+@dataclass(frozen=True)
+class Part:
+    """What one stop of the grid gave: readings over the condition axes, and what they were read from.
+
+    `held` is None where nothing could be held; the readings then say why.
+    """
+
+    stop: Stop
+    binding: Binding
+    held: HeldGas | None
+    given: Mapping[str, NDArray[np.float64]]
+    readings: Mapping[str, Reading]
+
+
+@dataclass
+class Chain:
+    """One question of one program."""
+
+    program: Program
+    question: Question
+    grid: Grid = field(init=False)
+    _kept: dict[Hashable, HeldGas | NoAnswerError] = field(init=False, default_factory=dict)
+
+    def __post_init__(self) -> None:
+        self.grid = Grid(self.question.over)
+
+    @property
+    def names(self) -> tuple[str, ...]:
+        """The quantities asked for, each once, in order."""
+        return tuple(dict.fromkeys(ident.name for ident in self.question.quantities))
+
+    def parts(self, literals: Mapping[int, float] | None = None) -> list[Part]:
+        """Every stop of the grid, with the literals of these indices at other SI values."""
+        moved = literals or {}
+        return [self._part(stop, moved) for stop in self.grid.stops()]
+
+    def _part(self, stop: Stop, literals: Mapping[int, float]) -> Part:
+        question = self.question
+        conditions = self.program.conditions(question, literals)
+        values = conditions.values | dict(stop.values)
+        given = self.grid.arrays(conditions.given)
+        binding = self.program.bind(question.gas, question.place, values, literals)
+        physical = tuple(name for name in self.names if name in QUANTITIES)
+        try:
+            held = self._held(binding)
+            asked = self._brought(given, values, literals) if question.origins else given
+            readings = dict(held.find(physical, asked)) if physical else {}
+        except NoAnswerError as fault:
+            return Part(stop, binding, None, given, self._named(binding) | self._without(physical, fault.why))
+        return Part(stop, binding, held, asked, readings | self._named(binding))
+
+    def _held(self, binding: Binding) -> HeldGas:
+        facts = _facts(binding)
+        if facts not in self._kept:
+            self._kept[facts] = self._hold(binding)
+        outcome = self._kept[facts]
+        if isinstance(outcome, NoAnswerError):
+            raise outcome
+        return outcome
+
+    def _hold(self, binding: Binding) -> HeldGas | NoAnswerError:
+        try:
+            return held_gas(binding, self.question.dimension)
+        except NoAnswerError as fault:
+            return fault
+
+    def _brought(
+        self,
+        given: Mapping[str, NDArray[np.float64]],
+        values: Mapping[str, float],
+        literals: Mapping[int, float],
+    ) -> dict[str, NDArray[np.float64]]:
+        """N and S of the gas in the first place, with which it arrives in the last one after slow changes."""
+        first = self.program.bind(self.question.gas, self.question.origins[0], values, literals)
+        found = self._held(first).find(("N", "S"), given)
+        for name in ("N", "S"):
+            if found[name].why is not None:
+                raise NoAnswerError(f"in {self.question.origins[0]}, where it starts: {found[name].why}")
+        return {name: found[name].value for name in ("N", "S")}
+
+    def _named(self, binding: Binding) -> dict[str, Reading]:
+        """The names of the file that are asked for, as readings that are exact to the last digits."""
+        readings = {}
+        for name in self.names:
+            if name not in QUANTITIES:
+                value, dimension = binding.value(name)
+                unit = unit_of_dimension(dimension)
+                error = np.finfo(float).eps * abs(value)
+                readings[name] = reading_of(value, error, unit, "as defined in the file")
+        return readings
+
+    def _without(self, names: tuple[str, ...], why: str) -> dict[str, Reading]:
+        """Readings without a number at all points of this stop."""
+        shape = tuple(axis.points for axis in self.grid.conditions)
+        readings = {}
+        for name in names:
+            own = (1,) if name in _ENTRIES else ()
+            reason = Reason(why, np.ones(shape, dtype=bool))
+            readings[name] = reading_of(
+                np.full(shape + own, np.nan),
+                np.nan,
+                quantity_unit(name, self.question.dimension),
+                "none",
+                (reason,),
+            )
+        return readings
+
+
+def _facts(binding: Binding) -> Hashable:
+    """All that a held gas depends on; formulas are shared, so equal ones are the same object."""
+    gas = binding.gas
+    plain = (getattr(gas, each.name) for each in fields(gas) if each.name != "parameters")
+    return binding.place, *plain, *sorted(gas.parameters.items())

@@ -1,0 +1,156 @@
+"""A lab: a Tarn text read and checked, with its gases, its places and its questions."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+from eoscore.answer.asking import answer_to
+from eoscore.answer.holding import held_gas
+from eoscore.answer.sharing import Recipe, shared_answer
+from eoscore.errors import EoscoreError
+from eoscore.gas.registry import Signatures
+
+if TYPE_CHECKING:
+    from collections.abc import Sequence
+    from concurrent.futures import Executor
+    from os import PathLike
+
+    from eoscore.answer.record import Answer
+    from eoscore.language.program import Program
+    from eoscore.state import HeldGas
+
+__all__ = ["Lab", "LabGas", "LabPlace", "load", "loads"]
+
+
+def load(path: str | PathLike[str], *, settings: Sequence[str] = ()) -> Lab:
+    """Read a Tarn file; `settings` such as `"P=2 W"` override its parameters.
+
+    Raises
+    ------
+    TarnError
+        Where the text or a setting is at fault, with all complaints in one.
+    OSError
+        Where the file cannot be read.
+    """
+    path = Path(path)
+    return loads(path.read_bytes(), name=str(path), folder=path.parent, settings=settings)
+
+
+def loads(
+    text: str | bytes, *, name: str = "<text>", folder: Path | None = None, settings: Sequence[str] = ()
+) -> Lab:
+    """Read a Tarn text; `folder` is where `use "path.tarn"` looks.
+
+    Raises
+    ------
+    TarnError
+        Where the text or a setting is at fault, with all complaints in one.
+    """
+    content = text.encode() if isinstance(text, str) else text
+    recipe = Recipe(content, name, folder, tuple(settings), _read)
+    return Lab(_read(recipe), recipe)
+
+
+def _read(recipe: Recipe) -> Program:
+    from eoscore.language import read
+
+    return read(
+        recipe.text, recipe.name, folder=recipe.folder, settings=recipe.settings, dispersions=Signatures()
+    )
+
+
+class UnknownNameError(EoscoreError, KeyError):
+    """A lab has no gas or place of this name; the names it has are listed."""
+
+    def __init__(self, name: str, known: Sequence[str]) -> None:
+        self.name, self.known = name, tuple(known)
+        super().__init__(f"there is no gas or place {name!r}; known are {', '.join(known)}")
+
+    def __str__(self) -> str:
+        return str(self.args[0])
+
+
+@dataclass(frozen=True)
+class LabPlace:
+    """A place of a lab, to hold a gas in."""
+
+    lab: Lab
+    name: str
+
+
+@dataclass(frozen=True)
+class LabGas:
+    """A gas of a lab."""
+
+    lab: Lab
+    name: str
+
+    def held_in(
+        self, place: LabPlace | None = None, *, dimension: int | None = None, **values: float
+    ) -> HeldGas:
+        """The gas in a place, which is left out where the gas holds itself; `values` are SI parameters.
+
+        Raises
+        ------
+        NoAnswerError
+            Where the place holds nothing, or is open, in words.
+        """
+        name = None if place is None else place.name
+        return held_gas(self.lab.program.bind(self.name, name, values), dimension)
+
+
+class Lab:
+    """A Tarn text, read and checked: `lab["strontium"].held_in(lab["crossed"])`, `lab.answers()`."""
+
+    def __init__(self, program: Program, recipe: Recipe) -> None:
+        self.program = program
+        self._recipe = recipe
+
+    def __getitem__(self, name: str) -> LabGas | LabPlace:
+        """The gas or the place of this name; `uniform` is always there."""
+        if name in self.program.gases:
+            return LabGas(self, name)
+        if name in self.program.places or name == "uniform":
+            return LabPlace(self, name)
+        raise UnknownNameError(name, [*self.program.gases, *self.program.places, "uniform"])
+
+    def answers(
+        self, *, accuracy: float = 1e-6, workers: int = 1, executor: Executor | None = None
+    ) -> tuple[Answer, ...]:
+        """The answers to the text's own questions, in order; `accuracy` is the relative error wanted.
+
+        Grids are shared among `workers` processes of this machine, or given to any `executor`.
+
+        Raises
+        ------
+        TarnError
+            Where a question cannot be answered by this version.
+        """
+        if executor is not None:
+            return self._shared(accuracy, executor, max(workers, 2))
+        if workers > 1 and any(question.over for question in self.program.questions):
+            from concurrent.futures import ProcessPoolExecutor
+
+            with ProcessPoolExecutor(workers) as processes:
+                return self._shared(accuracy, processes, workers)
+        return tuple(answer_to(self.program, question, accuracy) for question in self.program.questions)
+
+    def _shared(self, accuracy: float, executor: Executor, workers: int) -> tuple[Answer, ...]:
+        return tuple(
+            shared_answer(self._recipe, self.program, index, accuracy, executor, workers)
+            for index in range(len(self.program.questions))
+        )
+
+    def contents(self) -> str:
+        """How many gases, places and questions there are, in words."""
+        counts = (
+            (len(self.program.gases), "gas", "gases"),
+            (len(self.program.places), "place", "places"),
+            (len(self.program.questions), "question", "questions"),
+        )
+        return ", ".join(f"{n} {one if n == 1 else many}" for n, one, many in counts)
+
+    def __repr__(self) -> str:
+        return f"Lab({self.contents()})"

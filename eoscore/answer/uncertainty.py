@@ -1,0 +1,105 @@
+"""Uncertainty carried from the input: first derivatives of the final answer by each uncertain literal.
+
+Each literal is one variable, so that correlations through shared names are kept. A derivative is a central
+difference of the whole chain from the text to the answer, with Richardson's step towards zero.
+"""
+
+from __future__ import annotations
+
+from dataclasses import replace
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from eoscore.answer.assembly import values_of
+from eoscore.language.quantities import QUANTITIES
+
+if TYPE_CHECKING:
+    from collections.abc import Mapping, Sequence
+
+    from numpy.typing import NDArray
+
+    from eoscore.answer.chain import Chain, Part
+    from eoscore.answer.record import Finding
+    from eoscore.language.program import UncertainLiteral
+
+__all__ = ["with_uncertainty"]
+
+# Steps in units of sigma and of the value: small beside the scale on which answers bend, large beside the noise.
+_STEP_OF_SIGMA = 0.1
+_STEP_OF_VALUE = 3e-3
+# Which conditions a quantity can depend on, by what the language says it needs.
+_CONDITIONS = {"nothing": (), "number": ("N", "n"), "temperature": ("T",)}
+
+
+def with_uncertainty(
+    chain: Chain, parts: Sequence[Part], findings: Mapping[str, Finding]
+) -> dict[str, Finding]:
+    """The findings with `sigma` and `budget`, where a literal with an uncertainty bears on them."""
+    carried: dict[str, dict[str, NDArray[np.float64]]] = {name: {} for name in findings}
+    for literal in chain.program.literals_of(chain.question):
+        for name, variance in _variances(chain, parts, literal).items():
+            carried[name][_label(literal)] = variance
+    return {name: _with_variances(finding, carried[name]) for name, finding in findings.items()}
+
+
+def _with_variances(finding: Finding, variances: Mapping[str, NDArray[np.float64]]) -> Finding:
+    if not variances:
+        return finding
+    total = np.sum(list(variances.values()), axis=0)
+    total = np.where(np.isfinite(finding.value), total, np.nan)
+    with np.errstate(invalid="ignore", divide="ignore"):
+        budget = {name: np.where(total > 0.0, part / total, np.nan) for name, part in variances.items()}
+    return replace(finding, sigma=np.sqrt(total), budget=budget)
+
+
+def _variances(
+    chain: Chain, parts: Sequence[Part], literal: UncertainLiteral
+) -> dict[str, NDArray[np.float64]]:
+    """(dA/dx sigma)^2 over the grid for every quantity A that the literal bears on."""
+    step = _STEP_OF_SIGMA * literal.sigma
+    if literal.value:
+        step = min(step, _STEP_OF_VALUE * abs(literal.value))
+    up, down = (chain.parts({literal.index: literal.value + s}) for s in (step, -step))
+    names = [name for name in chain.names if _bears(name, parts, up)]
+    if not names:
+        return {}
+    near_up, near_down = (chain.parts({literal.index: literal.value + s}) for s in (step / 2, -step / 2))
+    variances = {}
+    for name in names:
+        wide = _slope(chain, name, up, parts, down, step)
+        near = _slope(chain, name, near_up, parts, near_down, step / 2)
+        variances[name] = ((4.0 * near - wide) / 3.0 * literal.sigma) ** 2
+    return variances
+
+
+def _slope(
+    chain: Chain, name: str, up: Sequence[Part], middle: Sequence[Part], down: Sequence[Part], step: float
+) -> NDArray[np.float64]:
+    """The central difference, one-sided where the answer ends on the other side."""
+    above, here, below = (
+        values_of(chain.grid, [part.readings[name] for part in side]) for side in (up, middle, down)
+    )
+    central = (above - below) / (2.0 * step)
+    central = np.where(np.isfinite(central), central, (above - here) / step)
+    return np.where(np.isfinite(central), central, (here - below) / step)
+
+
+def _bears(name: str, parts: Sequence[Part], moved: Sequence[Part]) -> bool:
+    """Whether a moved literal can change a quantity: through the gas or the place, or a condition it needs."""
+    for part, other in zip(parts, moved, strict=True):
+        if name not in QUANTITIES:
+            if not np.array_equal(part.readings[name].value, other.readings[name].value):
+                return True
+            continue
+        if (part.binding.gas, part.binding.place) != (other.binding.gas, other.binding.place):
+            return True
+        needed = _CONDITIONS.get(QUANTITIES[name], tuple(part.given))
+        if any(not np.array_equal(part.given[c], other.given[c]) for c in needed if c in part.given):
+            return True
+    return False
+
+
+def _label(literal: UncertainLiteral) -> str:
+    """The name that a literal defines, else the literal itself with its line."""
+    return literal.name or f"{literal.span.text} (line {literal.span.line})"
