@@ -1,1 +1,7 @@
-"""The language room."""
+"""The language room: Tarn text to checked programs, and programs to facts."""
+
+from __future__ import annotations
+
+from eoscore.language.reading import load, read
+
+__all__ = ["load", "read"]

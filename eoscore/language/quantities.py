@@ -1,0 +1,38 @@
+"""The quantities that a question may ask for, what each needs to be given, and the conditions it may give."""
+
+from __future__ import annotations
+
+from typing import Final, Literal
+
+__all__ = ["CONDITIONS", "DERIVED", "QUANTITIES", "Need"]
+
+# What a quantity needs: nothing, the number (N or n), the temperature, a state (two conditions).
+Need = Literal["nothing", "number", "temperature", "state"]
+
+# tarn.md, the table of questions.
+QUANTITIES: Final[dict[str, Need]] = {
+    "T_c": "number",
+    "N_c": "temperature",
+    "n_c": "temperature",
+    "exponent": "temperature",
+    **dict.fromkeys(
+        ("N", "n", "T", "mu", "S", "U", "fugacity", "N_0", "f_0", "n_peak", "PSD", "C_N"), "state"
+    ),
+    **dict.fromkeys(("pressure", "kappa_T", "rate_coll"), "state"),
+    "lambda_T": "temperature",
+    "eta": "temperature",
+    **dict.fromkeys(("depth", "freq", "r_min", "V_min"), "nothing"),
+    **dict.fromkeys(("shift_size", "shift_int"), "number"),
+}
+
+# The thermodynamic conditions and their units; that of `n` is one of three and chooses the dimension.
+CONDITIONS: Final[dict[str, tuple[str, ...]]] = {
+    "N": ("1",),
+    "n": ("m-3", "m-2", "m-1"),
+    "T": ("K",),
+    "mu": ("J",),
+    "S": ("J/K",),
+    "U": ("J",),
+}
+
+DERIVED: Final = ("T_c", "N_c", "f_0", "U", "S", "C_N", "g", "rho")

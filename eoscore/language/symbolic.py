@@ -1,0 +1,3 @@
+"""Symbolic side"""
+
+Symbolic = object
