@@ -4,10 +4,12 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING, Any
 
+from eoscore.errors import PluginError
 from eoscore.formula.field import Field
 from eoscore.language.kind import dimension
 
 if TYPE_CHECKING:
+    from eoscore.formula import Formula
     from eoscore.gas.dispersion import Dispersion
     from eoscore.language.units import Dimension
 
@@ -17,7 +19,18 @@ MOMENTUM, ENERGY = "kg.m/s", "J"
 
 
 def compiled(dispersion: Dispersion) -> Field:
-    """The energy text and its walls as formulas; TarnError where a text does not read or has another dimension."""
+    """The energy text and its walls as formulas of the momenta.
+
+    TarnError where a text does not read or has another dimension, PluginError where it uses an unknown name.
+    """
+    return Field(
+        dispersion.momentum,
+        _formula(dispersion, dispersion.energy, ENERGY),
+        tuple(_formula(dispersion, wall, MOMENTUM) for wall in dispersion.walls),
+    )
+
+
+def _formula(dispersion: Dispersion, text: str, unit: str) -> Formula:
     from eoscore.language.compile import compile_text
 
     momenta = {name: dimension(MOMENTUM) for name in dispersion.momentum}
@@ -28,11 +41,14 @@ def compiled(dispersion: Dispersion) -> Field:
     }
     if dispersion.mass is not None:
         values["m"] = (dispersion.mass, dimension("kg"))
-    return Field(
-        dispersion.momentum,
-        compile_text(dispersion.energy, momenta, values, dimension(ENERGY)),
-        tuple(compile_text(wall, momenta, values, dimension(MOMENTUM)) for wall in dispersion.walls),
-    )
+    try:
+        return compile_text(text, momenta, values, dimension(unit))
+    except LookupError as unknown:
+        known = ", ".join([*momenta, *values])
+        found = f"the unknown name {unknown.args[0]} in {text!r}"
+        raise PluginError(
+            dispersion.name, found, f"{known}, the constants and functions of Tarn"
+        ) from unknown
 
 
 def symbolic(dispersion: Dispersion) -> Any:

@@ -28,7 +28,7 @@ def excited(x, dimensions):
     ],
 )
 def test_excited_number_at_the_lowest_level(x, dimensions, number):
-    """sum_k [(1 - e^{-kx})^-D - 1], worked out with mpmath; method of W. Ketterle, N. J. van Druten, PRA 54, 656 (1996)."""
+    """sum_k [(1 - e^{-kx})^-D - 1] by mpmath; method of W. Ketterle, N. J. van Druten, PRA 54, 656 (1996)."""
     assert excited(x, dimensions) == pytest.approx(number, rel=1e-12)
 
 

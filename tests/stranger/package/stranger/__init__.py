@@ -1,0 +1,1 @@
+"""Dispersions by somebody else."""
