@@ -66,10 +66,14 @@ class Lowering:
     """
 
     def __init__(self, values: Mapping[Named, float], literals: Mapping[int, float]) -> None:
-        self._values, self._literals = values, literals
+        self._values, self.literals = values, literals
         self._names: dict[Named, Formula] = {}
         self._calls: dict[CallKey, Formula] = {}
         self._steps = 0
+
+    def sets(self, named: Named) -> bool:
+        """Whether a name has a value given from outside."""
+        return named in self._values
 
     def value(self, named: Named) -> float:
         """The SI value of a name."""
@@ -92,7 +96,7 @@ class Lowering:
         self._count(node)
         match node:
             case nodes.Number():
-                given = self._literals.get(id(node)) if node.sigma else None
+                given = self.literals.get(id(node)) if node.sigma else None
                 return formula.constant(si_value(node) if given is None else given)
             case nodes.Name():
                 if node.name in frame.arguments:
