@@ -6,11 +6,8 @@ from dataclasses import dataclass
 from pathlib import Path
 from typing import TYPE_CHECKING
 
-from eoscore.answer.asking import answer_to
-from eoscore.answer.holding import held_gas
-from eoscore.answer.sharing import Recipe, shared_answer
+from eoscore.answer.recipe import Recipe
 from eoscore.errors import EoscoreError
-from eoscore.gas.registry import Signatures
 
 if TYPE_CHECKING:
     from collections.abc import Sequence
@@ -49,16 +46,7 @@ def loads(
         Where the text or a setting is at fault, with all complaints in one.
     """
     content = text.encode() if isinstance(text, str) else text
-    recipe = Recipe(content, name, folder, tuple(settings), _read)
-    return Lab(_read(recipe), recipe)
-
-
-def _read(recipe: Recipe) -> Program:
-    from eoscore.language import read
-
-    return read(
-        recipe.text, recipe.name, folder=recipe.folder, settings=recipe.settings, dispersions=Signatures()
-    )
+    return Lab(Recipe(content, name, folder, tuple(settings)))
 
 
 class UnknownNameError(EoscoreError, KeyError):
@@ -97,6 +85,8 @@ class LabGas:
         NoAnswerError
             Where the place holds nothing, or is open, in words.
         """
+        from eoscore.answer.holding import held_gas
+
         name = None if place is None else place.name
         return held_gas(self.lab.program.bind(self.name, name, values), dimension)
 
@@ -104,9 +94,9 @@ class LabGas:
 class Lab:
     """A Tarn text, read and checked: `lab["strontium"].held_in(lab["crossed"])`, `lab.answers()`."""
 
-    def __init__(self, program: Program, recipe: Recipe) -> None:
-        self.program = program
+    def __init__(self, recipe: Recipe) -> None:
         self._recipe = recipe
+        self.program: Program = recipe.program()
 
     def __getitem__(self, name: str) -> LabGas | LabPlace:
         """The gas or the place of this name; `uniform` is always there."""
@@ -135,9 +125,13 @@ class Lab:
 
             with ProcessPoolExecutor(workers) as processes:
                 return self._shared(accuracy, processes, workers)
+        from eoscore.answer.asking import answer_to
+
         return tuple(answer_to(self.program, question, accuracy) for question in self.program.questions)
 
     def _shared(self, accuracy: float, executor: Executor, workers: int) -> tuple[Answer, ...]:
+        from eoscore.answer.sharing import shared_answer
+
         return tuple(
             shared_answer(self._recipe, self.program, index, accuracy, executor, workers)
             for index in range(len(self.program.questions))

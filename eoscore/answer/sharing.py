@@ -17,30 +17,19 @@ from eoscore.answer.record import Finding, FoundAnswer, Reason
 from eoscore.errors import EoscoreError
 
 if TYPE_CHECKING:
-    from collections.abc import Callable, Iterator, Sequence
+    from collections.abc import Iterator, Sequence
     from concurrent.futures import Executor
-    from pathlib import Path
 
     from numpy.typing import NDArray
 
+    from eoscore.answer.recipe import Recipe
     from eoscore.answer.record import Answer
     from eoscore.language.program import Program
     from eoscore.language.question import Axis, Question
 
-__all__ = ["Recipe", "joined", "shared_answer"]
+__all__ = ["joined", "shared_answer"]
 
 _PIECES = 4  # per worker, so that a slow piece does not leave the others idle
-
-
-@dataclass(frozen=True)
-class Recipe:
-    """All that is needed to read a text again in another process."""
-
-    text: bytes
-    name: str
-    folder: Path | None
-    settings: tuple[str, ...]
-    read: Callable[[Recipe], Program]
 
 
 @dataclass(frozen=True)
@@ -70,7 +59,7 @@ def shared_answer(
 
 @lru_cache(maxsize=1)
 def _program(recipe: Recipe) -> Program:
-    return recipe.read(recipe)
+    return recipe.program()
 
 
 def _answer_piece(recipe: Recipe, piece: Piece, accuracy: float) -> FoundAnswer:
