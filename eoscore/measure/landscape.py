@@ -1,0 +1,30 @@
+"""Survey a potential: where its bottom is, what shape it has, where and at what energy it leaks."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+from eoscore.measure.landscape_line import survey_line
+from eoscore.measure.landscape_record import Escape, Landscape, Minimum
+from eoscore.measure.landscape_separable import independent_parts, together
+
+if TYPE_CHECKING:
+    from eoscore.formula.field import Field
+
+__all__ = ["Escape", "Landscape", "Minimum", "survey"]
+
+
+def survey(field: Field) -> Landscape:
+    """The landscape of a field of one, two or three coordinates.
+
+    Independent coordinates are surveyed one by one. Never raises for a potential that holds nothing: its
+    `why` tells.
+    """
+    parts = independent_parts(field)
+    if len(parts) > 1:
+        return together(field.coordinates, [survey(part) for part in parts])
+    if len(field.coordinates) == 1:
+        return survey_line(field)
+    from eoscore.measure.landscape_space import survey_space
+
+    return survey_space(field)
