@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import os
 import sys
 from typing import IO, NoReturn
 
@@ -34,7 +35,18 @@ def main() -> NoReturn:
     """Run the command line and leave with its exit status."""
     for stream in (sys.stdout, sys.stderr):
         _never_fail_to_print(stream)
-    sys.exit(guarded(lambda: int(command.main(prog_name="eoscore", standalone_mode=False) or 0)))
+    if "_EOSCORE_COMPLETE" in os.environ:
+        command.main(prog_name="eoscore")  # answers the shell that completes a line, and leaves
+    sys.exit(guarded(lambda: _invoke(sys.argv[1:])))
+
+
+def _invoke(arguments: list[str]) -> int:
+    """Like `command.main`, which would turn a reader that leaves early into a status of its own."""
+    try:
+        with command.make_context("eoscore", arguments) as context:
+            return int(command.invoke(context) or 0)
+    except click.exceptions.Exit as leaving:
+        return leaving.exit_code
 
 
 def _never_fail_to_print(stream: IO[str]) -> None:

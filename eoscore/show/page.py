@@ -7,7 +7,7 @@ from typing import IO, TYPE_CHECKING
 from eoscore.answer.record import DerivedAnswer
 from eoscore.show.grid_table import grid_table, hidden_rows
 from eoscore.show.prefix import quantity
-from eoscore.show.table import columns, console_on
+from eoscore.show.table import columns, console_on, put
 
 if TYPE_CHECKING:
     from collections.abc import Iterator
@@ -38,11 +38,11 @@ def _print_answer(answer: Answer, console: Console) -> None:
         for line in _formula_lines(answer):
             console.print(line)
     elif answer.over:
-        console.print(grid_table(answer))
+        put(console, grid_table(answer))
         if hidden := hidden_rows(answer):
             console.print(f"  {hidden} rows more; --out FILE.csv writes them all")
     else:
-        console.print(_single_table(answer))
+        put(console, _single_table(answer))
     for line in _notes(answer):
         console.print(line)
 

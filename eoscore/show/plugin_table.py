@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import IO, TYPE_CHECKING
 
 from eoscore.show.prefix import written
-from eoscore.show.table import columns, console_on
+from eoscore.show.table import columns, console_on, put
 
 if TYPE_CHECKING:
     from eoscore.language.signature import Parameter
@@ -26,8 +26,7 @@ def print_plugins(stream: IO[str]) -> None:
         if plugin.kind is None:
             console.print(f"  {plugin.refusal}")
             continue
-        if isinstance(plugin.kind.energy, str):
-            console.print(f"  E = {plugin.kind.energy}")
+        console.print(f"  E = {plugin.kind.energy}")
         console.print(f"  from: {plugin.kind.origin}")
         signature = plugin.kind.signature()
         needs = "needs a mass" if signature.needs_mass else "needs no mass"
@@ -41,4 +40,4 @@ def _print_parameters(parameters: tuple[Parameter, ...], stream: IO[str]) -> Non
     for parameter in parameters:
         default = "-" if parameter.default is None else written(parameter.default)
         table.add_row(f"  {parameter.name}", parameter.unit, default, parameter.doc)
-    console_on(stream).print(table)
+    put(console_on(stream), table)

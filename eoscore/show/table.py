@@ -8,7 +8,7 @@ if TYPE_CHECKING:
     from rich.console import Console
     from rich.table import Table
 
-__all__ = ["columns", "console_on"]
+__all__ = ["columns", "console_on", "put"]
 
 _PLAIN_WIDTH = 110  # columns when the output is not a terminal
 
@@ -19,6 +19,14 @@ def console_on(stream: IO[str]) -> Console:
 
     width = None if stream.isatty() else _PLAIN_WIDTH
     return Console(file=stream, width=width, highlight=False, emoji=False, markup=False)
+
+
+def put(console: Console, table: Table) -> None:
+    """Print a table without the blanks that pad its last column."""
+    with console.capture() as captured:
+        console.print(table)
+    for line in captured.get().splitlines():
+        console.file.write(line.rstrip() + "\n")
 
 
 def columns(*names: str) -> Table:

@@ -38,4 +38,4 @@ def _shift(scene: Scene) -> float | None:
     if number is None or len(frequencies) != 3:
         return None
     anisotropy = sum(frequencies) / 3.0 / math.prod(frequencies) ** (1.0 / 3.0)
-    return _HARMONIC * anisotropy * float(number.min()) ** (-1.0 / 3.0)
+    return float(_HARMONIC * anisotropy * number.min() ** (-1.0 / 3.0))

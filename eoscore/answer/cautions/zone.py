@@ -23,16 +23,11 @@ def zone(scene: Scene) -> Iterator[Caution]:
     temperatures = scene.number("T")
     if energy is None or not energy.walls or temperatures is None:
         return
-    width = _width(scene)
-    if width is None or width > _NARROW * K_B * float(temperatures.max()):
+    width = scene.held.gas.momentum_measure(len(energy.coordinates)).top
+    if not np.isfinite(width) or width > _NARROW * K_B * float(temperatures.max()):
         return
     yield Caution(
         "momentum_zone",
         f"the band is {width / (K_B * float(temperatures.max())):.2g} kT wide: the gas fills its momentum zone to "
         "the edge, and states of higher bands are not counted.",
     )
-
-
-def _width(scene: Scene) -> float | None:
-    top = float(scene.held.gas.momentum_measure(len(scene.binding.gas.energy.coordinates)).top)
-    return top if np.isfinite(top) else None
