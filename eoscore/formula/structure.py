@@ -19,7 +19,7 @@ if TYPE_CHECKING:
 
     from eoscore.formula.expression import Node
 
-__all__ = ["additive_parts", "polynomial", "scaling_powers"]
+__all__ = ["additive_parts", "polynomial", "scaling_powers", "summands"]
 
 
 def additive_parts(f: Formula, names: Sequence[str]) -> list[tuple[frozenset[str], Formula]]:
@@ -28,7 +28,7 @@ def additive_parts(f: Formula, names: Sequence[str]) -> list[tuple[frozenset[str
     Each part comes with the names it depends on; parts are in the order of the names. Constants stand in the
     first part, so the parts add up to the formula. Terms are multiplied out only where that splits more.
     """
-    terms = _summands(f)
+    terms = summands(f)
     groups = _grouped(terms, names)
     if max((len(group) for group, _ in groups), default=0) > 1:
         finer = _grouped(_multiplied_out(terms, names), names)
@@ -36,7 +36,7 @@ def additive_parts(f: Formula, names: Sequence[str]) -> list[tuple[frozenset[str
     return groups
 
 
-def _summands(f: Formula) -> list[Formula]:
+def summands(f: Formula) -> list[Formula]:
     """The terms of a sum, through nested sums, signs and constant factors."""
     terms: list[Formula] = []
     waiting = [(1.0, f)]
