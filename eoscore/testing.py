@@ -198,7 +198,7 @@ def _symbolic_partition_law(case: Case) -> Iterator[str]:
 
 
 def _evaluated(expression: object, dispersion: Dispersion, given: Mapping[str, float]) -> float:
-    """A SymPy expression at SI values, worked out with 30 digits."""
+    """A SymPy expression at SI values, exact numbers until it is worked out with 30 digits."""
     import sympy as sp
 
     from eoscore.language.scope import constant_scope
@@ -208,8 +208,9 @@ def _evaluated(expression: object, dispersion: Dispersion, given: Mapping[str, f
     }
     values |= {"m": dispersion.mass or 0.0} | dispersion.values | dict(given)
     whole = sp.sympify(expression)
-    free = {symbol: sp.Float(values[symbol.name], 30) for symbol in whole.free_symbols}
-    return float(whole.evalf(30, subs=free))
+    free = {symbol: sp.Rational(values[symbol.name]) for symbol in whole.free_symbols}
+    # factor by factor: SymPy 1.14 gives nan for a product of a vast and a tiny one
+    return float(sp.Mul(*(factor.evalf(30) for factor in sp.Mul.make_args(whole.subs(free)))))
 
 
 def _compared(what: str, came: float, wanted: float, tolerance: float) -> Iterator[str]:

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-
 from eoscore.constants import HBAR
 from eoscore.errors import NoAnswerError
 from eoscore.gas import Parameter

@@ -32,7 +32,9 @@ def _logarithm(y: FloatArray, statistics: str) -> FloatArray:
     """-J/kT of a state at y = (e - mu)/kT."""
     if statistics == "classical":
         return np.exp(-y)
-    return np.logaddexp(0.0, -y) if statistics == "fermi" else -np.log(-np.expm1(-y))
+    if statistics == "fermi":
+        return np.logaddexp(0.0, -y)
+    return -np.where(y > 0.5, np.log1p(-np.exp(-y)), np.log(-np.expm1(-y)))  # each where it keeps its digits
 
 
 def local_density(measure: Measure, mu: ArrayLike, T: ArrayLike, statistics: str) -> FloatArray:
