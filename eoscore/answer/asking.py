@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+from math import inf
 from typing import TYPE_CHECKING
 
 from eoscore.answer.assembly import assembled
@@ -32,7 +34,7 @@ def answer_to(program: Program, question: Question, accuracy: float = 1e-6) -> A
     chain = Chain(program, question)
     parts = chain.parts()
     findings = {name: assembled(chain.grid, [part.readings[name] for part in parts]) for name in chain.names}
-    findings = with_uncertainty(chain, parts, findings)
+    findings = with_uncertainty(chain, parts, _with_leak(findings, parts))
     return FoundAnswer(
         line=question.line,
         question=words_of(question),
@@ -45,6 +47,15 @@ def answer_to(program: Program, question: Question, accuracy: float = 1e-6) -> A
         found=findings,
         cautions=_cautions(parts, findings, accuracy),
     )
+
+
+def _with_leak(findings: Mapping[str, Finding], parts: list[Part]) -> dict[str, Finding]:
+    """The depth with the words that tell where and which way the trap leaks, at the first stop that holds."""
+    held = next((part.held for part in parts if part.held is not None), None)
+    place = None if held is None else held.place
+    if "depth" not in findings or place is None or place.top == inf:
+        return dict(findings)
+    return {**findings, "depth": replace(findings["depth"], note=f"leaks {place.escape_words}")}
 
 
 def words_of(question: Question) -> str:

@@ -21,9 +21,11 @@ __all__ = ["assembled", "values_of"]
 
 def values_of(grid: Grid, readings: Sequence[Reading], part: str = "value") -> NDArray[np.float64]:
     """The values (or the `error`s) of one quantity at all stops, shaped like the grid."""
-    return np.asarray(
-        grid.assemble([getattr(reading, part) for reading in readings], _entries(grid, readings))
-    )
+    entries, own = _entries(grid, readings), len(grid.conditions)
+    arrays = [getattr(reading, part) for reading in readings]
+    if entries:  # a stop without a number has no entries of its own
+        arrays = [array[..., None] if array.ndim == own else array for array in arrays]
+    return np.asarray(grid.assemble(arrays, entries))
 
 
 def assembled(grid: Grid, readings: Sequence[Reading]) -> Finding:

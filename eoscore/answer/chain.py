@@ -13,10 +13,11 @@ import numpy as np
 
 from eoscore.answer.grid import Grid, Stop
 from eoscore.answer.holding import held_gas
-from eoscore.answer.unit import quantity_unit, unit_of_dimension
+from eoscore.answer.unit import unit_of_dimension
 from eoscore.errors import NoAnswerError
 from eoscore.language.quantities import QUANTITIES
 from eoscore.state.reading import Reason, reading_of
+from eoscore.state.table import unit_in
 
 if TYPE_CHECKING:
     from collections.abc import Hashable, Mapping
@@ -25,11 +26,11 @@ if TYPE_CHECKING:
 
     from eoscore.language.program import Binding, Program
     from eoscore.language.question import Question
-    from eoscore.state import HeldGas, Reading
+    from eoscore.state.held import HeldGas
+    from eoscore.state.reading import Reading
+    from eoscore.state.state import State
 
 __all__ = ["Chain", "Part"]
-
-_ENTRIES = ("freq", "r_min")
 
 
 @dataclass(frozen=True)
@@ -44,6 +45,7 @@ class Part:
     held: HeldGas | None
     given: Mapping[str, NDArray[np.float64]]
     readings: Mapping[str, Reading]
+    spill: tuple[str, ...] = ()
 
 
 @dataclass
@@ -75,13 +77,17 @@ class Chain:
         given = self.grid.arrays(conditions.given)
         binding = self.program.bind(question.gas, question.place, values, literals)
         physical = tuple(name for name in self.names if name in QUANTITIES)
+        named = self._named(binding)
         try:
             held = self._held(binding)
-            asked = self._brought(given, values, literals) if question.origins else given
-            readings = dict(held.find(physical, asked)) if physical else {}
+            if not question.origins:
+                return Part(stop, binding, held, given, dict(held.find(physical, given)) | named)
+            state = self._brought(held, given, conditions.values | dict(stop.values), literals)
+            arrived = {name: state.reading(name).value for name in ("N", "S")}
+            readings = {name: state.reading(name) for name in physical}
+            return Part(stop, binding, held, arrived, readings | named, state.spill)
         except NoAnswerError as fault:
-            return Part(stop, binding, None, given, self._named(binding) | self._without(physical, fault.why))
-        return Part(stop, binding, held, asked, readings | self._named(binding))
+            return Part(stop, binding, None, given, self._without(physical, fault.why) | named)
 
     def _held(self, binding: Binding) -> HeldGas:
         facts = _facts(binding)
@@ -100,17 +106,17 @@ class Chain:
 
     def _brought(
         self,
+        held: HeldGas,
         given: Mapping[str, NDArray[np.float64]],
         values: Mapping[str, float],
         literals: Mapping[int, float],
-    ) -> dict[str, NDArray[np.float64]]:
-        """N and S of the gas in the first place, with which it arrives in the last one after slow changes."""
-        first = self.program.bind(self.question.gas, self.question.origins[0], values, literals)
-        found = self._held(first).find(("N", "S"), given)
-        for name in ("N", "S"):
-            if found[name].why is not None:
-                raise NoAnswerError(f"in {self.question.origins[0]}, where it starts: {found[name].why}")
-        return {name: found[name].value for name in ("N", "S")}
+    ) -> State:
+        """The state after slow changes from the first place of origin through all others to the last one."""
+        gas, (first, *later) = self.question.gas, self.question.origins
+        state = self._held(self.program.bind(gas, first, values, literals)).state(**given)
+        for place in later:
+            state = self._held(self.program.bind(gas, place, values, literals)).brought_from(state)
+        return held.brought_from(state)
 
     def _named(self, binding: Binding) -> dict[str, Reading]:
         """The names of the file that are asked for, as readings that are exact to the last digits."""
@@ -126,18 +132,12 @@ class Chain:
     def _without(self, names: tuple[str, ...], why: str) -> dict[str, Reading]:
         """Readings without a number at all points of this stop."""
         shape = tuple(axis.points for axis in self.grid.conditions)
-        readings = {}
-        for name in names:
-            own = (1,) if name in _ENTRIES else ()
-            reason = Reason(why, np.ones(shape, dtype=bool))
-            readings[name] = reading_of(
-                np.full(shape + own, np.nan),
-                np.nan,
-                quantity_unit(name, self.question.dimension),
-                "none",
-                (reason,),
-            )
-        return readings
+        nothing, everywhere = np.full(shape, np.nan), np.ones(shape, dtype=bool)
+        units = {name: unit_in(name, self.question.dimension or 3) for name in names}
+        return {
+            name: reading_of(nothing, nothing, unit, "", (Reason(why, everywhere),))
+            for name, unit in units.items()
+        }
 
 
 def _facts(binding: Binding) -> Hashable:

@@ -47,7 +47,8 @@ class Finding:
 
     `value` is nan where there is no answer, and `reasons` say why. `error` is the absolute numerical error,
     `sigma` one standard deviation carried from the input (None where no input had one), `budget` the share of
-    the variance of each uncertain literal, named as in the file.
+    the variance of each uncertain literal, named as in the file. `note` says more in words: for the depth, where
+    and which way the trap leaks.
     """
 
     value: NDArray[np.float64]
@@ -57,6 +58,7 @@ class Finding:
     sigma: NDArray[np.float64] | None = None
     reasons: tuple[Reason, ...] = ()
     budget: Mapping[str, NDArray[np.float64]] = field(default_factory=dict)
+    note: str | None = None
 
     @property
     def why(self) -> str | None:

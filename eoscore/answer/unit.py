@@ -7,31 +7,7 @@ from typing import TYPE_CHECKING
 if TYPE_CHECKING:
     from eoscore.language.dimension import Dimension
 
-__all__ = ["quantity_unit", "unit_of_dimension"]
-
-# tarn.md's table of quantities; d stands for the dimension of the place.
-_UNITS = (
-    dict.fromkeys(("T_c", "T"), "K")
-    | dict.fromkeys(("n_c", "n", "n_peak"), "m^-d")
-    | dict.fromkeys(("mu", "U", "depth", "V_min"), "J")
-    | dict.fromkeys(("S", "C_N"), "J/K")
-    | {
-        "lambda_T": "m",
-        "r_min": "m",
-        "freq": "Hz",
-        "rate_coll": "1/s",
-        "pressure": "J/m^d",
-        "kappa_T": "m^d/J",
-    }
-)
-
-
-def quantity_unit(name: str, dimension: int | None) -> str:
-    """The SI unit of a quantity of the language; `1` for pure numbers."""
-    unit = _UNITS.get(name, "1")
-    if "d" not in unit or dimension is None:
-        return unit
-    return unit.replace("^d", "" if dimension == 1 else f"^{dimension}").replace("-d", f"-{dimension}")
+__all__ = ["unit_of_dimension"]
 
 
 def unit_of_dimension(dimension: Dimension) -> str:

@@ -81,6 +81,8 @@ def _finding(finding: Finding, axes: int) -> dict[str, Any]:
         "why": why,
         "route": finding.route,
     }
+    if finding.note:
+        record["note"] = finding.note
     if finding.budget:
         record["budget"] = {name: _plain(share, axes) for name, share in finding.budget.items()}
     return record

@@ -76,6 +76,8 @@ def _notes(answer: Answer) -> Iterator[str]:
             for reason in finding.reasons:
                 at = f" at {len(reason.points)} points" if answer.over else ""
                 yield f"  {name}{at}: no value, because {reason.text}"
+            if finding.note:
+                yield f"  {name}: {finding.note}"
             if finding.budget and not answer.over:
                 yield f"  {name}: its uncertainty comes from {_budget(finding)}"
 
