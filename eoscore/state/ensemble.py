@@ -1,0 +1,92 @@
+"""The grand-canonical ensemble of one gas over one measure: what the evaluators have in common."""
+
+from __future__ import annotations
+
+from abc import ABC, abstractmethod
+from math import inf
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+if TYPE_CHECKING:
+    from eoscore.state.reading import FloatArray
+    from eoscore.state.sums import Sums
+
+__all__ = ["BLOCK", "EPS", "Ensemble"]
+
+EPS = float(np.finfo(float).eps)
+BLOCK = 2_000_000  # numbers held at a time by the evaluators that sum over nodes
+
+
+class Ensemble(ABC):
+    """Sums over a spectrum at alpha = -mu/kT and kT (J): arrays of one axis, of the same length.
+
+    Laws: N and U fall with alpha, B0 = -dN/dalpha, and the true relative error of every sum is at most `error`.
+    Bosons are asked at alpha >= 0 alone, and at alpha = 0 for N, S, U, Y where `condenses` holds.
+    """
+
+    statistics: str
+    route: str
+    top: float = inf
+    capacity: float = inf  # the most that N can be
+    highest: float = inf  # alpha ends here (a gas with antiparticles holds N = 0 there at zero temperature)
+
+    @property
+    @abstractmethod
+    def error(self) -> float:
+        """Bound of the relative error of every sum."""
+
+    @property
+    def condenses(self) -> bool:
+        """Whether N stays finite as mu reaches the lowest level, for bosons."""
+        return False
+
+    @property
+    def why_not(self) -> str:
+        """The words where the gas does not condense."""
+        return f"{self.statistics} particles do not condense"
+
+    @abstractmethod
+    def all_sums(self, alpha: FloatArray, kT: FloatArray) -> Sums:
+        """All sums, of finite alpha and kT > 0."""
+
+    def number(self, alpha: FloatArray, kT: FloatArray) -> tuple[FloatArray, FloatArray]:
+        """N and -dN/dalpha, where an evaluator knows a cheaper way than all sums; finite alpha and kT > 0."""
+        sums = self.all_sums(alpha, kT)
+        return sums.N, sums.B0
+
+    def sums(self, alpha: FloatArray, kT: FloatArray) -> Sums:
+        """All sums; nan where alpha or kT is."""
+        some = np.isfinite(alpha) & (kT > 0)
+        if some.all():
+            return self.all_sums(alpha, kT)
+        return self.all_sums(alpha[some], kT[some]).spread(some)
+
+    def count(self, alpha: FloatArray, kT: FloatArray) -> tuple[FloatArray, FloatArray]:
+        """N and -dN/dalpha; nan where alpha or kT is."""
+        some = np.isfinite(alpha) & (kT > 0)
+        if some.all():
+            return self.number(alpha, kT)
+        whole = np.full((2, kT.size), np.nan)
+        whole[:, some] = self.number(alpha[some], kT[some])
+        return whole[0], whole[1]
+
+    @abstractmethod
+    def below(self, number: FloatArray) -> FloatArray:
+        """The energy (J) below which `number` states lie, roughly: where a search for a temperature starts."""
+
+    def alpha_of(self, number: FloatArray, kT: FloatArray) -> FloatArray | None:
+        """alpha at N in closed form; None where it has to be searched."""
+        return None
+
+    def saturated_kT(self, number: FloatArray) -> FloatArray | None:
+        """kT at which N(alpha = 0) = number in closed form; None where it has to be searched."""
+        return None
+
+    def largest_alpha(self, kT: FloatArray) -> FloatArray:
+        """Where alpha ends at each kT."""
+        return self.highest / kT
+
+    @abstractmethod
+    def boltzmann(self, kT: FloatArray) -> tuple[FloatArray, FloatArray]:
+        """Z = sum e^{-E/kT} over the spectrum, and the mean of E/kT."""

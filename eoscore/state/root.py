@@ -1,0 +1,59 @@
+"""Roots of rising functions, many at once: Newton's method kept inside a bracket."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+if TYPE_CHECKING:
+    from collections.abc import Callable
+
+    from numpy.typing import NDArray
+
+    from eoscore.state.reading import FloatArray
+
+__all__ = ["rising_root"]
+
+ROUNDS = 200
+CLOSE = 1e-10  # a Newton step this short (the unknowns are logarithms) leaves an error of its square
+TIGHT = 4e-16
+
+
+def rising_root(
+    function: Callable[[FloatArray, NDArray[np.intp]], tuple[FloatArray, FloatArray]],
+    low: FloatArray,
+    high: FloatArray,
+    start: FloatArray,
+) -> FloatArray:
+    """x with function(x) = 0 for every point, given low <= x <= high, all of one axis.
+
+    function(x, which) is asked for some points only, named by their index, and gives values that rise with x and
+    their derivatives. A Newton step that leaves the bracket, or falls short of halving the one before it, is
+    replaced by bisection (as in Dekker's and Brent's methods), so that each root is found whatever the
+    derivative; nan derivatives are as good as none. Where the function has one sign only, the end it points to
+    is returned.
+    """
+    low, high = low.astype(float), high.astype(float)
+    x = np.clip(start, low, high)
+    before = high - low
+    which = np.flatnonzero(np.isfinite(x))
+    for _ in range(ROUNDS):
+        if not which.size:
+            break
+        here = x[which]
+        value, slope = function(here, which)
+        low[which] = np.where(value < 0, here, low[which])
+        high[which] = np.where(value > 0, here, high[which])
+        with np.errstate(all="ignore"):
+            step = -value / slope
+        new = here + step
+        newton = (new >= low[which]) & (new <= high[which]) & (2 * np.abs(step) <= before[which])
+        new = np.where(newton, new, (low[which] + high[which]) / 2)
+        moved = np.abs(new - here)
+        scale = np.maximum(np.abs(new), 1.0)
+        done = (value == 0) | (newton & (moved <= CLOSE * scale)) | (moved <= TIGHT * scale)
+        x[which] = np.where(value == 0, here, new)
+        before[which] = moved
+        which = which[~done]
+    return x

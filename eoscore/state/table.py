@@ -1,0 +1,56 @@
+"""The quantities of a state by name: how each is read, and its unit (d is the dimension of the place)."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from typing import TYPE_CHECKING, NamedTuple
+
+from eoscore.state import bottom, collisions, geometry, saturation, thermal
+
+if TYPE_CHECKING:
+    from eoscore.state.reading import Reading
+    from eoscore.state.state import State
+
+__all__ = ["QUANTITIES", "Quantity", "unit_in"]
+
+
+class Quantity(NamedTuple):
+    """A way to read a quantity off a state, and its unit."""
+
+    read: Callable[[State, str], Reading]
+    unit: str
+
+
+QUANTITIES: dict[str, Quantity] = {
+    "T_c": Quantity(saturation.critical_temperature, "K"),
+    "N_c": Quantity(saturation.critical_number, "1"),
+    "n_c": Quantity(saturation.critical_density, "m^-d"),
+    "N": Quantity(thermal.number, "1"),
+    "n": Quantity(thermal.density, "m^-d"),
+    "T": Quantity(thermal.temperature, "K"),
+    "mu": Quantity(thermal.potential, "J"),
+    "S": Quantity(thermal.entropy, "J/K"),
+    "U": Quantity(thermal.energy, "J"),
+    "fugacity": Quantity(thermal.fugacity, "1"),
+    "N_0": Quantity(thermal.condensate, "1"),
+    "f_0": Quantity(thermal.fraction, "1"),
+    "n_peak": Quantity(bottom.peak_density, "m^-d"),
+    "lambda_T": Quantity(bottom.wavelength, "m"),
+    "PSD": Quantity(bottom.phase_space_density, "1"),
+    "C_N": Quantity(thermal.heat_capacity, "J/K"),
+    "pressure": Quantity(bottom.pressure, "J/m^d"),
+    "kappa_T": Quantity(bottom.compressibility, "m^d/J"),
+    "depth": Quantity(geometry.depth, "J"),
+    "eta": Quantity(geometry.eta, "1"),
+    "freq": Quantity(geometry.frequencies, "Hz"),
+    "r_min": Quantity(geometry.position, "m"),
+    "V_min": Quantity(geometry.bottom_energy, "J"),
+    "exponent": Quantity(saturation.exponent, "1"),
+    "rate_coll": Quantity(collisions.rate, "1/s"),
+}
+
+
+def unit_in(name: str, dimension: int) -> str:
+    """The unit of a quantity in a place of some dimension."""
+    unit = QUANTITIES[name].unit
+    return unit.replace("m^d", "m" if dimension == 1 else f"m^{dimension}").replace("-d", f"-{dimension}")
