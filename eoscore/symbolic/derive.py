@@ -1,0 +1,102 @@
+"""The front door of the symbolic room: a bound question to the formulas of its answer."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING, Any
+
+from eoscore.errors import NoAnswerError
+from eoscore.symbolic.deadline import OutOfTimeError, deadline
+
+if TYPE_CHECKING:
+    from collections.abc import Iterable, Mapping
+
+    from eoscore.language.binding import Binding
+    from eoscore.state import HeldGas
+
+__all__ = ["TIME_LIMIT", "derive"]
+
+TIME_LIMIT = 20.0  # s for one question; SymPy may run away, an answer may not
+
+
+def derive(
+    binding: Binding,
+    held: HeldGas,
+    names: Iterable[str],
+    given: Mapping[str, float],
+    seconds: float = TIME_LIMIT,
+) -> dict[str, dict[str, Any]]:
+    """For each quantity its forms, `where`, value and notes, as the JSON document has them.
+
+    given: N, T or n in SI units. Where SymPy stops, or time runs out, the entry says why, and T_c and N_c carry
+    the numerical value. Each value is confirmed by the numerical engine: `numerical` and `difference`, relative.
+    """
+    entries: dict[str, dict[str, Any]] = {}
+    names = tuple(names)
+    why = f"SymPy had not finished after {seconds:g} s"
+    try:
+        with deadline(seconds):
+            why = _derived(binding, held, names, given, entries) or why
+    except OutOfTimeError:
+        pass
+    return {name: _confirmed(held, name, entries.get(name) or {"why": why}, given) for name in names}
+
+
+def _derived(
+    binding: Binding,
+    held: HeldGas,
+    names: tuple[str, ...],
+    given: Mapping[str, float],
+    entries: dict[str, dict[str, Any]],
+) -> str | None:
+    """Fill in `entries` one by one, so that those that were done stay; returns why there are none."""
+    from eoscore.symbolic.derivation import Derivation
+    from eoscore.symbolic.integrals import StopError
+    from eoscore.symbolic.problem import CutError, problem_of
+
+    try:
+        derivation = Derivation(problem_of(binding, held), _counted(held, given))
+    except (StopError, CutError) as stop:
+        return str(stop)
+    for name in names:
+        try:
+            entries[name] = derivation.formula(name)
+        except (ValueError, NotImplementedError) as stop:
+            entries[name] = {"why": f"SymPy stopped: {stop}"}
+    return None
+
+
+def _counted(held: HeldGas, given: Mapping[str, float]) -> dict[str, float]:
+    """Conditions with a number for a density: N = n V in a box, n itself in the unbounded place."""
+    counted = {name: value for name, value in given.items() if name != "n"}
+    if "n" in given:
+        counted["N"] = given["n"] * (held.volume or 1.0)
+    return counted
+
+
+def _confirmed(held: HeldGas, name: str, entry: dict[str, Any], given: Mapping[str, float]) -> dict[str, Any]:
+    """Put the numerical engine's value beside the formula's, or in its stead where there is no formula."""
+    from eoscore.symbolic.derivation import UNITS
+
+    numerical = None
+    if name not in ("rho", "g"):
+        try:
+            reading = held.find([name], given)[name]
+            numerical = None if reading.why else float(reading.value)
+        except (NoAnswerError, TypeError, ValueError):
+            numerical = None
+    if "sympy" not in entry:
+        return {
+            "sympy": None,
+            "latex": None,
+            "text": None,
+            "closed": False,
+            "where": {},
+            "value": numerical,
+        } | {
+            "unit": UNITS[name],
+            **entry,
+        }
+    if numerical is not None and entry["value"] is not None:
+        scale = max(abs(numerical), abs(entry["value"])) or 1.0
+        entry |= {"numerical": numerical, "difference": abs(entry["value"] - numerical) / scale}
+    return entry

@@ -1,0 +1,107 @@
+"""Leading terms of an implicit T_c, at both ends of its range."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import TYPE_CHECKING
+
+import sympy as sp
+
+from eoscore.symbolic.critical import explicit
+from eoscore.symbolic.evaluate import number
+from eoscore.symbolic.integrals.rule import BETA
+from eoscore.symbolic.partition import Power, partition_of
+from eoscore.symbolic.quantities import K_B, NUMBER
+
+if TYPE_CHECKING:
+    from collections.abc import Callable, Mapping
+
+__all__ = ["Expansion", "expansions"]
+
+
+@dataclass(frozen=True)
+class Expansion:
+    """T_c = `leading` (1 + `correction`), good where `small` is; both in N and the file's symbols."""
+
+    limit: str
+    leading: sp.Expr
+    correction: sp.Expr
+    small: sp.Expr
+
+    @property
+    def whole(self) -> sp.Expr:
+        """Leading term with its first correction."""
+        return self.leading * (1 + self.correction)
+
+    def reach(
+        self, count: Callable[[float], float], values: Mapping[sp.Symbol, float], around: float
+    ) -> float | None:
+        """The largest `small` at which the two terms are within 1 % of the root; None where nowhere.
+
+        Found by walking T away from `around` (K), with N = N_c(T) so that T is the exact answer.
+        """
+        best = None
+        for step in range(-16, 17):
+            temperature = around * 10.0 ** (step / 4)
+            at = {**values, NUMBER: count(temperature)}
+            if at[NUMBER] <= 0:
+                continue
+            small = number(self.small, at)
+            if abs(number(self.whole, at) / temperature - 1) < 0.01 and (best is None or small > best):
+                best = small
+        return best
+
+
+def expansions(whole: sp.Expr) -> list[Expansion]:
+    """Both ends: high temperature (beta -> 0) and low (beta -> oo), where two powers of beta lead."""
+    found = []
+    for limit, powers in (("high temperature", _hot(whole)), ("low temperature", _cold(whole))):
+        if len(powers) >= 2 and (powers[0].exponent - 1).is_positive:
+            found.append(_expansion(limit, *powers[:2]))
+    return found
+
+
+def _expansion(limit: str, first: Power, second: Power) -> Expansion:
+    """One Newton step from the leading power; the next power must itself have a converging sum (a > 1)."""
+    leading = explicit(first)
+    ratio = sp.simplify(second.size / first.size) * (K_B * leading) ** (second.exponent - first.exponent)
+    weight = sp.zeta(second.exponent) / (first.exponent * sp.zeta(first.exponent))
+    correction = -weight * ratio if (second.exponent - 1).is_positive else sp.Integer(0)
+    return Expansion(limit, leading, correction, sp.Abs(ratio))
+
+
+def _hot(whole: sp.Expr) -> list[Power]:
+    """Leading powers for beta -> 0, largest exponent first; Bessel K by DLMF 10.31.1, I by 10.25.2."""
+    near = whole.replace(sp.besselk, _small_k).replace(
+        sp.besseli, lambda n, x: (x / 2) ** n / sp.gamma(n + 1)
+    )
+    if near.has(sp.exp):
+        near = sp.series(near, BETA, 0, 2).removeO()
+    powers = partition_of(sp.expand(near), 1).powers
+    return sorted(powers, key=lambda power: -float(power.exponent))
+
+
+def _small_k(order: sp.Expr, x: sp.Expr) -> sp.Expr:
+    """Leading terms without a logarithm: K_1 -> 1/x, K_2 -> 2/x^2 - 1/2."""
+    lead = sp.gamma(order) / 2 * (2 / x) ** order
+    return lead - sp.gamma(order - 1) / 2 * (2 / x) ** (order - 2) / 2 if (order - 1).is_positive else lead
+
+
+def _cold(whole: sp.Expr) -> list[Power]:
+    """Leading powers for beta -> oo, smallest exponent first (DLMF 10.40.1, 10.40.2)."""
+    far = whole.replace(sp.besselk, _large_k).replace(sp.besseli, _large_i)
+    terms = [
+        sp.powsimp(term, combine="exp")
+        for term in sp.Add.make_args(sp.expand(sp.powsimp(far, combine="exp")))
+    ]
+    kept = [term for term in terms if not term.has(sp.exp)]
+    powers = partition_of(sp.Add(*kept), 1).powers
+    return sorted(powers, key=lambda power: float(power.exponent))
+
+
+def _large_k(order: sp.Expr, x: sp.Expr) -> sp.Expr:
+    return sp.sqrt(sp.pi / (2 * x)) * sp.exp(-x) * (1 + (4 * order**2 - 1) / (8 * x))
+
+
+def _large_i(order: sp.Expr, x: sp.Expr) -> sp.Expr:
+    return sp.exp(x) / sp.sqrt(2 * sp.pi * x) * (1 - (4 * order**2 - 1) / (8 * x))

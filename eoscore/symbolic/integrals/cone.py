@@ -1,0 +1,49 @@
+"""A tilted cone, sqrt(x.A.x) + f.x: its level surfaces are ellipsoids with the tip in a focus."""
+
+from __future__ import annotations
+
+import sympy as sp
+
+from eoscore.symbolic.axes import sphere
+from eoscore.symbolic.integrals.rule import BETA, Boltzmann, Solve, Task
+
+__all__ = ["cone"]
+
+
+def cone(task: Task, solve: Solve) -> Boltzmann | None:  # noqa: ARG001 - every rule has the same signature
+    """Gamma(d + 1) Omega(1) beta^-d, Omega(1) = V_d (1 - f.A^-1.f)^{-(d+1)/2} / sqrt(det A); needs f.A^-1.f < 1.
+
+    |y| < 1 - g.y is an ellipsoid of revolution with eccentricity |g|, semi-axes 1/(1-g^2) and 1/sqrt(1-g^2).
+    """
+    if task.walls or not all(axis.whole for axis in task.axes):
+        return None
+    symbols = [axis.symbol for axis in task.axes]
+    mirrored = task.function.subs({s: -s for s in symbols}, simultaneous=True)
+    odd = sp.simplify((task.function - mirrored) / 2)
+    if odd == 0 or not odd.is_polynomial(*symbols) or sp.Poly(odd, *symbols).total_degree() != 1:
+        return None
+    square = sp.expand((task.function - odd) ** 2)
+    if not square.is_polynomial(*symbols) or not sp.Poly(square, *symbols).is_homogeneous:
+        return None
+    form = sp.hessian(square, symbols) / 2
+    tilt = sp.Matrix([sp.diff(odd, s) for s in symbols])
+    if any(
+        form[i, j] != 0 or tilt[i] != 0
+        for i, a in enumerate(task.axes)
+        if a.radius
+        for j in range(len(symbols))
+        if i != j
+    ):
+        return None
+    d = sum(axis.dimension for axis in task.axes)
+    # A radius stands for several directions, so its entry counts that often in the determinant.
+    determinant = sp.factor(form.det()) * sp.Mul(
+        *(form[i, i] ** (a.dimension - 1) for i, a in enumerate(task.axes))
+    )
+    steepness = sp.simplify((tilt.T * form.LUsolve(tilt))[0])
+    volume = sphere(d) / d * (1 - steepness) ** sp.Rational(-(d + 1), 2) / sp.sqrt(determinant)
+    condition = sp.Lt(sp.factor(steepness), 1)
+    step = (
+        f"a tilted cone: level surfaces are ellipsoids with the tip in a focus, eccentricity^2 = {steepness}"
+    )
+    return Boltzmann(sp.Integer(0), sp.gamma(d + 1) * volume * BETA**-d, (step,), (condition,))

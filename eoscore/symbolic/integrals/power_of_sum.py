@@ -1,0 +1,31 @@
+"""F = c W^e where W itself has a power law: (|x|^p + |y|^q)^e."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+
+import sympy as sp
+
+from eoscore.symbolic.integrals.rule import BETA, Boltzmann, Solve, Task, symbols_of
+
+__all__ = ["power_of_sum"]
+
+
+def power_of_sum(task: Task, solve: Solve) -> Boltzmann | None:
+    """Omega_W = C w^k gives the integral C Gamma(k/e + 1) (beta c)^{-k/e}."""
+    factor, inner = task.function.as_independent(*symbols_of(task), as_Add=False)
+    if (
+        not isinstance(inner, sp.Pow)
+        or inner.exp.free_symbols & symbols_of(task)
+        or not inner.exp.is_positive
+    ):
+        return None
+    base = solve(replace(task, function=sp.expand(inner.base)))
+    if base is None or base.minimum != 0 or not factor.is_positive:
+        return None
+    k = sp.simplify(-BETA * sp.diff(base.integral, BETA) / base.integral)
+    if BETA in k.free_symbols:
+        return None
+    size = sp.simplify(base.integral * BETA**k) / sp.gamma(k + 1)
+    integral = size * sp.gamma(k / inner.exp + 1) * (BETA * factor) ** (-k / inner.exp)
+    return replace(base, integral=integral, steps=(*base.steps, f"raised to the power {inner.exp}"))

@@ -1,0 +1,56 @@
+"""What a rule for a Boltzmann integral receives and gives back."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+from typing import TYPE_CHECKING, Protocol
+
+import sympy as sp
+
+if TYPE_CHECKING:
+    from eoscore.symbolic.axes import Axis
+
+__all__ = ["BETA", "Boltzmann", "Rule", "Solve", "Task", "symbols_of"]
+
+BETA = sp.Symbol("beta_", positive=True)  # 1/(k_B T), in 1/J
+
+
+@dataclass(frozen=True)
+class Task:
+    """The integral of e^{-beta F} over axes, inside walls (expressions that are positive inside)."""
+
+    function: sp.Expr
+    axes: tuple[Axis, ...]
+    walls: tuple[sp.Expr, ...] = ()
+    values: tuple[tuple[sp.Symbol, float], ...] = ()
+
+
+@dataclass(frozen=True)
+class Boltzmann:
+    """A done integral: the least value of F, and the integral of e^{-beta (F - minimum)} in `BETA`.
+
+    `conditions` must hold for it to converge; `constants` names pure numbers that have no closed form:
+    (symbol, value, the integral in words).
+    """
+
+    minimum: sp.Expr
+    integral: sp.Expr
+    steps: tuple[str, ...] = ()
+    conditions: tuple[sp.Expr, ...] = ()
+    constants: tuple[tuple[sp.Symbol, float, str], ...] = ()
+
+
+Solve = Callable[["Task"], "Boltzmann | None"]
+
+
+class Rule(Protocol):
+    """A rule answers None where it does not apply; `solve` does an inner integral by all rules."""
+
+    def __call__(self, task: Task, solve: Solve) -> Boltzmann | None:
+        """The integral, or None."""
+
+
+def symbols_of(task: Task) -> set[sp.Symbol]:
+    """The integration symbols of a task."""
+    return {axis.symbol for axis in task.axes}
