@@ -22,7 +22,8 @@ class Free(Dispersion):
 
     def check(self) -> None:
         """See `Dispersion.check`."""
-        if not self.checked_mass > 0:
+        super().check()
+        if self.mass == 0:
             raise NoAnswerError(
                 "m = 0 came; without a mass the energy is E(p) = c*p, or the dispersion relativistic"
             )

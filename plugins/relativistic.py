@@ -38,6 +38,7 @@ class Relativistic(Dispersion):
 
     def check(self) -> None:
         """See `Dispersion.check`."""
+        super().check()
         if self.values["antiparticles"] not in (0, 1):
             came = self.values["antiparticles"]
             raise NoAnswerError(f"antiparticles = {came:g} came; write 1 for a gas with them, 0 without")

@@ -91,7 +91,9 @@ class Dispersion(ABC):
             raise NoAnswerError(f"the dispersion {self.name} needs {', '.join(sorted(missing))}")
 
     def check(self) -> None:
-        """Refuse, with NoAnswerError, values that make no sense; by default a missing mass alone."""
+        """Refuse, with NoAnswerError, values that make no sense; by default a missing or negative mass alone."""
+        if self.mass is not None and not self.mass >= 0:
+            raise NoAnswerError(f"m = {self.mass:g} kg came; a mass is not negative")
         if self.needs_mass:
             _ = self.checked_mass
 

@@ -39,8 +39,6 @@ class Gas:
             raise NoAnswerError(
                 f"degeneracy = {self.degeneracy:g} came; a gas has a positive number of spin states"
             )
-        if self.mass is not None and not self.mass >= 0:
-            raise NoAnswerError(f"m = {self.mass:g} kg came; a mass is not negative")
 
     @property
     def branches(self) -> tuple[Branch, ...]:
@@ -60,10 +58,11 @@ class Gas:
         """
         if d == 0 and self.quanta:
             return Powers(((self.degeneracy, 0.0),), route="levels")
-        if d + len(self.quanta) > 3:
-            why = f"{self.name} holds {len(self.quanta)} directions as levels, which leaves {3 - len(self.quanta)}"
+        left = 3 - len(self.quanta)
+        if not 1 <= d <= left:
+            held = f"{self.name} holds {len(self.quanta)} directions as levels, which leaves {left}"
             raise NoAnswerError(
-                f"{why}; the place has {d} coordinates: take them away there, or fewer omega here"
+                f"{held}; the place has {d} coordinates: change the levels or the coordinates"
             )
         measure = self.dispersion.measure(d)
         return measure if self.degeneracy == 1 else measure.scaled(self.degeneracy)

@@ -5,10 +5,12 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 import numpy as np
-from scipy.special import expit
+from scipy.special import expit, gamma
 
 from eoscore.constants import K_B
 from eoscore.errors import NoAnswerError
+from eoscore.gas.bose_function import bose
+from eoscore.gas.fermi_function import fermi
 from eoscore.gas.rest import thermal_nodes
 
 if TYPE_CHECKING:
@@ -43,29 +45,54 @@ def local_density(measure: Measure, mu: ArrayLike, T: ArrayLike, statistics: str
     Inf where it diverges (bosons at mu = 0 over a measure of exponent at most 1). NoAnswerError for bosons at
     mu > 0.
     """
-    number = _summed(measure, mu, T, statistics, occupation)
-    endless = (np.asarray(mu) == 0) & (statistics == "bose") & (measure.exponent <= 1)
-    return np.where(endless, np.inf, number)
+    mu, kT = _states(mu, T, statistics)
+    terms = measure.powers()
+    if terms is not None and measure.top == np.inf:
+        return _of_powers(terms, mu, kT, statistics, 0)
+    number = _of_nodes(measure, mu, kT, statistics, occupation)
+    return np.where((mu == 0) & (statistics == "bose") & (measure.exponent <= 1), np.inf, number)
 
 
 def local_pressure(measure: Measure, mu: ArrayLike, T: ArrayLike, statistics: str) -> FloatArray:
     """-+ kT int ln(1 -+ e^{-(E - mu)/kT}) dOmega, in J times the unit of Omega; mu, T as in `local_density`."""
-    return K_B * np.asarray(T) * _summed(measure, mu, T, statistics, _logarithm)
+    mu, kT = _states(mu, T, statistics)
+    terms = measure.powers()
+    if terms is not None and measure.top == np.inf:
+        return kT * _of_powers(terms, mu, kT, statistics, 1)
+    return kT * _of_nodes(measure, mu, kT, statistics, _logarithm)
 
 
-def _summed(
+def _states(mu: ArrayLike, T: ArrayLike, statistics: str) -> tuple[FloatArray, FloatArray]:
+    mu, kT = np.broadcast_arrays(np.asarray(mu, dtype=float), K_B * np.asarray(T, dtype=float))
+    if statistics == "bose" and np.any(mu > 0):
+        raise NoAnswerError("mu came above the least energy; a Bose gas has mu at or below it")
+    return mu, kT
+
+
+def _of_powers(
+    terms: tuple[tuple[float, float], ...], mu: FloatArray, kT: FloatArray, statistics: str, step: int
+) -> FloatArray:
+    """Sum of C Gamma(k + 1) (kT)^k Li_{k + step}(z), or its Fermi or classical fellow (DLMF 25.12.11, 25.12.14)."""
+    eta, total = mu / kT, np.zeros(mu.shape)
+    for c, k in terms:
+        if statistics == "classical":
+            function = np.exp(eta)
+        else:
+            function = bose(k + step, -eta) if statistics == "bose" else fermi(k + step, eta)
+        total = total + c * gamma(k + 1) * kT**k * function
+    return total
+
+
+def _of_nodes(
     measure: Measure,
-    mu: ArrayLike,
-    T: ArrayLike,
+    mu: FloatArray,
+    kT: FloatArray,
     statistics: str,
     function: Callable[[FloatArray, str], FloatArray],
 ) -> FloatArray:
-    mu, T = np.broadcast_arrays(np.asarray(mu, dtype=float), np.asarray(T, dtype=float))
-    if statistics == "bose" and np.any(mu > 0):
-        raise NoAnswerError("mu came above the least energy; a Bose gas has mu at or below it")
     total = np.empty(mu.size)
-    for i, (level, kT) in enumerate(zip(mu.ravel(), K_B * T.ravel(), strict=True)):
-        v, w = thermal_nodes(measure, float(kT), float(level))
-        with np.errstate(under="ignore", over="ignore"):
-            total[i] = w @ function((v - level) / kT, statistics)
+    for i, (level, heat) in enumerate(zip(mu.ravel(), kT.ravel(), strict=True)):
+        v, w = thermal_nodes(measure, float(heat), float(level))
+        with np.errstate(under="ignore", over="ignore", divide="ignore"):
+            total[i] = w @ function((v - level) / heat, statistics)
     return total.reshape(mu.shape)

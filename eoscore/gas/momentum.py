@@ -44,9 +44,9 @@ def ball(d: int) -> float:
 
 def momentum_measure(field: Field, d: int) -> Measure:
     """States per m^d below an energy, h^-d included; NoAnswerError where there are infinitely many."""
+    axes = axes_of(field.coordinates, d)
     from eoscore.measure import measure_of
 
-    axes = axes_of(field.coordinates, d)
     return measure_of(_in_space(field, axes)).scaled(H ** -len(axes))
 
 
