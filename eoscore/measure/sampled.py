@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from math import inf
+from math import inf, log
 from threading import Lock
 from typing import TYPE_CHECKING
 
@@ -30,7 +30,8 @@ class Sampled(Measure):
 
     scale: an energy (J) of the order at which Omega begins to leave its pure power.
     foot: below it Omega is taken as that power; by default so low that no double would show the difference.
-    error: relative bound on the function's own values; the tails of the series are added to it.
+    error: relative bound on the function's own values; the tails of the series are added to it, each with the
+    share of energy that its panel takes (a panel as narrow as 4e-9 at a break hardly counts).
     """
 
     def __init__(
@@ -130,7 +131,7 @@ class Sampled(Measure):
             for (panel, before), row, tail in zip(waiting, series, tails, strict=True):
                 if self._resolved(panel, tail, before):
                     done.append((panel, row))
-                    self._tail = max(self._tail, tail)
+                    self._tail = max(self._tail, tail * min(1.0, log(panel.last / panel.first)))
                 else:
                     halved += [(half, tail) for half in panel.halves()]
             waiting = halved

@@ -1,0 +1,175 @@
+"""Where to look: points along each coordinate that resolve whatever a formula does along it.
+
+The scales come from the formula: centres (zeros of its linear parts), wavelengths, and the decades over which
+its slope along a coordinate is not a plain power. So a waist of 30 um and an arm of 5 mm are both seen.
+"""
+
+from __future__ import annotations
+
+from itertools import product
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from eoscore.formula.polynomial import polynomial
+from eoscore.formula.tape import ordered
+
+if TYPE_CHECKING:
+    from numpy.typing import NDArray
+
+    from eoscore.measure.landscape_chart import Array, Chart
+
+__all__ = ["Axis", "axes_of"]
+
+DECADES = np.arange(-36, 13)
+MOST_MARKS = 12
+MOST_TURNS = 800
+MOST_CROSSINGS = 64
+MOST_WAVES = 4000
+_WAVES = frozenset({"sin", "cos", "tan", "besselj"})
+
+
+class Axis:
+    """What is known of one coordinate: its marks, its smallest and largest decade, its shortest half-wave."""
+
+    def __init__(self) -> None:
+        self.marks: set[float] = {0.0}
+        self.least, self.most = 99, -99
+        self.half_wave = np.inf
+        self.turns: Array = np.zeros(0)
+
+    def see(self, decades: Array) -> None:
+        """Take in decades where something happens."""
+        if decades.size:
+            self.least, self.most = min(self.least, int(decades.min())), max(self.most, int(decades.max()))
+
+    def points(self, density: float, beyond: int) -> Array:
+        """Points around every mark, `density` a decade, a few far out, and the turns of V along the axis."""
+        least, most = self.least - 1, self.most + 1
+        count = max(2, round((most - least) * density) + 1)
+        steps = np.concatenate([np.logspace(least, most, count), 10.0 ** np.arange(most + 2, most + beyond, 2)])
+        found = [self.turns, np.array([0.0])]
+        for mark in self.marks:
+            near = steps if mark == 0 else steps[steps < abs(mark)]
+            found += [mark - near, [mark], mark + near]
+        points = np.unique(np.concatenate(found))
+        return points[np.append(True, np.diff(points) > 10.0 ** (least - 1))]
+
+    def line(self) -> Array:
+        """Many points, to find the turns of V along the axis."""
+        steps = np.logspace(self.least - 1, self.most + 1, 16 * (self.most - self.least + 2))
+        if np.isfinite(self.half_wave):
+            steps = np.union1d(steps, self.half_wave / 6 * np.arange(1, MOST_WAVES))
+        return np.unique(np.concatenate([mark + side * steps for mark in self.marks for side in (-1, 0, 1)]))
+
+
+def axes_of(chart: Chart) -> list[Axis]:
+    """The axes of a chart."""
+    axes = [Axis() for _ in chart.names]
+    _read_linear_parts(chart, axes)
+    anchors = _anchors(chart, axes)
+    _see_scales(chart, axes, anchors)
+    known = [axis for axis in axes if axis.most > -99]
+    least = min((axis.least for axis in known), default=-5)
+    for axis in axes:  # a coordinate without any scale of its own takes the others'
+        if axis.most == -99:
+            axis.see(np.array([least, max((a.most for a in known), default=-5)]))
+    for i, axis in enumerate(axes):
+        axis.turns = _turns(chart, i, axis.line(), anchors)
+    return axes
+
+
+def _turns(chart: Chart, i: int, line: Array, anchors: Array) -> Array:
+    """Where V changes its sense along lines through the anchors, and just inside of where they cross a wall."""
+    points = np.repeat(anchors[:8, None, :], line.size, axis=1)
+    points[:, :, i] = line
+    slope = np.sign(chart.slopes(points)[..., i])
+    changes = np.any(slope[:, 1:] * slope[:, :-1] < 0, axis=0)
+    found = [(line[1:][changes] + line[:-1][changes]) / 2]
+    if chart.walls:
+        found.append(_crossings(chart, i, points))
+    turns: Array = np.unique(np.concatenate(found))
+    return turns[np.argsort(np.abs(turns), kind="stable")[:MOST_TURNS]]
+
+
+def _crossings(chart: Chart, i: int, points: Array) -> Array:
+    """Coordinates just inside of where lines cross a wall, by bisection."""
+    margins = chart.margins(points)
+    wall, row, k = np.nonzero(np.diff(np.sign(margins), axis=2))
+    wall, row, k = wall[:MOST_CROSSINGS], row[:MOST_CROSSINGS], k[:MOST_CROSSINGS]
+    rises = margins[wall, row, k + 1] > margins[wall, row, k]
+    inside, outside = points[row, k + rises], points[row, k + ~rises]
+    for _ in range(60):
+        middle = (inside + outside) / 2
+        within = chart.margins(middle)[wall, np.arange(wall.size)] >= 0
+        inside[within], outside[~within] = middle[within], middle[~within]
+    result: Array = inside[:, i]
+    return result
+
+
+def _read_linear_parts(chart: Chart, axes: list[Axis]) -> None:
+    """Centres and wavelengths from the linear subexpressions a.x + b of the formula and its walls."""
+    zero = (0,) * len(axes)
+    for node in ordered([chart.formula, *chart.walls]):
+        arguments = node.args if node.op in _WAVES else ()
+        for argument in arguments:
+            for i, slope in enumerate(_linear(argument, chart)):
+                if slope:
+                    axes[i].half_wave = min(axes[i].half_wave, np.pi / abs(slope))
+        if node.op not in ("add", "sub"):
+            continue
+        slopes = _linear(node, chart)
+        if slopes.any():
+            terms = polynomial(node, chart.names) or {}  # type: ignore[arg-type]  # a sum is a formula
+            foot = -terms.get(zero, 0.0) * slopes / (slopes @ slopes)
+            for i in np.flatnonzero(foot):
+                if len(axes[i].marks) < MOST_MARKS:
+                    axes[i].marks.add(float(foot[i]))
+
+
+def _linear(node: object, chart: Chart) -> Array:
+    """The slopes of a linear expression; zeros if it is not linear."""
+    nothing = np.zeros(len(chart.names))
+    terms = polynomial(node, chart.names)  # type: ignore[arg-type]
+    if not terms or any(sum(powers) > 1 for powers in terms):
+        return nothing
+    for powers, value in terms.items():
+        if sum(powers) == 1:
+            nothing[powers.index(1)] = value
+    return nothing
+
+
+def _anchors(chart: Chart, axes: list[Axis]) -> Array:
+    """Points where lines along the coordinates start: combinations of marks."""
+    combinations = np.array(list(product(*(sorted(axis.marks, key=abs)[:5] for axis in axes))))
+    return combinations[:125]
+
+
+def _see_scales(chart: Chart, axes: list[Axis], anchors: Array) -> None:
+    """The decades over which V or a wall changes along the coordinates otherwise than by a power."""
+    steps = 10.0**DECADES
+    for i, axis in enumerate(axes):
+        for side in (1.0, -1.0):
+            points = np.repeat(anchors[:, None, :], steps.size, axis=1)
+            points[:, :, i] += side * steps
+            slope = chart.slopes(points)[..., i]
+            axis.see(DECADES[_bends(slope)])
+            if chart.walls:
+                margins = chart.margins(np.concatenate([anchors[:, None, :], points], axis=1))
+                crossed = np.any(np.diff(np.sign(margins), axis=2) != 0, axis=(0, 1))
+                axis.see(DECADES[crossed])
+        if np.isfinite(axis.half_wave):
+            axis.see(np.array([np.floor(np.log10(axis.half_wave))]))
+
+
+def _bends(slope: Array) -> NDArray[np.bool_]:
+    """Where log|slope|, taken at decades, is no straight line, or the slope changes sign."""
+    with np.errstate(all="ignore"):
+        size = np.log10(np.abs(slope))
+        alive = np.isfinite(size)
+        bend = np.abs(np.diff(size, 2, axis=1)) > 0.05
+    turned = np.diff(np.sign(slope), axis=1) != 0
+    result = np.zeros(slope.shape[1], bool)
+    result[1:-1] |= np.any(bend & alive[:, :-2] & alive[:, 1:-1] & alive[:, 2:], axis=0)
+    result[1:] |= np.any(turned & alive[:, 1:] & alive[:, :-1], axis=0)
+    return result

@@ -1,0 +1,108 @@
+"""A field of several coordinates as numbers: V, its derivatives and its walls at arrays of points."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+import numpy as np
+from numpy.typing import NDArray
+
+from eoscore.formula import call, gradient, hessian, variable
+from eoscore.formula.tape import tape_of
+
+if TYPE_CHECKING:
+    from collections.abc import Sequence
+
+    from eoscore.formula import Formula
+    from eoscore.formula.field import Field
+
+__all__ = ["Array", "Chart", "split_wall"]
+
+Array = NDArray[np.float64]
+RADIAL = frozenset({"rho", "r", "p"})
+
+
+class Chart:
+    """V(x) for points of shape (n, d); radial coordinates are followed through 0 as even functions.
+
+    `nudge` is a length far below all structure: where a derivative is not defined (the tip of a cone, the axis
+    of a formula with 0/0), it is taken that far away.
+    """
+
+    def __init__(self, field: Field) -> None:
+        self.names = field.coordinates
+        self.dimension = len(self.names)
+        even: dict[str, Formula | float] = {
+            name: call("abs", variable(name)) for name in self.names if name in RADIAL
+        }
+        self.formula = field.formula.substitute(even)
+        self.walls = tuple(part for wall in field.walls for part in split_wall(wall.substitute(even)))
+        upper = [
+            entry
+            for i, row in enumerate(hessian(self.formula, self.names))
+            for entry in row[i:]
+        ]
+        self._value = tape_of(self.formula, *self.walls)
+        self._slopes = tape_of(self.formula, *gradient(self.formula, self.names))
+        self._jet = tape_of(self.formula, *gradient(self.formula, self.names), *upper)
+        self._wall_jets = [
+            tape_of(wall, *gradient(wall, self.names), *sum(hessian(wall, self.names), ())) for wall in self.walls
+        ]
+        self._upper = np.triu_indices(self.dimension)
+        self.nudge = 0.0
+
+    def at(self, points: Array) -> dict[str, Array]:
+        """Points as values of the coordinates."""
+        return {name: points[..., i] for i, name in enumerate(self.names)}
+
+    def value(self, points: Array) -> Array:
+        """V at points (..., d), inf outside the walls and where it is not defined."""
+        return self.value_at(self.at(points))
+
+    def value_at(self, values: dict[str, Array]) -> Array:
+        """V at coordinates that broadcast, inf outside the walls and where it is not defined."""
+        v, *walls = self._value.run(values)
+        outside = np.isnan(v)
+        for wall in walls:
+            outside |= ~(wall >= 0)
+        return np.where(outside, np.inf, v)
+
+    def slopes(self, points: Array) -> Array:
+        """First derivatives, shape (..., d)."""
+        return np.stack(self._slopes.run(self.at(points))[1:], axis=-1)
+
+    def jet(self, points: Array) -> tuple[Array, Array, Array]:
+        """V without walls (n,), gradient (n, d), Hessian (n, d, d)."""
+        values = self._jet.run(self.at(points))
+        lost = ~np.isfinite(sum(values[1:]))
+        if lost.any() and self.nudge:
+            aside = points[lost] + self.nudge * np.sqrt(np.arange(2.0, 2.0 + self.dimension))
+            for value, better in zip(values[1:], self._jet.run(self.at(aside))[1:], strict=True):
+                value[lost] = better
+        d = self.dimension
+        curvature = np.empty((*values[0].shape, d, d))
+        for entry, i, j in zip(values[1 + d :], *self._upper, strict=True):
+            curvature[..., i, j] = curvature[..., j, i] = entry
+        return values[0], np.stack(values[1 : 1 + d], axis=-1), curvature
+
+    def wall_jet(self, index: int, point: Array) -> tuple[float, Array, Array]:
+        """A wall function at one point: value, gradient (d,), Hessian (d, d)."""
+        values = np.array([float(v) for v in self._wall_jets[index].run(self.at(point))])
+        d = self.dimension
+        return float(values[0]), values[1 : 1 + d], values[1 + d :].reshape(d, d)
+
+    def margins(self, points: Array) -> Array:
+        """The wall functions, shape (walls, ...)."""
+        return np.array(self._value.run(self.at(points))[1:])
+
+
+def split_wall(wall: Formula) -> Sequence[Formula]:
+    """A wall that is the least of several, as several."""
+    parts, waiting = [], [wall]
+    while waiting:
+        f = waiting.pop()
+        if f.op == "min":
+            waiting.extend(f.operands)
+        else:
+            parts.append(f)
+    return parts

@@ -1,0 +1,128 @@
+"""Down to the local minima: Newton steps within a trust radius, many starts at once, walls by active sets."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+if TYPE_CHECKING:
+    from eoscore.measure.landscape_chart import Array, Chart
+
+__all__ = ["descend", "distinct"]
+
+STEPS = 200
+
+
+def descend(chart: Chart, starts: Array, radius: Array) -> tuple[Array, Array]:
+    """Local minima from many starts (n, d) with first trust radii (n,): points and values.
+
+    A point whose V falls without end runs far away, its value to -inf or its limit.
+    """
+    points, radius = starts.copy(), radius.copy()
+    walled = bool(chart.walls)
+    value, slope, bend = chart.jet(points)
+    active = np.isfinite(value)
+    for _ in range(STEPS):
+        now = np.flatnonzero(active)
+        if not now.size:
+            break
+        frames = [_free(chart, points[k], slope[k]) for k in now] if walled else None
+        step = _steps(slope[now], bend[now], radius[now], frames)
+        trial = points[now] + step
+        if walled:
+            trial = np.array([_inside(chart, points[k], x) for k, x in zip(now, trial, strict=True)])
+        taken = trial - points[now]
+        new = chart.value(trial)
+        better = new < value[now]
+        length = np.linalg.norm(step, axis=1)
+        radius[now] = np.where(better, np.where(length > 0.7 * radius[now], 2 * radius[now], radius[now]), length / 4)
+        moved = now[better]
+        points[moved] = trial[better]
+        value[moved], slope[moved], bend[moved] = chart.jet(points[moved])
+        small = np.linalg.norm(taken, axis=1) <= 1e-15 * np.linalg.norm(points[now], axis=1)
+        active[now] = ~small & (radius[now] > 1e-17 * np.linalg.norm(points[now], axis=1)) & (length > 0)
+        active[now] &= (radius[now] > 1e-40) & (np.linalg.norm(points[now], axis=1) < 1e20)
+    return points, value
+
+
+def _steps(slope: Array, bend: Array, radius: Array, frames: list[Array] | None) -> Array:
+    """Newton steps with the curvatures made positive, cut at the trust radius."""
+    if frames is not None:
+        return np.array(
+            [
+                frame @ _steps((g @ frame)[None], (frame.T @ h @ frame)[None], np.array([r]), None)[0]
+                if frame.size
+                else np.zeros(g.size)
+                for g, h, r, frame in zip(slope, bend, radius, frames, strict=True)
+            ]
+        )
+    size, axes = np.linalg.eigh(np.nan_to_num(bend))
+    along = np.einsum("nji,nj->ni", axes, np.nan_to_num(slope))
+    steepest = np.linalg.norm(along, axis=1, keepdims=True)
+    floor = np.maximum(1e-10 * np.max(np.abs(size), axis=1, keepdims=True), steepest / radius[:, None] * 0.5)
+    with np.errstate(all="ignore"):
+        full = along / np.maximum(np.abs(size), 1e-12 * np.max(np.abs(size), axis=1, keepdims=True))
+        capped = along / np.maximum(np.abs(size), floor)
+    fits = np.linalg.norm(np.nan_to_num(full, posinf=np.inf), axis=1, keepdims=True) <= radius[:, None]
+    step = -np.einsum("nij,nj->ni", axes, np.nan_to_num(np.where(fits, full, capped)))
+    length = np.linalg.norm(step, axis=1, keepdims=True)
+    result: Array = step * np.minimum(1.0, radius[:, None] / np.maximum(length, 1e-300))
+    return result
+
+
+def _free(chart: Chart, point: Array, slope: Array) -> Array:
+    """Directions (d, k) along the walls that hold the point where V pushes it against them."""
+    held: list[Array] = []
+    for index in range(len(chart.walls)):
+        margin, normal, _ = chart.wall_jet(index, point)
+        size = float(np.linalg.norm(normal))
+        if size and margin / size <= 1e-9 * (np.linalg.norm(point) + chart.nudge) and slope @ normal > 0:
+            held.append(normal / size)
+    frame = np.eye(point.size)
+    if held:
+        _, sizes, rows = np.linalg.svd(np.array(held))
+        frame = rows[int(np.sum(sizes > 1e-9)) :].T
+    return frame
+
+
+def _inside(chart: Chart, start: Array, end: Array) -> Array:
+    """The end, or the last point inside the walls on the way to it from the start (slid back onto them)."""
+    if np.all(chart.margins(end) >= 0):
+        return end
+    back = _pulled_back(chart, end, float(np.linalg.norm(end - start)))
+    if back is not None:
+        return back
+    low, high = 0.0, 1.0
+    for _ in range(60):
+        middle = (low + high) / 2
+        inside = bool(np.all(chart.margins(start + middle * (end - start)) >= 0))
+        low, high = (middle, high) if inside else (low, middle)
+    result: Array = start + low * (end - start)
+    return result
+
+
+def _pulled_back(chart: Chart, point: Array, reach: float) -> Array | None:
+    """The point moved to the inner side of the walls that it lies a little outside of; None if that is far."""
+    moved = point.copy()
+    for _ in range(12):
+        outside = [k for k, margin in enumerate(chart.margins(moved)) if margin < 0]
+        if not outside:
+            return moved if np.linalg.norm(moved - point) <= 0.3 * reach else None
+        for k in outside:
+            margin, normal, _ = chart.wall_jet(k, moved)
+            square = float(normal @ normal)
+            if not square:
+                return None
+            moved = moved + (1e-14 * np.linalg.norm(moved) * np.sqrt(square) - margin) * normal / square
+    return None
+
+
+def distinct(points: Array, values: Array, tolerance: float) -> list[int]:
+    """Indices of points that differ, lowest value first; those closer than `tolerance` (m) count once."""
+    kept: list[int] = []
+    for k in np.argsort(values, kind="stable").tolist():
+        near = kept and np.min(np.linalg.norm(points[kept] - points[k], axis=1)) <= tolerance
+        if np.isfinite(values[k]) and not near:
+            kept.append(k)
+    return kept

@@ -1,0 +1,134 @@
+"""A grid over all scales: its local minima, and the lowest level at which one of them joins the outside."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+if TYPE_CHECKING:
+    from numpy.typing import NDArray
+
+    from eoscore.measure.landscape_chart import Array, Chart
+
+__all__ = ["Grid", "Leak", "grid_of"]
+
+MOST_POINTS = 200_000
+
+
+@dataclass(frozen=True)
+class Leak:
+    """Where the grid leaks: the level (J), the grid point, and whether it is the limit at infinity beyond it."""
+
+    energy: float
+    point: Array
+    outward: Array
+    at_infinity: bool
+
+
+class Grid:
+    """V on the product of axes of points; `frame` (d, d) and `origin` turn grid coordinates into the chart's."""
+
+    def __init__(self, chart: Chart, axes: list[Array], origin: Array, frame: Array) -> None:
+        self.chart, self.axes, self.origin, self.frame = chart, axes, origin, frame
+        self.shape = tuple(axis.size for axis in axes)
+        if np.array_equal(frame, np.eye(len(axes))):
+            mesh = np.meshgrid(*(o + a for o, a in zip(origin, axes, strict=True)), indexing="ij", sparse=True)
+            values = {name: np.asarray(x) for name, x in zip(chart.names, mesh, strict=True)}
+            self.v = chart.value_at(values)
+        else:
+            self.v = chart.value(self.points(np.indices(self.shape).reshape(len(axes), -1).T)).reshape(self.shape)
+
+    def points(self, index: Array) -> Array:
+        """Chart coordinates of grid indices (n, d)."""
+        local = np.stack([axis[index[:, i].astype(int)] for i, axis in enumerate(self.axes)], axis=1)
+        result: Array = self.origin + local @ self.frame.T
+        return result
+
+    def spacing(self, index: Array) -> Array:
+        """The distance to the nearest neighbour at grid indices (n, d)."""
+        gaps = [np.minimum(np.append(np.inf, np.diff(a)), np.append(np.diff(a), np.inf)) for a in self.axes]
+        return np.min([gap[index[:, i]] for i, gap in enumerate(gaps)], axis=0)
+
+    def minima(self, most: int) -> Array:
+        """Indices (n, d) of the lowest inner points that no neighbour along an axis undercuts."""
+        low = np.isfinite(self.v)
+        for i in range(self.v.ndim):
+            here, v = [slice(None)] * self.v.ndim, np.moveaxis(self.v, i, 0)
+            here[i] = slice(0, 1)
+            low[tuple(here)] = False
+            here[i] = slice(-1, None)
+            low[tuple(here)] = False
+            inner = np.moveaxis(low, i, 0)
+            inner[1:] &= v[1:] <= v[:-1]
+            inner[:-1] &= v[:-1] <= v[1:]
+        index = np.argwhere(low)
+        order = np.argsort(self.v[low], kind="stable")
+        result: Array = index[order[:most]]
+        return result
+
+    def leak(self, bottom: Array) -> Leak | None:
+        """The lowest level at which the point joins the far end of the grid; None if it never does.
+
+        Levels are bisected; the regions below a level are found by labelling, diagonal neighbours joined.
+        """
+        from scipy import ndimage
+
+        edge = np.ones(self.shape, bool)
+        edge[(slice(1, -1),) * self.v.ndim] = False
+        ends = np.argwhere(edge & np.isfinite(self.v))
+        start = self.nearest(bottom)
+        exits = self._exits(ends, float(self.v[start]))
+        levels = np.unique(np.concatenate([self.v[np.isfinite(self.v)], exits[np.isfinite(exits)]]))
+        levels = levels[levels >= self.v[start]]
+        structure = np.ones((3,) * self.v.ndim)
+
+        def joined(level: float) -> Array:
+            regions = ndimage.label(self.v <= level, structure)[0]
+            return np.flatnonzero((exits <= level) & (regions[tuple(ends.T)] == regions[start]))
+
+        if not levels.size or not joined(levels[-1]).size:
+            return None
+        low, high = -1, levels.size - 1
+        while high - low > 1:
+            middle = (low + high) // 2
+            low, high = (low, middle) if joined(levels[middle]).size else (middle, high)
+        level = float(levels[high])
+        out = joined(level)
+        chosen = tuple(ends[out[np.argmin(exits[out])]])
+        outward = self.points(np.array([chosen]))[0] - bottom
+        last = np.argwhere(self.v == level)
+        if not last.size or edge[tuple(last[0])] or exits[out].min() >= level > self.v[chosen]:
+            return Leak(level, self.points(np.array([chosen]))[0], outward, at_infinity=True)
+        return Leak(level, self.points(last[:1])[0], outward, at_infinity=False)
+
+    def region(self, bottom: Array, level: float) -> NDArray[np.bool_]:
+        """The grid points that join the bottom below a level."""
+        from scipy import ndimage
+
+        regions = ndimage.label(self.v < level, np.ones((3,) * self.v.ndim))[0]
+        joined: NDArray[np.bool_] = regions == regions[self.nearest(bottom)]
+        return joined
+
+    def _exits(self, ends: Array, low: float) -> Array:
+        """The level at which each end of the grid leads out: inf where V grows beyond or a wall stands there."""
+        points = self.points(ends)
+        far = [self.v[tuple(ends.T)]]
+        far += [self.chart.value(self.origin + (points - self.origin) * f) for f in (1e3, 1e6, 1e9)]
+        with np.errstate(all="ignore"):
+            before, after = far[2] - far[1], far[3] - far[2]
+            grows = (after > 0.5 * before) & (after > 1e-12 * np.abs(far[0] - low))
+        top = np.maximum.reduce(far)
+        result: Array = np.where(grows | np.isnan(top), np.inf, top)
+        return result
+
+    def nearest(self, point: Array) -> tuple[int, ...]:
+        """The grid point nearest to a point, along each axis."""
+        local = (point - self.origin) @ self.frame
+        return tuple(int(np.argmin(np.abs(axis - x))) for axis, x in zip(self.axes, local, strict=True))
+
+
+def grid_of(chart: Chart, axes: list[Array], origin: Array, frame: Array) -> Grid:
+    """A grid, with the point of the origin among its own."""
+    return Grid(chart, [np.union1d(axis, 0.0) for axis in axes], origin, frame)
