@@ -58,6 +58,8 @@ def _mass(question: Question, pair: Pair, checker: Checker) -> None:
     """A mass is needed only where something uses it: a dispersion that says so, but not with given states."""
     signature, gas = pair.gas.signature, pair.gas
     has_states = pair.place is not None and isinstance(pair.place.node, nodes.States)
+    if pair.scope.title in checker.massless:
+        return
     if signature is not None and signature.needs_mass and gas.mass is None and not has_states:
         message = f"gas `{gas.name}` has no mass, which the dispersion `{signature.name}` needs (line {question.line})"
         checker.faults.add(gas.node.name.span, message, "add a line such as `isotope Sr-84` or `m = 84 u`")

@@ -35,6 +35,12 @@ class _Frame(NamedTuple):
     arguments: Mapping[str, Kind]
     sink: Callable[[Fault], None]
 
+    def unless(self, dead: bool) -> _Frame:
+        """The same frame; for a branch that is never taken, without its faults of value."""
+        return (
+            self._replace(sink=lambda fault: None if fault.is_value else self.sink(fault)) if dead else self
+        )
+
 
 class _Applied(NamedTuple):
     """What a function gives at arguments of some kinds, and the faults in its body that are theirs alone."""
@@ -47,13 +53,14 @@ class Checker:
     """Checks expressions in their scopes; every name is checked once, every function once per kind of call.
 
     `uncertain` collects the literals with an uncertainty by the identity of their nodes, `used` the definitions
-    that something refers to.
+    that something refers to, `massless` the blocks that miss a mass.
     """
 
     def __init__(self, faults: Faults) -> None:
         self.faults = faults
         self.uncertain: dict[int, nodes.Number] = {}
         self.used: set[int] = set()
+        self.massless: set[str] = set()
         self._names: dict[Named, Kind] = {}
         self._calls: dict[tuple[Named, tuple[Kind, ...]], _Applied] = {}
         self._open: dict[Named, None] = {}
@@ -77,7 +84,7 @@ class Checker:
         """The kind of a function at arguments of known kinds; faults are told where they stand in its body."""
         if named.definition is None:
             return UNKNOWN
-        step = self._applied(named, tuple(arguments))
+        step = self._applied(named, tuple(arguments), called=False)
         applied = self._guarded(named.definition.name.span, step, _Applied(UNKNOWN))
         for fault in applied.faults:
             self.faults.append(fault)
@@ -87,6 +94,14 @@ class Checker:
         """Looks for faults in a function's body that no argument could mend."""
         if named.definition is not None:
             self.function(named, [UNKNOWN] * len(named.definition.parameters or ()))
+            self.without_walls(named.definition)
+
+    def without_walls(self, definition: nodes.Definition) -> None:
+        """A fault for walls of anything but the energy of a place or a particle."""
+        if definition.where:
+            span = definition.where[0].span.to(definition.where[-1].span)
+            hint = f"take it out, or write {definition.name.name} with if(condition, a, b)"
+            self.faults.add(span, "`where` bounds V in a trap and E in a gas only", hint)
 
     def _guarded(self, span: Span, step: Step[Result], otherwise: Result) -> Result:
         self._steps = 0
@@ -121,8 +136,9 @@ class Checker:
                 return binary(node, left, (yield self._expression(node.right, frame)), frame.sink)
             case nodes.If():
                 holds = yield self._condition(node.condition, frame)
-                then = yield self._expression(node.then, frame)
-                return choice(node, holds, then, (yield self._expression(node.otherwise, frame)), frame.sink)
+                then = yield self._expression(node.then, frame.unless(holds is False))
+                otherwise = yield self._expression(node.otherwise, frame.unless(holds is True))
+                return choice(node, holds, then, otherwise, frame.sink)
             case nodes.Call():
                 return (yield from self._call(node, frame))
 
@@ -140,7 +156,7 @@ class Checker:
             return frame.arguments[node.name]
         named = frame.scope.find(node.name)
         if named is None:
-            frame.sink(_unknown_name(node, frame))
+            self._missed(node, frame)
             return UNKNOWN
         if named.is_function:
             call = f"{node.name}({', '.join(_parameters(named))})"
@@ -148,6 +164,14 @@ class Checker:
             return UNKNOWN
         self.used.add(id(named.definition))
         return (yield from self._name(named))
+
+    def _missed(self, node: nodes.Name, frame: _Frame) -> None:
+        """A name that nobody knows; a missing mass is told once, however often a block uses it."""
+        block = next((scope.title for scope in frame.scope.chain() if scope.is_block), None)
+        if node.name != "m" or block not in self.massless:
+            frame.sink(_unknown_name(node, frame, block))
+        if node.name == "m" and block is not None:
+            self.massless.add(block)
 
     def _name(self, named: Named) -> Step[Kind]:
         if named.given is not None or named.definition is None or named.home is None:
@@ -173,7 +197,7 @@ class Checker:
                 frame.sink(Fault(node.span, message, f"write {name}({', '.join(wanted)})"))
                 return UNKNOWN
             self.used.add(id(named.definition))
-            applied: _Applied = yield self._applied(named, tuple(given))
+            applied: _Applied = yield self._applied(named, tuple(given), called=True)
             if applied.faults:
                 frame.sink(_faulty_call(node, given, wanted, applied.faults[0]))
             return applied.kind
@@ -182,7 +206,8 @@ class Checker:
         frame.sink(_unknown_function(node, frame, is_number=named is not None or name in frame.arguments))
         return UNKNOWN
 
-    def _applied(self, named: Named, arguments: tuple[Kind, ...]) -> Step[_Applied]:
+    def _applied(self, named: Named, arguments: tuple[Kind, ...], *, called: bool) -> Step[_Applied]:
+        """A function at arguments; of a call, only the faults that other arguments would not have."""
         key = (named, arguments)
         if key in self._calls:
             return self._calls[key]
@@ -192,8 +217,10 @@ class Checker:
         definition, home = named.definition, named.home
         if definition is None or home is None:
             return _Applied(UNKNOWN)
-        unknown = (UNKNOWN,) * len(arguments)
-        base = _Applied(UNKNOWN) if arguments == unknown else (yield self._applied(named, unknown))
+        base: _Applied = _Applied(UNKNOWN)
+        if called:
+            unknown = (UNKNOWN,) * len(arguments)
+            base = yield self._applied(named, unknown, called=False)
         self._open[named] = None
         found: list[Fault] = []
         frame = _Frame(home, dict(zip(_parameters(named), arguments, strict=True)), found.append)
@@ -227,15 +254,14 @@ def _parameters(named: Named) -> tuple[str, ...]:
     return tuple(parameter.name for parameter in (definition.parameters if definition else None) or ())
 
 
-def _unknown_name(node: nodes.Name, frame: _Frame) -> Fault:
-    scopes = list(frame.scope.chain())
+def _unknown_name(node: nodes.Name, frame: _Frame, block: str | None) -> Fault:
     if node.name == "m":
-        inside = next((scope.title for scope in scopes if scope.is_block), None)
         message = (
-            f"the mass `m` is not known in {inside}" if inside else "`m` is known inside a gas or a trap only"
+            f"the mass `m` is not known in {block}" if block else "`m` is known inside a gas or a trap only"
         )
-        hint = "give the gas `isotope Sr-84`, or `m = 84 u`" if inside else "pass the mass as an argument"
+        hint = "give the gas `isotope Sr-84`, or `m = 84 u`" if block else "pass the mass as an argument"
         return Fault(node.span, message, hint)
+    scopes = list(frame.scope.chain())
     values = [name for scope in scopes for name, named in scope.names.items() if not named.is_function]
     return Fault(
         node.span, f"the name `{node.name}` is not known here", listed(node.name, [*frame.arguments, *values])
@@ -264,4 +290,4 @@ def _faulty_call(node: nodes.Call, given: Sequence[Kind], wanted: Sequence[str],
     reason = fault.reason or fault.message
     message = f"`{node.function.name}` does not fit here, where {told_arguments}: {reason}"
     hint = f"see its body in {origin.source.name}, line {origin.line}: `{short(origin)}`"
-    return Fault(node.span, message, hint, origin, reason)
+    return Fault(node.span, message, hint, origin, reason, fault.is_value)

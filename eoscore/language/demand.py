@@ -24,7 +24,8 @@ def must_be(kind: Kind, units: Sequence[str], span: Span, what: str, faults: Fau
     if any(alike(kind.dimension, dim) for dim in wanted):
         return True
     expected = " or ".join(told(dim) for dim in wanted)
-    hint = mend(kind.dimension, wanted[0], short(span)) or _unit_hint(kind, units)
+    bridge = None if kind.dimension == PURE else mend(kind.dimension, wanted[0], short(span))
+    hint = bridge or _unit_hint(kind, units)
     faults.add(span, f"{what} must be {expected}, `{short(span)}` is {told(kind.dimension)}", hint)
     return False
 

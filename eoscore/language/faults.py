@@ -21,7 +21,7 @@ _COMPARED = 400  # names compared letter by letter; beyond that only those with 
 
 @dataclass(frozen=True)
 class Fault:
-    """What is wrong at a place.
+    """What is wrong at a place; `is_value` where it is a value that is no number, not the text itself.
 
     Where a call does not fit the body of its function, `origin` is the place in the body and `reason` what is wrong
     there, however deep the calls are nested.
@@ -32,6 +32,7 @@ class Fault:
     hint: str | None = None
     origin: Span | None = None
     reason: str | None = None
+    is_value: bool = False
 
 
 class Faults:

@@ -46,10 +46,6 @@ def _entry(named: Named, checker: Checker) -> None:
     if named.name == "E":
         _energy(named, checker)
         return
-    if definition.where:
-        checker.faults.add(
-            definition.where[0].span, "`where` belongs to E(p) in a gas", "use if(condition, a, b)"
-        )
     if named.is_function:
         checker.body(named)
         return
@@ -100,7 +96,7 @@ def _parameters(gas: Gas, checker: Checker) -> None:
             )
             hint = f"write dispersion {signature.name} {{ {parameter.name} = ... {parameter.unit} }}"
             checker.faults.add(gas.dispersion.name.span, message, hint)
-    if signature.levels and not gas.held and gas.dispersion is not None:
+    if signature.levels and gas.dispersion is not None and not gas.dispersion.parameters:
         message = f"the dispersion `{signature.name}` wants at least one of {', '.join(signature.levels)}"
         hint = f"write dispersion {signature.name} {{ {signature.levels[-1]} = 2*pi*5 kHz }}"
         checker.faults.add(gas.dispersion.name.span, message, hint)

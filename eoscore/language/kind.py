@@ -72,21 +72,18 @@ PURE = ONE
 
 @cache
 def times(a: Dim, b: Dim) -> Dim:
-    """The dimension of a product."""
-    if Wild.FAULTY in (a, b):
-        return Wild.FAULTY
-    if isinstance(a, Wild):
-        return b
-    return a if isinstance(b, Wild) else a * b
+    """The dimension of a product; with the literal 0 as a factor it is 0 itself and fits any other."""
+    if isinstance(a, Wild) or isinstance(b, Wild):
+        return Wild.FAULTY if Wild.FAULTY in (a, b) else Wild.ZERO
+    return a * b
 
 
 @cache
 def divided(a: Dim, b: Dim) -> Dim:
-    """The dimension of a quotient."""
-    if Wild.FAULTY in (a, b):
-        return Wild.FAULTY
-    below = PURE if isinstance(b, Wild) else b
-    return (PURE if isinstance(a, Wild) else a) / below
+    """The dimension of a quotient; 0 divided by anything stays 0."""
+    if isinstance(a, Wild) or isinstance(b, Wild):
+        return Wild.FAULTY if Wild.FAULTY in (a, b) else a
+    return a / b
 
 
 @cache

@@ -37,12 +37,7 @@ def mend(given: Dim, wanted: Dim, words: str) -> str | None:
     """A hint that would turn `given` into `wanted`, None where none is likely; `words` is the text at fault."""
     if isinstance(given, Wild) or isinstance(wanted, Wild):
         return None
-    bridge = _bridges().get(wanted / given)
-    if bridge is not None:
-        return bridge.format(f"`{words}`")
-    bridge = _bridges().get(given / wanted)
-    if bridge is not None and given == dimension("J"):
-        return f"`{words}` is an energy already: compare it with an energy"
-    if given == PURE and words.replace(".", "").isalnum() and words[0].isdigit():
+    if given == PURE and words.replace(".", "").isdigit():
         return f"give `{words}` a unit of {told(wanted)}, on the same line"
-    return None
+    bridge = _bridges().get(wanted / given)
+    return bridge.format(f"`{words}`") if bridge is not None else None

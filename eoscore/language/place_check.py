@@ -43,8 +43,6 @@ def _entry(named: Named, checker: Checker, *, is_trap: bool) -> None:
         faults.add(
             definition.name.span, "`m` in a place is the mass of the gas asked for", "give this another name"
         )
-    if definition.where and name != "V":
-        faults.add(definition.where[0].span, "`where` belongs to V in a trap", "use if(condition, a, b)")
     if name == ("V" if is_trap else "rho"):
         (_potential if is_trap else _density)(named, checker)
     elif named.is_function:
@@ -91,6 +89,7 @@ def _density(named: Named, checker: Checker) -> None:
         )
         checker.body(named)
         return
+    checker.without_walls(definition)
     kind = checker.function(named, [Kind(dimension("J"))])
     must_be(kind, ("J-1",), definition.value.span, "rho(E)", checker.faults)
 

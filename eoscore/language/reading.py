@@ -108,10 +108,6 @@ def _check_names(world: World, checker: Checker) -> None:
             definition = named.definition
             if definition is None:
                 continue
-            if definition.where:
-                checker.faults.add(
-                    definition.where[0].span, "`where` belongs to V or E(p)", "use if(condition, a, b)"
-                )
             if named.is_function:
                 checker.body(named)
             else:

@@ -59,7 +59,8 @@ def finite(value: float | None, node: Expr, sink: Sink, *operands: Kind) -> floa
         else "is too large for a number, or a division by 0"
     )
     shown = ", ".join(f"{kind.value:g}" for kind in operands if kind.value is not None)
-    sink(Fault(node.span, f"`{short(node.span)}` {words}", f"its parts are {shown} (SI)" if shown else None))
+    hint = f"its parts are {shown} (SI)" if shown else None
+    sink(Fault(node.span, f"`{short(node.span)}` {words}", hint, is_value=True))
     return None
 
 

@@ -12,10 +12,10 @@ import sympy as sp
 
 from eoscore.language import nodes
 from eoscore.language.compile import expression_of
+from eoscore.language.limits import parts
 from eoscore.language.lower import conjuncts
 from eoscore.language.scope import Named, constant_scope, read_in
 from eoscore.language.sympy_walk import SympyWalk
-from eoscore.language.walk import children
 
 if TYPE_CHECKING:
     from collections.abc import Sequence
@@ -167,7 +167,7 @@ def _has_names(named: Named) -> bool:
     """Whether a definition is built from other names than constants."""
     definition, home = read_in(named)
     constants = constant_scope().names.values()
-    waiting: list[nodes.Node] = [definition.value]
+    waiting: list[nodes.Expr | nodes.Condition] = [definition.value]
     while waiting:
         node = waiting.pop()
         name = (
@@ -176,5 +176,5 @@ def _has_names(named: Named) -> bool:
         found = home.find(name.name) if name else None
         if found is not None and found not in constants:
             return True
-        waiting.extend(children(node))
+        waiting.extend(parts(node))
     return False

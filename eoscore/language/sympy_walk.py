@@ -128,7 +128,7 @@ class SympyWalk:
 
 
 def _literal(node: nodes.Number) -> Any:
-    value = sp.Rational(node.text)
+    value = sp.Rational(node.text) if node.value else sp.Integer(0)  # not the millions of digits of 0e999999
     for symbol, exponent in node.unit.factors if node.unit else ():
         value *= _factor(symbol) ** exponent
     return value

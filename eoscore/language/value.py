@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 import operator
+from fractions import Fraction
 from typing import TYPE_CHECKING
 
 from eoscore import formula
@@ -50,19 +51,16 @@ def call_value(name: str, values: Sequence[float | None]) -> float | None:
 
 
 def si_value(node: Number) -> float:
-    """A literal in SI."""
-    return _scaled(node.value, node)
+    """A literal in SI, rounded once: `1.6 um` is the double nearest to 1.6e-6."""
+    if node.unit is None or node.value == 0:
+        return node.value
+    factor = unit_of(node.unit)[0]
+    inverse = round(1 / factor) if 1e-22 <= factor < 1 else 0
+    if inverse and 1 / inverse == factor:
+        return float(Fraction(node.text) / inverse)
+    return node.value * factor
 
 
 def si_sigma(node: Number) -> float:
     """The standard deviation of a literal in SI, 0 where it has none."""
-    return _scaled(node.sigma or 0.0, node)
-
-
-def _scaled(value: float, node: Number) -> float:
-    """A value of a literal's unit in SI; dividing by 10^6 rounds `55 um` to 5.5e-5, multiplying by 1e-6 does not."""
-    if node.unit is None:
-        return value
-    factor = unit_of(node.unit)[0]
-    inverse = round(1 / factor) if 1e-22 <= factor < 1 else 0
-    return value / inverse if inverse and 1 / inverse == factor else value * factor
+    return (node.sigma or 0.0) * (unit_of(node.unit)[0] if node.unit else 1.0)

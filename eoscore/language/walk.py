@@ -8,9 +8,7 @@ from __future__ import annotations
 from collections.abc import Generator, Iterable
 from typing import Any, TypeVar
 
-from eoscore.language import nodes
-
-__all__ = ["Step", "children", "every", "run"]
+__all__ = ["Step", "every", "run"]
 
 Result = TypeVar("Result")
 Step = Generator[Any, Any, Result]
@@ -38,19 +36,3 @@ def every(steps: Iterable[Step[Result]]) -> Step[list[Result]]:
         result: Result = yield step
         results.append(result)
     return results
-
-
-def children(node: nodes.Node) -> tuple[nodes.Expr | nodes.Condition, ...]:
-    """The expressions and conditions that an expression or a condition is made of."""
-    match node:
-        case nodes.Negative():
-            return (node.operand,)
-        case nodes.Binary() | nodes.Compare():
-            return (node.left, node.right)
-        case nodes.If():
-            return (node.condition, node.then, node.otherwise)
-        case nodes.Call():
-            return node.arguments
-        case nodes.Logic():
-            return node.operands
-    return ()
