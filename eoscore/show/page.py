@@ -78,8 +78,8 @@ def _notes(answer: Answer) -> Iterator[str]:
                 yield f"  {name}{at}: no value, because {reason.text}"
             if finding.note:
                 yield f"  {name}: {finding.note}"
-            if finding.budget and not answer.over:
-                yield f"  {name}: its uncertainty comes from {_budget(finding)}"
+            if not answer.over and (shares := _budget(finding)):
+                yield f"  {name}: its uncertainty comes from {shares}"
 
 
 def _caution_lines(answer: Answer, told: set[Caution]) -> Iterator[str]:

@@ -29,10 +29,16 @@ def written(value: float, sigma: float | None = None) -> str:
     if not math.isfinite(value):
         return "-"
     if sigma is None or not math.isfinite(sigma) or sigma <= 0.0:
-        return f"{value:.{_DIGITS}g}"
+        return _short_power(f"{value:.{_DIGITS}g}")
     from uncertainties import ufloat
 
-    return f"{ufloat(value, sigma):.2uS}"
+    return _short_power(f"{ufloat(value, sigma):.2uS}")
+
+
+def _short_power(number: str) -> str:
+    """`4.24(34)e4` for `4.24(34)e+04`, as Tarn writes numbers."""
+    digits, e, power = number.partition("e")
+    return f"{digits}e{int(power)}" if e else number
 
 
 def quantity(value: float, unit: str, sigma: float | None = None) -> str:
