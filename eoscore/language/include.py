@@ -14,8 +14,9 @@ from eoscore.language.parse import parse
 
 if TYPE_CHECKING:
     from collections.abc import Iterator
+    from importlib.resources.abc import Traversable
 
-__all__ = ["Included", "Includer"]
+__all__ = ["Included", "Includer", "shelf_files"]
 
 _LARGEST = 20_000_000  # bytes of a file that is taken in
 
@@ -30,7 +31,7 @@ class Included:
 
 
 class Includer:
-    """Follows the `use` lines of a file, depth first, without recursion through Python's stack growing with text."""
+    """Follows the `use` lines of a file, depth first."""
 
     def __init__(self, folder: Path | None, faults: Faults) -> None:
         self._root = folder.resolve() if folder else None
@@ -115,7 +116,7 @@ class Includer:
     def _take_shelf(self, use: nodes.Use) -> None:
         if use.target in self.included.shelf:
             return
-        shelf = {path.name.removesuffix(".tarn"): path for path in _shelf_files()}
+        shelf = shelf_files()
         if use.target not in shelf:
             hint = listed(use.target, shelf, what="on the shelf")
             self._faults.add(use.span, f"there is no shelf file `{use.target}`", hint)
@@ -124,10 +125,10 @@ class Includer:
         self.included.shelf[use.target] = parse(text, f"shelf/{use.target}.tarn")
 
 
-def _shelf_files() -> Iterator[resources.abc.Traversable]:
-    for path in resources.files("eoscore.language.shelf").iterdir():
-        if path.name.endswith(".tarn"):
-            yield path
+def shelf_files() -> dict[str, Traversable]:
+    """The files of the shelf by their names."""
+    paths = resources.files("eoscore.language.shelf").iterdir()
+    return {path.name.removesuffix(".tarn"): path for path in paths if path.name.endswith(".tarn")}
 
 
 def _declarations(file: nodes.File) -> Iterator[nodes.Entry]:
