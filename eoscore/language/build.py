@@ -6,6 +6,7 @@ from typing import TYPE_CHECKING, Literal
 
 from eoscore.language import nodes
 from eoscore.language.build_declaration import BuildDeclaration, Part
+from eoscore.source import Span
 
 if TYPE_CHECKING:
     from eoscore.language.build_expression import Found
@@ -20,8 +21,6 @@ class Build(BuildDeclaration):
 
     def file(self, found: Found) -> nodes.File:
         """All entries; the place is that of the whole text."""
-        from eoscore.source import Span
-
         return nodes.File(tuple(found), span=Span(self.source, 0, len(self.source.text)))
 
     def wanted(self, found: Found) -> Part:
@@ -108,9 +107,8 @@ class Build(BuildDeclaration):
 
     def listing(self, found: Found) -> nodes.Listing:
         """`[a, b, ...]`."""
-        if found[1] is None:
+        if len(found) == 2:
             self.faults.add(self.span(found), "`[]` came; a grid needs at least one value", _SPANS)
-            return nodes.Listing((), span=self.span(found))
         return nodes.Listing(tuple(map(self.bounded, found[1:-1:2])), span=self.span(found))
 
 

@@ -14,7 +14,11 @@ if TYPE_CHECKING:
 
     from eoscore.source import Span
 
-BLOCK_NODES = {"gas": nodes.Gas, "trap": nodes.Trap, "states": nodes.States}
+_BLOCKS: dict[str, type[nodes.Gas | nodes.Trap | nodes.States]] = {
+    "gas": nodes.Gas,
+    "trap": nodes.Trap,
+    "states": nodes.States,
+}
 
 
 @dataclass(frozen=True)
@@ -66,7 +70,7 @@ class BuildDeclaration(BuildExpression):
         """`gas NAME { ... }` and its like; lines that belong into another kind of block are faults."""
         kind, name, lines = str(found[0]), self.ident(found[1]), found[3:-1]
         entries = tuple(line for line in lines if self._belongs(line, kind))
-        return BLOCK_NODES[kind](name, entries, span=self.span(found))
+        return _BLOCKS[kind](name, entries, span=self.span(found))
 
     def _belongs(self, line: nodes.Node, kind: str) -> bool:
         if isinstance(line, nodes.Definition):

@@ -39,8 +39,8 @@ class BuildExpression:
         last = (
             found[-1] if found[-1] is not None else next(part for part in reversed(found) if part is not None)
         )
-        start = first.start_pos if isinstance(first, Token) else first.span.start
-        end = last.end_pos if isinstance(last, Token) else last.span.end
+        start: int = (first.start_pos or 0) if isinstance(first, Token) else first.span.start
+        end: int = (last.end_pos or 0) if isinstance(last, Token) else last.span.end
         return Span(self.source, start, end)
 
     def letters(self, token: Token) -> str:
@@ -86,8 +86,7 @@ class BuildExpression:
 
     def call(self, found: Found) -> nodes.Call:
         """`NAME(a, b)`."""
-        arguments = tuple(found[2:-1:2]) if found[2] is not None else ()
-        return nodes.Call(self.ident(found[0]), arguments, span=self.span(found))
+        return nodes.Call(self.ident(found[0]), tuple(found[2:-1:2]), span=self.span(found))
 
     def choice(self, found: Found) -> nodes.If:
         """`if(condition, a, b)`."""

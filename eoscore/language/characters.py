@@ -22,10 +22,10 @@ def read_source(text: str | bytes, name: str) -> Source:
         name, _decoded(text, name, faults) if isinstance(text, bytes) else text.removeprefix(_BOM)
     )
     if len(source.text) > CHARACTERS:
-        message = f"the text has {len(source.text)} characters, at most {CHARACTERS} are read"
+        message = f"a text of {len(source.text)} characters came, at most {CHARACTERS} are read"
         faults.add(Span(source, 0, 1), message, 'divide it into files, and join them by `use "path.tarn"`')
     elif (words := words_in(source.text)) > WORDS:
-        message = f"the text has {words} words and signs, at most {WORDS} are read"
+        message = f"a text of {words} words and signs came, at most {WORDS} are read"
         faults.add(Span(source, 0, 1), message, 'divide it into files, and join them by `use "path.tarn"`')
     elif strange := _CONTROL.search(source.text):
         message = f"the character U+{ord(strange[0]):04X} came, which no text has"

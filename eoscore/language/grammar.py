@@ -35,17 +35,17 @@ def _parser() -> tuple[Lark, Build]:
         lexer="contextual",
         keep_all_tokens=True,
         maybe_placeholders=True,
-        transformer=build,  # type: ignore[arg-type]  # lark asks only for methods named as the rules
+        transformer=build,  # lark asks only for methods named as the rules
     )
     return lark, build
 
 
 def build_nodes(
-    source: Source, on_error: Callable[[UnexpectedInput, Faults], bool]
+    source: Source, on_error: Callable[[UnexpectedInput, Source, Faults], bool]
 ) -> tuple[nodes.File | None, Faults]:
     """The nodes of a text and all faults; `on_error` puts a fault into words and says where to go on."""
     with _turn:
         lark, build = _parser()
         faults = build.begin(source)
-        tree = lark.parse(source.text, on_error=lambda error: on_error(error, faults))
+        tree = lark.parse(source.text, on_error=lambda error: on_error(error, source, faults))
         return tree, faults  # type: ignore[return-value]  # lark types the result of a transformer as a tree

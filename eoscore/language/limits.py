@@ -16,7 +16,7 @@ CHARACTERS: Final = 1_000_000
 WORDS: Final = 200_000
 DEPTH: Final = 200  # small enough for Python's own recursive comparing, hashing and printing of frozen nodes
 DIGITS: Final = 1_000  # characters of one number
-FAULTS: Final = 100
+FAULTS: Final = 100  # told of one text
 
 _WORD = re.compile(r"[\w.]+|[^\w\s]")
 _BRACKET = re.compile(r"#[^\n]*|[()]")

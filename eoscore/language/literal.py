@@ -8,7 +8,7 @@ from math import isfinite
 from typing import TYPE_CHECKING
 
 from eoscore.language import nodes
-from eoscore.language.limits import DIGITS
+from eoscore.language.limits import DIGITS, FAULTS
 from eoscore.language.units import known_unit, unit_faults, unit_of
 from eoscore.source import Span
 
@@ -60,7 +60,7 @@ def _sigma(digits: str, bracket: str, power: str) -> float:
 
 
 def _check_range(number: nodes.Number, faults: Faults) -> None:
-    known = number.unit is not None and not unit_faults(number.unit)
+    known = number.unit is not None and all(known_unit(symbol) for symbol, _ in number.unit.factors)
     factor = unit_of(number.unit)[0] if number.unit is not None and known else 1.0
     largest = max(number.value, number.sigma or 0.0)
     if not (isfinite(largest) and isfinite(largest * factor)):
@@ -117,6 +117,6 @@ def _read_unit(span: Span, faults: Faults) -> nodes.UnitText:
             exponent = 1
         factors.append((symbol, -exponent if found["joint"] == "/" else exponent))
     unit = nodes.UnitText(tuple(factors), span=span)
-    for fault in unit_faults(unit):
+    for fault in unit_faults(unit) if len(faults) < FAULTS else ():
         faults.append(fault)
     return unit

@@ -10,6 +10,7 @@ from typing import TYPE_CHECKING, Final
 from eoscore import constants
 from eoscore.language.dimension import ONE, Dimension
 from eoscore.language.faults import Fault, Faults
+from eoscore.language.reserved import RESERVED
 from eoscore.source import Span
 
 if TYPE_CHECKING:
@@ -76,6 +77,7 @@ _SPELT_OUT: Final = {
     "pascal": "Pa", "degree": "deg", "radian": "rad", "minute": "min", "bohr": "a0", "gram": "g", "kilogram": "kg",
     "electronvolt": "eV", "mole": "mol", "ang": "angstrom",
 }  # fmt: skip
+_LONGEST: Final = 12  # a longer word is no slip of a unit
 _CELSIUS: Final = frozenset({"°C", "degC", "celsius", "°F", "degF", "fahrenheit", "℃"})
 
 
@@ -148,16 +150,18 @@ def _unknown(symbol: str, span: Span) -> Fault:
     if symbol in _CELSIUS:
         message = f"`{symbol}` came after a number, but temperatures are absolute: there is no degree Celsius"
         return Fault(span, message, "write the temperature in K, mK, uK or nK")
-    near = near_units(symbol)
-    asked = " or ".join(f"`{name}`" for name in near)
-    units = (
-        f"did you mean {asked}?"
-        if near
-        else "units are SI symbols with prefixes, such as `um`, `nK`, `J.m2/W`;"
+    message = (
+        f"`{symbol}` came after a number on its line, where a unit was expected, and no unit is called so"
     )
-    other = f"if `{symbol}` is a name of yours, join it by a spaced ` * ` or ` / `; a new entry wants a line of its own"
+    if symbol in RESERVED:
+        return Fault(span, message, f"begin a new line before `{symbol}`")
+    asked = " or ".join(f"`{name}`" for name in near_units(symbol))
+    units = (
+        f"did you mean {asked}?" if asked else "units are SI symbols with prefixes, such as `um` or `J.m2/W`;"
+    )
+    mend = f"` / {symbol}`" if span.source.text[max(span.start - 1, 0)] == "/" else f"`*{symbol}`"
     return Fault(
-        span, f"`{symbol}` came where a unit was expected, and no unit is called so", f"{units} {other}"
+        span, message, f"{units} write {mend} if it is a name, or a new line before it if it opens one"
     )
 
 
@@ -174,5 +178,7 @@ def _alike(symbol: str) -> list[str]:
         *PREFIXED,
         *(p + s for s in PREFIXED for p in ("k", "M", "G", "c", "m", "u", "n", "p", "f")),
     ]
+    if len(symbol) > _LONGEST:
+        return []
     same = [u for u in usual if u.lower() == symbol.lower()]
     return (same + [u for u in get_close_matches(symbol, usual, 3, 0.6) if u not in same])[:3]
