@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
+from eoscore.measure.landscape_frame import aligned, expressed, turned_back
 from eoscore.measure.landscape_line import survey_line
 from eoscore.measure.landscape_record import Escape, Landscape, Minimum
 from eoscore.measure.landscape_separable import independent_parts, together
@@ -25,6 +26,9 @@ def survey(field: Field) -> Landscape:
         return together(field.coordinates, [survey(part) for part in parts])
     if len(field.coordinates) == 1:
         return survey_line(field)
+    frame = aligned(field)
+    if frame is not None:
+        return turned_back(survey(expressed(field, frame)), frame)
     from eoscore.measure.landscape_space import survey_space
 
     return survey_space(field)

@@ -153,6 +153,7 @@ def _see_scales(chart: Chart, axes: list[Axis], anchors: Array) -> None:
             points = np.repeat(anchors[:, None, :], steps.size, axis=1)
             points[:, :, i] += side * steps
             slope = chart.slopes(points)[..., i]
+            slope[steps < 1e-9 * np.abs(anchors[:, i : i + 1])] = np.nan  # lost in the rounding of x
             axis.see(DECADES[_bends(slope)])
             if chart.walls:
                 margins = chart.margins(np.concatenate([anchors[:, None, :], points], axis=1))

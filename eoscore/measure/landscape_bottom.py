@@ -77,15 +77,21 @@ def _growth(chart: Chart, point: Array, value: float, axes: Array, scale: float,
 
 
 def _level_along(chart: Chart, point: Array, value: float, axis: Array, scale: float) -> str:
-    """Whether V is level along a straight line ("straight"), a curve ("bends"), or rises."""
-    aside = point + 0.05 * scale * axis
-    typical = abs(float(chart.value((point + 0.05 * scale * np.ones(point.size))[None])[0]) - value)
-    slack = 1e-9 * typical + 1e-15 * abs(value)
-    if float(chart.value(aside[None])[0]) - value <= slack:
-        return "straight"
-    ends, values = descend(chart, aside[None], np.array([0.01 * scale]))
-    moved = float(np.linalg.norm(ends[0] - point)) > 0.02 * scale
-    return "bends" if moved and values[0] - value <= slack else "rises"
+    """Whether V is level along a straight line ("straight"), a curve ("bends"), or rises.
+
+    A point aside, far enough for V to differ, slides back to the bottom if V rises, to its own part of a curve
+    if that is level.
+    """
+    for reach in scale * np.array([0.05, 0.3, 2.0, 10.0, 60.0]):
+        aside = point + reach * axis
+        across = chart.value(point + reach * np.vstack([np.eye(point.size), -np.eye(point.size)]))
+        typical = float(np.max(across[np.isfinite(across)], initial=value)) - value
+        slack = 1e-9 * typical + 1e-15 * abs(value)
+        if float(chart.value(aside[None])[0]) - value > slack:
+            ends, values = descend(chart, aside[None], np.array([0.1 * reach]))
+            moved = float(np.linalg.norm(ends[0] - point)) > 0.3 * reach
+            return "bends" if moved and values[0] - value <= slack else "rises"
+    return "straight"
 
 
 def _in_space(

@@ -122,19 +122,11 @@ def _way(f: Formula, name: str, bottom: _Well, turns: Array, side: float) -> Esc
     limit = _limit(f, name, bottom.value, heights, side)
     if limit == math.inf:
         return None
-    sense = "+" if side > 0 else "-"
     pass_ = int(np.argmax(heights)) if beyond.size else 0
     top = limit + 1e-12 * abs(limit - bottom.value) if math.isfinite(limit) else limit
     if beyond.size and heights[pass_] > top:
-        place, energy = float(beyond[pass_]), float(heights[pass_])
-        falls = "V falls without end" if limit == -math.inf else "V is lower all the way out"
-        words = f"over the pass at {name} = {place:.6g}, towards {sense}{name}, where {falls}"
-        return Escape(energy, (place,), (side,), words)
-    if limit == -math.inf:
-        words = f"downhill along {sense}{name} from the bottom itself"
-    else:
-        words = f"at infinity along {sense}{name}, where V levels off"
-    return Escape(limit, None, (side,), words)
+        return Escape((name,), float(heights[pass_]), (float(beyond[pass_]),), (side,))
+    return Escape((name,), limit, None, (side,))
 
 
 def _limit(f: Formula, name: str, bottom: float, heights: Array, side: float) -> float:

@@ -7,10 +7,12 @@ from dataclasses import dataclass, field
 from typing import TYPE_CHECKING, Literal
 
 if TYPE_CHECKING:
+    from collections.abc import Sequence
+
     import numpy as np
     from numpy.typing import NDArray
 
-__all__ = ["Escape", "Kind", "Landscape", "Minimum", "multiplicity"]
+__all__ = ["Escape", "Kind", "Landscape", "Minimum", "multiplicity", "sense"]
 
 Kind = Literal["quadratic", "flat", "ring", "sphere", "cone", "wall", "other"]
 
@@ -43,14 +45,34 @@ class Minimum:
 class Escape:
     """The lowest energy (J) at which a path leads from the bottom to where V stays below it without end.
 
-    position: the pass, in the field's coordinates; None where it is infinity.
+    position: the pass, in the field's coordinates, m; None where V approaches the energy at infinity.
     direction: unit vector of the way out there, in the same coordinates.
     """
 
+    coordinates: tuple[str, ...]
     energy: float
     position: tuple[float, ...] | None
     direction: tuple[float, ...]
-    words: str
+
+    @property
+    def words(self) -> str:
+        """The place and the direction of the leak."""
+        if self.position is None:
+            return f"at infinity along {self.sense}, where V levels off"
+        place = ", ".join(f"{name} = {x:.6g} m" for name, x in zip(self.coordinates, self.position, strict=True))
+        return f"over the pass at {place}, towards {self.sense}"
+
+    @property
+    def sense(self) -> str:
+        """The direction in words: `-z`, or `+x and -z` where both count."""
+        return sense(self.coordinates, self.direction)
+
+
+def sense(coordinates: tuple[str, ...], direction: Sequence[float]) -> str:
+    """A direction in words, its largest parts first."""
+    parts = sorted(zip(direction, coordinates, strict=True), key=lambda part: -abs(part[0]))
+    large = [(x, name) for x, name in parts if abs(x) > 0.2 * abs(parts[0][0])]
+    return " and ".join(f"{'+' if x > 0 else '-'}{name}" for x, name in large) or "every direction"
 
 
 @dataclass(frozen=True)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from functools import reduce
 from typing import TYPE_CHECKING
 
@@ -59,12 +60,15 @@ def together(coordinates: tuple[str, ...], parts: Sequence[Landscape]) -> Landsc
     if not leaky:
         return Landscape(coordinates, bottom, _minima(parts, order, np.inf), why="".join(failed[:1]))
     way = min(leaky, key=lambda part: part.depth)
-    escape = _escape(way, parts, order, bottom.value)
+    escape = _escape(coordinates, way, parts, order)
+    escape = replace(escape, energy=bottom.value + way.depth)
     minima = _minima(parts, order, escape.energy)
     return Landscape(coordinates, bottom, minima, escape, "".join(failed[:1]), max(p.error for p in parts))
 
 
-def _escape(way: Landscape, parts: Sequence[Landscape], order: list[int], bottom: float) -> Escape:
+def _escape(
+    coordinates: tuple[str, ...], way: Landscape, parts: Sequence[Landscape], order: list[int]
+) -> Escape:
     found = way.escape
     if found is None or way.bottom is None:
         message = "the way out has no escape"
@@ -78,7 +82,7 @@ def _escape(way: Landscape, parts: Sequence[Landscape], order: list[int], bottom
             position += list(part.bottom.position)
             direction += [0.0] * len(part.coordinates)
     place = None if found.position is None else tuple(position[i] for i in order)
-    return Escape(bottom + way.depth, place, tuple(direction[i] for i in order), found.words)
+    return Escape(coordinates, way.depth, place, tuple(direction[i] for i in order))
 
 
 def _minima(parts: Sequence[Landscape], order: list[int], ceiling: float) -> tuple[Minimum, ...]:

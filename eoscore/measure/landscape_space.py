@@ -12,7 +12,7 @@ from eoscore.measure.landscape_chart import Chart
 from eoscore.measure.landscape_descent import descend, distinct
 from eoscore.measure.landscape_grid import Grid, Leak, grid_of
 from eoscore.measure.landscape_pass import pass_near
-from eoscore.measure.landscape_record import Escape, Landscape, Minimum
+from eoscore.measure.landscape_record import Escape, Landscape, Minimum, sense
 
 if TYPE_CHECKING:
     from eoscore.formula.field import Field
@@ -87,28 +87,15 @@ def _escape(chart: Chart, grid: Grid, leak: Leak, bottom: Array, low: float) -> 
     """The leak of the grid made exact: the pass near it, or the limit at infinity."""
     out = leak.outward / np.linalg.norm(leak.outward)
     if leak.at_infinity:
-        return Escape(leak.energy, None, tuple(out.tolist()), f"at infinity along {_sense(chart, out)}"), 1e-12
+        return Escape(chart.names, leak.energy, None, tuple(out.tolist())), 1e-12
     spacing = float(grid.spacing(np.array([grid.nearest(leak.point)]))[0])
     found = pass_near(chart, leak.point, spacing)
     close = [p for p in found if abs(p.value - leak.energy) <= 0.5 * (leak.energy - low)]
     if not close:
-        words = f"near {_place(chart, leak.point)}, on the way along {_sense(chart, out)}"
-        return Escape(leak.energy, tuple(leak.point.tolist()), tuple(out.tolist()), words), 0.1
+        return Escape(chart.names, leak.energy, tuple(leak.point.tolist()), tuple(out.tolist())), 0.1
     best = min(close, key=lambda p: abs(p.value - leak.energy))
     way = best.way if best.way @ (best.point - bottom) >= 0 else -best.way
-    words = f"over the pass at {_place(chart, best.point)}, towards {_sense(chart, way)}"
-    return Escape(best.value, tuple(best.point.tolist()), tuple(way.tolist()), words), 1e-12
-
-
-def _place(chart: Chart, point: Array) -> str:
-    return ", ".join(f"{name} = {x:.6g} m" for name, x in zip(chart.names, point, strict=True))
-
-
-def _sense(chart: Chart, way: Array) -> str:
-    """A direction in words: `-z`, or the two largest parts."""
-    order = np.argsort(-np.abs(way))
-    parts = [k for k in order if abs(way[k]) > 0.2 * abs(way[order[0]])]
-    return " and ".join(f"{'+' if way[k] > 0 else '-'}{chart.names[k]}" for k in parts)
+    return Escape(chart.names, best.value, tuple(best.point.tolist()), tuple(way.tolist())), 1e-12
 
 
 def _joined(
@@ -131,4 +118,4 @@ def _nothing(chart: Chart, grid: Grid) -> str:
     if not np.any(np.isfinite(grid.v)):
         return "no point lies inside all walls"
     low = grid.points(np.argwhere(grid.v == np.min(grid.v))[:1])[0]
-    return f"V has no local minimum (it falls along {_sense(chart, low)}): this potential holds nothing"
+    return f"V has no local minimum (it falls along {sense(chart.names, low.tolist())}): this potential holds nothing"
