@@ -4,5 +4,25 @@ from eoscore.gas.bose_function import bose
 from eoscore.gas.dispersion import Branch, Dispersion, Parameter
 from eoscore.gas.fermi_function import fermi
 from eoscore.gas.gas import Gas, gas_of
+from eoscore.gas.truncated import (
+    bose_log_truncated,
+    bose_truncated,
+    classical_truncated,
+    fermi_log_truncated,
+    fermi_truncated,
+)
 
-__all__ = ["Branch", "Dispersion", "Gas", "Parameter", "bose", "fermi", "gas_of"]
+__all__ = [
+    "Branch",
+    "Dispersion",
+    "Gas",
+    "Parameter",
+    "bose",
+    "bose_log_truncated",
+    "bose_truncated",
+    "classical_truncated",
+    "fermi",
+    "fermi_log_truncated",
+    "fermi_truncated",
+    "gas_of",
+]
