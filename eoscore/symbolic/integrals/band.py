@@ -17,9 +17,8 @@ def band(task: Task, solve: Solve) -> Boltzmann | None:  # noqa: ARG001 - every 
     x = axis.symbol
     wave = sp.Wild("k", exclude=[x], properties=[lambda k: k != 0])
     size = sp.Wild("J", exclude=[x], properties=[lambda j: j != 0])
-    # Products of sines and cosines of one angle become one cosine of twice the angle.
-    match = sp.fu(task.function).match(size * sp.cos(wave * x)) if task.function.has(sp.sin) else None
-    match = match or task.function.match(size * sp.cos(wave * x))
+    constant, varying = sp.expand(_linear(task.function)).as_independent(x, as_Add=True)
+    match = varying.match(size * sp.cos(wave * x))
     if match is None or not axis.high.is_finite:
         return None
     periods = sp.simplify((axis.high - axis.low) * match[wave] / (2 * sp.pi))
@@ -28,5 +27,14 @@ def band(task: Task, solve: Solve) -> Boltzmann | None:  # noqa: ARG001 - every 
         return None
     integral = (axis.high - axis.low) * sp.besseli(0, BETA * amplitude) * sp.exp(-BETA * amplitude)
     return Boltzmann(
-        -amplitude, integral, (f"{x}: a cosine over its zone, modified Bessel I_0(beta*{amplitude})",)
+        constant - amplitude,
+        integral,
+        (f"{x}: a cosine over its zone, modified Bessel I_0(beta*{amplitude})",),
     )
+
+
+def _linear(function: sp.Expr) -> sp.Expr:
+    """Squares of sines and cosines as cosines of twice the angle."""
+    angle = sp.Wild("angle")
+    halved = function.replace(sp.sin(angle) ** 2, (1 - sp.cos(2 * angle)) / 2)
+    return halved.replace(sp.cos(angle) ** 2, (1 + sp.cos(2 * angle)) / 2)

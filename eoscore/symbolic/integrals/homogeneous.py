@@ -28,7 +28,7 @@ def homogeneous(task: Task, solve: Solve) -> Boltzmann | None:  # noqa: ARG001 -
         return None
     symbols = [axis.symbol for axis in task.axes]
     function = task.function.subs(list(task.values))
-    powers = _scaling(function, symbols)
+    powers = _scaling(function, symbols) if function.free_symbols == set(symbols) else None
     if powers is None:
         return None
     k = sp.Add(*powers)

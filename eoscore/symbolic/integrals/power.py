@@ -2,10 +2,14 @@
 
 from __future__ import annotations
 
+from typing import TYPE_CHECKING
+
 import sympy as sp
 
-from eoscore.symbolic.axes import Axis
 from eoscore.symbolic.integrals.rule import BETA, Boltzmann, Solve, Task
+
+if TYPE_CHECKING:
+    from eoscore.symbolic.axes import Axis
 
 __all__ = ["half", "power"]
 
