@@ -28,9 +28,20 @@ def layers(task: Task, solve: Solve) -> Boltzmann | None:
     rise = sp.expand(sp.simplify(floor - least))
     if not rise.is_polynomial(stand_in) or not all(c.is_positive for c in sp.Poly(rise, stand_in).coeffs()):
         return None
-    terms = sp.Add.make_args(sp.expand(sp.simplify(layer)))
-    integral = sp.Add(*(2 * sp.integrate(t * sp.exp(-BETA * rise), (stand_in, 0, sp.oo)) for t in terms))
-    if integral.has(sp.Integral):
+    moments = [_moment(term, rise, stand_in) for term in sp.Add.make_args(sp.expand(layer))]
+    if None in moments:
         return None
     step = f"then {other.symbol}, along the floor {floor.subs(stand_in, other.symbol)}"
-    return replace(inner, minimum=least, integral=sp.simplify(integral), steps=(*inner.steps, step))
+    return replace(inner, minimum=least, integral=sp.Add(*moments), steps=(*inner.steps, step))
+
+
+def _moment(term: sp.Expr, rise: sp.Expr, z: sp.Symbol) -> sp.Expr | None:
+    """Twice int_0^oo term e^{-beta rise} dz: Euler's integral for powers of z, SymPy's integrator otherwise."""
+    size, power = term.as_independent(z, as_Add=False)
+    slope, shape = rise.as_independent(z, as_Add=False)
+    n = sp.simplify(z * sp.diff(power, z) / power)
+    s = sp.simplify(z * sp.diff(shape, z) / shape)
+    if not (n.is_number and s.is_number):
+        found = 2 * sp.integrate(term * sp.exp(-BETA * rise), (z, 0, sp.oo))
+        return None if found.has(sp.Integral) else found
+    return 2 * size * sp.gamma((n + 1) / s) / (s * (BETA * slope) ** ((n + 1) / s))
