@@ -49,7 +49,7 @@ class TrapPlace(Place):
         """Omega(v) in m^d of the region that joins the bottom below the top."""
         from eoscore.measure import measure_of
 
-        return measure_of(self.field, self.landscape, self.top)
+        return measure_of(self.field, self.landscape).cut(self.top)
 
     @property
     def r_min(self) -> tuple[float, ...]:
