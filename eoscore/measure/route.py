@@ -1,0 +1,56 @@
+"""The way from a field to its measure: routes in order of cost, the first that fits is taken."""
+
+from __future__ import annotations
+
+from functools import reduce
+from typing import TYPE_CHECKING
+
+from eoscore.errors import NoAnswerError
+from eoscore.measure.composed import composed
+from eoscore.measure.convolve import convolve
+from eoscore.measure.flat import flat
+from eoscore.measure.homogeneous import homogeneous
+from eoscore.measure.landscape import survey
+from eoscore.measure.landscape_separable import independent_parts
+from eoscore.measure.line import line
+from eoscore.measure.quadratic import quadratic
+
+if TYPE_CHECKING:
+    from eoscore.formula.field import Field
+    from eoscore.measure.base import Measure
+    from eoscore.measure.landscape_record import Landscape
+
+__all__ = ["measure_of"]
+
+
+def measure_of(field: Field, landscape: Landscape | None = None) -> Measure:
+    """The measure of a field: the d-volume of its held region below each energy, J from the bottom.
+
+    `landscape` is surveyed where it is needed and not given. Independent coordinates are taken apart and
+    convolved. Raises NoAnswerError where nothing is held, or where the volume is infinite.
+    """
+    parts = independent_parts(field)
+    if len(parts) > 1 and (whole := quadratic(field)) is None:
+        return reduce(convolve, sorted(map(measure_of, parts), key=_cost))
+    if len(parts) > 1 and whole is not None:
+        return whole
+    return _of_one(field, landscape)
+
+
+def _cost(measure: Measure) -> int:
+    """Powers first: what combines exactly is combined before anything is sampled."""
+    return 0 if measure.powers() else 1
+
+
+def _of_one(field: Field, landscape: Landscape | None) -> Measure:
+    """The measure of a field whose coordinates do not separate."""
+    closed = quadratic(field) or homogeneous(field) or composed(field, measure_of)
+    if closed is not None:
+        return closed
+    landscape = landscape or survey(field)
+    if not landscape.holds:
+        raise NoAnswerError(landscape.why)
+    found = flat(field, landscape) or line(field, landscape)
+    if found is None:
+        raise NoAnswerError("this potential has no one-dimensional reduction that eoscore knows")
+    return found
