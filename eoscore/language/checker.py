@@ -6,8 +6,9 @@ from typing import TYPE_CHECKING, NamedTuple, TypeVar
 
 from eoscore.language import nodes
 from eoscore.language.builtin import BUILTINS
-from eoscore.language.faults import Fault, listed
-from eoscore.language.kind import UNKNOWN, Kind, Wild, told
+from eoscore.language.faults import Fault
+from eoscore.language.kind import UNKNOWN, Kind
+from eoscore.language.missing import faulty_call, unknown_function, unknown_name
 from eoscore.language.rules import binary, builtin_call, choice, comparison, counted, negative, number, short
 from eoscore.language.walk import Step, every, run
 
@@ -21,7 +22,9 @@ if TYPE_CHECKING:
 __all__ = ["Checker"]
 
 Result = TypeVar("Result")
-_MOST_STEPS = 1_000_000
+_MOST_STEPS = 300_000  # for one name or expression; functions are worked through once per kind of call
+_STEPS_OF_ALL = 1_000_000  # for a whole text: some seconds
+_LISTS = 100
 
 
 class _ExpansionError(Exception):
@@ -64,7 +67,7 @@ class Checker:
         self._names: dict[Named, Kind] = {}
         self._calls: dict[tuple[Named, tuple[Kind, ...]], _Applied] = {}
         self._open: dict[Named, None] = {}
-        self._steps = 0
+        self._steps = self._all_steps = 0
 
     # Asked from outside ------------------------------------------------------------------------------------
 
@@ -103,8 +106,19 @@ class Checker:
             hint = f"take it out, or write {definition.name.name} with if(condition, a, b)"
             self.faults.add(span, "`where` bounds V in a trap and E in a gas only", hint)
 
+    @property
+    def _brief(self) -> bool:
+        """Whether so much is at fault already that lists of near names would only cost time."""
+        return len(self.faults) > _LISTS
+
     def _guarded(self, span: Span, step: Step[Result], otherwise: Result) -> Result:
+        self._all_steps += self._steps
         self._steps = 0
+        if self._all_steps > _STEPS_OF_ALL:
+            self.faults.add(
+                span, "checking this text takes more steps than can be worked through", "split it"
+            )
+            self.faults.raise_if_any()
         try:
             return run(step)
         except _ExpansionError:
@@ -169,7 +183,7 @@ class Checker:
         """A name that nobody knows; a missing mass is told once, however often a block uses it."""
         block = next((scope.title for scope in frame.scope.chain() if scope.is_block), None)
         if node.name != "m" or block not in self.massless:
-            frame.sink(_unknown_name(node, frame, block))
+            frame.sink(unknown_name(node, frame.scope, frame.arguments, block, brief=self._brief))
         if node.name == "m" and block is not None:
             self.massless.add(block)
 
@@ -199,11 +213,12 @@ class Checker:
             self.used.add(id(named.definition))
             applied: _Applied = yield self._applied(named, tuple(given), called=True)
             if applied.faults:
-                frame.sink(_faulty_call(node, given, wanted, applied.faults[0]))
+                frame.sink(faulty_call(node, given, wanted, applied.faults[0]))
             return applied.kind
         if name in BUILTINS:
             return builtin_call(node, given, frame.sink)
-        frame.sink(_unknown_function(node, frame, is_number=named is not None or name in frame.arguments))
+        is_number = named is not None or name in frame.arguments
+        frame.sink(unknown_function(node, frame.scope, is_number=is_number, brief=self._brief))
         return UNKNOWN
 
     def _applied(self, named: Named, arguments: tuple[Kind, ...], *, called: bool) -> Step[_Applied]:
@@ -252,42 +267,3 @@ class Checker:
 def _parameters(named: Named) -> tuple[str, ...]:
     definition = named.definition
     return tuple(parameter.name for parameter in (definition.parameters if definition else None) or ())
-
-
-def _unknown_name(node: nodes.Name, frame: _Frame, block: str | None) -> Fault:
-    if node.name == "m":
-        message = (
-            f"the mass `m` is not known in {block}" if block else "`m` is known inside a gas or a trap only"
-        )
-        hint = "give the gas `isotope Sr-84`, or `m = 84 u`" if block else "pass the mass as an argument"
-        return Fault(node.span, message, hint)
-    scopes = list(frame.scope.chain())
-    values = [name for scope in scopes for name, named in scope.names.items() if not named.is_function]
-    return Fault(
-        node.span, f"the name `{node.name}` is not known here", listed(node.name, [*frame.arguments, *values])
-    )
-
-
-def _unknown_function(node: nodes.Call, frame: _Frame, *, is_number: bool) -> Fault:
-    name = node.function.name
-    if is_number:
-        message = f"`{name}` is a number, not a function"
-        return Fault(node.function.span, message, f"a product is written with `*`: {name}*(...)")
-    known = [
-        other for scope in frame.scope.chain() for other, named in scope.names.items() if named.is_function
-    ]
-    hint = listed(name, [*known, *BUILTINS], what="known functions")
-    return Fault(node.function.span, f"the function `{name}` is not known here", hint)
-
-
-def _faulty_call(node: nodes.Call, given: Sequence[Kind], wanted: Sequence[str], fault: Fault) -> Fault:
-    """The fault of a call whose arguments do not fit the body, with the place in the body that says so."""
-    origin = fault.origin or fault.span
-    told_arguments = ", ".join(
-        f"{name} {'is faulty' if kind.dimension is Wild.FAULTY else 'is ' + told(kind.dimension)}"
-        for name, kind in zip(wanted, given, strict=True)
-    )
-    reason = fault.reason or fault.message
-    message = f"`{node.function.name}` does not fit here, where {told_arguments}: {reason}"
-    hint = f"see its body in {origin.source.name}, line {origin.line}: `{short(origin)}`"
-    return Fault(node.span, message, hint, origin, reason, fault.is_value)

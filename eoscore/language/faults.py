@@ -16,7 +16,8 @@ if TYPE_CHECKING:
 __all__ = ["Fault", "Faults", "listed", "nearest"]
 
 _LISTED = 8
-_COMPARED = 400  # names compared letter by letter; beyond that only those with the same first letter
+_NEAR = 0.6
+_COMPARED = 200  # names compared letter by letter; beyond that only those with the same first letter
 
 
 @dataclass(frozen=True)
@@ -73,14 +74,19 @@ def nearest(name: str, known: Iterable[str]) -> list[str]:
     """The known names, those most like `name` first."""
     candidates = sorted(set(known))
     if len(candidates) > _COMPARED:
-        candidates = [other for other in candidates if other[:1].lower() == name[:1].lower()][:_COMPARED]
+        alike = [other for other in candidates if other[:1].lower() == name[:1].lower()]
+        candidates = (alike or candidates)[:_COMPARED]
     likeness = {other: _likeness(name, other) for other in candidates}
     return sorted(candidates, key=lambda other: -likeness[other])
 
 
 def _likeness(name: str, other: str) -> float:
-    same_but_case = name.lower() == other.lower()
-    return 2.0 if same_but_case else SequenceMatcher(None, name[:40], other[:40]).ratio()
+    """From 0 to 1, and 2 for a name that differs in case only; of unlike names only an estimate, which is quick."""
+    if name.lower() == other.lower():
+        return 2.0
+    matcher = SequenceMatcher(None, name[:40], other[:40], autojunk=False)
+    bound = matcher.real_quick_ratio()
+    return matcher.ratio() if bound >= _NEAR and matcher.quick_ratio() >= _NEAR else 0.5 * bound
 
 
 def listed(name: str, known: Iterable[str], *, what: str = "known here") -> str:
@@ -90,4 +96,4 @@ def listed(name: str, known: Iterable[str], *, what: str = "known here") -> str:
         return f"nothing is {what}"
     shown = ", ".join(ranked[:_LISTED]) + (", ..." if len(ranked) > _LISTED else "")
     words = f"{what}: {shown}"
-    return f"did you mean `{ranked[0]}`? {words}" if _likeness(name, ranked[0]) >= 0.6 else words
+    return f"did you mean `{ranked[0]}`? {words}" if _likeness(name, ranked[0]) >= _NEAR else words

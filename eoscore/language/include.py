@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, field
+from functools import cache
 from importlib import resources
 from pathlib import Path
 from typing import TYPE_CHECKING
@@ -117,18 +118,22 @@ class Includer:
         if use.target in self.included.shelf:
             return
         shelf = shelf_files()
-        if use.target not in shelf:
+        if use.target in shelf:
+            self.included.shelf[use.target] = _shelf_file(use.target)
+        else:
             hint = listed(use.target, shelf, what="on the shelf")
             self._faults.add(use.span, f"there is no shelf file `{use.target}`", hint)
-            return
-        text = shelf[use.target].read_bytes()
-        self.included.shelf[use.target] = parse(text, f"shelf/{use.target}.tarn")
 
 
 def shelf_files() -> dict[str, Traversable]:
     """The files of the shelf by their names."""
     paths = resources.files("eoscore.language.shelf").iterdir()
     return {path.name.removesuffix(".tarn"): path for path in paths if path.name.endswith(".tarn")}
+
+
+@cache
+def _shelf_file(name: str) -> nodes.File:
+    return parse(shelf_files()[name].read_bytes(), f"shelf/{name}.tarn")
 
 
 def _declarations(file: nodes.File) -> Iterator[nodes.Entry]:

@@ -27,7 +27,7 @@ if TYPE_CHECKING:
 
 __all__ = ["Lowering", "conjuncts"]
 
-_MOST_STEPS = 1_000_000
+_MOST_STEPS = 300_000
 
 
 class _Frame(NamedTuple):
