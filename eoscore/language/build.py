@@ -90,10 +90,7 @@ class Build(BuildDeclaration):
 
     def range(self, found: Found) -> nodes.Range | nodes.Listing:
         """`even(a, b, points)`, `geometric(a, b, points)`."""
-        word, values = (
-            str(found[0]),
-            [] if found[2] is None else [self.bounded(value) for value in found[2:-1:2]],
-        )
+        word, values = str(found[0]), [self.bounded(value) for value in found[2:-1:2]]
         if word not in _RANGES:
             self.faults.add(
                 self.span(found[:1]), f"`{word}` came where a span of values was expected", _SPANS

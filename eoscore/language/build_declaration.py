@@ -49,13 +49,9 @@ class BuildDeclaration(BuildExpression):
 
     def parameters(self, found: Found) -> Part:
         """`(x, y)`; empty brackets are a fault."""
-        if found[1] is None:
-            self.faults.add(
-                self.span(found),
-                "`()` came; a function has arguments",
-                "name them, or leave the brackets out",
-            )
-            return Part("parameters", (), self.span(found))
+        if len(found) == 2:
+            message = "`()` came after a name that is defined; a function has arguments"
+            self.faults.add(self.span(found), message, "name them, or leave `()` out")
         return Part("parameters", tuple(map(self.ident, found[1:-1:2])), self.span(found))
 
     def where(self, found: Found) -> Part:

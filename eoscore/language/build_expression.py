@@ -71,9 +71,9 @@ class BuildExpression:
 
     def bounded(self, node: Any) -> Any:
         """The node itself; one that nests too deep is a fault."""
-        if place := too_deep(node):
+        if too_deep(node):
             message = f"this expression has more than {DEPTH} levels of brackets, signs and operators"
-            self.faults.add(place, message, "give parts of it names of their own, on lines before")
+            self.faults.add(node.span, message, "give parts of it names of their own, on lines before")
         return node
 
     def number(self, found: Found) -> nodes.Number:

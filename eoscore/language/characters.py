@@ -29,24 +29,21 @@ def read_source(text: str | bytes, name: str) -> Source:
         faults.add(Span(source, 0, 1), message, 'divide it into files, and join them by `use "path.tarn"`')
     elif strange := _CONTROL.search(source.text):
         message = f"the character U+{ord(strange[0]):04X} came, which no text has"
-        faults.add(
-            Span(source, strange.start(), strange.end()),
-            message,
-            "take it out; a Tarn file is plain text in UTF-8",
-        )
+        place = Span(source, strange.start(), strange.end())
+        faults.add(place, message, "take it out; a Tarn file is plain text in UTF-8")
     faults.raise_if_any()
     return source
 
 
 def _decoded(text: bytes, name: str, faults: Faults) -> str:
-    text = text[: 4 * CHARACTERS + 4]
+    if len(text) > 4 * CHARACTERS:  # too long in any case
+        return text[: 5 * CHARACTERS].decode("latin-1")
     try:
         return text.decode("utf-8-sig")
     except UnicodeDecodeError as error:
         readable = text[: error.start].decode("utf-8", "replace").removeprefix(_BOM)
         source = Source(name, readable + text[error.start :].decode("utf-8", "replace"))
         message = f"the byte 0x{text[error.start]:02X} came, which is not UTF-8"
-        faults.add(
-            Span(source, len(readable), len(readable) + 1), message, "save the file with the encoding UTF-8"
-        )
+        place = Span(source, len(readable), len(readable) + 1)
+        faults.add(place, message, "save the file with the encoding UTF-8")
         return ""

@@ -42,7 +42,7 @@ class Failure:
         parser = error.interactive_parser
         accepts: set[str] = parser.accepts()  # type: ignore[no-untyped-call]  # lark leaves it unannotated
         if not isinstance(error, UnexpectedToken):
-            start = int(error.pos_in_stream or 0)
+            start = error.pos_in_stream or 0  # type: ignore[redundant-expr]  # lark says it is None or an int at once
             end, kind = start + 1, ""
         elif error.token.type == "$END":
             start = end = len(text)

@@ -10,10 +10,8 @@ from eoscore.language import nodes
 if TYPE_CHECKING:
     from collections.abc import Sequence
 
-    from eoscore.source import Span
-
 CHARACTERS: Final = 1_000_000
-WORDS: Final = 200_000
+WORDS: Final = 100_000
 DEPTH: Final = 200  # small enough for Python's own recursive comparing, hashing and printing of frozen nodes
 DIGITS: Final = 1_000  # characters of one number
 FAULTS: Final = 100  # told of one text
@@ -44,19 +42,19 @@ def parts(node: nodes.Expr | nodes.Condition) -> Sequence[nodes.Expr | nodes.Con
             return ()
 
 
-def too_deep(node: nodes.Expr | nodes.Condition) -> Span | None:
-    """The place where an expression has more than DEPTH levels, None where it has not.
+def too_deep(node: nodes.Expr | nodes.Condition) -> bool:
+    """Whether an expression has more than DEPTH levels.
 
     Each bracket, sign, operator and function is a level; a sum of n terms has n, since it is read from the left.
     """
     if node.span.end - node.span.start <= DEPTH:  # a level takes at least a character
-        return None
+        return False
     if _brackets(node.span.text) > DEPTH:
-        return node.span
+        return True
     level: list[nodes.Expr | nodes.Condition] = [node]
     for _ in range(DEPTH):
         level = [part for above in level for part in parts(above)]
-    return level[0].span if level else None
+    return bool(level)
 
 
 def _brackets(text: str) -> int:

@@ -8,12 +8,12 @@ from typing import TYPE_CHECKING, Final
 
 from lark import Token
 
-from eoscore.language import nodes
 from eoscore.language.brackets import OPENING_KINDS
 from eoscore.language.builtin import BUILTINS
-from eoscore.language.faults import Fault
+from eoscore.language.faults import Fault, Faults
+from eoscore.language.literal import read_number
 from eoscore.language.reserved import LINE_WORDS, OPENERS, RESERVED
-from eoscore.language.units import known_unit, unit_faults
+from eoscore.language.units import known_unit, unit_faults, unknown_unit
 from eoscore.source import Span
 
 if TYPE_CHECKING:
@@ -79,12 +79,12 @@ def unit_below(failure: Failure) -> Fault | None:
 
 
 def read_as_unit(failure: Failure) -> Fault | None:
-    """A name that was meant to open an entry, and was read as the unit of the number before it."""
-    number = failure.top()
-    if failure.word not in ("=", "(") or not isinstance(number, nodes.Number) or number.unit is None:
+    """A name that was meant to open an entry, or an argument bracket, and was read as the unit of a number."""
+    token = failure.top()
+    if failure.word not in ("=", "(") or not failure.is_read(1, "NUMBER"):
         return None
-    unit = number.unit
-    if unit.span.end != failure.behind:
+    unit = read_number(failure.token_span(token), Faults()).unit
+    if unit is None:
         return None
     message = f"`{unit.span.text}` came after a number on its line, where it is read as a unit, and then {failure.came}"
     hint = "begin a new line before it" if failure.word == "=" else "write `*` before it for a product"
@@ -103,6 +103,9 @@ def side_by_side(failure: Failure) -> Fault | None:
     left = re.search(r"(\w+|[)\]])[ \t]*$", failure.text[max(line_start, start - 80) : start])
     if left is None:
         return None
+    if left[1] in RESERVED:  # it was taken for the unit of a number already
+        word = max(line_start, start - 80) + left.start(1)
+        return unknown_unit(left[1], Span(failure.source, word, word + len(left[1])))
     right = failure.text[start:end]
     hint = (
         f"write `{left[1]}({right})`" if left[1] in BUILTINS else f"write `*` before `{right}` for a product"

@@ -127,17 +127,11 @@ def unit_faults(unit: UnitText) -> list[Fault]:
     try:
         _product(unit.factors)
     except LookupError:
-        return [
-            _unknown(symbol, _where(symbol, unit)) for symbol, _ in unit.factors if known_unit(symbol) is None
-        ]
+        unknown = [symbol for symbol, _ in unit.factors if known_unit(symbol) is None]
+        return [unknown_unit(symbol, _where(symbol, unit)) for symbol in unknown]
     except (OverflowError, ZeroDivisionError):
-        return [
-            Fault(
-                unit.span,
-                f"the unit `{unit.span.text}` is beyond the range of numbers",
-                "lower its exponents",
-            )
-        ]
+        message = f"`{unit.span.text}` came, a unit beyond the range of numbers"
+        return [Fault(unit.span, message, "lower its exponents")]
     return []
 
 
@@ -146,7 +140,8 @@ def _where(symbol: str, unit: UnitText) -> Span:
     return Span(unit.span.source, start, min(start + len(symbol), unit.span.end))
 
 
-def _unknown(symbol: str, span: Span) -> Fault:
+def unknown_unit(symbol: str, span: Span) -> Fault:
+    """The fault of a word after a number that is no unit."""
     if symbol in _CELSIUS:
         message = f"`{symbol}` came after a number, but temperatures are absolute: there is no degree Celsius"
         return Fault(span, message, "write the temperature in K, mK, uK or nK")
