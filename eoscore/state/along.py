@@ -6,7 +6,8 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from eoscore.state.degeneracy import alpha_of_number, saturated
+from eoscore.state.degeneracy import alpha_of_number
+from eoscore.state.ensemble import EPS
 from eoscore.state.root import rising_root
 
 if TYPE_CHECKING:
@@ -19,6 +20,7 @@ if TYPE_CHECKING:
 __all__ = ["alpha_along"]
 
 BOUND = 700.0
+AT_LIMIT = 64 * EPS  # a number within rounding of saturation counts as saturated: at T_c the condensed side is told
 
 
 def alpha_along(model: Model, name: str, value: FloatArray, kT: FloatArray) -> FloatArray:
@@ -42,7 +44,7 @@ def _below_saturation(ensemble: Ensemble, number: FloatArray, kT: FloatArray) ->
     alpha = np.full_like(kT, np.nan)
     sensible = (number > 0) & (number < ensemble.capacity)
     if ensemble.statistics == "bose" and ensemble.condenses:
-        full = number >= saturated(ensemble, kT)
+        full = number >= ensemble.saturated(kT) * (1 - AT_LIMIT)
         alpha[full & sensible] = 0.0
         sensible &= ~full
     if sensible.any():

@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 from scipy.special import gammainc
 
-from eoscore.state.closed import scale_of, weights_of
+from eoscore.state.closed import named, scale_of, weights_of
 from eoscore.state.ensemble import EPS
 from eoscore.state.nodes import OverNodes
 from eoscore.state.sums import Sums
@@ -33,13 +33,14 @@ class Classical(OverNodes):
         self.weights = weights_of(measure) if measure.powers() is not None else None
         if self.weights is not None:
             kind = "closed form" if measure.top == inf else "closed form up to the escape energy"
-            self.route = f"{kind} ({measure.route})"
+            self.route = named(kind, measure)
 
     def _moments(self, kT: FloatArray) -> tuple[FloatArray, FloatArray, FloatArray]:
         if self.weights is None:
             z0, z1, z2 = self._over(_moments, np.zeros_like(kT), kT)
             return z0, z1, z2
-        z0, z1, z2 = np.zeros((3, kT.size))
+        z0: FloatArray = np.zeros(kT.size)
+        z1, z2 = z0.copy(), z0.copy()
         for e, k in self.weights:
             m = scale_of(e, k, kT)
             z0 += m * _regular(k, self.top / kT)

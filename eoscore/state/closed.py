@@ -23,7 +23,7 @@ if TYPE_CHECKING:
     from eoscore.measure.base import Measure
     from eoscore.state.reading import FloatArray
 
-__all__ = ["ClosedBose", "ClosedFermi", "scale_of", "weights_of"]
+__all__ = ["ClosedBose", "ClosedFermi", "named", "scale_of", "weights_of"]
 
 
 def weights_of(measure: Measure) -> tuple[tuple[float, float], ...]:
@@ -42,6 +42,11 @@ def scale_of(e: float, k: float, kT: FloatArray) -> FloatArray:
     return gamma(k + 1) * (kT / e) ** k if k else np.full_like(kT, e)
 
 
+def named(way: str, measure: Measure) -> str:
+    """A route: the way of the sums, and the route of the measure where that is another."""
+    return way if measure.route == "closed form" else f"{way} ({measure.route})"
+
+
 class _Closed(Ensemble):
     """What Bose and Fermi share: the sums above, with their own function."""
 
@@ -49,7 +54,7 @@ class _Closed(Ensemble):
         self.measure = measure
         self.weights = weights_of(measure)
         self.exponent = measure.exponent
-        self.route = f"closed form ({measure.route})"
+        self.route = named("closed form", measure)
 
     @property
     def error(self) -> float:
@@ -59,21 +64,18 @@ class _Closed(Ensemble):
     def _function(self, order: float, alpha: FloatArray) -> FloatArray:
         raise NotImplementedError
 
-    def _parts(self, alpha: FloatArray, kT: FloatArray) -> Iterator[tuple[float, FloatArray]]:
+    def _parts(self, kT: FloatArray) -> Iterator[tuple[float, FloatArray]]:
         for e, k in self.weights:
             yield k, scale_of(e, k, kT)
 
     def number(self, alpha: FloatArray, kT: FloatArray) -> tuple[FloatArray, FloatArray]:
         """See `Ensemble.number`."""
-        pairs = [
-            (m * self._function(k, alpha), m * self._function(k - 1, alpha))
-            for k, m in self._parts(alpha, kT)
-        ]
+        pairs = [(m * self._function(k, alpha), m * self._function(k - 1, alpha)) for k, m in self._parts(kT)]
         return sum((n for n, _ in pairs), np.zeros_like(kT)), sum((b for _, b in pairs), np.zeros_like(kT))
 
     def all_sums(self, alpha: FloatArray, kT: FloatArray) -> Sums:
         """See `Ensemble.all_sums`."""
-        return _added([self._term(k, m, alpha, kT) for k, m in self._parts(alpha, kT)])
+        return _added([self._term(k, m, alpha, kT) for k, m in self._parts(kT)])
 
     def _term(self, k: float, m: FloatArray, alpha: FloatArray, kT: FloatArray) -> Sums:
         above, here, below = (m * self._function(order, alpha) for order in (k + 1, k, k - 1))
@@ -119,6 +121,12 @@ class ClosedBose(_Closed):
 
     def _function(self, order: float, alpha: FloatArray) -> FloatArray:
         return bose(order, alpha)
+
+    def saturated(self, kT: FloatArray) -> FloatArray:
+        """See `Ensemble.saturated`."""
+        if not self.condenses:
+            return np.full_like(kT, np.inf)
+        return sum((m * float(bose(k, 0.0)) for k, m in self._parts(kT)), np.zeros_like(kT))
 
     def saturated_kT(self, number: FloatArray) -> FloatArray | None:
         """See `Ensemble.saturated_kT`."""

@@ -43,4 +43,4 @@ def rate(state: State, unit: str) -> Reading:
     speed = 8 * pi * gas.a_s**2 * np.sqrt(16 * s.kT / (pi * gas.mass))
     value = speed * density
     route = f"{state.held.model.whole.route}; n^2 over the place"
-    return state.read(value, speed * error + value * (s.dlog / 2 + 1e-15), unit, route)
+    return state.read(value, speed * error + value * (state.doubt[1] / 2 + 1e-15), unit, route)

@@ -9,7 +9,6 @@ import numpy as np
 from eoscore.constants import K_B
 from eoscore.errors import NoAnswerError
 from eoscore.state.critical import saturated_kT
-from eoscore.state.degeneracy import saturated
 from eoscore.state.ensemble import EPS
 from eoscore.state.solution import spread
 
@@ -50,7 +49,7 @@ def of_condensate(
     else:
         kT, told_by = saturated_kT(model.whole, first, x / K_B if first == "S" else x), first
     solution.kT[some], solution.alpha[some] = kT, 0.0
-    solution.condensate[some] = saturated(model.whole, kT) * y / (1 - y) if second == "f_0" else y
+    solution.condensate[some] = model.whole.saturated(kT) * y / (1 - y) if second == "f_0" else y
     solution.condensed[some] = True
     solution.dlog[some] = 8 * EPS if told_by == "T" else _dlog(model, told_by, kT)
 
@@ -107,5 +106,5 @@ def _condense(
     kT = np.minimum(saturated_kT(model.whole, name, x), critical[some])
     solution.kT[some], solution.alpha[some] = kT, 0.0
     solution.condensed[some] = True
-    solution.condensate[some] = np.maximum(values[0][some] - saturated(model.whole, kT), 0.0)
+    solution.condensate[some] = np.maximum(values[0][some] - model.whole.saturated(kT), 0.0)
     solution.dlog[some] = _dlog(model, name, kT)

@@ -25,6 +25,7 @@ __all__ = ["along_curve"]
 
 FARTHEST = 64.0  # of the search in ln kT
 SAME = 1e-8  # a condition that changes less over the whole bracket does not depend on T
+SATURATED = 1e-9  # a condition that is met so well at the saturated state is met by it
 COLDEST = 25.0  # below the start: kT = 1e-11 of the energy scale
 
 
@@ -96,7 +97,7 @@ def _refuse_rest(
     words = f"{first} and {second} do not fix a state here: with one given, the other is the same at every temperature"
     solution.refuse(words, put(same))
     if model.bosons and model.whole.condenses and "N" not in names:
-        free = np.isfinite(bracket.floor) & (solution.kT[some] <= np.exp(bracket.floor) * (1 + 1e-9))
+        free = np.isfinite(bracket.floor) & (np.abs(bracket.at_floor) <= SATURATED)
         words = f"with that {first} and {second} the gas is saturated, and its condensate may have any size: give N"
         solution.refuse(words, put(free))
     ends = [
@@ -115,6 +116,7 @@ class _Bracket:
     below: FloatArray
     above: FloatArray
     floor: FloatArray
+    at_floor: FloatArray
 
 
 def _bracket(
@@ -126,7 +128,7 @@ def _bracket(
     every = np.arange(start.size)
     low = np.maximum(start - 1.0, floor)
     high = np.maximum(start, floor) + 1.0
-    ends = _Bracket(low, high, miss(low, every)[0], miss(high, every)[0], floor)
+    ends = _Bracket(low, high, miss(low, every)[0], miss(high, every)[0], floor, miss(floor, every)[0])
     reach = 1.0
     while reach < FARTHEST:
         reach *= 2

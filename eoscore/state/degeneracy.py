@@ -11,19 +11,12 @@ from eoscore.state.root import rising_root
 if TYPE_CHECKING:
     from numpy.typing import NDArray
 
-    from eoscore.state.ensemble import Ensemble
+    from eoscore.state.ensemble import Counter, Ensemble
     from eoscore.state.reading import FloatArray
 
-__all__ = ["alpha_of_number", "saturated"]
+__all__ = ["alpha_of_number"]
 
 LEAST = -700.0  # ln alpha of the least alpha told from 0
-
-
-def saturated(ensemble: Ensemble, kT: FloatArray) -> FloatArray:
-    """N at alpha = 0; inf where the gas does not condense."""
-    if not ensemble.condenses:
-        return np.full_like(kT, np.inf)
-    return ensemble.count(np.zeros_like(kT), kT)[0]
 
 
 def alpha_of_number(ensemble: Ensemble, number: FloatArray, kT: FloatArray) -> FloatArray:
@@ -33,28 +26,36 @@ def alpha_of_number(ensemble: Ensemble, number: FloatArray, kT: FloatArray) -> F
         return known
     if ensemble.statistics == "fermi":
         return _of_fermions(ensemble, number, kT)
-    return _of_bosons(ensemble, number, kT)
+    alpha = np.empty_like(kT)
+    for part, count in ensemble.counters(kT):
+        alpha[part] = _of_bosons(ensemble, number[part], kT[part], count)
+    return alpha
 
 
-def _of_bosons(ensemble: Ensemble, number: FloatArray, kT: FloatArray) -> FloatArray:
+def _of_bosons(ensemble: Ensemble, number: FloatArray, kT: FloatArray, count: Counter) -> FloatArray:
     """Far from saturation ln N against s = ln(e^alpha - 1): a straight line for one level, concave for others.
 
     Since N <= Z e^-s with the classical Z, Newton's method from s = ln(Z/N) comes down to the root from above.
     Close to saturation ln(N_c - N) against ln alpha, which is nearly straight there.
     """
-    full = saturated(ensemble, kT)
+    full = ensemble.saturated(kT)
     z, _ = ensemble.boltzmann(kT)
     last = ensemble.largest_alpha(kT)
     near = number > 0.6 * full
     alpha = np.empty_like(kT)
     far = np.flatnonzero(~near)
+    bounded = np.isfinite(ensemble.highest)
 
     def from_one_level(s: FloatArray, which: NDArray[np.intp]) -> tuple[FloatArray, FloatArray]:
         here = far[which]
         a = np.logaddexp(0.0, s)
-        n, b = ensemble.count(a, kT[here])
+        n, b = count(a, here)
+        lean = b * -np.expm1(-a)
+        wanted = number[here]
         with np.errstate(divide="ignore", invalid="ignore"):
-            return np.log(number[here] / n), b / n * -np.expm1(-a)
+            if bounded:  # N has a zero where alpha ends, and ln N a pole there
+                return 2 * (wanted - n) / (wanted + np.abs(n)), 4 * wanted * lean / (wanted + np.abs(n)) ** 2
+            return np.log(wanted / n), lean / n
 
     start = np.log(z[far] / number[far])
     top = np.minimum(np.maximum(start, 0.0) + 2.0, _s_of(last[far]))
@@ -65,7 +66,7 @@ def _of_bosons(ensemble: Ensemble, number: FloatArray, kT: FloatArray) -> FloatA
     def from_saturation(log: FloatArray, which: NDArray[np.intp]) -> tuple[FloatArray, FloatArray]:
         here = close[which]
         a = np.exp(log)
-        n, b = ensemble.count(a, kT[here])
+        n, b = count(a, here)
         gap = np.maximum(full[here] - n, 1e-17 * full[here])
         return np.log(gap / np.maximum(full[here] - number[here], 1e-300 + 0 * a)), a * b / gap
 
@@ -109,4 +110,4 @@ def _of_fermions(ensemble: Ensemble, number: FloatArray, kT: FloatArray) -> Floa
         start = np.where(wanted > z, np.log(np.maximum(energy / kT, 1.0)), thin)
     u = rising_root(work, np.minimum(start, thin) - 20.0, np.maximum(start, np.log(800.0)) + 5.0, start)
     g = np.exp(u)
-    return -(away + sign * np.where(g > 30, g, np.log(np.expm1(np.minimum(g, 30.0)))))
+    return np.asarray(-(away + sign * np.where(g > 30, g, np.log(np.expm1(np.minimum(g, 30.0))))))

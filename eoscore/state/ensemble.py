@@ -8,14 +8,22 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from eoscore.state.sums import Sums
+
 if TYPE_CHECKING:
+    from collections.abc import Callable, Iterator
+
+    from numpy.typing import NDArray
+
     from eoscore.state.reading import FloatArray
-    from eoscore.state.sums import Sums
 
 __all__ = ["BLOCK", "EPS", "Ensemble"]
 
+if TYPE_CHECKING:
+    Counter = Callable[[FloatArray, NDArray[np.intp]], tuple[FloatArray, FloatArray]]
+
 EPS = float(np.finfo(float).eps)
-BLOCK = 2_000_000  # numbers held at a time by the evaluators that sum over nodes
+BLOCK = 250_000  # numbers held at a time by the evaluators that sum over nodes
 
 
 class Ensemble(ABC):
@@ -58,28 +66,41 @@ class Ensemble(ABC):
     def sums(self, alpha: FloatArray, kT: FloatArray) -> Sums:
         """All sums; nan where alpha or kT is."""
         some = np.isfinite(alpha) & (kT > 0)
-        if some.all():
+        if some.all() and some.size:
             return self.all_sums(alpha, kT)
+        if not some.any():
+            return Sums(*np.full((7, kT.size), np.nan))
         return self.all_sums(alpha[some], kT[some]).spread(some)
 
     def count(self, alpha: FloatArray, kT: FloatArray) -> tuple[FloatArray, FloatArray]:
         """N and -dN/dalpha; nan where alpha or kT is."""
         some = np.isfinite(alpha) & (kT > 0)
-        if some.all():
+        if some.all() and some.size:
             return self.number(alpha, kT)
         whole = np.full((2, kT.size), np.nan)
-        whole[:, some] = self.number(alpha[some], kT[some])
+        if some.any():
+            whole[:, some] = self.number(alpha[some], kT[some])
         return whole[0], whole[1]
 
     @abstractmethod
     def below(self, number: FloatArray) -> FloatArray:
         """The energy (J) below which `number` states lie, roughly: where a search for a temperature starts."""
 
-    def alpha_of(self, number: FloatArray, kT: FloatArray) -> FloatArray | None:
+    def counters(self, kT: FloatArray) -> Iterator[tuple[NDArray[np.intp], Counter]]:
+        """Blocks of the states, each with N and -dN/dalpha as a function of (alpha, some of the block's indices)."""
+        yield np.arange(kT.size), lambda alpha, which: self.count(alpha, kT[which])
+
+    def saturated(self, kT: FloatArray) -> FloatArray:
+        """N at alpha = 0; inf where the gas does not condense."""
+        if not self.condenses:
+            return np.full_like(kT, np.inf)
+        return self.count(np.zeros_like(kT), kT)[0]
+
+    def alpha_of(self, number: FloatArray, kT: FloatArray) -> FloatArray | None:  # noqa: ARG002 - a default
         """alpha at N in closed form; None where it has to be searched."""
         return None
 
-    def saturated_kT(self, number: FloatArray) -> FloatArray | None:
+    def saturated_kT(self, number: FloatArray) -> FloatArray | None:  # noqa: ARG002 - a default
         """kT at which N(alpha = 0) = number in closed form; None where it has to be searched."""
         return None
 

@@ -47,15 +47,16 @@ class Filled:
         x, w = legendre(ORDER)
         width = (stop - start)[:, None]
         volume = self.measure.volume((start[:, None] + width * x).ravel()).reshape(-1, ORDER)
-        return (volume * w).sum(axis=1) * (stop - start)
+        return np.asarray(volume @ w * (stop - start))
 
     def _build(self, reach: float) -> None:
         end = min(2 * reach, self.measure.top) if self.measure.top < inf else 2 * reach
-        edges = end * 2.0 ** np.arange(-OCTAVES, 1)
+        edges: FloatArray = end * 2.0 ** np.arange(-OCTAVES, 1)
         for b in self.measure.breaks:
             near = b * np.concatenate([-(2.0 ** np.arange(-1, -40, -1)), [0.0], 2.0 ** np.arange(-40, 0)])
             edges = np.append(edges, b + near)
-        edges = np.unique(edges[edges <= end])
+        edges = np.unique(edges[edges <= end]).astype(float)
         bottom = edges[:1] * self.measure.volume(edges[:1]) / (self.measure.exponent + 1)
-        self._sums = np.cumsum(np.concatenate([bottom, self._panel(edges[:-1], edges[1:])]))
+        panels = self._panel(np.asarray(edges[:-1]), np.asarray(edges[1:]))
+        self._sums = np.cumsum(np.concatenate([bottom, panels]))
         self._edges = edges

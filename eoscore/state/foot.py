@@ -31,9 +31,11 @@ def foot_means(k: float, a: FloatArray) -> tuple[FloatArray, FloatArray]:
 
 def _first(k: float, a: FloatArray) -> FloatArray:
     u, w = _rule(k)
-    near = np.maximum(a, SEAM)
-    direct = (w / (u + near[:, None])).sum(axis=1)
-    return np.where(a >= SEAM, direct, _small(k, np.minimum(a, SEAM)))
+    first = np.empty_like(a)
+    near = a < SEAM
+    first[near] = _small(k, a[near])
+    first[~near] = (1 / (u + a[~near, None])) @ w
+    return first
 
 
 @lru_cache(maxsize=64)

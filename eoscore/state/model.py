@@ -82,6 +82,13 @@ class Model:
         """The most that N can be."""
         return self.whole.capacity
 
+    def noise(self, name: str, value: FloatArray, sums: Sums) -> FloatArray:
+        """Absolute error of a condition as a function of alpha and T."""
+        size = np.abs(value)
+        if name == "N" and self.whole.highest < inf:
+            size = size + sums.B0  # N is a difference; B0 counts particles and antiparticles
+        return self.error_of(name) * size
+
     def error_of(self, name: str) -> float:
         """Relative error of a condition as a function of alpha and T."""
         if name in ("T", "mu", "fugacity"):

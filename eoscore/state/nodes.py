@@ -1,7 +1,7 @@
 """Bose and classical gases over any measure, or below a top: sums over its nodes.
 
 The nodes are fixed energies, so a state costs one exponential for each. States are told apart by their kT in
-stretches of a factor 4096, since nodes reach 45 kT far.
+stretches of a factor 16, since nodes reach 45 kT far.
 """
 
 from __future__ import annotations
@@ -11,12 +11,12 @@ from math import ceil, inf
 from typing import TYPE_CHECKING
 
 import numpy as np
+from numpy.polynomial.chebyshev import chebfit, chebval
 
-from eoscore.measure.base import Foot, Nodes
-from eoscore.measure.rules import log_panels
 from eoscore.state.closed import diverges
 from eoscore.state.ensemble import BLOCK, EPS, Ensemble
 from eoscore.state.foot import foot_means
+from eoscore.state.rule import rule_for
 from eoscore.state.sums import Sums
 
 if TYPE_CHECKING:
@@ -24,14 +24,18 @@ if TYPE_CHECKING:
 
     from numpy.typing import NDArray
 
-    from eoscore.measure.base import Measure
+    from eoscore.measure import Foot, Measure, Nodes
+    from eoscore.state.ensemble import Counter
     from eoscore.state.reading import FloatArray
 
 __all__ = ["NodeBose", "OverNodes"]
 
-REACH = 45.0  # e^-45 = 3e-20 is dropped
-STRETCH = 12  # octaves of kT that share nodes
-DEEP = 2.0**-40  # the foot ends at this share of the least kT, or lower
+STRETCH = 4  # octaves of kT that share nodes
+SMALL = 0.05  # of alpha, below which the foot is taken as 1/t and a few regular terms
+CACHED = 200_000  # numbers of a block that is asked again and again
+SERIES = (
+    44  # terms of ln N_c in ln kT over a stretch: it is analytic for |Im ln kT| < pi/2, and falls as 2.6^-n
+)
 
 
 class OverNodes(Ensemble):
@@ -41,7 +45,7 @@ class OverNodes(Ensemble):
         self.measure = measure
         self.exponent = measure.exponent
         self.top = measure.top
-        self.route = measure.route if measure.top == inf else f"{measure.route}, up to the escape energy"
+        self.route = f"sums over nodes ({measure.route}{'' if measure.top == inf else ', up to the escape energy'})"
         self._rules = lru_cache(maxsize=64)(self._rule)
 
     @property
@@ -50,16 +54,7 @@ class OverNodes(Ensemble):
         return self.measure.error + 2000 * EPS
 
     def _rule(self, stretch: int) -> Nodes:
-        low, high = 2.0 ** (stretch * STRETCH), 2.0 ** ((stretch + 1) * STRETCH)
-        rule = _of_powers(self.measure, REACH * high) or self.measure.nodes(REACH * high)
-        foot = rule.foot
-        edge = min(foot.edge, low * DEEP)
-        if edge == foot.edge or foot.exponent == 0:
-            return rule
-        v, dv = log_panels(edge, foot.edge)
-        w = foot.coefficient * foot.exponent * v ** (foot.exponent - 1) * dv
-        foot = Foot(foot.coefficient, foot.exponent, edge)
-        return Nodes(np.concatenate([v, rule.v]), np.concatenate([w, rule.w]), foot)
+        return rule_for(self.measure, 2.0 ** (stretch * STRETCH), 2.0 ** ((stretch + 1) * STRETCH))
 
     def _over(
         self, work: Callable[[FloatArray, FloatArray, Nodes], tuple[FloatArray, ...]], *columns: FloatArray
@@ -96,6 +91,10 @@ class NodeBose(OverNodes):
 
     statistics = "bose"
 
+    def __init__(self, measure: Measure) -> None:
+        super().__init__(measure)
+        self._series = lru_cache(maxsize=64)(self._saturated_series)
+
     @property
     def condenses(self) -> bool:
         """See `Ensemble.condenses`."""
@@ -111,20 +110,34 @@ class NodeBose(OverNodes):
         n, b = self._over(_bose_count, alpha, kT)
         return n, b
 
+    def counters(self, kT: FloatArray) -> Iterator[tuple[NDArray[np.intp], Counter]]:
+        """See `Ensemble.counters`: the exponentials of the nodes are made once for each block."""
+        for where, rule in self._stretches(kT):
+            for part in np.array_split(where, ceil(where.size * rule.v.size / CACHED)):
+                yield part, _counter(kT[part], rule)
+
+    def saturated(self, kT: FloatArray) -> FloatArray:
+        """See `Ensemble.saturated`: for many states a series in ln kT for each stretch."""
+        result = np.full_like(kT, np.nan)
+        known = np.flatnonzero(kT > 0)
+        for where, _ in self._stretches(kT[known]):
+            some = known[where]
+            if some.size <= SERIES:
+                result[some] = super().saturated(kT[some])
+            else:
+                log = np.log2(kT[some]) / STRETCH
+                key = int(np.floor(log[0]))
+                result[some] = np.exp(chebval(2 * (log - key) - 1, self._series(key)))
+        return result
+
+    def _saturated_series(self, key: int) -> FloatArray:
+        x = np.cos(np.pi * (np.arange(SERIES) + 0.5) / SERIES)
+        values = np.log(super().saturated(2.0 ** (STRETCH * (key + (1 + x) / 2))))
+        return np.asarray(chebfit(x, values, SERIES - 1))
+
     def all_sums(self, alpha: FloatArray, kT: FloatArray) -> Sums:
         """See `Ensemble.all_sums`."""
         return Sums(*self._over(_bose_sums, alpha, kT))
-
-
-def _of_powers(measure: Measure, reach: float) -> Nodes | None:
-    """The nodes of a sum of powers, on panels with enough nodes for x^8 e^-x; None for other measures."""
-    if measure.powers() is None:
-        return None
-    end = min(reach, measure.top)
-    edge = end * 2.0**-60
-    v, dv = log_panels(edge, end, 22)
-    foot = Foot(float(measure.volume(edge)) / edge**measure.exponent, measure.exponent, edge)
-    return Nodes(v, dv * measure.density(v), foot)
 
 
 def energy_below(measure: Measure, number: FloatArray) -> FloatArray:
@@ -147,6 +160,26 @@ def _boltzmann(_: FloatArray, kT: FloatArray, rule: Nodes) -> tuple[FloatArray, 
     z = weight.sum(axis=1) + rule.foot.volume
     k = rule.foot.exponent
     return z, (weight @ rule.v + rule.foot.volume * rule.foot.edge * k / (k + 1)) / (kT * z)
+
+
+def _counter(kT: FloatArray, rule: Nodes) -> Counter:
+    """N and -dN/dalpha of a block: with b = 1 - e^-x, f = z (1 - b)/(a + z b), a = 1 - z, without cancellation."""
+    x = rule.v / -kT[:, None]
+    fading, rest = np.exp(x), -np.expm1(x)
+
+    def count(alpha: FloatArray, which: NDArray[np.intp]) -> tuple[FloatArray, FloatArray]:
+        some = slice(None) if which.size == kT.size else which
+        z = np.exp(-alpha)[:, None]
+        f = rest[some] * z
+        f += -np.expm1(-alpha)[:, None]
+        np.divide(fading[some], f, out=f)
+        f *= z
+        number = f @ rule.w
+        f *= f
+        foot = _bose_foot(alpha, kT[some], rule.foot)
+        return number + foot[0], number + f @ rule.w + foot[4]
+
+    return count
 
 
 def _bose_count(alpha: FloatArray, kT: FloatArray, rule: Nodes) -> tuple[FloatArray, FloatArray]:
@@ -177,24 +210,36 @@ def _bose_sums(alpha: FloatArray, kT: FloatArray, rule: Nodes) -> tuple[FloatArr
 def _bose_foot(alpha: FloatArray, kT: FloatArray, foot: Foot) -> tuple[FloatArray, ...]:
     """The seven sums over the foot, where x is below 1e-12: f and its kin are those at alpha plus a mean of 1/t."""
     k, mass = foot.exponent, foot.volume
-    f, w, tw, ttw, log = _at_bottom(alpha)
     if k == 0:
+        f, w, tw, ttw, log = _at_bottom(alpha)
         zero = np.zeros_like(alpha)
         return mass * f, zero, mass * (log + alpha * f), mass * log, mass * w, mass * tw, mass * ttw
     x = foot.edge / kT
     a = alpha / x
-    first, second = foot_means(k, a)
-    small = alpha < 1e-3
+    small = alpha < SMALL
+    first, second = np.ones((2, alpha.size))
+    if small.any():
+        first[small], second[small] = foot_means(k, a[small])
+    t = alpha + x * k / (k + 1)
+    far, near = _at_bottom(t), _regular(t)
     with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
         inverse = first / x
-        f = np.where(small, inverse - 0.5 + alpha / 12, f)
-        w = np.where(small, second / x**2 - 1 / 12, w)
-        tw = np.where(small, inverse - alpha / 12, tw)
-        lean = 1 - np.where(alpha > 0, a * first, 0.0)
-        log = np.where(small, -np.log(-np.expm1(-(x + alpha))) + lean / k, log)
-        xf = np.where(small, lean, x * k / (k + 1) * f)
+        f = np.where(small, inverse + near[0], far[0])
+        w = np.where(small, second / x**2 + near[1], far[1])
+        tw = np.where(small, inverse + near[2], far[2])
+        ttw = far[3]
+        lean = np.where(alpha > 0, 1 - a * first, 1.0)
+        log = np.where(small, -np.log(-np.expm1(-(x + alpha))) + lean / k, far[4])
+        xf = np.where(small, lean, x * k / (k + 1) * far[0])
         af = np.where(alpha > 0, alpha * f, 0.0)
     return mass * f, mass * kT * xf, mass * (log + xf + af), mass * log, mass * w, mass * tw, mass * ttw
+
+
+def _regular(t: FloatArray) -> tuple[FloatArray, FloatArray, FloatArray]:
+    """f - 1/t, w - 1/t^2 and t w - 1/t for t < 0.05 (Bernoulli numbers, DLMF 24.2.1)."""
+    u = t * t
+    w = -1 / 12 + u * (1 / 240 - u * (1 / 6048 - u / 172800))
+    return -0.5 + t * (1 / 12 - u * (1 / 720 - u / 30240)), w, t * w
 
 
 def _at_bottom(alpha: FloatArray) -> tuple[FloatArray, ...]:

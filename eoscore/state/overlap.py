@@ -28,7 +28,8 @@ def mean_density(state: State) -> tuple[FloatArray, FloatArray]:
     some = np.flatnonzero(s.known)
     value = np.full(s.kT.shape, np.nan)
     value[some] = _over_place(state, held.position, s.alpha[some], s.kT[some])
-    lean = s.dalpha * np.maximum(1.0, 1 / np.where(s.alpha > 0, s.alpha, 1.0)) + 2 * s.dlog
+    dalpha, dlog = state.doubt
+    lean = dalpha * np.maximum(1.0, 1 / np.where(s.alpha > 0, s.alpha, 1.0)) + 2 * dlog
     return value, value * (held.model.whole.error + RULE + lean)
 
 

@@ -11,7 +11,6 @@ from eoscore.errors import NoAnswerError
 from eoscore.state.along import alpha_along
 from eoscore.state.condensed import of_condensate, split_phases
 from eoscore.state.curve import along_curve
-from eoscore.state.degeneracy import saturated
 from eoscore.state.ensemble import EPS
 from eoscore.state.model import CONDITIONS
 from eoscore.state.solution import Solution, spread
@@ -23,8 +22,9 @@ if TYPE_CHECKING:
 
     from eoscore.state.model import Model
     from eoscore.state.reading import FloatArray
+    from eoscore.state.sums import Sums
 
-__all__ = ["solve"]
+__all__ = ["bounds", "solve"]
 
 POSITIVE = ("T", "N", "fugacity", "n_peak", "PSD", "U", "N_0")
 
@@ -53,7 +53,6 @@ def solve(model: Model, given: Mapping[str, FloatArray]) -> Solution:
             _at_temperature(model, second, x1, x2, solution)
         else:
             _elsewhere(model, (first, second), (x1, x2), solution)
-        _bounds(model, given, solution)
     return solution
 
 
@@ -97,8 +96,8 @@ def _at_temperature(model: Model, name: str, T: FloatArray, x: FloatArray, solut
     if name == "N":
         if full.any():
             solution.condensed[some] = full
-            held = saturated(model.whole, kT[full])
-            solution.condensate[some[full]] = x[full] - held
+            held = model.whole.saturated(kT[full])
+            solution.condensate[some[full]] = np.maximum(x[full] - held, 0.0)
         return
     if name in ("mu", "fugacity"):
         if model.bosons and not model.whole.condenses:
@@ -142,18 +141,22 @@ def _elsewhere(
     along_curve(model, names, values, low, solution)
 
 
-def _bounds(model: Model, given: Mapping[str, FloatArray], solution: Solution) -> None:
-    """Errors of alpha and ln T from those of the two conditions, through the matrix of their slopes."""
-    some = np.flatnonzero(solution.known & ~solution.condensed)
-    if not some.size or any(name in ("f_0", "N_0") for name in given):
-        return
-    alpha, kT = solution.alpha[some], solution.kT[some]
-    sums = model.whole.sums(alpha, kT) if set(given) & {"N", "S", "U"} else None
-    rows = [model.value(name, alpha, kT, sums) for name in given]
+def bounds(
+    model: Model, given: Mapping[str, FloatArray], solution: Solution, sums: Sums
+) -> tuple[FloatArray, FloatArray]:
+    """Bounds of the errors of alpha and ln T, from those of the two conditions through the matrix of their slopes.
+
+    `sums` are those of the whole gas at the solution. With a condensate alpha is 0, and T has its own bound.
+    """
+    if any(name in ("f_0", "N_0") for name in given):
+        return np.zeros_like(solution.kT), solution.dlog
+    rows = [model.value(name, solution.alpha, solution.kT, sums) for name in given]
     (x1, a1, t1), (x2, a2, t2) = rows
-    e1, e2 = ((model.error_of(name) + 8 * EPS) * np.abs(x) for name, x in zip(given, (x1, x2), strict=True))
+    e1, e2 = (
+        model.noise(name, x, sums) + 8 * EPS * np.abs(x) for name, x in zip(given, (x1, x2), strict=True)
+    )
     det = np.abs(a1 * t2 - a2 * t1)
     dalpha = (np.abs(t2) * e1 + np.abs(t1) * e2) / det
     dlog = (np.abs(a2) * e1 + np.abs(a1) * e2) / det
-    solution.dalpha[some] = np.where(np.isfinite(dalpha), dalpha, 0.0)
-    solution.dlog[some] = np.where(np.isfinite(dlog), dlog, 8 * EPS)
+    dalpha = np.where(np.isfinite(dalpha) & ~solution.condensed, dalpha, 0.0)
+    return dalpha, np.where(solution.condensed, solution.dlog, np.where(np.isfinite(dlog), dlog, 8 * EPS))

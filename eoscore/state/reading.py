@@ -50,8 +50,10 @@ class Reading:
     @property
     def missing(self) -> NDArray[np.bool_]:
         """The points without a number."""
-        none = np.zeros(self.value.shape[: self.value.ndim - self._axes], dtype=bool)
-        return np.logical_or.reduce([none, *(np.broadcast_to(r.where, none.shape) for r in self.reasons)])
+        missing = np.zeros(self.value.shape[: self.value.ndim - self._axes], dtype=bool)
+        for reason in self.reasons:
+            missing |= reason.where
+        return missing
 
     @property
     def _axes(self) -> int:

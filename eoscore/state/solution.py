@@ -17,16 +17,15 @@ __all__ = ["Solution", "spread"]
 
 @dataclass
 class Solution:
-    """alpha = -mu/kT, kT in J and the condensate number; `dalpha`, `dlog` bound the errors of alpha and ln T.
+    """alpha = -mu/kT, kT in J and the condensate number; `dlog` bounds the error of ln T of condensed points.
 
     Points without a state have nan, and are told in `missing` with the words why.
     """
 
     alpha: FloatArray
-    kT: FloatArray
+    kT: FloatArray  # noqa: N815 - its name in every paper
     condensate: FloatArray
     condensed: NDArray[np.bool_]
-    dalpha: FloatArray
     dlog: FloatArray
     missing: list[tuple[str, NDArray[np.bool_]]] = field(default_factory=list)
 
@@ -34,14 +33,16 @@ class Solution:
     def empty(cls, size: int) -> Solution:
         """A solution in which nothing is known yet."""
         nans = [np.full(size, np.nan) for _ in range(2)]
-        zeros = [np.zeros(size) for _ in range(3)]
-        return cls(nans[0], nans[1], zeros[0], np.zeros(size, dtype=bool), zeros[1], zeros[2])
+        zeros = [np.zeros(size) for _ in range(2)]
+        return cls(nans[0], nans[1], zeros[0], np.zeros(size, dtype=bool), zeros[1])
 
     @property
     def known(self) -> NDArray[np.bool_]:
         """The points that have a state."""
-        none = np.zeros(self.kT.shape, dtype=bool)
-        return ~np.logical_or.reduce([none, *(where for _, where in self.missing)])
+        known = np.ones(self.kT.shape, dtype=bool)
+        for _, where in self.missing:
+            known &= ~where
+        return known
 
     def refuse(self, words: str, where: NDArray[np.bool_]) -> None:
         """Give points up with the words why; those given up before keep their first words."""

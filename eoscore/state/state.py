@@ -3,14 +3,14 @@
 from __future__ import annotations
 
 from functools import cached_property
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, TypeVar
 
 import numpy as np
 
 from eoscore.constants import K_B
 from eoscore.errors import NoAnswerError
 from eoscore.state.ensemble import EPS
-from eoscore.state.pairs import solve
+from eoscore.state.pairs import bounds, solve
 from eoscore.state.reading import Reading, Reason, reading_of
 
 if TYPE_CHECKING:
@@ -24,6 +24,8 @@ if TYPE_CHECKING:
     from eoscore.state.sums import Sums
 
 __all__ = ["State"]
+
+Shaped = TypeVar("Shaped", bound=np.generic)
 
 
 class State:
@@ -79,6 +81,11 @@ class State:
         return self.held.model.whole.sums(self.solution.alpha, self.solution.kT)
 
     @cached_property
+    def doubt(self) -> tuple[FloatArray, FloatArray]:
+        """Bounds of the errors of alpha and of ln T."""
+        return bounds(self.held.model, self.given, self.solution, self.sums)
+
+    @cached_property
     def local_sums(self) -> Sums:
         """The sums per volume at the bottom."""
         local = self.held.model.local
@@ -91,7 +98,7 @@ class State:
         """kT in J, given or solved for, and the bound of the error of its logarithm."""
         if "T" in self.given:
             return K_B * self.given["T"], np.full(self.given["T"].shape, 2 * EPS)
-        return self.solution.kT, self.solution.dlog
+        return self.solution.kT, self.doubt[1]
 
     @cached_property
     def number(self) -> tuple[FloatArray, FloatArray]:
@@ -105,22 +112,22 @@ class State:
         """N, U (J) or S (J/K) of the excited gas and the bound of the error."""
         s, model = self.solution, self.held.model
         value, by_alpha, by_log = model.value(name, s.alpha, s.kT, self.sums)
-        return value, self.bound(model.whole.error, value, by_alpha, by_log)
+        return value, model.noise(name, value, self.sums) + self.bound(0.0, value, by_alpha, by_log)
 
     def bound(
         self, relative: float, value: FloatArray, by_alpha: FloatArray, by_log: FloatArray
     ) -> FloatArray:
         """The error of a function of alpha and ln T from its own, and from those of alpha and ln T."""
-        s = self.solution
-        lean = np.where(s.dalpha > 0, np.abs(by_alpha) * s.dalpha, 0.0)
-        return (relative + 4 * EPS) * np.abs(value) + lean + np.abs(by_log) * s.dlog
+        dalpha, dlog = self.doubt
+        lean = np.where(dalpha > 0, np.abs(by_alpha) * dalpha, 0.0)
+        return (relative + 4 * EPS) * np.abs(value) + lean + np.abs(by_log) * dlog
 
     def numeric_bound(self, relative: float, function: _OfState) -> tuple[FloatArray, FloatArray]:
         """A function of (alpha, kT) at the state and its error, with slopes by differences (an error may be rough)."""
         s = self.solution
         value = function(s.alpha, s.kT)
         h = 1e-4
-        shifted = np.where(s.alpha == 0, 0.0, h * np.maximum(np.abs(s.alpha), s.dalpha))
+        shifted = np.where(s.alpha == 0, 0.0, h * np.maximum(np.abs(s.alpha), self.doubt[0]))
         by_alpha = np.where(shifted > 0, (function(s.alpha + shifted, s.kT) - value) / shifted, 0.0)
         by_log = (function(s.alpha, s.kT * (1 + h)) - value) / h
         return value, self.bound(relative, value, by_alpha, by_log)
@@ -130,7 +137,7 @@ class State:
         """Why points have no state."""
         return [Reason(words, self.shaped(where)) for words, where in self.solution.missing]
 
-    def shaped(self, flat: NDArray[np.generic]) -> NDArray[np.generic]:
+    def shaped(self, flat: NDArray[Shaped]) -> NDArray[Shaped]:
         """A flat array in the shape of the question."""
         return np.asarray(flat).reshape(self.shape)
 

@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
 from typing import TYPE_CHECKING, NamedTuple
 
 from eoscore.state import bottom, collisions, geometry, saturation, thermal
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
     from eoscore.state.reading import Reading
     from eoscore.state.state import State
 

@@ -43,14 +43,15 @@ def potential(state: State, unit: str) -> Reading:
     if "mu" in state.given:
         mu = np.where(s.known, state.given["mu"], np.nan)
         return state.read(mu, 2 * EPS * np.abs(mu), unit)
-    return state.read(mu, s.kT * s.dalpha + np.abs(mu) * (s.dlog + 4 * EPS), unit)
+    dalpha, dlog = state.doubt
+    return state.read(mu, s.kT * dalpha + np.abs(mu) * (dlog + 4 * EPS), unit)
 
 
 def fugacity(state: State, unit: str) -> Reading:
     """exp(mu/kT)."""
     s = state.solution
     z = np.exp(-s.alpha)
-    return state.read(z, z * (s.dalpha + 2 * EPS * (1 + np.abs(s.alpha))), unit)
+    return state.read(z, z * (state.doubt[0] + 2 * EPS * (1 + np.abs(s.alpha))), unit)
 
 
 def number(state: State, unit: str) -> Reading:
@@ -105,7 +106,10 @@ def _condensate(state: State) -> tuple[FloatArray, FloatArray]:
     s = state.solution
     if "N_0" in state.given:
         return s.condensate, 2 * EPS * s.condensate
-    _, error = state.of_sums("N")
+    if "T" in state.given and "N" in state.given:  # no sums are needed for what N and N_c already tell
+        error = (state.held.model.whole.error + 40 * EPS) * (state.given["N"] - s.condensate)
+    else:
+        _, error = state.of_sums("N")
     return s.condensate, np.where(s.condensed, error + 4 * EPS * s.condensate, 0.0)
 
 
