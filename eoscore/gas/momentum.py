@@ -47,7 +47,7 @@ def momentum_measure(field: Field, d: int) -> Measure:
     axes = axes_of(field.coordinates, d)
     from eoscore.measure import measure_of
 
-    return measure_of(_in_space(field, axes)).scaled(H ** -len(axes))
+    return measure_of(_in_space(field, axes)).scaled(H**-d)
 
 
 def _in_space(field: Field, axes: tuple[str, ...]) -> Field:
