@@ -44,15 +44,20 @@ class Symbolic:
     """A gas in a place in SymPy; every part is None (or empty) where gas or place do not have it.
 
     A name that is defined by literals and constants alone, or has a value given from outside, stays a symbol
-    (positive where its value is); what is built from other names is written out. `values` holds the SI values of
-    all symbols used so far but the coordinates; ask for it last.
+    (positive where its value is); what is built from other names is written out.
     """
 
     def __init__(self, pair: Pair, lowering: Lowering) -> None:
         self._pair, self._lowering = pair, lowering
         self._symbols: dict[Named, Any] = {}
         self._walk = SympyWalk(self._atom, lowering.literals)
-        self.values: dict[str, float] = {}
+        self._values: dict[str, float] = {}
+
+    @property
+    def values(self) -> dict[str, float]:
+        """SI values of the symbols in all parts below and in what `of` gave, by their names, coordinates left out."""
+        _ = (self.potential, self.walls, self.energy, self.zone, self.rho, self.anchor)
+        return dict(self._values)
 
     @cached_property
     def potential(self) -> Any:
@@ -128,15 +133,18 @@ class Symbolic:
             return None
         if named not in self._symbols:
             value = self._lowering.value(named)
-            name = self._free_name(symbol_name(named.name))
+            name = self._free_name(named)
             self._symbols[named] = sp.Symbol(name, **{"positive" if value > 0 else "real": True})
-            self.values[name] = value
+            self._values[name] = value
         return self._symbols[named]
 
-    def _free_name(self, name: str) -> str:
-        """The name itself, numbered where a coordinate or another symbol has it already."""
+    def _free_name(self, named: Named) -> str:
+        """Its own name, numbered where a constant, a coordinate or another symbol has it already."""
+        name, constants = symbol_name(named.name), constant_scope().names
+        if constants.get(named.name) is named:
+            return name
         coordinates = {symbol.name for symbol in (*self.coordinates, *self.momenta)}
-        taken = {*_TAKEN, *self.values, *coordinates}
+        taken = {*_TAKEN, *constants, *self._values, *coordinates}
         numbered = (f"{name}_{count}" for count in range(1, len(taken) + 2))
         return name if name not in taken else next(each for each in numbered if each not in taken)
 
