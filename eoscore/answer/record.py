@@ -67,10 +67,13 @@ class Finding:
 
     def worst(self) -> float:
         """The largest relative numerical error among the points that have a value; 0 where none has."""
-        value, error = np.abs(self.value), np.where(np.isfinite(self.value), self.error, 0.0)
-        scale = np.where(value > 0.0, value, np.nanmax(value, initial=0.0, where=np.isfinite(value)))
-        with np.errstate(divide="ignore", invalid="ignore"):
-            return float(np.nanmax(np.where(error > 0.0, error / scale, 0.0), initial=0.0))
+        known = np.isfinite(self.value)
+        value, error = np.abs(self.value[known]), self.error[known]
+        if not value.size or not error.any():
+            return 0.0
+        scale = np.where(value > 0.0, value, value.max())
+        with np.errstate(divide="ignore"):
+            return float(np.max(error / scale, where=error > 0.0, initial=0.0))
 
 
 @dataclass(frozen=True)
