@@ -5,6 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass, field
 from typing import TYPE_CHECKING, TypeVar
 
+from eoscore.errors import PluginError
 from eoscore.language import nodes
 from eoscore.language.faults import listed
 from eoscore.language.isotope import isotope_mass
@@ -144,14 +145,13 @@ def gas_block(
     """Sorts the entries of a gas; faults are noted for doubles, unknown dispersions and unknown isotopes."""
     definitions = settings.applied(without_doubles(_of(node, nodes.Definition), faults), node.name.name)
     choice = single(_of(node, nodes.DispersionChoice), "dispersion", faults)
-    signature = _signature(choice, dispersions, faults)
+    has_energy = any(definition.name.name == "E" for definition in definitions)
+    signature = None if has_energy else _signature(choice, dispersions, faults)
     parameter_scope = Scope(f"the dispersion of {node.name.name}", around)
     scope = Scope(f"gas {node.name.name}", parameter_scope, is_block=True).define(definitions)
-    if any(definition.name.name == "E" for definition in definitions):
-        if choice is not None:
-            message = "a gas has a dispersion by name or a formula E(p), not both"
-            faults.add(choice.span, message, "keep one of them")
-        signature = None
+    if has_energy and choice is not None:
+        message = "a gas has a dispersion by name or a formula E(p), not both"
+        faults.add(choice.span, message, "keep one of them")
     _add_mass(single(_of(node, nodes.Isotope), "isotope", faults), scope, settings, faults)
     _add_parameters(choice, signature, parameter_scope, scope, settings, faults)
     return Gas(
@@ -174,11 +174,15 @@ def _signature(
 ) -> Signature | None:
     if choice is None:
         return dispersions.get("free")
-    signature = dispersions.get(choice.name.name)
-    if signature is None:
-        message = f"there is no dispersion `{choice.name.name}`"
-        faults.add(choice.name.span, message, listed(choice.name.name, dispersions, what="installed"))
-    return signature
+    name = choice.name
+    try:
+        return dispersions[name.name]
+    except KeyError:
+        hint = listed(name.name, dispersions, what="installed")
+        faults.add(name.span, f"there is no dispersion `{name.name}`", hint)
+    except PluginError as refused:
+        faults.add(name.span, str(refused), "mend or uninstall the package it comes from")
+    return None
 
 
 def _add_mass(isotope: nodes.Isotope | None, scope: Scope, settings: Settings, faults: Faults) -> None:

@@ -98,6 +98,7 @@ def _read(
         tuple(question for question in questions if question is not None),
         tuple(literal for literal, _ in literals),
         tuple(node for _, node in literals),
+        set(world.pairs_made),
     )
 
 

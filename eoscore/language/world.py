@@ -33,6 +33,11 @@ class World:
     shelf: tuple[Scope, ...] = ()
     _pairs: dict[tuple[str, str | None], Pair] = field(default_factory=dict)
 
+    @property
+    def pairs_made(self) -> tuple[Pair, ...]:
+        """The pairs that were asked for so far."""
+        return tuple(self._pairs.values())
+
     def pair(self, gas: Gas, place: Place | None) -> Pair:
         """The scope of a gas in a place, made once."""
         key = (gas.name, place.name if place else None)

@@ -6,11 +6,12 @@ import numpy as np
 import pytest
 from scipy import constants as si
 
-from eoscore.errors import TarnError
+from eoscore.errors import PluginError, TarnError
+from eoscore.language import read
 from eoscore.language.facts import StatesFacts, TrapFacts, UniformFacts, VolumeFacts
 from eoscore.language.units import Dimension
 
-from .labs import BOX, GAS, TRAP, near, program
+from .labs import BOX, DISPERSIONS, GAS, TRAP, near, program
 
 U = si.physical_constants["atomic mass constant"][0]
 HARMONIC = GAS + TRAP
@@ -242,3 +243,15 @@ def test_settings_take_the_place_of_what_the_file_says():
 def test_a_bad_setting_is_a_complaint(setting, message):
     with pytest.raises(TarnError, match=message):
         program(HARMONIC, settings=[setting])
+
+
+def test_a_refused_plugin_is_told_where_it_is_asked_for():
+    class Refusing(dict):
+        def __missing__(self, name):
+            raise PluginError(name, "no energy", "an energy")
+
+    with pytest.raises(
+        TarnError, match="plugin 'odd' is refused: found no energy; wanted an energy"
+    ) as caught:
+        read("gas a { m = 1 u\n dispersion odd }", dispersions=Refusing(DISPERSIONS))
+    assert (caught.value.complaints[0].line, caught.value.complaints[0].column) == (2, 13)
