@@ -24,6 +24,9 @@ __all__ = ["Axis", "axes_of"]
 DECADES = np.arange(-36, 13)
 MOST_MARKS = 12
 MOST_TURNS = 800
+MOST_ANCHORS = 40
+MOST_LINES = 10
+BEYOND = 14  # decades beyond all structure at which the axes end
 MOST_CROSSINGS = 64
 MOST_WAVES = 4000
 _WAVES = frozenset({"sin", "cos", "tan", "besselj"})
@@ -36,24 +39,30 @@ class Axis:
         self.marks: set[float] = {0.0}
         self.least, self.most = 99, -99
         self.half_wave = np.inf
-        self.turns: Array = np.zeros(0)
+        self.turns: Array = np.zeros(0)  # where V turns along the axis
+        self.known: Array = np.zeros(0)  # points along it, and how much V changes up to each
+        self.change: Array = np.zeros(0)
+
+    def mark(self, place: float) -> None:
+        """Take in a centre, if it is a new one."""
+        known = any(abs(place - other) <= 1e-9 * abs(place) for other in self.marks)
+        if not known and len(self.marks) < MOST_MARKS:
+            self.marks.add(place)
 
     def see(self, decades: Array) -> None:
         """Take in decades where something happens."""
         if decades.size:
             self.least, self.most = min(self.least, int(decades.min())), max(self.most, int(decades.max()))
 
-    def points(self, density: float, beyond: int) -> Array:
-        """Points around every mark, `density` a decade, a few far out, and the turns of V along the axis."""
-        least, most = self.least - 1, self.most + 1
-        count = max(2, round((most - least) * density) + 1)
-        steps = np.concatenate([np.logspace(least, most, count), 10.0 ** np.arange(most + 2, most + beyond, 2)])
-        found = [self.turns, np.array([0.0])]
-        for mark in self.marks:
-            near = steps if mark == 0 else steps[steps < abs(mark)]
-            found += [mark - near, [mark], mark + near]
-        points = np.unique(np.concatenate(found))
-        return points[np.append(True, np.diff(points) > 10.0 ** (least - 1))]
+    def points(self, count: int) -> Array:
+        """About `count` points where V changes most along the axis, its turns, and a few far out."""
+        shares = np.linspace(0, self.change[-1], max(count - self.turns.size, 8))
+        chosen = np.interp(shares, self.change, self.known)
+        far = 10.0 ** np.arange(self.most + 2, self.most + BEYOND, 3)
+        fixed = np.union1d(sorted(self.marks), self.turns)
+        apart = np.min(np.abs(np.subtract.outer(chosen, fixed)), axis=1) > 10.0 ** (self.least - 2)
+        points: Array = np.unique(np.concatenate([-far, chosen[apart], fixed, far]))
+        return points
 
     def line(self) -> Array:
         """Many points, to find the turns of V along the axis."""
@@ -75,21 +84,40 @@ def axes_of(chart: Chart) -> list[Axis]:
         if axis.most == -99:
             axis.see(np.array([least, max((a.most for a in known), default=-5)]))
     for i, axis in enumerate(axes):
-        axis.turns = _turns(chart, i, axis.line(), anchors)
+        _follow(chart, i, axis, anchors)
     return axes
 
 
-def _turns(chart: Chart, i: int, line: Array, anchors: Array) -> Array:
-    """Where V changes its sense along lines through the anchors, and just inside of where they cross a wall."""
-    points = np.repeat(anchors[:8, None, :], line.size, axis=1)
+def _follow(chart: Chart, i: int, axis: Axis, anchors: Array) -> None:
+    """Go along the axis through the anchors: note where V turns, meets a wall, and how much it changes on the way."""
+    line = axis.line()
+    points = np.repeat(anchors[:MOST_LINES, None, :], line.size, axis=1)
     points[:, :, i] = line
     slope = np.sign(chart.slopes(points)[..., i])
-    changes = np.any(slope[:, 1:] * slope[:, :-1] < 0, axis=0)
-    found = [(line[1:][changes] + line[:-1][changes]) / 2]
+    turned = slope[:, 1:] * slope[:, :-1] < 0
+    found = [(line[1:] + line[:-1])[np.any(turned, axis=0)] / 2]
     if chart.walls:
         found.append(_crossings(chart, i, points))
-    turns: Array = np.unique(np.concatenate(found))
-    return turns[np.argsort(np.abs(turns), kind="stable")[:MOST_TURNS]]
+    turns = np.unique(np.concatenate(found))
+    axis.turns = turns[np.argsort(np.abs(turns), kind="stable")[:MOST_TURNS]]
+    v = chart.value(points)
+    change = np.max([_change(row, bends) for row, bends in zip(v, turned, strict=True)], axis=0)
+    nearest = np.min(np.abs(np.subtract.outer(sorted(axis.marks), (line[1:] + line[:-1]) / 2)), axis=0)
+    decades = np.diff(line) / (nearest + 10.0 ** (axis.least - 1))
+    axis.known, axis.change = line, np.concatenate([[0.0], np.cumsum(change + 0.1 * decades)])
+
+
+def _change(v: Array, turned: NDArray[np.bool_]) -> Array:
+    """How much V changes between points, in units of its hills and valleys; far above them by the logarithm."""
+    inside = np.isfinite(v)
+    if not inside.any():
+        return np.zeros(v.size - 1)
+    heights = v[:-1][turned & inside[:-1]]
+    scale = float(np.ptp(heights)) if heights.size > 1 else 0.0
+    scale = scale or float(np.median(np.abs(v[inside] - np.median(v[inside])))) or 1.0
+    with np.errstate(all="ignore"):
+        level = np.arcsinh((v - np.median(v[inside])) / scale)
+    return np.nan_to_num(np.abs(np.diff(level)), posinf=0.0)
 
 
 def _crossings(chart: Chart, i: int, points: Array) -> Array:
@@ -123,8 +151,7 @@ def _read_linear_parts(chart: Chart, axes: list[Axis]) -> None:
             terms = polynomial(node, chart.names) or {}  # type: ignore[arg-type]  # a sum is a formula
             foot = -terms.get(zero, 0.0) * slopes / (slopes @ slopes)
             for i in np.flatnonzero(foot):
-                if len(axes[i].marks) < MOST_MARKS:
-                    axes[i].marks.add(float(foot[i]))
+                axes[i].mark(float(foot[i]))
 
 
 def _linear(node: object, chart: Chart) -> Array:
@@ -140,9 +167,10 @@ def _linear(node: object, chart: Chart) -> Array:
 
 
 def _anchors(chart: Chart, axes: list[Axis]) -> Array:
-    """Points where lines along the coordinates start: combinations of marks."""
-    combinations = np.array(list(product(*(sorted(axis.marks, key=abs)[:5] for axis in axes))))
-    return combinations[:125]
+    """Points where lines along the coordinates start: combinations of marks, the lowest V first."""
+    combinations = np.array(list(product(*(sorted(axis.marks, key=abs)[:6] for axis in axes))))
+    order = np.argsort(chart.value(combinations), kind="stable")
+    return combinations[order[:MOST_ANCHORS]]
 
 
 def _see_scales(chart: Chart, axes: list[Axis], anchors: Array) -> None:

@@ -82,7 +82,7 @@ def _level_along(chart: Chart, point: Array, value: float, axis: Array, scale: f
     A point aside, far enough for V to differ, slides back to the bottom if V rises, to its own part of a curve
     if that is level.
     """
-    for reach in scale * np.array([0.05, 0.3, 2.0, 10.0, 60.0]):
+    for reach in np.geomspace(0.05 * scale, chart.reach, 12):
         aside = point + reach * axis
         across = chart.value(point + reach * np.vstack([np.eye(point.size), -np.eye(point.size)]))
         typical = float(np.max(across[np.isfinite(across)], initial=value)) - value

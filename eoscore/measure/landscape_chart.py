@@ -26,7 +26,7 @@ class Chart:
     """V(x) for points of shape (n, d); radial coordinates are followed through 0 as even functions.
 
     `nudge` is a length far below all structure: where a derivative is not defined (the tip of a cone, the axis
-    of a formula with 0/0), it is taken that far away.
+    of a formula with 0/0), it is taken that far away. `reach` is a length beyond all structure.
     """
 
     def __init__(self, field: Field) -> None:
@@ -49,7 +49,7 @@ class Chart:
             tape_of(wall, *gradient(wall, self.names), *sum(hessian(wall, self.names), ())) for wall in self.walls
         ]
         self._upper = np.triu_indices(self.dimension)
-        self.nudge = 0.0
+        self.nudge, self.reach = 0.0, np.inf
 
     def at(self, points: Array) -> dict[str, Array]:
         """Points as values of the coordinates."""

@@ -44,8 +44,21 @@ def descend(chart: Chart, starts: Array, radius: Array) -> tuple[Array, Array]:
         value[moved], slope[moved], bend[moved] = chart.jet(points[moved])
         small = np.linalg.norm(taken, axis=1) <= 1e-15 * np.linalg.norm(points[now], axis=1)
         active[now] = ~small & (radius[now] > 1e-17 * np.linalg.norm(points[now], axis=1)) & (length > 0)
-        active[now] &= (radius[now] > 1e-40) & (np.linalg.norm(points[now], axis=1) < 1e20)
-    return points, value
+        active[now] &= (radius[now] > 1e-40) & (np.linalg.norm(points[now], axis=1) < 1e3 * chart.reach)
+    return points if walled else _polished(chart, points), value
+
+
+def _polished(chart: Chart, points: Array) -> Array:
+    """A few plain Newton steps: V itself no longer tells where its minimum is to better than 1e-8."""
+    for _ in range(3):
+        _, slope, bend = chart.jet(points)
+        size, axes = np.linalg.eigh(np.nan_to_num(bend))
+        along = np.einsum("nji,nj->ni", axes, np.nan_to_num(slope))
+        round_ = size > 1e-9 * np.max(np.abs(size), axis=1, keepdims=True)
+        step = np.einsum("nij,nj->ni", axes, np.where(round_, along / np.where(round_, size, 1.0), 0.0))
+        near = np.linalg.norm(step, axis=1) <= 1e-4 * (np.linalg.norm(points, axis=1) + 1e6 * chart.nudge)
+        points = np.where(near[:, None], points - step, points)
+    return points
 
 
 def _steps(slope: Array, bend: Array, radius: Array, frames: list[Array] | None) -> Array:

@@ -12,16 +12,15 @@ if TYPE_CHECKING:
 
     from eoscore.measure.landscape_chart import Array, Chart
 
-__all__ = ["Grid", "Leak", "grid_of"]
-
-MOST_POINTS = 200_000
+__all__ = ["Grid", "Leak"]
 
 
 @dataclass(frozen=True)
 class Leak:
-    """Where the grid leaks: the level (J), the grid point, and whether it is the limit at infinity beyond it."""
+    """Where the grid leaks: the level and V at the bottom (J), the grid point, and whether it is the limit at infinity beyond it."""
 
     energy: float
+    bottom: float
     point: Array
     outward: Array
     at_infinity: bool
@@ -33,6 +32,7 @@ class Grid:
     def __init__(self, chart: Chart, axes: list[Array], origin: Array, frame: Array) -> None:
         self.chart, self.axes, self.origin, self.frame = chart, axes, origin, frame
         self.shape = tuple(axis.size for axis in axes)
+        self.lowest_exit = np.inf  # the lowest level at which any end leads out, set by `leak`
         if np.array_equal(frame, np.eye(len(axes))):
             mesh = np.meshgrid(*(o + a for o, a in zip(origin, axes, strict=True)), indexing="ij", sparse=True)
             values = {name: np.asarray(x) for name, x in zip(chart.names, mesh, strict=True)}
@@ -53,19 +53,28 @@ class Grid:
 
     def minima(self, most: int) -> Array:
         """Indices (n, d) of the lowest inner points that no neighbour along an axis undercuts."""
-        low = np.isfinite(self.v)
+        return self._lowest(np.logical_and.reduce([self._turns(i, 1.0) for i in range(self.v.ndim)]), most)
+
+    def saddles(self, most: int) -> Array:
+        """Indices (n, d) of the lowest inner points that are highest along one axis and lowest along the others."""
+        low, high = ([self._turns(i, side) for i in range(self.v.ndim)] for side in (1.0, -1.0))
+        some = np.zeros(self.shape, bool)
         for i in range(self.v.ndim):
-            here, v = [slice(None)] * self.v.ndim, np.moveaxis(self.v, i, 0)
-            here[i] = slice(0, 1)
-            low[tuple(here)] = False
-            here[i] = slice(-1, None)
-            low[tuple(here)] = False
-            inner = np.moveaxis(low, i, 0)
-            inner[1:] &= v[1:] <= v[:-1]
-            inner[:-1] &= v[:-1] <= v[1:]
-        index = np.argwhere(low)
-        order = np.argsort(self.v[low], kind="stable")
-        result: Array = index[order[:most]]
+            some |= np.logical_and.reduce([high[j] if j == i else low[j] for j in range(self.v.ndim)])
+        return self._lowest(some, most)
+
+    def _turns(self, axis: int, side: float) -> NDArray[np.bool_]:
+        """Where v is lowest (highest for side -1) among its neighbours along an axis; not at the ends."""
+        v = np.moveaxis(side * self.v, axis, 0)
+        turns = np.zeros(v.shape, bool)
+        turns[1:-1] = (v[1:-1] <= v[:-2]) & (v[1:-1] <= v[2:]) & np.isfinite(v[1:-1])
+        return np.moveaxis(turns, 0, axis)
+
+    def _lowest(self, some: NDArray[np.bool_], most: int) -> Array:
+        """The lowest of some points; among equals those nearest the origin come first."""
+        index = np.argwhere(some)
+        distance = np.linalg.norm(self.points(index), axis=1)
+        result: Array = index[np.lexsort((distance, self.v[some]))[:most]]
         return result
 
     def leak(self, bottom: Array) -> Leak | None:
@@ -80,6 +89,7 @@ class Grid:
         ends = np.argwhere(edge & np.isfinite(self.v))
         start = self.nearest(bottom)
         exits = self._exits(ends, float(self.v[start]))
+        self.lowest_exit = float(np.min(exits, initial=np.inf))
         levels = np.unique(np.concatenate([self.v[np.isfinite(self.v)], exits[np.isfinite(exits)]]))
         levels = levels[levels >= self.v[start]]
         structure = np.ones((3,) * self.v.ndim)
@@ -100,8 +110,8 @@ class Grid:
         outward = self.points(np.array([chosen]))[0] - bottom
         last = np.argwhere(self.v == level)
         if not last.size or edge[tuple(last[0])] or exits[out].min() >= level > self.v[chosen]:
-            return Leak(level, self.points(np.array([chosen]))[0], outward, at_infinity=True)
-        return Leak(level, self.points(last[:1])[0], outward, at_infinity=False)
+            return Leak(level, float(self.v[start]), self.points(np.array([chosen]))[0], outward, at_infinity=True)
+        return Leak(level, float(self.v[start]), self.points(last[:1])[0], outward, at_infinity=False)
 
     def region(self, bottom: Array, level: float) -> NDArray[np.bool_]:
         """The grid points that join the bottom below a level."""
@@ -127,8 +137,3 @@ class Grid:
         """The grid point nearest to a point, along each axis."""
         local = (point - self.origin) @ self.frame
         return tuple(int(np.argmin(np.abs(axis - x))) for axis, x in zip(self.axes, local, strict=True))
-
-
-def grid_of(chart: Chart, axes: list[Array], origin: Array, frame: Array) -> Grid:
-    """A grid, with the point of the origin among its own."""
-    return Grid(chart, [np.union1d(axis, 0.0) for axis in axes], origin, frame)

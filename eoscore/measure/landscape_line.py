@@ -47,8 +47,9 @@ def survey_line(field: Field) -> Landscape:
     if name in RADIAL:
         even = {name: call("abs", variable(name))}
         f, walls = f.substitute(even), tuple(wall.substitute(even) for wall in walls)
-    pieces = monotone_pieces(f, name)
     stretches = positive_intervals(walls, name)
+    ends = (stretches[0][0], stretches[-1][1]) if stretches else (-np.inf, np.inf)
+    pieces = monotone_pieces(f, name, ends)
     wells = [well for ends in stretches for well in _wells(f, name, ends, pieces.points, pieces.signs)]
     if name in RADIAL:
         wells = [well for well in wells if well.place >= 0 or well.high > 0]

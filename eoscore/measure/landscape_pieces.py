@@ -40,15 +40,16 @@ class Pieces:
     signs: Array
 
 
-def monotone_pieces(f: Formula, name: str) -> Pieces:
-    """The pieces of f between -1e24 and 1e24.
+def monotone_pieces(f: Formula, name: str, ends: tuple[float, float] = (-np.inf, np.inf)) -> Pieces:
+    """The pieces of f between -1e24 and 1e24; what lies beyond `ends` by a decade is left out.
 
     Where a function has more than some ten thousand pieces, those farthest from 0 are taken as level.
     """
     slope = f.derivative(name)
     smooth = not any(node.op in _KINKS and not _folds(node) for node in ordered([f]))
     edges = np.concatenate([-DECADES[::-1], [0.0], DECADES])
-    low, high = edges[:-1], edges[1:]
+    within = (edges[1:] > ends[0]) & (edges[:-1] < ends[1])
+    low, high = edges[:-1][within], edges[1:][within]
     done: list[tuple[Array, Array, Array]] = []
     for _ in range(140):
         if not low.size:

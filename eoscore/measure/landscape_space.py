@@ -10,8 +10,8 @@ from eoscore.measure.landscape_axes import axes_of
 from eoscore.measure.landscape_bottom import minimum_at
 from eoscore.measure.landscape_chart import Chart
 from eoscore.measure.landscape_descent import descend, distinct
-from eoscore.measure.landscape_grid import Grid, Leak, grid_of
-from eoscore.measure.landscape_pass import pass_near
+from eoscore.measure.landscape_grid import Grid, Leak
+from eoscore.measure.landscape_routes import lowest_way_out
 from eoscore.measure.landscape_record import Escape, Landscape, Minimum, sense
 
 if TYPE_CHECKING:
@@ -22,7 +22,8 @@ if TYPE_CHECKING:
 __all__ = ["survey_space"]
 
 MOST_STARTS = 300
-FAR = 14  # decades beyond all structure at which the grid ends
+MOST_WALLED = 40  # with walls each start is followed by itself
+MOST_POINTS = 50_000
 
 
 def survey_space(field: Field) -> Landscape:
@@ -30,16 +31,14 @@ def survey_space(field: Field) -> Landscape:
     chart = Chart(field)
     axes = axes_of(chart)
     chart.nudge = 10.0 ** (min(axis.least for axis in axes) - 9)
+    chart.reach = 10.0 ** (max(axis.most for axis in axes) + 2)
     grid = _grid(chart, axes)
     points, values, scales = _minima(chart, grid, axes)
     if not values.size:
         return Landscape(field.coordinates, None, why=_nothing(chart, grid))
     bottom = minimum_at(chart, points[0], float(values[0]), float(scales[0]))
     leak = grid.leak(points[0])
-    if leak is None:
-        escape, error = None, 1e-12
-    else:
-        escape, error = _escape(chart, grid, leak, points[0], bottom.value)
+    escape, error = _escape(chart, grid, leak, points, bottom.value)
     minima = _joined(chart, grid, points, values, scales, bottom, escape)
     why = ""
     if escape is not None and escape.energy - bottom.value <= 1e-13 * abs(bottom.value):
@@ -48,29 +47,42 @@ def survey_space(field: Field) -> Landscape:
 
 
 def _grid(chart: Chart, axes: list[Axis]) -> Grid:
-    """The finest grid of a fair number of points."""
-    most = {2: 60_000, 3: 60_000}[chart.dimension]
-    lines = [axis.points(4.0, FAR) for axis in axes]
-    for density in (3.0, 2.0, 1.5, 1.0):
-        if np.prod([line.size for line in lines], dtype=float) <= most:
+    """A grid of a fair number of points, more of them along axes with many turns."""
+    d = chart.dimension
+    counts = [max(round(MOST_POINTS ** (1 / d)) - 8, axis.turns.size + 8) for axis in axes]
+    while np.prod(counts, dtype=float) > MOST_POINTS and max(counts) > 12:
+        counts = [max(round(0.9 * count), min(axis.turns.size + 8, count)) if count > 12 else count
+                  for count, axis in zip(counts, axes, strict=True)]
+        if all(count <= axis.turns.size + 8 or count <= 12 for count, axis in zip(counts, axes, strict=True)):
             break
-        lines = [axis.points(density, FAR) for axis in axes]
-    return grid_of(chart, lines, np.zeros(chart.dimension), np.eye(chart.dimension))
+    lines = [axis.points(count) for axis, count in zip(axes, counts, strict=True)]
+    return Grid(chart, lines, np.zeros(d), np.eye(d))
 
 
 def _minima(chart: Chart, grid: Grid, axes: list[Axis]) -> tuple[Array, Array, Array]:
     """All local minima found, lowest first, with a length over which V is resolved near each."""
-    index = grid.minima(MOST_STARTS)
+    index = grid.minima(MOST_WALLED if chart.walls else MOST_STARTS)
     if not index.size:
         return np.zeros((0, chart.dimension)), np.zeros(0), np.zeros(0)
     radius = grid.spacing(index)
-    points, values = descend(chart, grid.points(index), radius)
-    reach = 10.0 ** (max(axis.most for axis in axes) + 3)
-    values = np.where(np.linalg.norm(points, axis=1) < reach, values, np.inf)
+    points, values = _snapped(chart, axes, *descend(chart, grid.points(index), radius))
+    values = np.where(np.linalg.norm(points, axis=1) < 10 * chart.reach, values, np.inf)
     least = 10.0 ** min(axis.least for axis in axes)
     kept = distinct(points, values, 1e-3 * least)
     kept = _nearest_first(points, values, kept)
     return points[kept], values[kept], np.full(len(kept), least)
+
+
+def _snapped(chart: Chart, axes: list[Axis], points: Array, values: Array) -> tuple[Array, Array]:
+    """Coordinates within rounding of a mark put on it, where V does not rise by it: tips of cones, axes."""
+    snapped = points.copy()
+    for i, axis in enumerate(axes):
+        for mark in axis.marks:
+            close = np.abs(points[:, i] - mark) < 10.0 ** (axis.least - 4)
+            snapped[close, i] = mark
+    better = chart.value(snapped)
+    kept = better <= values + 1e-15 * np.abs(values)
+    return np.where(kept[:, None], snapped, points), np.where(kept, better, values)
 
 
 def _nearest_first(points: Array, values: Array, kept: list[int]) -> list[int]:
@@ -83,19 +95,23 @@ def _nearest_first(points: Array, values: Array, kept: list[int]) -> list[int]:
     return [first, *(k for k in kept if k != first)]
 
 
-def _escape(chart: Chart, grid: Grid, leak: Leak, bottom: Array, low: float) -> tuple[Escape, float]:
-    """The leak of the grid made exact: the pass near it, or the limit at infinity."""
-    out = leak.outward / np.linalg.norm(leak.outward)
+def _escape(chart: Chart, grid: Grid, leak: Leak | None, minima: Array, low: float) -> tuple[Escape | None, float]:
+    """The leak of the grid made exact: the pass near it, or the limit at infinity; and its relative error."""
+    limit = leak.energy if leak is not None and leak.at_infinity else np.inf
+    if leak is None or (leak.at_infinity and grid.lowest_exit >= limit):
+        found = None
+    else:
+        found = lowest_way_out(chart, grid, leak, minima)
+    if found is not None and found.value < limit:
+        way = found.way if found.way @ (found.point - minima[0]) >= 0 else -found.way
+        doubt = 1e-12 if leak is None or leak.energy > found.value - 0.3 * (found.value - low) else 0.3
+        return Escape(chart.names, found.value, tuple(found.point.tolist()), tuple(way.tolist())), doubt
+    if leak is None:
+        return None, 1e-12
+    out = tuple((leak.outward / np.linalg.norm(leak.outward)).tolist())
     if leak.at_infinity:
-        return Escape(chart.names, leak.energy, None, tuple(out.tolist())), 1e-12
-    spacing = float(grid.spacing(np.array([grid.nearest(leak.point)]))[0])
-    found = pass_near(chart, leak.point, spacing)
-    close = [p for p in found if abs(p.value - leak.energy) <= 0.5 * (leak.energy - low)]
-    if not close:
-        return Escape(chart.names, leak.energy, tuple(leak.point.tolist()), tuple(out.tolist())), 0.1
-    best = min(close, key=lambda p: abs(p.value - leak.energy))
-    way = best.way if best.way @ (best.point - bottom) >= 0 else -best.way
-    return Escape(chart.names, best.value, tuple(best.point.tolist()), tuple(way.tolist())), 1e-12
+        return Escape(chart.names, leak.energy, None, out), 1e-12
+    return Escape(chart.names, leak.energy, tuple(leak.point.tolist()), out), 0.3
 
 
 def _joined(

@@ -1,0 +1,113 @@
+"""The routes between wells: which passes join which minima, and the lowest way out."""
+
+from __future__ import annotations
+
+from itertools import combinations
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from eoscore.measure.landscape_descent import descend
+from eoscore.measure.landscape_pass import Pass, passes_from, walled_passes
+
+if TYPE_CHECKING:
+    from eoscore.measure.landscape_chart import Array, Chart
+    from eoscore.measure.landscape_grid import Grid, Leak
+
+__all__ = ["lowest_way_out"]
+
+OUT = -1
+MOST_STARTS = 100
+MOST_WELLS = 12
+CLOSE = 0.15  # of the depth: a pass this near the grid's level is the one the grid has seen
+
+
+def lowest_way_out(chart: Chart, grid: Grid, leak: Leak | None, minima: Array) -> Pass | None:
+    """The highest pass of the lowest way from the first of the minima (n, d) to the outside; None if none is found.
+
+    Each pass found is descended on both sides, so the way is a real one: its energy bounds the escape from above.
+    """
+    if leak is not None and not leak.at_infinity:
+        near = _through(chart, _near(chart, grid, leak), minima)
+        if near is not None and abs(near.value - leak.energy) < CLOSE * (leak.energy - leak.bottom):
+            return near
+    return _through(chart, _passes(chart, grid, leak, minima), minima)
+
+
+def _through(chart: Chart, passes: list[Pass], minima: Array) -> Pass | None:
+    """The same over the passes given: the least highest pass from well to well (Dijkstra's method)."""
+    if not passes:
+        return None
+    wells = list(minima)
+    ends = _ends(chart, passes, wells)
+    level: dict[int, tuple[float, Pass | None]] = {0: (-np.inf, None)}
+    fixed: set[int] = set()
+    while True:
+        reached = [node for node in level if node not in fixed]
+        if not reached:
+            return None
+        here = min(reached, key=lambda node: level[node][0])
+        if here == OUT:
+            return level[OUT][1]
+        fixed.add(here)
+        for through, (one, other) in zip(passes, ends, strict=True):
+            if here in (one, other):
+                there = other if here == one else one
+                highest = max(level[here], (through.value, through), key=lambda way: way[0])
+                if there not in level or highest[0] < level[there][0]:
+                    level[there] = highest
+
+
+def _near(chart: Chart, grid: Grid, leak: Leak) -> list[Pass]:
+    """Passes near the leak of the grid."""
+    radius = grid.spacing(np.array([grid.nearest(leak.point)]))
+    found = passes_from(chart, leak.point[None], radius)
+    return _distinct(chart, found + walled_passes(chart, leak.point, float(radius[0])))
+
+
+def _passes(chart: Chart, grid: Grid, leak: Leak | None, minima: Array) -> list[Pass]:
+    """Passes from the grid's saddles and leak, and from between the lowest wells."""
+    index = grid.saddles(MOST_STARTS)
+    starts, radius = [grid.points(index)], [grid.spacing(index)]
+    for one, other in combinations(minima[:MOST_WELLS], 2):
+        line = one + np.linspace(0, 1, 33)[1:-1, None] * (other - one)
+        starts.append(line[np.argmax(chart.value(line))][None])
+        radius.append(np.array([np.linalg.norm(other - one) / 10]))
+    found = passes_from(chart, np.concatenate(starts), np.concatenate(radius))
+    if leak is not None and not leak.at_infinity:
+        found += _near(chart, grid, leak)
+    return _distinct(chart, found)
+
+
+def _distinct(chart: Chart, found: list[Pass]) -> list[Pass]:
+    """Passes inside the walls, each once, lowest first."""
+    kept: list[Pass] = []
+    for one_pass in sorted(found, key=lambda p: p.value):
+        margins = chart.margins(one_pass.point)
+        if np.min(margins, initial=0.0) < -1e-9 * np.max(np.abs(margins), initial=0.0):
+            continue
+        close = 1e-6 * (np.linalg.norm(one_pass.point) + 1e6 * chart.nudge)
+        if not any(np.linalg.norm(one_pass.point - other.point) <= close for other in kept):
+            kept.append(one_pass)
+    return kept
+
+
+def _ends(chart: Chart, passes: list[Pass], wells: list[Array]) -> list[tuple[int, int]]:
+    """The wells (or OUT) on both sides of each pass; wells met for the first time are added."""
+    points = np.array([p.point for p in passes])
+    ways = np.array([p.way for p in passes])
+    aside = 1e-5 * (np.linalg.norm(points, axis=1) + 1e7 * chart.nudge)
+    starts = np.concatenate([points + aside[:, None] * ways, points - aside[:, None] * ways])
+    ends, _ = descend(chart, starts, np.tile(10 * aside, 2))
+    nodes = []
+    for end in ends:
+        if not np.linalg.norm(end) < chart.reach:
+            nodes.append(OUT)
+            continue
+        distance = np.linalg.norm(np.array(wells) - end, axis=1)
+        nearest = int(np.argmin(distance))
+        if distance[nearest] > 1e-4 * (np.linalg.norm(end) + 1e6 * chart.nudge):
+            wells.append(end)
+            nearest = len(wells) - 1
+        nodes.append(nearest)
+    return list(zip(nodes[: len(passes)], nodes[len(passes) :], strict=True))
