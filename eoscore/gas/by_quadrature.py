@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from functools import partial
 from itertools import pairwise
 from typing import TYPE_CHECKING
 
@@ -56,8 +57,12 @@ def _least(dispersion: Dispersion) -> float:
     k = int(np.argmin(energy))
     if k in (0, len(SCAN) - 1):
         return float(energy[k])
+    ends = (float(np.log(SCAN[k - 1])), float(np.log(SCAN[k + 1])))
     found = minimize_scalar(
-        lambda p: float(dispersion.energy_at(p)), bounds=(SCAN[k - 1], SCAN[k + 1]), method="bounded"
+        lambda log_p: float(dispersion.energy_at(np.exp(log_p))),
+        bounds=ends,
+        method="bounded",
+        options={"xatol": 1e-12},
     )
     return min(float(energy[k]), float(found.fun))
 
@@ -98,7 +103,9 @@ def _isotropic(dispersion: Dispersion, beta: float, d: int) -> tuple[float, floa
 def _cartesian(dispersion: Dispersion, beta: float, d: int) -> tuple[float, float]:
     """Tensor Gauss-Legendre in panels over the box that holds the thermal particles; two orders give the error."""
     box = [_extent(dispersion, beta, axis, d) for axis in range(d)]
-    fine, rough = (_on_grid(dispersion, beta, box, order) for order in (14, 11))
+    grids = [_grid(dispersion, box, order) for order in (14, 11)]
+    least = _lowest(dispersion, *grids[0][:2])
+    fine, rough = (_summed(np.exp(-beta * (energy - least)), weights) for _, energy, weights in grids)
     return fine, abs(fine - rough)
 
 
@@ -106,24 +113,23 @@ def _extent(dispersion: Dispersion, beta: float, axis: int, d: int) -> list[tupl
     """The stretches of one momentum that hold thermal particles while the others are zero, either sign."""
     found: list[tuple[float, float]] = []
     for sign in (-1.0, 1.0):
-
-        def along(p: FloatArray, sign: float = sign) -> list[FloatArray]:
-            return [sign * p if i == axis else np.zeros_like(p) for i in range(d)]
-
-        zone = inside(dispersion, along(SCAN))
-        least = float(np.min(dispersion.energy_at(*along(SCAN))[zone]))
-
-        def filled(
-            p: FloatArray, least: float = least, along: Callable[[FloatArray], list[FloatArray]] = along
-        ) -> FloatArray:
-            heat = FADED - beta * (dispersion.energy_at(*along(p)) - least)
-            return np.where(inside(dispersion, along(p)), heat, -np.inf)
-
-        found += [(min(sign * a, sign * b), max(sign * a, sign * b)) for a, b in _stretches(filled)]
+        held = partial(_held, dispersion, beta, axis, d, sign)
+        found += [(min(sign * a, sign * b), max(sign * a, sign * b)) for a, b in _stretches(held)]
     return found
 
 
-def _on_grid(dispersion: Dispersion, beta: float, box: list[list[tuple[float, float]]], order: int) -> float:
+def _held(dispersion: Dispersion, beta: float, axis: int, d: int, sign: float, p: FloatArray) -> FloatArray:
+    """Positive where a particle with this momentum along one axis is thermal."""
+    scan, at = ([sign * q if i == axis else np.zeros_like(q) for i in range(d)] for q in (SCAN, p))
+    least = np.min(dispersion.energy_at(*scan)[inside(dispersion, scan)])
+    return np.where(inside(dispersion, at), FADED - beta * (dispersion.energy_at(*at) - least), -np.inf)
+
+
+Grid = tuple["list[FloatArray]", "FloatArray", "list[FloatArray]"]
+
+
+def _grid(dispersion: Dispersion, box: list[list[tuple[float, float]]], order: int) -> Grid:
+    """Momenta, energies (inf outside the zone) and weights of the tensor rule."""
     x, w = np.polynomial.legendre.leggauss(order)
     nodes, weights = [], []
     for stretches in box:
@@ -131,9 +137,30 @@ def _on_grid(dispersion: Dispersion, beta: float, box: list[list[tuple[float, fl
         pairs = [(a, b) for e in edges for a, b in pairwise(e)]
         nodes.append(np.concatenate([(a + b) / 2 + (b - a) / 2 * x for a, b in pairs]))
         weights.append(np.concatenate([(b - a) / 2 * w for a, b in pairs]))
-    momenta = np.meshgrid(*nodes, indexing="ij", sparse=True)
-    energy = np.where(inside(dispersion, momenta), dispersion.energy_at(*momenta), np.inf)
-    total = np.exp(-beta * (energy - energy.min()))
+    momenta = list(np.meshgrid(*nodes, indexing="ij", sparse=True))
+    return momenta, np.where(inside(dispersion, momenta), dispersion.energy_at(*momenta), np.inf), weights
+
+
+def _summed(total: FloatArray, weights: list[FloatArray]) -> float:
     for each in reversed(weights):
         total = total @ each
     return float(total)
+
+
+def _lowest(dispersion: Dispersion, momenta: list[FloatArray], energy: FloatArray) -> float:
+    """The least energy, by the simplex of Nelder and Mead from the lowest point of the grid, within the zone."""
+    from scipy.optimize import minimize
+
+    where = np.unravel_index(int(np.argmin(energy)), energy.shape)
+    start = np.array([axis.ravel()[k] for axis, k in zip(momenta, where, strict=True)])
+    scale = max(float(np.abs(axis).max()) for axis in momenta)
+    unit = max(abs(float(energy[where])), float(np.min(energy[energy > energy[where]]) - energy[where]))
+
+    def lowered(x: FloatArray) -> float:
+        at = [np.asarray(scale * each) for each in x]
+        free = inside(dispersion, at)
+        return float(dispersion.energy_at(*at) - energy[where]) / unit if free else np.inf
+
+    options = {"xatol": 1e-9, "fatol": 1e-12, "maxiter": 4000}
+    found = minimize(lowered, start / scale, method="Nelder-Mead", options=options)
+    return float(energy[where] + unit * min(found.fun, 0.0))
