@@ -93,6 +93,10 @@ class Measure(ABC):
     def density(self, v: ArrayLike) -> FloatArray:
         """dOmega/dv at energies v in J, any shape; 0 outside (0, top). A flat floor at 0 is not in it."""
 
+    def density_beside(self, v: FloatArray, gap: FloatArray | None) -> FloatArray:  # noqa: ARG002
+        """The density at energies v whose signed distance from a break is known better than their difference."""
+        return self.density(v)
+
     @abstractmethod
     def nodes(self, upto: float = inf) -> Nodes:
         """A rule for int g dOmega over [0, min(upto, top)].

@@ -50,7 +50,7 @@ def _of(inner: Measure, chain: Chain) -> Measure:
     terms, steps = inner.powers(), chain.back_polynomial()
     if terms is not None and steps is not None and all(k == round(k) for _, k in terms):
         whole = sum((c * steps ** round(k) for c, k in terms), 0 * steps)
-        found = [(float(c), float(k)) for k, c in enumerate(whole.coef) if c > 0]
+        found = [(float(c), float(k)) for k, c in enumerate(whole.coef.tolist()) if c > 0]
         return Powers(found, top, error=inner.error + 1e-15, route=route)
 
     def omega(v: FloatArray) -> FloatArray:

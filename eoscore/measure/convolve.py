@@ -16,13 +16,15 @@ from eoscore.measure.sampled import Sampled
 if TYPE_CHECKING:
     from collections.abc import Iterator
 
+    Rule = tuple[FloatArray, FloatArray, FloatArray | None]  # v, dv, exact distance of v from a break
+
     from eoscore.measure.base import FloatArray, Measure
 
 __all__ = ["convolve"]
 
 ROUNDING = 2e-14  # of the quadrature below, measured against Beta functions
 BLOCK = 64  # energies taken at once, so that the arrays stay in the cache
-POWER = 4  # v leaves a break as t^4: takes 1/sqrt and ln out of a density
+POWER = 2  # v leaves a break as t^2, which takes 1/sqrt out of a density
 
 
 def convolve(a: Measure, b: Measure) -> Measure:
@@ -97,12 +99,12 @@ def _volume(a: Measure, b: Measure, energies: FloatArray) -> FloatArray:
 def _half(a: Measure, b: Measure, energies: FloatArray) -> FloatArray:
     """int_0^{E/2} a'(v) Omega_b(E - v) dv at energies (n,)."""
     total = np.zeros_like(energies)
-    for v, dv in _rules(a, b, energies):
-        total += np.sum(dv * a.density(v) * b.volume(energies[:, None] - v), axis=1)
+    for v, dv, gap in _rules(a, b, energies):
+        total += np.sum(dv * a.density_beside(v, gap) * b.volume(energies[:, None] - v), axis=1)
     return total
 
 
-def _rules(a: Measure, b: Measure, energies: FloatArray) -> Iterator[tuple[FloatArray, FloatArray]]:
+def _rules(a: Measure, b: Measure, energies: FloatArray) -> Iterator[Rule]:
     """Rules (n, nodes) that together cover [0, E/2], with the breaks of both measures on their ends."""
     middle = energies / 2
     knots = [np.minimum(p, middle) for p in a.breaks]
@@ -110,25 +112,48 @@ def _rules(a: Measure, b: Measure, energies: FloatArray) -> Iterator[tuple[Float
     edges = np.sort(np.array([*knots, middle]), axis=0)
     t, dt = graded(a.exponent or 1.0)
     first = edges[0] if len(edges) == 1 else edges[0] / 2
-    yield first[:, None] * t, first[:, None] * dt
+    yield first[:, None] * t, first[:, None] * dt, None
     if len(edges) > 1:
-        yield _towards(edges[0], -first)
-        for lo, hi in pairwise(edges):
-            yield _towards(lo, (hi - lo) / 2)
-            yield _towards(hi, (lo - hi) / 2)
+        yield _towards(a, edges[0], -first)
+        for i, (lo, hi) in enumerate(pairwise(edges)):
+            middle = (lo + hi) / 2
+            near = np.minimum(2 * lo, middle) if i == 0 else middle
+            yield _towards(a, lo, near - lo)
+            if i == 0:  # the bottom of a, just below, is as near as the first break
+                yield _rising(near, middle)
+            yield _towards(a, hi, middle - hi)
 
 
-def _towards(end: FloatArray, length: FloatArray) -> tuple[FloatArray, FloatArray]:
-    """A rule on the stretch of a signed length that begins at `end`, for a density that is singular there."""
-    t, dt = _halving()
-    v = end[:, None] + length[:, None] * t**POWER
-    return v, np.abs(length)[:, None] * POWER * t ** (POWER - 1) * dt
+def _rising(lo: FloatArray, hi: FloatArray) -> Rule:
+    """A rule on [lo, hi], lo > 0, in equal panels of ln v."""
+    x, w = legendre(12)
+    panels = 16
+    share = ((np.arange(panels)[:, None] + x) / panels).ravel()
+    length = np.log(hi / lo)[:, None]
+    v = lo[:, None] * np.exp(length * share)
+    return v, v * length * np.tile(w / panels, panels), None
+
+
+def _towards(a: Measure, end: FloatArray, length: FloatArray) -> Rule:
+    """A rule on the stretch of a signed length that begins at `end`, for a density that is singular there.
+
+    The distances from the nearest break of a are exact, so its density keeps its digits beside 1/sqrt.
+    """
+    t, dt = _quartering()
+    step = length[:, None] * t**POWER
+    v, dv = end[:, None] + step, np.abs(length)[:, None] * POWER * t ** (POWER - 1) * dt
+    if not a.breaks:
+        return v, dv, None
+    breaks = np.array(a.breaks)
+    nearest = breaks[np.argmin(np.abs(breaks[:, None] - end), axis=0)][:, None]
+    gap = (end[:, None] - nearest) + step
+    return np.where(gap < 0, np.minimum(v, np.nextafter(nearest, 0.0)), np.maximum(v, nearest)), dv, gap
 
 
 @cache
-def _halving(panels: int = 6, order: int = 14) -> tuple[FloatArray, FloatArray]:
-    """Nodes t and weights on [0, 1], in panels that halve towards 0: a break may lie just outside, too."""
+def _quartering(panels: int = 11, order: int = 14) -> tuple[FloatArray, FloatArray]:
+    """Nodes t and weights on [0, 1], in panels of ratio 4 towards 0: another break may lie just outside."""
     x, w = legendre(order)
-    edges = np.concatenate([[0.0], 0.5 ** np.arange(panels - 1, -1, -1)])
+    edges = np.concatenate([[0.0], 0.25 ** np.arange(panels - 1, -1, -1)])
     length = np.diff(edges)[:, None]
     return (edges[:-1, None] + length * x).ravel(), (length * w).ravel()

@@ -23,7 +23,7 @@ __all__ = ["homogeneous"]
 
 ROUTE = "quasi-homogeneous"
 ORDERS = (48, 72, 108, 162)  # nodes in each angle; the error falls to about its square from one to the next
-ENOUGH, ROUNDING, WORST = 1e-8, 3e-14, 1e-5  # relative differences between two rules
+ENOUGH, ROUNDING, WORST = 5e-10, 3e-14, 1e-5  # relative differences between two rules
 
 
 def homogeneous(field: Field) -> Measure | None:
@@ -43,13 +43,12 @@ def homogeneous(field: Field) -> Measure | None:
     if axes is None:
         return None
     total = float(sum(found[name] * multiplicity(name) for name in names))
-    before, error = None, np.inf
+    constant, error = 0.0, np.inf
     for order in ORDERS:
-        constant = _angular(field, axes, powers, total, order)
-        if constant is None:
+        before, finer = constant, _angular(field, axes, powers, total, order)
+        if finer is None:
             return None
-        error = abs(constant - before) / constant if before else np.inf
-        before = constant
+        constant, error = finer, abs(finer - before) / finer
         if error <= ENOUGH:
             return Powers([(constant, total)], error=ROUNDING, route=ROUTE)
     return Powers([(constant, total)], error=max(error, ROUNDING), route=ROUTE) if error < WORST else None
@@ -62,7 +61,7 @@ def _keeps(wall: Formula, names: tuple[str, ...], powers: FloatArray) -> bool:
     if found is None:
         return False
     ratios = [float(found[name]) / powers[names.index(name)] for name in used]
-    return max(ratios) - min(ratios) <= 1e-12 * abs(ratios[0])
+    return bool(max(ratios) - min(ratios) <= 1e-12 * abs(ratios[0]))
 
 
 def _units(field: Field, powers: FloatArray) -> FloatArray | None:

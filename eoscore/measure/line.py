@@ -37,7 +37,7 @@ def line(field: Field, landscape: Landscape) -> Measure | None:
     found = profile(field, landscape)
 
     def omega(v: FloatArray) -> FloatArray:
-        return np.sum([_swept(name, branch, branch.reach(v)) for branch in found.branches], axis=0)
+        return np.asarray(sum(_swept(name, branch, branch.reach(v)) for branch in found.branches))
 
     first = min((*found.breaks, landscape.depth))
     lowest = min(found.branches, key=lambda branch: branch.base)

@@ -45,7 +45,7 @@ def profile(field: Field, landscape: Landscape) -> Profile:
     place, v_min = bottom.position[0], bottom.value
     ends = next(ends for ends in positive_intervals(walls, name) if ends[0] <= place <= ends[1])
     ends = (max(ends[0], 0.0), ends[1]) if radial else ends
-    turning = _turning(monotone_pieces(f, name))
+    turning = _turning(monotone_pieces(f, name, ends))
     x = np.array([ends[0], *turning[(turning > ends[0]) & (turning < ends[1])], ends[1]])
     rise = _rise(f, name, x, v_min)
     held = _connected(x, rise, place, landscape.depth)

@@ -20,13 +20,13 @@ __all__ = ["ball", "ellipsoid", "quadratic"]
 
 def ball(d: int) -> float:
     """Volume of the ball of radius 1 in d dimensions (DLMF 5.19.4)."""
-    return pi ** (d / 2) / gamma(d / 2 + 1)
+    return float(pi ** (d / 2) / gamma(d / 2 + 1))
 
 
 def ellipsoid(hessian: FloatArray) -> float:
     """C of Omega = C v^{d/2} where V = x H x / 2 with a positive definite H (J/m^2)."""
     d = len(hessian)
-    return ball(d) * float(np.prod(np.sqrt(2 / np.linalg.eigvalsh(hessian))))
+    return float(ball(d) * np.prod(np.sqrt(2 / np.linalg.eigvalsh(hessian))))
 
 
 def quadratic(field: Field) -> Measure | None:

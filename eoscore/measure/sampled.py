@@ -71,11 +71,17 @@ class Sampled(Measure):
 
     def density(self, v: ArrayLike) -> FloatArray:
         """See `Measure.density`."""
+        return self.density_beside(np.asarray(v, dtype=float), None)
+
+    def density_beside(self, v: FloatArray, gap: FloatArray | None) -> FloatArray:
+        """See `Measure.density_beside`."""
         energy = np.asarray(v, dtype=float)
         flat = energy.ravel()
         inside = (flat > 0) & (flat < self.top)
         flat = np.where(inside, flat, self.foot)
-        ratio, slope = self._up_to(flat).value_and_derivative(np.maximum(flat, self.foot))
+        ratio, slope = self._up_to(flat).value_and_derivative(
+            np.maximum(flat, self.foot), None if gap is None else gap.ravel()
+        )
         slope = np.where(flat < self.foot, 0.0, slope)
         density = (flat / self.scale) ** self.exponent * (self.exponent * ratio / flat + slope)
         return np.where(inside, density, 0.0).reshape(energy.shape)

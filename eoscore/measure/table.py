@@ -47,21 +47,25 @@ class Table:
         which, _, s = self._locate(v)
         return _clenshaw(self.series.T, which, s)
 
-    def value_and_derivative(self, v: FloatArray) -> tuple[FloatArray, FloatArray]:
-        """The function and its derivative in v, shapes (n,)."""
-        which, slope, s = self._locate(v)
+    def value_and_derivative(
+        self, v: FloatArray, gap: FloatArray | None = None
+    ) -> tuple[FloatArray, FloatArray]:
+        """The function and its derivative in v, shapes (n,); `gap`: distance from a break where better known."""
+        which, slope, s = self._locate(v, gap)
         return _clenshaw(self.series.T, which, s), _clenshaw(self.slopes.T, which, s) / slope
 
     def _locate(
-        self, v: FloatArray
+        self, v: FloatArray, gap: FloatArray | None = None
     ) -> tuple[np.ndarray[tuple[int], np.dtype[np.intp]], FloatArray, FloatArray]:
         """Panel, dv/ds and s in [0, 1] of each energy."""
         which = np.clip(np.searchsorted(self.firsts, v, side="right") - 1, 0, len(self.panels) - 1)
         lo, hi, kind, start, stop = (column[which] for column in self._shape)
         span = np.log(hi / lo)
         width = hi - lo
-        near = np.where(kind == CODE["left"], v - lo, hi - v) / width
-        root = np.maximum(near, 4e-16) ** (1 / POWER)  # closer to a break an energy is not known as a double
+        near = np.where(kind == CODE["left"], v - lo, hi - v)
+        if gap is not None:
+            near = np.where(np.abs(np.abs(gap) - near) <= 4e-15 * v, np.abs(gap), near)
+        root = np.maximum(near / width, 1e-30 if gap is not None else 4e-16) ** (1 / POWER)
         t = np.where(kind == 0, np.log(v / lo) / span, np.where(kind == CODE["left"], root, 1 - root))
         slope = np.where(kind == 0, v * span, width * POWER * root ** (POWER - 1))
         length = stop - start
