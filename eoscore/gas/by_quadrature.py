@@ -161,6 +161,5 @@ def _lowest(dispersion: Dispersion, momenta: list[FloatArray], energy: FloatArra
         free = inside(dispersion, at)
         return float(dispersion.energy_at(*at) - energy[where]) / unit if free else np.inf
 
-    options = {"xatol": 1e-9, "fatol": 1e-12, "maxiter": 4000}
-    found = minimize(lowered, start / scale, method="Nelder-Mead", options=options)
+    found = minimize(lowered, start / scale, method="Nelder-Mead", options={"xatol": 1e-9, "fatol": 1e-12})
     return float(energy[where] + unit * min(found.fun, 0.0))

@@ -7,7 +7,9 @@ import subprocess
 import sys
 from pathlib import Path
 
+import numpy as np
 import pytest
+from scipy.special import ive
 
 PACKAGE = Path(__file__).parent / "package"
 
@@ -90,3 +92,41 @@ def test_the_band_computes(python):
         4 * 6.6e-32, rel=1e-2
     )  # about the edge of the zone, pi hbar/a = 6.63e-28 kg m/s
     assert parameters == ["J", "a"]
+
+
+FILE = """
+gas atoms {
+    dispersion band { J = 2e-32 J
+                      a = 500 nm }
+}
+find n_c for atoms in uniform with T = 1 nK
+"""
+
+
+def test_a_file_asks_for_the_band(python, tmp_path):
+    """n_c a^3 = sum_j [e^{-2jJ/kT} I_0(2jJ/kT)]^3 (checked in tests/published), here by a plain sum and its tail."""
+    (tmp_path / "lattice.tarn").write_text(FILE, encoding="utf-8")
+    found = printed(python("-m", "eoscore", "run", "--json", tmp_path / "lattice.tarn"))["answers"][0][
+        "found"
+    ]["n_c"]
+    x = 2 * 2e-32 / (1.380649e-23 * 1e-9)
+    j = np.arange(1, 4001)
+    tail = (
+        2 / np.sqrt(4000.5) / (2 * np.pi * x) ** 1.5
+    )  # int of (2 pi j x)^-3/2, the first term of DLMF 10.40.1
+    assert found["value"] * 5e-7**3 == pytest.approx(np.sum(ive(0, j * x) ** 3) + tail, rel=1e-6)
+
+
+def test_a_file_asks_for_a_broken_one(python, tmp_path):
+    (tmp_path / "bad.tarn").write_text("gas g { dispersion unripe }", encoding="utf-8")
+    run = python("-m", "eoscore", "check", tmp_path / "bad.tarn")
+    assert run.returncode == 1
+    assert "plugin 'unripe' is refused" in run.stderr
+    assert "Traceback" not in run.stderr
+
+
+def test_the_command_lists_it(python):
+    run = python("-m", "eoscore", "plugins")
+    assert run.returncode == 0, run.stderr
+    assert "band" in run.stdout
+    assert "Ashcroft" in run.stdout
