@@ -9,10 +9,12 @@ from typing import TYPE_CHECKING
 from eoscore.answer.assembly import assembled
 from eoscore.answer.cautions import cautions_for
 from eoscore.answer.chain import Chain
-from eoscore.answer.record import Caution, FoundAnswer, Given
+from eoscore.answer.holding import HeldGases
+from eoscore.answer.record import Caution, FoundAnswer
 from eoscore.answer.scene import Scene
 from eoscore.answer.uncertainty import with_uncertainty
 from eoscore.answer.unit import unit_of_dimension
+from eoscore.answer.wording import given_of, words_of
 
 if TYPE_CHECKING:
     from collections.abc import Iterable, Mapping
@@ -25,13 +27,16 @@ if TYPE_CHECKING:
 __all__ = ["answer_to"]
 
 
-def answer_to(program: Program, question: Question, accuracy: float = 1e-6) -> Answer:
-    """The answer to one question; where there is no number, words."""
+def answer_to(
+    program: Program, question: Question, accuracy: float = 1e-6, held: HeldGases | None = None
+) -> Answer:
+    """The answer to one question; where there is no number, words. `held` shares held gases among questions."""
+    held = held or HeldGases()
     if question.verb == "derive":
         from eoscore.answer.deriving import derived
 
-        return derived(program, question, words_of(question), given_of(question))
-    chain = Chain(program, question)
+        return derived(program, question, held)
+    chain = Chain(program, question, held)
     parts = chain.parts()
     findings = {name: assembled(chain.grid, [part.readings[name] for part in parts]) for name in chain.names}
     findings = with_uncertainty(chain, parts, _with_leak(findings, parts))
@@ -56,18 +61,6 @@ def _with_leak(findings: Mapping[str, Finding], parts: list[Part]) -> dict[str, 
     if "depth" not in findings or place is None or place.top == inf:
         return dict(findings)
     return {**findings, "depth": replace(findings["depth"], note=f"leaks {place.escape_words}")}
-
-
-def words_of(question: Question) -> str:
-    """The question as it stands in the file, on one line."""
-    lines = (line.partition("#")[0] for line in question.node.span.text.splitlines())
-    return " ".join(" ".join(lines).split())
-
-
-def given_of(question: Question) -> dict[str, Given]:
-    """The conditions and the new values of parameters, in SI."""
-    every = {**question.given, **question.values}
-    return {name: Given(each.value, unit_of_dimension(each.dimension)) for name, each in every.items()}
 
 
 def _cautions(parts: list[Part], findings: Mapping[str, Finding], accuracy: float) -> tuple[Caution, ...]:

@@ -1,18 +1,13 @@
-"""The whole way from a question to its readings, for one set of values of the uncertain literals.
-
-What does not change between two stops of a grid, or between two values of a literal, is held once: bindings are
-compared by their facts, and equal facts share one held gas.
-"""
+"""The whole way from a question to its readings, for any values of the uncertain literals."""
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field, fields
+from dataclasses import dataclass, field
 from typing import TYPE_CHECKING
 
 import numpy as np
 
 from eoscore.answer.grid import Grid, Stop
-from eoscore.answer.holding import held_gas
 from eoscore.answer.unit import unit_of_dimension
 from eoscore.errors import NoAnswerError
 from eoscore.language.quantities import QUANTITIES
@@ -20,10 +15,11 @@ from eoscore.state.reading import Reason, reading_of
 from eoscore.state.table import unit_in
 
 if TYPE_CHECKING:
-    from collections.abc import Hashable, Mapping
+    from collections.abc import Mapping
 
     from numpy.typing import NDArray
 
+    from eoscore.answer.holding import HeldGases
     from eoscore.language.program import Binding, Program
     from eoscore.language.question import Question
     from eoscore.state.held import HeldGas
@@ -54,8 +50,8 @@ class Chain:
 
     program: Program
     question: Question
+    held: HeldGases
     grid: Grid = field(init=False)
-    _kept: dict[Hashable, HeldGas | NoAnswerError] = field(init=False, default_factory=dict)
 
     def __post_init__(self) -> None:
         self.grid = Grid(self.question.over)
@@ -90,19 +86,7 @@ class Chain:
             return Part(stop, binding, None, given, self._without(physical, fault.why) | named)
 
     def _held(self, binding: Binding) -> HeldGas:
-        facts = _facts(binding)
-        if facts not in self._kept:
-            self._kept[facts] = self._hold(binding)
-        outcome = self._kept[facts]
-        if isinstance(outcome, NoAnswerError):
-            raise outcome
-        return outcome
-
-    def _hold(self, binding: Binding) -> HeldGas | NoAnswerError:
-        try:
-            return held_gas(binding, self.question.dimension)
-        except NoAnswerError as fault:
-            return fault
+        return self.held.of(binding, self.question.dimension)
 
     def _brought(
         self,
@@ -138,10 +122,3 @@ class Chain:
             name: reading_of(nothing, nothing, unit, "", (Reason(why, everywhere),))
             for name, unit in units.items()
         }
-
-
-def _facts(binding: Binding) -> Hashable:
-    """All that a held gas depends on; formulas are shared, so equal ones are the same object."""
-    gas = binding.gas
-    plain = (getattr(gas, each.name) for each in fields(gas) if each.name != "parameters")
-    return binding.place, *plain, *sorted(gas.parameters.items())

@@ -5,19 +5,19 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from eoscore import symbolic
-from eoscore.answer.holding import held_gas
 from eoscore.answer.record import DerivedAnswer
+from eoscore.answer.wording import given_of, words_of
 from eoscore.errors import Complaint, TarnError
 
 if TYPE_CHECKING:
-    from eoscore.answer.record import Given
+    from eoscore.answer.holding import HeldGases
     from eoscore.language.program import Program
     from eoscore.language.question import Question
 
 __all__ = ["derived"]
 
 
-def derived(program: Program, question: Question, words: str, given: dict[str, Given]) -> DerivedAnswer:
+def derived(program: Program, question: Question, held: HeldGases) -> DerivedAnswer:
     """The formulas that a `derive` asks for.
 
     Raises
@@ -31,7 +31,7 @@ def derived(program: Program, question: Question, words: str, given: dict[str, G
         raise TarnError([Complaint.at(question.node.span, message, "ask for numbers with `find`")])
     conditions = program.conditions(question)
     binding = program.bind(question.gas, question.place, conditions.values)
-    held = held_gas(binding, question.dimension)
     names = tuple(dict.fromkeys(ident.name for ident in question.quantities))
-    formulas = derive(binding, held, names, conditions.given)
+    formulas = derive(binding, held.of(binding, question.dimension), names, conditions.given)
+    words, given = words_of(question), given_of(question)
     return DerivedAnswer(question.line, words, question.gas, question.place, given, formulas)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import cached_property
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -14,6 +15,7 @@ if TYPE_CHECKING:
     from concurrent.futures import Executor
     from os import PathLike
 
+    from eoscore.answer.holding import HeldGases
     from eoscore.answer.record import Answer
     from eoscore.language.program import Program
     from eoscore.state import HeldGas
@@ -85,10 +87,8 @@ class LabGas:
         NoAnswerError
             Where the place holds nothing, or is open, in words.
         """
-        from eoscore.answer.holding import held_gas
-
         name = None if place is None else place.name
-        return held_gas(self.lab.program.bind(self.name, name, values), dimension)
+        return self.lab.held.of(self.lab.program.bind(self.name, name, values), dimension)
 
 
 class Lab:
@@ -97,6 +97,13 @@ class Lab:
     def __init__(self, recipe: Recipe) -> None:
         self._recipe = recipe
         self.program: Program = recipe.program()
+
+    @cached_property
+    def held(self) -> HeldGases:
+        """The gases that are held already."""
+        from eoscore.answer.holding import HeldGases
+
+        return HeldGases()
 
     def __getitem__(self, name: str) -> LabGas | LabPlace:
         """The gas or the place of this name; `uniform` is always there."""
@@ -127,7 +134,9 @@ class Lab:
                 return self._shared(accuracy, processes, workers)
         from eoscore.answer.asking import answer_to
 
-        return tuple(answer_to(self.program, question, accuracy) for question in self.program.questions)
+        return tuple(
+            answer_to(self.program, question, accuracy, self.held) for question in self.program.questions
+        )
 
     def _shared(self, accuracy: float, executor: Executor, workers: int) -> tuple[Answer, ...]:
         from eoscore.answer.sharing import shared_answer

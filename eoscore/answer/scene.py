@@ -36,8 +36,11 @@ class Scene:
             return _finite(self.given[name])
         if name in self.found:
             return _finite(self.found[name].value)
+        return self._solved(name, self.given)
+
+    def _solved(self, name: str, given: Mapping[str, NDArray[np.float64]]) -> NDArray[np.float64] | None:
         try:
-            return _finite(self.held.find((name,), self.given)[name].value)
+            return _finite(self.held.find((name,), given)[name].value)
         except EoscoreError:
             return None  # a caution is told where its size is known, and is silent elsewhere
 
@@ -49,6 +52,16 @@ class Scene:
             if values is not None:
                 return float(values.min())
         return None
+
+    @cached_property
+    def density(self) -> float | None:
+        """The largest peak density in play in m^-3, of the states asked for, else at condensation."""
+        if self.held.dimension != 3:
+            return None
+        values = self.number("n_peak")
+        if values is None and self.temperature is not None and "N" in self.given:
+            values = self._solved("n_peak", {"N": self.given["N"].max(), "T": np.asarray(self.temperature)})
+        return None if values is None else float(values.max())
 
     @cached_property
     def frequencies(self) -> tuple[float, ...]:

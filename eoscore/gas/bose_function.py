@@ -27,7 +27,7 @@ from typing import TYPE_CHECKING, overload
 import numpy as np
 
 from eoscore.gas.blocks import blockwise, horner, horner_scalar
-from eoscore.gas.precise import checked_order, moved, polynomial, powers, precisely, zeta_row
+from eoscore.gas.precise import checked_order, moved, polynomial, polynomial_value, powers, precisely, zeta_row
 from eoscore.gas.singular import AbstractSingular, singular_of
 
 if TYPE_CHECKING:
@@ -71,26 +71,19 @@ def _make(s: float) -> _Table:
     for k, value in enumerate(row):
         factorial *= -max(k, 1)
         taylor.append(-value / factorial)
-    regular = polynomial(lambda x: _sum(taylor, x), 0.0, seam, 10 if seam < 1 else 16)
+    regular = polynomial(lambda x: polynomial_value(taylor, x), 0.0, seam, 10 if seam < 1 else 16)
     centre = 1.0 + math.sqrt(-math.expm1(-seam))
     tail = powers(order)[1:]
 
     def beyond(v: Decimal) -> Decimal:
         z = Decimal(centre) * v / (1 + v)
-        return (Decimal(centre) - z) * _sum(tail, z)
+        return (Decimal(centre) - z) * polynomial_value(tail, z)
 
     edge = math.exp(-seam)
     far = polynomial(beyond, 0.0, edge / (centre - edge), 17)
     first = float(regular[0])
     rest = float(regular[0] - Decimal(first))
     return _Table(s, seam, singular, tuple(map(float, regular)), rest, centre, tuple(map(float, far)), limit)
-
-
-def _sum(coefficients: list[Decimal] | tuple[Decimal, ...], x: Decimal) -> Decimal:
-    result = Decimal(0)
-    for coefficient in reversed(coefficients):
-        result = result * x + coefficient
-    return result
 
 
 def _near(table: _Table, alpha: Block) -> Block:

@@ -9,12 +9,12 @@ cancel and is far below a double.
 from __future__ import annotations
 
 import math
-from decimal import Context, Decimal, localcontext
+from decimal import Context, Decimal, getcontext, localcontext
 from functools import cache, lru_cache, wraps
 from typing import TYPE_CHECKING, ParamSpec, TypeVar
 
 if TYPE_CHECKING:
-    from collections.abc import Callable
+    from collections.abc import Callable, Sequence
 
 __all__ = [
     "ORDERS",
@@ -23,9 +23,11 @@ __all__ = [
     "checked_order",
     "cosine_sine",
     "eta_row",
+    "even_eta",
     "gamma",
     "moved",
     "polynomial",
+    "polynomial_value",
     "powers",
     "precisely",
     "reciprocal_gamma",
@@ -65,8 +67,8 @@ def checked_order(s: float) -> float:
 
 
 def moved(s: float) -> Decimal:
-    """The order as a decimal, a little off it, so that no integer order is a pole of anything."""
-    return Decimal(s) + _SHIFT
+    """The order as a decimal; a whole one a little off, so that it is no pole of anything."""
+    return Decimal(s) + (_SHIFT if abs(s - round(s)) < _SHIFT else 0)
 
 
 @cache
@@ -135,6 +137,17 @@ def eta_row(order: Decimal) -> list[Decimal]:
     return [value * (1 - 2 ** (1 - order + j)) for j, value in enumerate(zeta_row(order))]
 
 
+@cache
+@precisely
+def even_eta(count: int) -> tuple[Decimal, ...]:
+    """sum_k (-1)^(k-1) k^(-2j) for j = 0 ... count - 1."""
+    row, terms = [], list(_weights())
+    for _ in range(count):
+        row.append(sum(terms, Decimal(0)))
+        terms = [term / (k * k) for k, term in enumerate(terms, 1)]
+    return tuple(row)
+
+
 @precisely
 def gamma(x: Decimal) -> Decimal:
     """Gamma(x) for 0 < x < 40, by the series of the incomplete function up to N = 200 (DLMF 8.7.1).
@@ -161,19 +174,29 @@ def reciprocal_gamma(x: Decimal) -> Decimal:
     return product / gamma(x)
 
 
-@precisely
 def cosine_sine(x: Decimal) -> tuple[Decimal, Decimal]:
-    """Cosine and sine, by Taylor's series of an angle halved ten times and more."""
-    halvings = 10 + int(abs(x)).bit_length()
-    parts, term, k = [Decimal(1), Decimal(0)], x / 2**halvings, 1
-    while abs(term) > Decimal(10) ** -_DIGITS:
-        parts[k % 2] += term
-        k += 1
-        term *= (-1) ** (k + 1) * x / 2**halvings / k
-    cosine, sine = parts
+    """Cosine and sine with the digits of the context, by Taylor's series of an angle halved eight times and more."""
+    halvings = 8 + int(abs(x)).bit_length()
+    small = x / 2**halvings
+    square, least = -small * small, Decimal(10) ** -getcontext().prec
+    cosine = even = Decimal(1)
+    sine = odd = small
+    k = 2
+    while abs(even) > least:
+        even *= square / (k * (k - 1))
+        odd *= square / (k * (k + 1))
+        cosine, sine, k = cosine + even, sine + odd, k + 2
     for _ in range(halvings):
         cosine, sine = cosine * cosine - sine * sine, 2 * cosine * sine
     return cosine, sine
+
+
+def polynomial_value(coefficients: Sequence[Decimal], x: Decimal) -> Decimal:
+    """The polynomial with these coefficients, lowest first, at x."""
+    result = Decimal(0)
+    for coefficient in reversed(coefficients):
+        result = result * x + coefficient
+    return result
 
 
 @precisely

@@ -103,7 +103,7 @@ def side_by_side(failure: Failure) -> Fault | None:
     left = re.search(r"(\w+|[)\]])[ \t]*$", failure.text[max(line_start, start - 80) : start])
     if left is None:
         return None
-    if left[1] in RESERVED:  # it was taken for the unit of a number already
+    if left[1] in RESERVED or left[1] in LINE_WORDS:  # it was taken for the unit of a number already
         word = max(line_start, start - 80) + left.start(1)
         return unknown_unit(left[1], Span(failure.source, word, word + len(left[1])))
     right = failure.text[start:end]

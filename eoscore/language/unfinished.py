@@ -21,7 +21,8 @@ _SIGNS: Final = {
 # Types of tokens that come together, and the words for them; each takes its types away from those that follow.
 _TOGETHER: Final = (
     ({"NUMBER", "NAME", "LPAR", "MINUS", "IF"}, "a value (a number, a name, a function or a bracket)"),
-    ({"PLUS", "MINUS", "STAR", "SLASH"}, "an operator"),
+    ({"PLUS", "MINUS"}, "an operator"),
+    ({"STAR", "SLASH"}, ""),
     ({"CIRCUMFLEX"}, ""),
     ({"LESSTHAN", "AT_MOST", "MORETHAN", "AT_LEAST"}, "a comparison"),
     ({"GAS", "TRAP", "STATES", "USE", "FIND", "DERIVE", "NAME", "$END"}, "the next entry"),

@@ -10,7 +10,7 @@ from typing import TYPE_CHECKING, Final
 from eoscore import constants
 from eoscore.language.dimension import ONE, Dimension
 from eoscore.language.faults import Fault, Faults
-from eoscore.language.reserved import RESERVED
+from eoscore.language.reserved import LINE_WORDS, RESERVED
 from eoscore.source import Span
 
 if TYPE_CHECKING:
@@ -148,7 +148,7 @@ def unknown_unit(symbol: str, span: Span) -> Fault:
     message = (
         f"`{symbol}` came after a number on its line, where a unit was expected, and no unit is called so"
     )
-    if symbol in RESERVED:
+    if symbol in RESERVED or symbol in LINE_WORDS:
         return Fault(span, message, f"begin a new line before `{symbol}`")
     asked = " or ".join(f"`{name}`" for name in near_units(symbol))
     units = (

@@ -95,16 +95,30 @@ def _follow(chart: Chart, i: int, axis: Axis, anchors: Array) -> None:
     points[:, :, i] = line
     slope = np.sign(chart.slopes(points)[..., i])
     turned = slope[:, 1:] * slope[:, :-1] < 0
-    found = [(line[1:] + line[:-1])[np.any(turned, axis=0)] / 2]
+    found = [_turns(chart, i, points, turned)]
     if chart.walls:
         found.append(_crossings(chart, i, points))
     turns = np.unique(np.concatenate(found))
+    turns = turns[np.diff(turns, prepend=-np.inf) > 1e-6 * 10.0**axis.least]
     axis.turns = turns[np.argsort(np.abs(turns), kind="stable")[:MOST_TURNS]]
     v = chart.value(points)
     change = np.max([_change(row, bends) for row, bends in zip(v, turned, strict=True)], axis=0)
     nearest = np.min(np.abs(np.subtract.outer(sorted(axis.marks), (line[1:] + line[:-1]) / 2)), axis=0)
     decades = np.diff(line) / (nearest + 10.0 ** (axis.least - 1))
     axis.known, axis.change = line, np.concatenate([[0.0], np.cumsum(change + 0.1 * decades)])
+
+
+def _turns(chart: Chart, i: int, points: Array, turned: NDArray[np.bool_]) -> Array:
+    """Where the slope along the axis vanishes or jumps between neighbouring points, by bisection."""
+    row, k = np.nonzero(turned)
+    low, high = points[row, k], points[row, k + 1]
+    sign = np.sign(chart.slopes(low)[:, i])
+    for _ in range(30):
+        middle = (low + high) / 2
+        same = np.sign(chart.slopes(middle)[:, i]) == sign
+        low[same], high[~same] = middle[same], middle[~same]
+    turns: Array = (low[:, i] + high[:, i]) / 2
+    return turns
 
 
 def _change(v: Array, turned: NDArray[np.bool_]) -> Array:
@@ -184,9 +198,9 @@ def _see_scales(chart: Chart, axes: list[Axis], anchors: Array) -> None:
             slope[steps < 1e-9 * np.abs(anchors[:, i : i + 1])] = np.nan  # lost in the rounding of x
             axis.see(DECADES[_bends(slope)])
             if chart.walls:
-                margins = chart.margins(np.concatenate([anchors[:, None, :], points], axis=1))
-                crossed = np.any(np.diff(np.sign(margins), axis=2) != 0, axis=(0, 1))
-                axis.see(DECADES[crossed])
+                sides = np.sign(chart.margins(points))
+                crossed = np.any(sides[:, :, 1:] * sides[:, :, :-1] < 0, axis=(0, 1))
+                axis.see(DECADES[1:][crossed])
         if np.isfinite(axis.half_wave):
             axis.see(np.array([np.floor(np.log10(axis.half_wave))]))
 

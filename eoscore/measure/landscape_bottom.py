@@ -87,7 +87,10 @@ def _level_along(chart: Chart, point: Array, value: float, axis: Array, scale: f
         across = chart.value(point + reach * np.vstack([np.eye(point.size), -np.eye(point.size)]))
         typical = float(np.max(across[np.isfinite(across)], initial=value)) - value
         slack = 1e-9 * typical + 1e-15 * abs(value)
-        if float(chart.value(aside[None])[0]) - value > slack:
+        risen = float(chart.value(aside[None])[0]) - value
+        if not np.isfinite(risen):
+            return "straight"
+        if risen > slack:
             ends, values = descend(chart, aside[None], np.array([0.1 * reach]))
             moved = float(np.linalg.norm(ends[0] - point)) > 0.3 * reach
             return "bends" if moved and values[0] - value <= slack else "rises"

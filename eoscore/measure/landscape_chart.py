@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 from numpy.typing import NDArray
 
-from eoscore.formula import call, gradient, hessian, variable
+from eoscore.formula import gradient, hessian
 from eoscore.formula.tape import tape_of
 
 if TYPE_CHECKING:
@@ -32,11 +32,9 @@ class Chart:
     def __init__(self, field: Field) -> None:
         self.names = field.coordinates
         self.dimension = len(self.names)
-        even: dict[str, Formula | float] = {
-            name: call("abs", variable(name)) for name in self.names if name in RADIAL
-        }
-        self.formula = field.formula.substitute(even)
-        self.walls = tuple(part for wall in field.walls for part in split_wall(wall.substitute(even)))
+        self.radial = np.array([name in RADIAL for name in self.names])
+        self.formula = field.formula
+        self.walls = tuple(part for wall in field.walls for part in split_wall(wall))
         upper = [
             entry
             for i, row in enumerate(hessian(self.formula, self.names))
@@ -52,8 +50,13 @@ class Chart:
         self.nudge, self.reach = 0.0, np.inf
 
     def at(self, points: Array) -> dict[str, Array]:
-        """Points as values of the coordinates."""
-        return {name: points[..., i] for i, name in enumerate(self.names)}
+        """Points as values of the coordinates, radial ones by their size."""
+        columns = enumerate(self.names)
+        return {name: np.abs(points[..., i]) if self.radial[i] else points[..., i] for i, name in columns}
+
+    def _sides(self, points: Array) -> Array:
+        """The sign of each radial coordinate, 1 for the others and at 0."""
+        return np.where(self.radial & (points < 0), -1.0, 1.0)
 
     def value(self, points: Array) -> Array:
         """V at points (..., d), inf outside the walls and where it is not defined."""
@@ -69,7 +72,7 @@ class Chart:
 
     def slopes(self, points: Array) -> Array:
         """First derivatives, shape (..., d)."""
-        return np.stack(self._slopes.run(self.at(points))[1:], axis=-1)
+        return np.stack(self._slopes.run(self.at(points))[1:], axis=-1) * self._sides(points)
 
     def jet(self, points: Array) -> tuple[Array, Array, Array]:
         """V without walls (n,), gradient (n, d), Hessian (n, d, d)."""
@@ -83,13 +86,17 @@ class Chart:
         curvature = np.empty((*values[0].shape, d, d))
         for entry, i, j in zip(values[1 + d :], *self._upper, strict=True):
             curvature[..., i, j] = curvature[..., j, i] = entry
-        return values[0], np.stack(values[1 : 1 + d], axis=-1), curvature
+        sides = self._sides(points)
+        curvature *= sides[..., :, None] * sides[..., None, :]
+        return values[0], np.stack(values[1 : 1 + d], axis=-1) * sides, curvature
 
     def wall_jet(self, index: int, point: Array) -> tuple[float, Array, Array]:
         """A wall function at one point: value, gradient (d,), Hessian (d, d)."""
         values = np.array([float(v) for v in self._wall_jets[index].run(self.at(point))])
         d = self.dimension
-        return float(values[0]), values[1 : 1 + d], values[1 + d :].reshape(d, d)
+        sides = self._sides(point)
+        bend = values[1 + d :].reshape(d, d) * np.outer(sides, sides)
+        return float(values[0]), values[1 : 1 + d] * sides, bend
 
     def margins(self, points: Array) -> Array:
         """The wall functions, shape (walls, ...)."""

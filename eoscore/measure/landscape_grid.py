@@ -35,8 +35,8 @@ class Grid:
         self.lowest_exit = np.inf  # the lowest level at which any end leads out, set by `leak`
         if np.array_equal(frame, np.eye(len(axes))):
             mesh = np.meshgrid(*(o + a for o, a in zip(origin, axes, strict=True)), indexing="ij", sparse=True)
-            values = {name: np.asarray(x) for name, x in zip(chart.names, mesh, strict=True)}
-            self.v = chart.value_at(values)
+            folded = [np.abs(x) if radial else x for x, radial in zip(mesh, chart.radial, strict=True)]
+            self.v = chart.value_at(dict(zip(chart.names, folded, strict=True)))
         else:
             self.v = chart.value(self.points(np.indices(self.shape).reshape(len(axes), -1).T)).reshape(self.shape)
 

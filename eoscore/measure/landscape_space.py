@@ -15,6 +15,8 @@ from eoscore.measure.landscape_routes import lowest_way_out
 from eoscore.measure.landscape_record import Escape, Landscape, Minimum, sense
 
 if TYPE_CHECKING:
+    from numpy.typing import NDArray
+
     from eoscore.formula.field import Field
     from eoscore.measure.landscape_axes import Axis
     from eoscore.measure.landscape_chart import Array
@@ -23,7 +25,7 @@ __all__ = ["survey_space"]
 
 MOST_STARTS = 300
 MOST_WALLED = 40  # with walls each start is followed by itself
-MOST_POINTS = 50_000
+MOST_POINTS = 30_000
 
 
 def survey_space(field: Field) -> Landscape:
@@ -67,10 +69,20 @@ def _minima(chart: Chart, grid: Grid, axes: list[Axis]) -> tuple[Array, Array, A
     radius = grid.spacing(index)
     points, values = _snapped(chart, axes, *descend(chart, grid.points(index), radius))
     values = np.where(np.linalg.norm(points, axis=1) < 10 * chart.reach, values, np.inf)
+    values = np.where(_stands(chart, points), values, np.inf)
     least = 10.0 ** min(axis.least for axis in axes)
     kept = distinct(points, values, 1e-3 * least)
     kept = _nearest_first(points, values, kept)
     return points[kept], values[kept], np.full(len(kept), least)
+
+
+def _stands(chart: Chart, points: Array) -> NDArray[np.bool_]:
+    """Whether no curvature is negative; on walls that is left open."""
+    size = np.linalg.eigvalsh(np.nan_to_num(chart.jet(points)[2]))
+    stands: NDArray[np.bool_] = size[:, 0] >= -1e-7 * np.max(np.abs(size), axis=1)
+    if chart.walls:
+        stands |= np.min(chart.margins(points), axis=0) <= 1e-9 * np.max(chart.margins(points), axis=0)
+    return stands
 
 
 def _snapped(chart: Chart, axes: list[Axis], points: Array, values: Array) -> tuple[Array, Array]:
@@ -121,9 +133,11 @@ def _joined(
     ceiling = escape.energy if escape else np.inf
     region = grid.region(points[0], ceiling)
     level = bottom.kind in ("flat", "ring", "sphere")
+    aside = points[0] + 0.3 * scales[0] * np.vstack([np.eye(chart.dimension), -np.eye(chart.dimension)])
+    unit = float(np.max(np.abs(chart.value(aside) - bottom.value), where=np.isfinite(chart.value(aside)), initial=0.0))
     found = [bottom]
     for point, value, scale in zip(points[1:], values[1:], scales[1:], strict=True):
-        same = level and value - bottom.value <= 1e-9 * abs(float(np.ptp(values)) + abs(bottom.value))
+        same = level and value - bottom.value <= 1e-9 * unit
         if value < ceiling and not same and region[grid.nearest(point)]:
             found.append(minimum_at(chart, point, float(value), float(scale)))
     return tuple(found)

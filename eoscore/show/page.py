@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
+import math
 from typing import IO, TYPE_CHECKING
 
 from eoscore.answer.record import DerivedAnswer
 from eoscore.show.grid_table import grid_table, hidden_rows
 from eoscore.show.prefix import quantity
-from eoscore.show.table import columns, console_on, put
+from eoscore.show.table import columns, console_on, paragraph, put
 
 if TYPE_CHECKING:
     from collections.abc import Iterator
@@ -15,7 +16,7 @@ if TYPE_CHECKING:
     from rich.console import Console
     from rich.table import Table
 
-    from eoscore.answer.record import Answer, Caution, Finding, FoundAnswer, Report
+    from eoscore.answer.record import Answer, Caution, Finding, FoundAnswer, Reason, Report
 
 __all__ = ["print_report"]
 
@@ -29,7 +30,7 @@ def print_report(report: Report, stream: IO[str]) -> None:
             console.print()
         _print_answer(answer, console)
         for line in _caution_lines(answer, told):
-            console.print(line)
+            paragraph(console, line)
 
 
 def _print_answer(answer: Answer, console: Console) -> None:
@@ -40,11 +41,11 @@ def _print_answer(answer: Answer, console: Console) -> None:
     elif answer.over:
         put(console, grid_table(answer))
         if hidden := hidden_rows(answer):
-            console.print(f"  {hidden} rows more; --out FILE.csv writes them all")
+            paragraph(console, f"{hidden} rows more; --out FILE.csv writes them all")
     else:
         put(console, _single_table(answer))
     for line in _notes(answer):
-        console.print(line)
+        paragraph(console, line)
 
 
 def _single_table(answer: FoundAnswer) -> Table:
@@ -66,20 +67,34 @@ def _cells(finding: Finding) -> tuple[str, str, str]:
 def error_text(finding: Finding) -> str:
     """The largest relative numerical error as a power of ten that is not below it."""
     worst = finding.worst()
-    return "exact" if worst == 0.0 else f"{worst:.0e} relative"
+    if worst == 0.0:
+        return "exact"
+    power = math.floor(math.log10(worst))
+    return f"{math.ceil(worst / 10.0**power - 1e-9)}e{power} relative"
 
 
 def _notes(answer: Answer) -> Iterator[str]:
     """Reasons and shares of the variance, each a line of its own below the table."""
-    if not isinstance(answer, DerivedAnswer):
-        for name, finding in answer.found.items():
-            for reason in finding.reasons:
-                at = f" at {len(reason.points)} points" if answer.over else ""
-                yield f"  {name}{at}: no value, because {reason.text}"
-            if finding.note:
-                yield f"  {name}: {finding.note}"
-            if not answer.over and (shares := _budget(finding)):
-                yield f"  {name}: its uncertainty comes from {shares}"
+    if isinstance(answer, DerivedAnswer):
+        return
+    for reason, names in _reasons(answer).items():
+        count = len(reason.points)
+        at = f" at {count} {'point' if count == 1 else 'points'}" if answer.over else ""
+        yield f"{', '.join(names)}{at}: no value, because {reason.text}"
+    for name, finding in answer.found.items():
+        if finding.note:
+            yield f"{name}: {finding.note}"
+        if not answer.over and (shares := _budget(finding)):
+            yield f"{name}: its uncertainty comes from {shares}"
+
+
+def _reasons(answer: FoundAnswer) -> dict[Reason, list[str]]:
+    """Every reason once, with the quantities that have it."""
+    reasons: dict[Reason, list[str]] = {}
+    for name, finding in answer.found.items():
+        for reason in finding.reasons:
+            reasons.setdefault(reason, []).append(name)
+    return reasons
 
 
 def _caution_lines(answer: Answer, told: set[Caution]) -> Iterator[str]:
@@ -87,9 +102,9 @@ def _caution_lines(answer: Answer, told: set[Caution]) -> Iterator[str]:
     again = [caution.code for caution in answer.cautions if caution in told]
     for caution in answer.cautions:
         if caution not in told:
-            yield f"  Caution ({caution.code}): {caution.text}"
+            yield f"Caution ({caution.code}): {caution.text}"
     if again:
-        yield f"  Cautions as above: {', '.join(again)}"
+        yield f"Cautions as above: {', '.join(again)}"
     told.update(answer.cautions)
 
 

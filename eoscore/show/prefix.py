@@ -9,6 +9,7 @@ __all__ = ["fitting", "quantity", "written"]
 _PREFIXES = {-15: "f", -12: "p", -9: "n", -6: "µ", -3: "m", 0: "", 3: "k", 6: "M", 9: "G", 12: "T"}
 _PREFIXED = ("K", "Hz", "m", "W", "A", "V", "s", "T", "Pa")  # energies in J keep their power of ten
 _DIGITS = 6
+_NOISE = 1e-9  # a standard deviation below this share of the value is rounding, not input
 
 
 def fitting(size: float, unit: str) -> tuple[float, str]:
@@ -28,7 +29,7 @@ def written(value: float, sigma: float | None = None) -> str:
     """A number to six digits, or with its standard deviation in concise notation: `703(14)`."""
     if not math.isfinite(value):
         return "-"
-    if sigma is None or not math.isfinite(sigma) or sigma <= 0.0:
+    if sigma is None or not math.isfinite(sigma) or sigma <= _NOISE * abs(value):
         return _short_power(f"{value:.{_DIGITS}g}")
     from uncertainties import ufloat
 

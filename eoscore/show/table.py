@@ -2,13 +2,14 @@
 
 from __future__ import annotations
 
+from textwrap import fill
 from typing import IO, TYPE_CHECKING
 
 if TYPE_CHECKING:
     from rich.console import Console
     from rich.table import Table
 
-__all__ = ["columns", "console_on", "put"]
+__all__ = ["columns", "console_on", "paragraph", "put"]
 
 _PLAIN_WIDTH = 110  # columns when the output is not a terminal
 
@@ -27,6 +28,11 @@ def put(console: Console, table: Table) -> None:
         console.print(table)
     for line in captured.get().splitlines():
         console.file.write(line.rstrip() + "\n")
+
+
+def paragraph(console: Console, text: str) -> None:
+    """Print a text set in by two blanks, its further lines by four."""
+    console.print(fill(text, console.width, initial_indent="  ", subsequent_indent="    "), soft_wrap=True)
 
 
 def columns(*names: str) -> Table:

@@ -68,7 +68,8 @@ def along_curve(
     same = np.abs(bracket.above - bracket.below) <= SAME
     found = (np.sign(bracket.above) != np.sign(bracket.below)) & ~same
     middle = np.clip(start, bracket.low, bracket.high)
-    log = rising_root(rising, bracket.low, bracket.high, np.where(found, middle, np.nan))
+    ends = rise * bracket.below, rise * bracket.above
+    log = rising_root(rising, bracket.low, bracket.high, np.where(found, middle, np.nan), ends)
     kT = np.exp(log)
     solution.kT[some] = kT
     solution.alpha[some] = alpha_along(model, first, x1, np.where(found, kT, 1.0))
@@ -128,7 +129,8 @@ def _bracket(
     every = np.arange(start.size)
     low = np.maximum(start - 1.0, floor)
     high = np.maximum(start, floor) + 1.0
-    ends = _Bracket(low, high, miss(low, every)[0], miss(high, every)[0], floor, miss(floor, every)[0])
+    at_floor = miss(np.where(np.isfinite(floor), floor, start), every)[0]
+    ends = _Bracket(low, high, miss(low, every)[0], miss(high, every)[0], floor, at_floor)
     reach = 1.0
     while reach < FARTHEST:
         reach *= 2

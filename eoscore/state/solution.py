@@ -61,4 +61,4 @@ def spread(values: FloatArray) -> str:
     if not values.size:
         return "nothing"
     least, most = float(values.min()), float(values.max())
-    return f"{least:.6g}" if most <= least * (1 + 1e-6) else f"{least:.6g} to {most:.6g}"
+    return f"{least:.6g}" if most - least <= 1e-6 * abs(least) else f"{least:.6g} to {most:.6g}"

@@ -89,8 +89,7 @@ class StepFermi(Ensemble):
 
     def _stepped(self, alpha: FloatArray, kT: FloatArray, *, all_sums: bool) -> tuple[FloatArray, ...]:
         mu = -alpha * kT
-        v, dv, foot = self._nodes(mu, kT)
-        t = (v - mu[:, None]) / kT[:, None]
+        v, t, dv, foot = self._nodes(mu, kT)
         d = self.measure.density(v) * dv
         first = self.measure.volume(foot)
         k = self.exponent
@@ -119,22 +118,27 @@ class StepFermi(Ensemble):
             (w * t * t).sum(axis=1),
         )
 
-    def _nodes(self, mu: FloatArray, kT: FloatArray) -> tuple[FloatArray, FloatArray, FloatArray]:
-        """Energies and weights dE of shape (states, nodes), and the end of the foot, up to which Omega is v^k."""
-        mu, kT = mu[:, None], kT[:, None]
-        marks = [np.concatenate([-ABOUT_MU[:0:-1], ABOUT_MU]) * kT + mu, ABOVE * kT]
-        near = np.concatenate([-ABOUT_BREAK[::-1], [0.0], ABOUT_BREAK]) * kT
-        marks += [b + near for b in self.measure.breaks]
-        low = np.maximum(mu - ABOUT_MU[-1] * kT, 0.0)
-        high = np.minimum(np.maximum(mu, 0.0) + ABOVE[-1] * kT, self.top)
+    def _nodes(self, mu: FloatArray, kT: FloatArray) -> tuple[FloatArray, FloatArray, FloatArray, FloatArray]:
+        """Energies, t, weights dE, all of shape (states, nodes), and the end of the foot up to which Omega is v^k.
+
+        All is counted in kT, from mu where the bottom is out of reach, else from the bottom: so that neither t nor
+        a small energy is a difference of large numbers.
+        """
+        origin = np.where(mu > ABOUT_MU[-1] * kT, mu, 0.0)[:, None]
+        step, base, kT = ((mu[:, None] - origin) / kT[:, None], origin / kT[:, None], kT[:, None])
+        near = np.concatenate([-ABOUT_BREAK[::-1], [0.0], ABOUT_BREAK])
+        marks = [np.concatenate([-ABOUT_MU[:0:-1], ABOUT_MU]) + step, ABOVE - base]
+        marks += [(b - origin) / kT + near for b in self.measure.breaks]
+        low = np.maximum(step - ABOUT_MU[-1], -base)
+        high = np.minimum(np.maximum(step, -base) + ABOVE[-1], (self.top - origin) / kT)
         edges = np.sort(np.clip(np.concatenate(marks, axis=1), np.minimum(low, high), high), axis=1)
-        foot = np.where(edges[:, 0] > 0, 0.0, np.minimum(ABOVE[1] * kT, high)[:, 0])
-        edges = np.maximum(edges, foot[:, None])
+        foot = np.where(edges[:, 0] > 0, 0.0, np.minimum(ABOVE[1], high[:, 0])) * (origin[:, 0] == 0)
+        edges = np.maximum(edges, np.where(origin == 0, foot[:, None], -np.inf))
         x, w = legendre(ORDER)
         width = np.diff(edges, axis=1)
-        v = edges[:, :-1, None] + width[:, :, None] * x
-        dv = width[:, :, None] * w
-        return v.reshape(mu.size, -1), dv.reshape(mu.size, -1), foot
+        y = (edges[:, :-1, None] + width[:, :, None] * x).reshape(mu.size, -1)
+        dv = (width[:, :, None] * w).reshape(mu.size, -1) * kT
+        return origin + kT * y, y - step, dv, foot * kT[:, 0]
 
     def below(self, number: FloatArray) -> FloatArray:
         """See `Ensemble.below`."""

@@ -54,7 +54,7 @@ class Derivation:
             return self.problem.model(condensed=False)
         if not {"N", "T"} <= set(self.given):
             return self.condensed
-        count = number_at(self.condensed, self._values(critical_number(self.condensed)))
+        count = number_at(self.condensed, self._values(critical_number(self.condensed).free_symbols))
         return self.problem.model(condensed=count(self.given["T"]) < self.given["N"])
 
     @cached_property
@@ -70,10 +70,9 @@ class Derivation:
             "and condensation needs a > 1"
         )
 
-    def _values(self, *expressions: sp.Expr) -> dict[sp.Symbol, float]:
+    def _values(self, symbols: set[sp.Symbol]) -> dict[sp.Symbol, float]:
         """SI values of the symbols that occur, by name; alpha is solved for where N and T are given."""
         known = {**self.problem.values, **{str(s): v for s, v, _ in self.problem.constants}, **self.given}
-        symbols = set().union(*(e.free_symbols for e in expressions))
         found = {s: float(known[s.name]) for s in symbols if s.name in known}
         if ALPHA in symbols and {"N", "T"} <= set(self.given):
             found[ALPHA] = self._alpha
@@ -81,9 +80,9 @@ class Derivation:
 
     @cached_property
     def _alpha(self) -> float:
-        """-mu/(k_B T) above T_c, from N at T by bisection."""
+        """-mu/(k_B T) above T_c, from N at T by a bracketed root."""
         total = self.model.number.total(ALPHA).subs(self._beta)
-        values = self._values(total.subs(ALPHA, 1))
+        values = self._values(total.free_symbols - {ALPHA})
         target = self.given["N"]
 
         def excess(alpha: float) -> float:
@@ -126,7 +125,7 @@ class Derivation:
 
     def _filled(self, name: str, expression: sp.Expr) -> dict[str, Any]:
         """Forms, `where` and value; a value needs every symbol but the free ones."""
-        values = {s: v for s, v in self._values(expression).items() if s not in _FREE.get(name, set())}
+        values = self._values(expression.free_symbols - _FREE.get(name, set()))
         missing = expression.free_symbols - set(values)
         value, why = None, None
         if missing:
@@ -157,7 +156,7 @@ class Derivation:
         """N_c(T) - N = 0 with its root, slopes by the implicit function theorem, and the leading expansions."""
         count = critical_number(self.condensed)
         equation = count - NUMBER
-        values = self._values(equation)
+        values = self._values(equation.free_symbols)
         entry = {**forms("T_c", equation), "closed": False, "equation": sp.sstr(equation, full_prec=True)}
         entry["text"] = f"T_c solves {plain(count)} = N"
         entry["where"] = {str(s): v for s, v in sorted(values.items(), key=lambda item: str(item[0]))}

@@ -27,7 +27,7 @@ def forms(name: str, expression: sp.Expr) -> dict[str, Any]:
         "sympy": sp.sstr(expression, full_prec=True),
         "latex": sp.latex(equation),
         "text": f"{name} = {plain(expression)}",
-        "mathml": sp.mathml(equation, printer="presentation"),
+        "mathml": sp.mathml(equation, printer="presentation").replace("<mi>hbar</mi>", "<mi>&#x210F;</mi>"),
     }
 
 

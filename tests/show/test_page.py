@@ -21,7 +21,7 @@ def page(*answers):
 
 def test_a_single_answer_shows_value_error_route_budget_and_caution():
     text = page(answer({"T_c": finding(7.03e-7, sigma=1.4e-8, error=1e-15, budget={"P": 0.75, "w": 0.25})}))
-    for words in ("line 7: find T_c", "703(14) nK", "1e-09 relative", "closed form", "P (75 %), w (25 %)"):
+    for words in ("line 7: find T_c", "703(14) nK", "2e-9 relative", "closed form", "P (75 %), w (25 %)"):
         assert words in text
     assert "Caution (shallow): the depth is only 4 kT." in text
 

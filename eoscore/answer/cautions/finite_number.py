@@ -26,7 +26,7 @@ def finite_number(scene: Scene) -> Iterator[Caution]:
         yield Caution(
             "finite_number",
             f"for this finite number T_c lies {100.0 * shift:+.2g} % from the T_c of the infinite gas given here "
-            "(first order, see `shift_size`).",
+            "(first order).",
         )
 
 

@@ -1,4 +1,4 @@
-"""A momentum zone has an edge, and a gas hot against its width feels it."""
+"""A momentum zone has an edge, and a gas hot against the width of its band feels it."""
 
 from __future__ import annotations
 
@@ -14,20 +14,27 @@ if TYPE_CHECKING:
 
     from eoscore.answer.scene import Scene
 
-_NARROW = 5.0  # widths of the band below which its upper edge is felt at the level of e^-5
+_NARROW = 5.0  # widths in kT below which the upper edge of the band is felt at the level of e^-5
 
 
 def zone(scene: Scene) -> Iterator[Caution]:
     """Caution where the band's width is less than five times kT."""
-    energy = scene.binding.gas.energy
-    temperatures = scene.number("T")
+    energy, temperatures = scene.binding.gas.energy, scene.number("T")
     if energy is None or not energy.walls or temperatures is None:
         return
-    width = scene.held.gas.momentum_measure(len(energy.coordinates)).top
-    if not np.isfinite(width) or width > _NARROW * K_B * float(temperatures.max()):
-        return
-    yield Caution(
-        "momentum_zone",
-        f"the band is {width / (K_B * float(temperatures.max())):.2g} kT wide: the gas fills its momentum zone to "
-        "the edge, and states of higher bands are not counted.",
-    )
+    width = _width(scene, K_B * float(temperatures.max()))
+    if width < _NARROW:
+        yield Caution(
+            "momentum_zone",
+            f"the band is about {width:.2g} kT wide: the gas fills its momentum zone to the edge, and states of "
+            "higher bands are not counted.",
+        )
+
+
+def _width(scene: Scene, kT: float) -> float:
+    """The energy in kT below which all states of the zone lie, to a few percent; infinite above 100 kT."""
+    energies = np.geomspace(1e-3, 100.0, 401)
+    below = np.asarray(scene.held.momentum.volume(kT * energies))
+    if below[-1] > (1.0 + 1e-9) * below[-20]:
+        return np.inf
+    return float(energies[np.argmax(below >= (1.0 - 1e-9) * below[-1])])
