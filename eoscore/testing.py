@@ -113,7 +113,7 @@ def _momentum_laws(dispersion: Dispersion, *, rises: bool) -> Iterator[str]:
         zone = inside(dispersion, momenta)
         if not np.all(np.isfinite(energy[zone])):
             yield f"the energy is not finite at {name} = {SCAN[zone][~np.isfinite(energy[zone])][0]:.3g} kg m/s"
-        elif zone[-1] and not energy[-1] > np.max(energy[:-2000]):
+        elif zone[-1] and not energy[-1] > np.max(energy[: -len(SCAN) // 10]):
             yield f"the energy does not rise beyond all bounds with {name}; it needs walls, the edge of a zone"
         elif rises and dispersion.field.coordinates == ("p",):
             down = np.diff(energy[zone]) < -1e-12 * np.abs(energy[zone][1:])

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from functools import partial
+from functools import lru_cache, partial
 from itertools import pairwise
 from typing import TYPE_CHECKING
 
@@ -20,7 +20,7 @@ if TYPE_CHECKING:
 
 __all__ = ["SCAN", "inside", "partition", "volume_below"]
 
-SCAN = np.geomspace(1e-40, 1e-12, 20_000)  # |p| in kg m/s, from below any trap to above any accelerator
+SCAN = np.geomspace(1e-40, 1e-12, 5_000)  # |p| in kg m/s, from below any trap to above any accelerator
 FADED = 60.0  # e^-60 = 9e-27 is dropped
 
 
@@ -49,6 +49,7 @@ def volume_below(dispersion: Dispersion, energy: float, d: int) -> float:
     return ball(d) * sum(hi**d - lo**d for lo, hi in shells)
 
 
+@lru_cache(maxsize=8)
 def _least(dispersion: Dispersion) -> float:
     """The least energy of an isotropic formula, refined about the lowest point of the scan."""
     from scipy.optimize import minimize_scalar

@@ -22,6 +22,8 @@ if TYPE_CHECKING:
 
 __all__ = ["local_density", "local_pressure", "occupation"]
 
+BLOCK = 256  # states summed at a time
+
 
 def occupation(y: FloatArray, statistics: str) -> FloatArray:
     """Mean number in a state at y = (e - mu)/kT."""
@@ -90,9 +92,17 @@ def _of_nodes(
     statistics: str,
     function: Callable[[FloatArray, str], FloatArray],
 ) -> FloatArray:
-    total = np.empty(mu.size)
-    for i, (level, heat) in enumerate(zip(mu.ravel(), kT.ravel(), strict=True)):
-        v, w = thermal_nodes(measure, float(heat), float(level))
-        with np.errstate(under="ignore", over="ignore", divide="ignore"):
-            total[i] = w @ function((v - level) / heat, statistics)
+    flat, heat, total = mu.ravel(), kT.ravel(), np.empty(mu.size)
+    stepped = (flat > 0) & (statistics == "fermi")
+    groups = [
+        np.flatnonzero(~stepped),
+        *np.flatnonzero(stepped)[:, None],
+    ]  # each Fermi step has its own panels
+    for at in groups:
+        if at.size == 0:
+            continue
+        v, w = thermal_nodes(measure, heat[at], flat[at] if stepped[at[0]] else np.zeros(at.size))
+        for some in np.array_split(at, 1 + at.size // BLOCK):
+            with np.errstate(under="ignore", over="ignore", divide="ignore"):
+                total[some] = function((v - flat[some, None]) / heat[some, None], statistics) @ w
     return total.reshape(mu.shape)

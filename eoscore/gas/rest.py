@@ -36,18 +36,17 @@ def boltzmann_of(measure: Measure, kT: FloatArray, mu: FloatArray) -> Boltzmann:
     terms = measure.powers()
     if terms is not None and measure.top == np.inf:
         return lambda beta: _of_powers(terms, beta)
-    upto = float(np.max(np.maximum(mu, 0.0) + DIGITS * kT))
-    v, w = _stepped(measure, float(kT.min()), upto) if np.any(mu > 0) else _atoms(measure.nodes(upto))
+    v, w = thermal_nodes(measure, kT, mu)
     return lambda beta: _of_atoms(v, w, beta)
 
 
-def thermal_nodes(measure: Measure, kT: float, mu: float) -> tuple[FloatArray, FloatArray]:
-    """Energies above 0 and weights for sums of occupations: as far as states at kT and mu (J) are occupied.
+def thermal_nodes(measure: Measure, kT: FloatArray, mu: FloatArray) -> tuple[FloatArray, FloatArray]:
+    """Energies from 0 and weights for sums of occupations: as far as states at kT and mu (J, 1D) are occupied.
 
     Above mu = 0, where the occupation is a step, no panel is wider than 2 kT.
     """
-    upto = max(mu, 0.0) + DIGITS * kT
-    return _stepped(measure, kT, upto) if mu > 0 else _atoms(measure.nodes(upto))
+    upto = float(np.max(np.maximum(mu, 0.0) + DIGITS * kT))
+    return _stepped(measure, float(kT.min()), upto) if np.any(mu > 0) else _atoms(measure.nodes(upto))
 
 
 def _of_powers(terms: tuple[tuple[float, float], ...], beta: NDArray[np.inexact]) -> Triple:

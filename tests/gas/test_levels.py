@@ -4,7 +4,7 @@ import math
 
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 from scipy.special import zeta
 
@@ -123,6 +123,7 @@ def test_free_direction_is_the_limit_of_a_soft_one():
     assert soft - lowest == pytest.approx(free + half, rel=1e-8)
 
 
+@settings(deadline=None)
 @given(st.floats(0.01, 20), st.floats(-8, -0.01), st.floats(1.01, 3))
 def test_number_rises_with_temperature_and_mu(x, eta, factor):
     levels = OscillatorLevels((x * KT,), FLOOR, "bose")
@@ -134,6 +135,7 @@ def test_number_rises_with_temperature_and_mu(x, eta, factor):
     assert high > low
 
 
+@settings(deadline=None)
 @given(st.floats(0.05, 5), st.floats(-5, 12))
 def test_statistics_are_ordered(x, eta):
     fermi, classical = (sums(kind, (x,), eta)["N"] for kind in ("fermi", "classical"))

@@ -5,7 +5,7 @@ import math
 import mpmath
 import numpy as np
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from eoscore.constants import K_B
@@ -72,6 +72,7 @@ def test_a_full_band_of_fermions_holds_its_states():
     assert np.diff(local_pressure(band, mu, T, "fermi")) / KT == pytest.approx(states, rel=1e-10)
 
 
+@settings(deadline=None)
 @given(
     st.sampled_from(["bose", "fermi", "classical"]),
     st.floats(0.6, 4),
