@@ -14,7 +14,7 @@ from lark import Token
 
 from eoscore.language import nodes
 from eoscore.language.faults import Faults
-from eoscore.language.limits import DEPTH, too_deep
+from eoscore.language.limits import DEPTH, FAULTS, too_deep
 from eoscore.language.literal import read_number
 from eoscore.source import Source, Span
 
@@ -33,6 +33,11 @@ class BuildExpression:
         self.source, self.faults = source, Faults()
         return self.faults
 
+    def enough(self) -> None:
+        """Raises TarnError with what was found, where that is as much as is told of one text."""
+        if len(self.faults) >= FAULTS:
+            self.faults.raise_if_any()
+
     def span(self, found: Found) -> Span:
         """From the first to the last of what a rule matched."""
         first = found[0]
@@ -47,6 +52,7 @@ class BuildExpression:
         """A name in its normal form, so that the two `µ` of Unicode are one; other alphabets are faults."""
         if token.isascii():
             return str(token)
+        self.enough()
         name = unicodedata.normalize("NFKC", token)
         strange = next(
             (char for char in token if not _LETTERS.fullmatch(unicodedata.normalize("NFKC", char))), None
@@ -78,6 +84,7 @@ class BuildExpression:
 
     def number(self, found: Found) -> nodes.Number:
         """`1.50(5) W`."""
+        self.enough()
         return read_number(self.span(found), self.faults)
 
     def name(self, found: Found) -> nodes.Name:

@@ -57,7 +57,7 @@ def recover(error: UnexpectedInput, source: Source, faults: Faults) -> bool:
     failure = Failure.of(error, source)
     faults.append(next(fault for teller in _TELLERS if (fault := teller(failure))))
     parser = error.interactive_parser
-    if failure.kind == "$END" or len(faults) >= FAULTS:
+    if failure.kind == "$END" or len(faults) >= FAULTS:  # what is left of the text is not read
         _go_on(parser, None, len(source.text))
     elif not _repair_header(parser, failure):
         _skip(parser, failure)

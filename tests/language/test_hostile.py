@@ -11,13 +11,13 @@ from eoscore.errors import TarnError
 from eoscore.language.limits import DEPTH, WORDS
 from eoscore.language.parse import parse
 
-MANY = 30_000  # below the limit of words, so that these are read to their end
+MANY = 10_000  # below the limit of words, so that these are read to their end
 
 HOSTILE = {
     "brackets": "a = " + "(" * 100_000 + "1" + ")" * 100_000,
     "some brackets": "a = " + "(" * MANY + "1" + ")" * MANY,
     "open brackets": "a = " + "(" * MANY,
-    "minus signs": "a = " + "-" * 99_000 + "1",
+    "minus signs": "a = " + "-" * 30_000 + "1",
     "powers": "a = " + "^".join("9" * MANY),
     "a sum": "a = " + "+".join("1" * 200_000),
     "some sum": "a = " + "+".join("x" * MANY),
@@ -28,6 +28,8 @@ HOSTILE = {
     "blocks in blocks": "gas a { dispersion b {\n" * (MANY // 4),
     "entries": "".join(f"a{i} = 1\n" for i in range(100_000)),
     "faulty units": "".join(f"a{i} = 1 ux{i}\n" for i in range(MANY // 4)),
+    "faulty units in one line": "a = " + " + ".join(f"1 ux{i}" for i in range(MANY // 4)),
+    "faulty names": "a = " + " + ".join(f"б{i}" for i in range(MANY // 4)),
     "faulty lines": "a = 1 1\n" * (MANY // 2),
     "closing brackets": "}" * 99_000,
     "semicolons": ";" * 99_000,
@@ -53,7 +55,7 @@ def test_a_hostile_text_ends_in_a_complaint(text: str | bytes):
     started = time.process_time()
     with pytest.raises(TarnError, match=r".") as caught:
         parse(text)
-    assert 1 <= len(caught.value.complaints) <= 101
+    assert 1 <= len(caught.value.complaints) <= 100
     assert all(complaint.hint for complaint in caught.value.complaints)
     assert time.process_time() - started < 10
     assert resource.getrusage(resource.RUSAGE_SELF).ru_maxrss < 1_000_000  # kB
