@@ -112,8 +112,6 @@ def _refusal(attempt: Callable[[], object]) -> str | None:
         attempt()
     except TarnError as fault:
         return "; ".join(complaint.message for complaint in fault.complaints)
-    except PluginError as fault:
-        return fault.found
     except Exception as fault:  # noqa: BLE001 - a stranger's class may fail in any way, and is refused for it
         return f"{type(fault).__name__}: {fault}"
     return None

@@ -4,7 +4,6 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING, Any
 
-from eoscore.errors import PluginError
 from eoscore.formula.field import Field
 from eoscore.language.kind import dimension
 
@@ -21,7 +20,7 @@ MOMENTUM, ENERGY = "kg.m/s", "J"
 def compiled(dispersion: Dispersion) -> Field:
     """The energy text and its walls as formulas of the momenta.
 
-    TarnError where a text does not read or has another dimension, PluginError where it uses an unknown name.
+    TarnError where a text does not read, names what is not known, or has another dimension.
     """
     return Field(
         dispersion.momentum,
@@ -41,14 +40,7 @@ def _formula(dispersion: Dispersion, text: str, unit: str) -> Formula:
     }
     if dispersion.mass is not None:
         values["m"] = (dispersion.mass, dimension("kg"))
-    try:
-        return compile_text(text, momenta, values, dimension(unit))
-    except LookupError as unknown:
-        known = ", ".join([*momenta, *values])
-        found = f"the unknown name {unknown.args[0]} in {text!r}"
-        raise PluginError(
-            dispersion.name, found, f"{known}, the constants and functions of Tarn"
-        ) from unknown
+    return compile_text(text, momenta, values, dimension(unit))
 
 
 def symbolic(dispersion: Dispersion) -> Any:

@@ -29,8 +29,12 @@ TABLE = [
     (plugin(energy="  "), "no energy formula", "a Tarn expression in J"),
     (plugin(energy="p^2/(2*m"), "does not read", "a Tarn expression in J of p"),
     (plugin(energy="p^2"), "does not read", "a Tarn expression in J of p"),
-    (plugin(energy="p^2/(2*m) + gap"), "the unknown name gap in ", "a Tarn expression in J of p"),
-    (plugin(energy="p^2/(2*m)", needs_mass=False), "the unknown name m in ", "a Tarn expression in J of p"),
+    (plugin(energy="p^2/(2*m) + gap"), "the name `gap` is not known here", "a Tarn expression in J of p"),
+    (
+        plugin(energy="p^2/(2*m)", needs_mass=False),
+        "`m` is known inside a gas or a trap only",
+        "a Tarn expression in J of p",
+    ),
     (plugin(energy="__import__('os')"), "does not read", "a Tarn expression in J of p"),
     (plugin(momentum="p"), "momentum = 'p'", r"\('p',\) or \('px',\)"),
     (plugin(momentum=("px", "pz")), "momentum", r"\('px', 'py'\)"),
@@ -65,7 +69,7 @@ def test_a_bad_plugin_is_refused_with_what_came_and_what_was_wanted(found, came,
 
 def test_all_faults_of_a_plugin_are_told_at_once():
     bad = plugin(name="even", origin="", momentum="k", needs_mass=None)
-    with pytest.raises(PluginError, match="name = 'even'.*; origin = ''.*; momentum = 'k'"):
+    with pytest.raises(PluginError, match=r"name = 'even'.*; origin = ''.*; momentum = 'k'"):
         admitted("odd", bad)
 
 
