@@ -6,6 +6,7 @@ import math
 from typing import IO, TYPE_CHECKING
 
 from eoscore.answer.record import DerivedAnswer
+from eoscore.show.formulas import formula_lines
 from eoscore.show.grid_table import grid_table, hidden_rows
 from eoscore.show.prefix import quantity
 from eoscore.show.table import columns, console_on, paragraph, put
@@ -36,8 +37,8 @@ def print_report(report: Report, stream: IO[str]) -> None:
 def _print_answer(answer: Answer, console: Console) -> None:
     console.print(f"line {answer.line}: {answer.question}", style="bold")
     if isinstance(answer, DerivedAnswer):
-        for line in _formula_lines(answer):
-            console.print(line)
+        for line in formula_lines(answer):
+            paragraph(console, line)
     elif answer.over:
         put(console, grid_table(answer))
         if hidden := hidden_rows(answer):
@@ -112,13 +113,3 @@ def _budget(finding: Finding) -> str:
     shares = {name: float(share.reshape(-1)[0]) for name, share in finding.budget.items()}
     ordered = sorted(shares.items(), key=lambda item: -item[1])
     return ", ".join(f"{name} ({100.0 * share:.0f} %)" for name, share in ordered if share >= 5e-3)
-
-
-def _formula_lines(answer: DerivedAnswer) -> Iterator[str]:
-    for name, formula in answer.formulas.items():
-        yield f"  {name} = {formula.get('text')}"
-        value, unit = formula.get("value"), formula.get("unit", "1")
-        if value is not None:
-            yield f"      = {quantity(value, unit)}"
-        if formula.get("why"):
-            yield f"      {formula['why']}"

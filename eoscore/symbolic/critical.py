@@ -25,13 +25,13 @@ def explicit(power: Power) -> sp.Expr:
     return (NUMBER / (power.size * sp.zeta(power.exponent))) ** (1 / power.exponent) / K_B
 
 
-def heat_capacity_jump(power: Power) -> sp.Expr:
-    """C_N(T_c-) - C_N(T_c+) = a^2 zeta(a)/zeta(a - 1) N k_B for a > 2, and nothing below.
+def heat_capacity_jump(power: Power, exponent: float) -> sp.Expr:
+    """C_N(T_c-) - C_N(T_c+) = a^2 zeta(a)/zeta(a - 1) N k_B for a > 2, and nothing below; `exponent` is a's value.
 
     V. Bagnato, D. E. Pritchard, D. Kleppner, Phys. Rev. A 35, 4354 (1987).
     """
     a = power.exponent
-    if not (a - 2).is_positive:
+    if exponent <= 2:
         return sp.Integer(0)
     return a**2 * sp.zeta(a) / sp.zeta(a - 1) * NUMBER * K_B
 

@@ -42,6 +42,18 @@ class Derivation:
             return entry
         return {**entry, "conditions": [plain(c) for c in self.problem.conditions], "steps": self._steps}
 
+    def _tidy(self, expression: sp.Expr) -> sp.Expr:
+        """Tidied, in n where the place is unbounded, and without moduli whose sign the values settle."""
+        if "n" in self.given:
+            expression = expression.subs(NUMBER, sp.Symbol("n", positive=True))
+        return tidy(expression.replace(sp.Abs, self._signed))
+
+    def _signed(self, inner: sp.Expr) -> sp.Expr:
+        values = self._values(inner.free_symbols)
+        if set(values) != inner.free_symbols:
+            return sp.Abs(inner)
+        return inner if number(inner, values) >= 0 else -inner
+
     @cached_property
     def condensed(self) -> Model:
         """The sums at mu = 0."""
@@ -62,7 +74,7 @@ class Derivation:
         """Why the gas cannot condense, None where it can."""
         if self.problem.sign != 1:
             return "only bosons condense"
-        exponent = self.problem.model(condensed=True).number.diverges()
+        exponent = self.problem.model(condensed=True).number.diverges(self.problem.values)
         if exponent is None:
             return None
         return (
@@ -108,6 +120,7 @@ class Derivation:
         )
         words = [*self.problem.steps, f"Z1(beta) at beta = 1/(k_B*T): {whole}"]
         words.extend(f"{s} = {v:.12g}: {text}" for s, v, text in self.problem.constants)
+        words = [word.replace("**", "^") for word in words]
         return [*words, "N_ex = sum over l of exp(-l*alpha) Z1(l*beta), and alpha = 0 at T_c"]
 
     def _entry(self, name: str, expression: sp.Expr | None) -> dict[str, Any]:
@@ -115,9 +128,9 @@ class Derivation:
             return {"why": self.no_condensate} if name == "N_c" else self._filled("f_0", sp.Integer(0))
         if expression is None:
             return {"why": "Z1 is no sum of powers of beta, and its inverse Laplace transform was not found"}
-        entry = self._filled(name, tidy(expression))
+        entry = self._filled(name, self._tidy(expression))
         if name == "g":
-            scale = tidy(self.model.number.whole.subs(self._beta))
+            scale = self._tidy(self.model.number.whole.subs(self._beta))
             entry["scale"] = forms("N_scale", scale)
         if name in ("U", "S", "C_N", "f_0"):
             entry["side"] = "T <= T_c" if self.model.condensed else "T > T_c"
@@ -143,8 +156,9 @@ class Derivation:
         power = self.condensed.number.single
         if power is None:
             return self._implicit()
-        expression = tidy(explicit(power))
-        jump = tidy(heat_capacity_jump(power))
+        expression = self._tidy(explicit(power))
+        exponent = number(power.exponent, self._values(power.exponent.free_symbols))
+        jump = self._tidy(heat_capacity_jump(power, exponent))
         slopes = {
             str(s): plain(sp.simplify(s * sp.diff(expression, s) / expression))
             for s in sorted(expression.free_symbols - {K_B}, key=str)
@@ -171,20 +185,22 @@ class Derivation:
             rise = number(sp.diff(count, symbol), here) * values[symbol]
             entry.setdefault("sensitivities", {"N": values[NUMBER] / slope})[str(symbol)] = -rise / slope
         several = [self._written(e, here, at, temperature) for e in expansions(self.problem.number)]
-        several.sort(key=lambda e: e["small_value"])
+        several.sort(key=lambda e: float(e["small_value"]))
         return entry | ({"expansion": several[0], "expansions": several} if several else {})
 
     def _written(
         self, expansion: Expansion, here: Mapping[sp.Symbol, float], count: Any, at: float
     ) -> dict[str, Any]:
-        whole, small = tidy(expansion.whole), tidy(expansion.small)
+        whole, small = self._tidy(expansion.whole), self._tidy(expansion.small)
+        size = number(small, here)
         reach = expansion.reach(count, here, at)
         good = f"within 1 % up to small = {reach:.2g}" if reach is not None else "not within 1 % near this N"
         return {
             **forms("T_c", whole),
             "limit": expansion.limit,
             "small": sp.sstr(small),
-            "small_value": number(small, here),
+            "small_value": size,
             "range": f"small -> 0; {good}",
-            "value": number(whole, here),
+            # Two terms of a series say nothing where the next one is as large as they are.
+            "value": number(whole, here) if size < 1 else None,
         }

@@ -66,11 +66,12 @@ def _derived(
 
 
 def _counted(held: HeldGas, given: Mapping[str, float]) -> dict[str, float]:
-    """Conditions with a number for a density: N = n V in a box, n itself in the unbounded place."""
-    counted = {name: value for name, value in given.items() if name != "n"}
-    if "n" in given:
-        counted["N"] = given["n"] * (held.volume or 1.0)
-    return counted
+    """A number for a density: N = n V in a box; in the unbounded place every N stands for n, per volume."""
+    if "n" not in given:
+        return dict(given)
+    if held.uniform:
+        return {**given, "N": given["n"]}
+    return {**{k: v for k, v in given.items() if k != "n"}, "N": given["n"] * (held.volume or 1.0)}
 
 
 def _confirmed(held: HeldGas, name: str, entry: dict[str, Any], given: Mapping[str, float]) -> dict[str, Any]:

@@ -3,10 +3,14 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
 import sympy as sp
 
 from eoscore.symbolic.integrals.rule import BETA
+
+if TYPE_CHECKING:
+    from collections.abc import Mapping
 
 __all__ = ["ALPHA", "INDEX", "Partition", "Power", "partition_of"]
 
@@ -47,9 +51,10 @@ class Partition:
         """The one power it is, if it is one."""
         return self.powers[0] if len(self.powers) == 1 and self.rest == 0 else None
 
-    def diverges(self) -> sp.Expr | None:
+    def diverges(self, values: Mapping[str, float]) -> sp.Expr | None:
         """The exponent a <= 1 that forbids condensation, if there is one."""
-        return next((p.exponent for p in self.powers if not (p.exponent - 1).is_positive), None)
+        fixed = {symbol: values[symbol.name] for p in self.powers for symbol in p.exponent.free_symbols}
+        return next((p.exponent for p in self.powers if float(p.exponent.subs(fixed)) <= 1), None)
 
     def total(self, alpha: sp.Expr, *, slope: int = 0, index: int = 0) -> sp.Expr:
         """sum over l of (+-1)^{l+1} e^{-l alpha} l^index (d/dbeta)^slope Z1 at l beta.
