@@ -65,6 +65,7 @@ class Checker:
         self.used: set[int] = set()
         self.massless: set[str] = set()
         self._names: dict[Named, Kind] = {}
+        self._numbers: dict[int, Kind] = {}
         self._calls: dict[tuple[Named, tuple[Kind, ...]], _Applied] = {}
         self._open: dict[Named, None] = {}
         self._steps = self._all_steps = 0
@@ -138,16 +139,15 @@ class Checker:
             raise _ExpansionError
         match node:
             case nodes.Number():
-                if node.sigma:
-                    self.uncertain[id(node)] = node
-                return number(node, frame.sink)
+                return self._number(node, frame)
             case nodes.Name():
                 return (yield from self._value(node, frame))
             case nodes.Negative():
                 return negative((yield self._expression(node.operand, frame)))
             case nodes.Binary():
-                left = yield self._expression(node.left, frame)
-                return binary(node, left, (yield self._expression(node.right, frame)), frame.sink)
+                left = self._leaf(node.left, frame) or (yield self._expression(node.left, frame))
+                right = self._leaf(node.right, frame) or (yield self._expression(node.right, frame))
+                return binary(node, left, right, frame.sink)
             case nodes.If():
                 holds = yield self._condition(node.condition, frame)
                 then = yield self._expression(node.then, frame.unless(holds is False))
@@ -155,6 +155,30 @@ class Checker:
                 return choice(node, holds, then, otherwise, frame.sink)
             case nodes.Call():
                 return (yield from self._call(node, frame))
+
+    def _leaf(self, node: nodes.Expr, frame: _Frame) -> Kind | None:
+        """The kind of a number or of a name that is known already; most operands are such, and need no step."""
+        if isinstance(node, nodes.Number):
+            return self._number(node, frame)
+        if not isinstance(node, nodes.Name):
+            return None
+        if node.name in frame.arguments:
+            return frame.arguments[node.name]
+        named = frame.scope.find(node.name)
+        if named is None or named not in self._names:
+            return None
+        self.used.add(id(named.definition))
+        return self._names[named]
+
+    def _number(self, node: nodes.Number, frame: _Frame) -> Kind:
+        known = self._numbers.get(id(node))
+        if known is None:
+            known = number(node, frame.sink)
+            if node.sigma:
+                self.uncertain[id(node)] = node
+            if known.value is not None:
+                self._numbers[id(node)] = known
+        return known
 
     def _condition(self, node: nodes.Condition, frame: _Frame) -> Step[bool | None]:
         if isinstance(node, nodes.Compare):

@@ -117,13 +117,17 @@ def _check_names(world: World, checker: Checker) -> None:
 
 def _check_places(world: World, checker: Checker) -> None:
     """Each place with every gas it is asked with; one that nobody asks, with the gas that suits it best."""
-    asked = set()
+    pairs = {}
     for question in world.questions:
         origins = question.origins if isinstance(question, nodes.Find) else ()
+        gas = world.gases.get(question.gas.name)
         for name in (question.place, *origins):
-            if name is not None and name.name in world.places and question.gas.name in world.gases:
-                asked.add(name.name)
-                check_place(world.pair(world.gases[question.gas.name], world.places[name.name]), checker)
+            place = world.places.get(name.name) if name is not None else None
+            if gas is not None and place is not None:
+                pairs[world.pair(gas, place)] = place.name
+    for each in pairs:
+        check_place(each, checker)
+    asked = set(pairs.values())
     for place in world.places.values():
         if place.name not in asked:
             check_place(pair(_suiting(place, world), place), checker)
@@ -148,6 +152,8 @@ def _nobody(world: World) -> Gas:
 
 
 def _check_settings(world: World, checker: Checker) -> None:
+    if not world.settings.definitions:
+        return
     scopes = {"": world.scope} | {gas.name: gas.scope for gas in world.gases.values()}
     for place in world.places.values():
         scopes[place.name] = pair(_suiting(place, world), place).scope
