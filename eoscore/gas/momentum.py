@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from math import gamma, pi
+from math import gamma, inf, pi
 from typing import TYPE_CHECKING
 
 from eoscore.constants import H
@@ -47,7 +47,16 @@ def momentum_measure(field: Field, d: int) -> Measure:
     axes = axes_of(field.coordinates, d)
     from eoscore.measure import measure_of
 
-    return measure_of(_in_space(field, axes)).scaled(H**-d)
+    named = f"E({', '.join(field.coordinates)})"
+    try:
+        found = measure_of(_in_space(field, axes))
+    except NoAnswerError as fault:
+        why = f"the states of {named} cannot be counted; with E called V and its momenta {', '.join(axes)}"
+        raise NoAnswerError(f"{why}: {fault.why}") from fault
+    if found.top < inf:
+        why = f"{named} stays below {found.top:.4g} J above its least value for momenta without end"
+        raise NoAnswerError(f"{why}: say where its zone ends, as in `where abs(px) < pi*hbar/a`")
+    return found.scaled(H**-d)
 
 
 def _in_space(field: Field, axes: tuple[str, ...]) -> Field:

@@ -4,10 +4,11 @@ import math
 
 import numpy as np
 import pytest
+from scipy.optimize import brentq
 
 from eoscore.constants import HBAR, K_B, M_U, C, H
 from eoscore.errors import NoAnswerError
-from eoscore.formula import variable
+from eoscore.formula import call, constant, variable
 from eoscore.formula.field import Field
 from eoscore.gas import Gas, gas_of
 from eoscore.language.facts import GasFacts
@@ -123,10 +124,37 @@ def test_momenta_that_do_not_fit_the_place(momenta, d):
         gas_of(inline(energy, *momenta)).momentum_measure(d)
 
 
-def test_an_energy_without_a_zone_that_repeats_itself_is_refused_in_words():
-    band = 1e-30 * (1 - (variable("p") / 1e-27) ** 2 / (1 + (variable("p") / 1e-27) ** 2))
-    with pytest.raises(NoAnswerError):
-        gas_of(inline(band, "p")).momentum_measure(2)
+Q = variable("p") / 1e-27
+
+
+@pytest.mark.parametrize(
+    ("energy", "words"),
+    [
+        (1e-30 * (1 - call("cos", Q)), r"E\(p\) stays below 2e-30 J .* say where its zone ends"),
+        (1e-30 * Q**2 / (1 + Q**2), r"E\(p\) stays below 1e-30 J .* say where its zone ends"),
+        (
+            -1e-30 * Q**2,
+            r"the states of E\(p\) cannot be counted; with E called V and its momenta rho: .* holds nothing",
+        ),
+        (constant(1e-30), "cannot be counted"),
+    ],
+    ids=["repeats itself", "saturates", "falls", "is level"],
+)
+def test_an_energy_with_states_without_end_is_refused_in_words(energy, words):
+    with pytest.raises(NoAnswerError, match=words):
+        gas_of(inline(energy, "p")).momentum_measure(2)
+
+
+def test_all_valleys_of_a_zone_count():
+    """Two wells at the edge of a zone and in its middle: far above both, the whole zone lies below."""
+    px = variable("px")
+    edge = math.pi * 1e-27
+    energy = 1e-30 * (1 - call("cos", 2 * px / 1e-27) - 0.1 * call("cos", px / 1e-27))
+    measure = gas_of(inline(energy, "px", walls=(edge - call("abs", px),))).momentum_measure(1)
+    assert measure.volume(1e-29) == pytest.approx(2 * edge / H, rel=1e-12)
+    low = 1.5e-31 / 1e-30  # in units of the band, above the least value: cos 2q + 0.1 cos q > 0.95
+    inner = brentq(lambda q: math.cos(2 * q) + 0.1 * math.cos(q) - (1.1 - low), 0, 1)
+    assert measure.volume(1.5e-31) == pytest.approx(2 * inner * 1e-27 / H, rel=1e-9)
 
 
 def test_a_gas_is_frozen():
