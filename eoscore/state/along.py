@@ -20,7 +20,9 @@ if TYPE_CHECKING:
 __all__ = ["alpha_along"]
 
 BOUND = 700.0
-AT_LIMIT = 64 * EPS  # a number within rounding of saturation counts as saturated: at T_c the condensed side is told
+AT_LIMIT = (
+    64 * EPS
+)  # a number within rounding of saturation counts as saturated: at T_c the condensed side is told
 
 
 def alpha_along(model: Model, name: str, value: FloatArray, kT: FloatArray) -> FloatArray:

@@ -82,7 +82,13 @@ def wavelength(state: State, unit: str) -> Reading:
     local_of(state)
     kT, dlog = state.kT
     free, d = state.held.model.free, state.held.dimension
-    value = state.held.model.wavelength_volume(kT) ** (1 / d)
-    mean = free.boltzmann(kT)[1] if free is not None else 0.0 * kT
+    cold = Reason("T must be above zero", state.shaped(kT <= 0))
+    kT = np.where(kT > 0, kT, np.nan)
+    value = np.full_like(kT, np.nan)
+    some = np.isfinite(kT)
+    value[some] = state.held.model.wavelength_volume(kT[some]) ** (1 / d)
+    mean = np.zeros_like(kT)
+    if free is not None and some.any():
+        mean[some] = free.boltzmann(kT[some])[1]
     error = value / d * ((free.error if free is not None else 0.0) + 8 * EPS + mean * dlog)
-    return state.read(value, error, unit, local_of(state).route)
+    return state.read(value, error, unit, local_of(state).route, [cold])

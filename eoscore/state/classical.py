@@ -37,10 +37,9 @@ class Classical(OverNodes):
 
     def _moments(self, kT: FloatArray) -> tuple[FloatArray, FloatArray, FloatArray]:
         if self.weights is None:
-            z0, z1, z2 = self._over(_moments, np.zeros_like(kT), kT)
-            return z0, z1, z2
-        z0: FloatArray = np.zeros(kT.size)
-        z1, z2 = z0.copy(), z0.copy()
+            first, second, third = self._over(_moments, np.zeros_like(kT), kT)
+            return first, second, third
+        z0, z1, z2 = np.zeros_like(kT), np.zeros_like(kT), np.zeros_like(kT)
         for e, k in self.weights:
             m = scale_of(e, k, kT)
             z0 += m * _regular(k, self.top / kT)

@@ -51,7 +51,7 @@ class Filled:
 
     def _build(self, reach: float) -> None:
         end = min(2 * reach, self.measure.top) if self.measure.top < inf else 2 * reach
-        edges: FloatArray = end * 2.0 ** np.arange(-OCTAVES, 1)
+        edges = np.ldexp(end, np.arange(-OCTAVES, 1))
         for b in self.measure.breaks:
             near = b * np.concatenate([-(2.0 ** np.arange(-1, -40, -1)), [0.0], 2.0 ** np.arange(-40, 0)])
             edges = np.append(edges, b + near)

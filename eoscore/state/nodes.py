@@ -45,7 +45,9 @@ class OverNodes(Ensemble):
         self.measure = measure
         self.exponent = measure.exponent
         self.top = measure.top
-        self.route = f"sums over nodes ({measure.route}{'' if measure.top == inf else ', up to the escape energy'})"
+        self.route = (
+            f"sums over nodes ({measure.route}{'' if measure.top == inf else ', up to the escape energy'})"
+        )
         self._rules = lru_cache(maxsize=64)(self._rule)
 
     @property

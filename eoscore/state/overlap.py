@@ -15,7 +15,9 @@ if TYPE_CHECKING:
 
 __all__ = ["mean_density"]
 
-RULE = 1e-9  # relative error of the rule below: n at the bottom of a saturated gas has a cone in space
+RULE = (
+    2e-12  # relative error of the rule below: ln v takes the cone that n has at the bottom of a saturated gas
+)
 
 
 def mean_density(state: State) -> tuple[FloatArray, FloatArray]:

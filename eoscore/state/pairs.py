@@ -43,7 +43,9 @@ def solve(model: Model, given: Mapping[str, FloatArray]) -> Solution:
         if name in ("n_peak", "PSD") and model.local is None:
             raise NoAnswerError(f"{name} has no sense where every direction is held as levels")
     if set(given) == {"S", "U"}:
-        raise NoAnswerError("S and U without N may fix two states, or none of a saturated gas: give N with one of them")
+        raise NoAnswerError(
+            "S and U without N may fix two states, or none of a saturated gas: give N with one of them"
+        )
     first, second = sorted(given, key=CONDITIONS.index)
     x1, x2 = given[first], given[second]
     solution = Solution.empty(x1.size)

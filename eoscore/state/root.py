@@ -36,7 +36,8 @@ def rising_root(
     one sign only, the end it points to is returned.
     """
     low, high = low.astype(float), high.astype(float)
-    below, above = (np.full(low.shape, np.nan) if ends is None else each.astype(float) for each in ends or (low, low))
+    unknown = np.full(low.shape, np.nan)
+    below, above = (each.astype(float) for each in ends or (unknown, unknown))
     x = np.clip(start, low, high)
     before = high - low
     bisect = np.zeros(low.shape, dtype=bool)
