@@ -135,7 +135,7 @@ def test_every_demo_runs(name):
 @pytest.mark.parametrize("name", demo_names())
 def test_every_demo_has_a_title_and_an_invented_gas(name):
     text = demo_text(name)
-    assert re.match(r"# [A-Z].{20,110}\n", text)
+    assert re.match(r"# [A-Z].{20,105}\n", text)
     assert "Rb-" not in text
 
 
@@ -188,7 +188,12 @@ def test_the_readme_shows_what_the_commands_print(session, desk):
     shown = subprocess.run(
         [sys.executable, "-m", "eoscore", *words], cwd=desk, capture_output=True, text=True, check=False
     )
-    assert (shown.stdout + shown.stderr).splitlines() == expected.splitlines()
+    assert without_rounding(shown.stdout + shown.stderr) == without_rounding(expected)
+
+
+def without_rounding(text):
+    """The lines of a screen; the last bits of a number, and so its error, may differ between machines."""
+    return re.sub(r"\d+e-\d+ relative|exact", "#", text).split()
 
 
 @pytest.mark.parametrize("code", blocks("python"))

@@ -1,7 +1,8 @@
 """Uncertainty carried from the input: first derivatives of the final answer by each uncertain literal.
 
 Each literal is one variable, so that correlations through shared names are kept. A derivative is a central
-difference of the whole chain from the text to the answer, with Richardson's step towards zero.
+difference of the whole chain from the text to the answer; its relative error is the square of the step in units
+of the literal, some 1e-7, far below what a standard deviation means.
 """
 
 from __future__ import annotations
@@ -27,7 +28,7 @@ __all__ = ["with_uncertainty"]
 
 # Steps in units of sigma and of the value: small beside the scale on which answers bend, large beside the noise.
 _STEP_OF_SIGMA = 0.1
-_STEP_OF_VALUE = 3e-3
+_STEP_OF_VALUE = 5e-4
 # Which conditions a quantity can depend on, by what the language says it needs.
 _CONDITIONS = {"nothing": (), "number": ("N", "n"), "temperature": ("T",)}
 
@@ -60,17 +61,12 @@ def _variances(
     step = _STEP_OF_SIGMA * literal.sigma
     if literal.value:
         step = min(step, _STEP_OF_VALUE * abs(literal.value))
-    up, down = (chain.parts({literal.index: literal.value + s}) for s in (step, -step))
+    up = chain.parts({literal.index: literal.value + step})
     names = [name for name in chain.names if _bears(name, parts, up)]
     if not names:
         return {}
-    near_up, near_down = (chain.parts({literal.index: literal.value + s}) for s in (step / 2, -step / 2))
-    variances = {}
-    for name in names:
-        wide = _slope(chain, name, up, parts, down, step)
-        near = _slope(chain, name, near_up, parts, near_down, step / 2)
-        variances[name] = ((4.0 * near - wide) / 3.0 * literal.sigma) ** 2
-    return variances
+    down = chain.parts({literal.index: literal.value - step})
+    return {name: (_slope(chain, name, up, parts, down, step) * literal.sigma) ** 2 for name in names}
 
 
 def _slope(

@@ -40,7 +40,7 @@ class _Frame(NamedTuple):
 
 def exact(value: float) -> Any:
     """A double as the rational of its shortest digits; an infinity or nan as SymPy has it."""
-    return sp.Rational(repr(value)) if abs(value) < float("inf") else sp.sympify(value)
+    return sp.Rational(repr(value)) if abs(value) < float("inf") else sp.Float(value)
 
 
 class SympyWalk:
