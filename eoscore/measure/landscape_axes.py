@@ -59,9 +59,10 @@ class Axis:
         shares = np.linspace(0, self.change[-1], max(count - self.turns.size, 8))
         chosen = np.interp(shares, self.change, self.known)
         far = 10.0 ** np.arange(self.most + 2, self.most + BEYOND, 3)
-        fixed = np.union1d(sorted(self.marks), self.turns)
-        apart = np.min(np.abs(np.subtract.outer(chosen, fixed)), axis=1) > 10.0 ** (self.least - 2)
-        points: Array = np.unique(np.concatenate([-far, chosen[apart], fixed, far]))
+        points = np.array(sorted(self.marks))
+        for more in (self.turns, chosen, far, -far):
+            apart = np.min(np.abs(np.subtract.outer(more, points)), axis=1) > 10.0 ** (self.least - 2)
+            points = np.union1d(points, more[apart])
         return points
 
     def line(self) -> Array:
@@ -99,7 +100,9 @@ def _follow(chart: Chart, i: int, axis: Axis, anchors: Array) -> None:
     if chart.walls:
         found.append(_crossings(chart, i, points))
     turns = np.unique(np.concatenate(found))
-    turns = turns[np.diff(turns, prepend=-np.inf) > 1e-6 * 10.0**axis.least]
+    apart = np.min(np.abs(np.subtract.outer(sorted(axis.marks), turns)), axis=0, initial=np.inf)
+    same = np.minimum(0.03 * apart, axis.half_wave / 8) + 1e-6 * 10.0**axis.least
+    turns = turns[np.diff(turns, prepend=-np.inf) > same]
     axis.turns = turns[np.argsort(np.abs(turns), kind="stable")[:MOST_TURNS]]
     v = chart.value(points)
     change = np.max([_change(row, bends) for row, bends in zip(v, turned, strict=True)], axis=0)
@@ -195,10 +198,11 @@ def _see_scales(chart: Chart, axes: list[Axis], anchors: Array) -> None:
             points = np.repeat(anchors[:, None, :], steps.size, axis=1)
             points[:, :, i] += side * steps
             slope = chart.slopes(points)[..., i]
-            slope[steps < 1e-9 * np.abs(anchors[:, i : i + 1])] = np.nan  # lost in the rounding of x
+            lost = steps < 1e-9 * np.linalg.norm(anchors, axis=1)[:, None]  # in the rounding of x
+            slope[lost] = np.nan
             axis.see(DECADES[_bends(slope)])
             if chart.walls:
-                sides = np.sign(chart.margins(points))
+                sides = np.where(lost, 0.0, np.sign(chart.margins(points)))
                 crossed = np.any(sides[:, :, 1:] * sides[:, :, :-1] < 0, axis=(0, 1))
                 axis.see(DECADES[1:][crossed])
         if np.isfinite(axis.half_wave):

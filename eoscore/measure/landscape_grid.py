@@ -47,9 +47,10 @@ class Grid:
         return result
 
     def spacing(self, index: Array) -> Array:
-        """The distance to the nearest neighbour at grid indices (n, d)."""
+        """The distance to the nearest neighbour at grid indices (n, d), not less than the chart resolves."""
         gaps = [np.minimum(np.append(np.inf, np.diff(a)), np.append(np.diff(a), np.inf)) for a in self.axes]
-        return np.min([gap[index[:, i]] for i, gap in enumerate(gaps)], axis=0)
+        least = np.min([gap[index[:, i]] for i, gap in enumerate(gaps)], axis=0)
+        return np.maximum(least, 1e8 * self.chart.nudge)
 
     def minima(self, most: int) -> Array:
         """Indices (n, d) of the lowest inner points that no neighbour along an axis undercuts."""
@@ -134,6 +135,13 @@ class Grid:
         return result
 
     def nearest(self, point: Array) -> tuple[int, ...]:
-        """The grid point nearest to a point, along each axis."""
+        """The grid point nearest to a point along each axis; inside the walls, if one of its neighbours is."""
         local = (point - self.origin) @ self.frame
-        return tuple(int(np.argmin(np.abs(axis - x))) for axis, x in zip(self.axes, local, strict=True))
+        index = np.array([int(np.argmin(np.abs(axis - x))) for axis, x in zip(self.axes, local, strict=True)])
+        if not np.isfinite(self.v[tuple(index)]):
+            around = index + np.indices((7,) * index.size).reshape(index.size, -1).T - 3
+            around = np.clip(around, 0, np.array(self.shape) - 1)
+            inside = around[np.isfinite(self.v[tuple(around.T)])]
+            if inside.size:
+                index = inside[np.argmin(np.linalg.norm(self.points(inside) - point, axis=1))]
+        return tuple(index.tolist())

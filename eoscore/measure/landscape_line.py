@@ -184,6 +184,8 @@ def _kind(slope: Formula, name: str, well: _Well, turns: Array, bend: float) -> 
     step = 1e-7 * (abs(x) or min(near, 1.0))
     offsets = np.array([-2.0, -1.0, 1.0, 2.0]) * step
     left2, left, right, right2 = slope.evaluate({name: x + offsets}).tolist()
+    if name in RADIAL and abs(x) < 1e-30:
+        left, left2 = -right, -right2
     with np.errstate(all="ignore"):
         growth = np.log2(np.array([left2, right2]) / np.array([left, right]))
     even = abs(left + right) < 0.02 * abs(right)

@@ -13,7 +13,7 @@ if TYPE_CHECKING:
 
 __all__ = ["Pass", "passes_from", "walled_passes"]
 
-STEPS = 120
+STEPS = 200
 LEVEL = 1e-9  # curvatures below this share of the largest count as none
 
 
@@ -40,7 +40,7 @@ def passes_from(chart: Chart, starts: Array, radius: Array) -> list[Pass]:
         step = -along / np.maximum(np.abs(size), 1e-12 * np.max(np.abs(size), axis=1, keepdims=True) + 1e-300)
         step[:, 0] *= -1
         force, length = np.linalg.norm(along, axis=1), np.linalg.norm(step, axis=1)
-        radius[now] *= np.where(force < best[now], 1.3, 0.5)
+        radius[now] *= np.where(force < best[now], 1.5, 0.5)
         best[now] = np.minimum(best[now], force)
         step *= np.minimum(1.0, radius[now] / np.maximum(length, 1e-300))[:, None]
         points[now] += np.einsum("nij,nj->ni", axes, step)
@@ -91,7 +91,7 @@ def _along_walls(chart: Chart, start: Array, radius: float, held: tuple[int, ...
         step = -(slope @ axes) / np.maximum(np.abs(size), 1e-13 * np.max(np.abs(size)) + 1e-300)
         step[0] = -step[0]
         length, force = float(np.linalg.norm(step)), float(np.linalg.norm(slope))
-        radius, best = radius * (1.3 if force < best else 0.5), min(best, force)
+        radius, best = radius * (1.5 if force < best else 0.5), min(best, force)
         point = point + frame @ axes @ step * min(1.0, radius / max(length, 1e-300)) + back
         if not np.linalg.norm(point) < chart.reach:
             return None

@@ -19,6 +19,7 @@ __all__ = ["lowest_way_out"]
 OUT = -1
 MOST_STARTS = 100
 MOST_WELLS = 12
+SEEN = 0.02
 CLOSE = 0.15  # of the depth: a pass this near the grid's level is the one the grid has seen
 
 
@@ -27,11 +28,20 @@ def lowest_way_out(chart: Chart, grid: Grid, leak: Leak | None, minima: Array) -
 
     Each pass found is descended on both sides, so the way is a real one: its energy bounds the escape from above.
     """
+    found: list[Pass] = []
+    best = None
     if leak is not None and not leak.at_infinity:
-        near = _through(chart, _near(chart, grid, leak), minima)
-        if near is not None and abs(near.value - leak.energy) < CLOSE * (leak.energy - leak.bottom):
-            return near
-    return _through(chart, _passes(chart, grid, leak, minima), minima)
+        found = _near(chart, grid, leak)
+        best = _through(chart, found, minima)
+        if best is not None and abs(best.value - leak.energy) > CLOSE * (leak.energy - leak.bottom):
+            best = None
+    others = _passes(chart, grid, minima, np.inf if best is None else best.value - 1e-12 * abs(best.value))
+    if best is None or others:
+        best = _through(chart, _distinct(chart, found + others), minima)
+    if best is None and leak is not None:  # a long chain of wells: the grid has seen that this is its highest pass
+        seen = [one for one in found if abs(one.value - leak.energy) < SEEN * (leak.energy - leak.bottom)]
+        best = min(seen, key=lambda one: abs(one.value - leak.energy), default=None)
+    return best
 
 
 def _through(chart: Chart, passes: list[Pass], minima: Array) -> Pass | None:
@@ -65,18 +75,17 @@ def _near(chart: Chart, grid: Grid, leak: Leak) -> list[Pass]:
     return _distinct(chart, found + walled_passes(chart, leak.point, float(radius[0])))
 
 
-def _passes(chart: Chart, grid: Grid, leak: Leak | None, minima: Array) -> list[Pass]:
-    """Passes from the grid's saddles and leak, and from between the lowest wells."""
+def _passes(chart: Chart, grid: Grid, minima: Array, ceiling: float) -> list[Pass]:
+    """Passes below a ceiling from the grid's saddles, and from between the lowest wells."""
     index = grid.saddles(MOST_STARTS)
+    index = index[grid.v[tuple(index.T)] < ceiling]
     starts, radius = [grid.points(index)], [grid.spacing(index)]
     for one, other in combinations(minima[:MOST_WELLS], 2):
         line = one + np.linspace(0, 1, 33)[1:-1, None] * (other - one)
         starts.append(line[np.argmax(chart.value(line))][None])
         radius.append(np.array([np.linalg.norm(other - one) / 10]))
     found = passes_from(chart, np.concatenate(starts), np.concatenate(radius))
-    if leak is not None and not leak.at_infinity:
-        found += _near(chart, grid, leak)
-    return _distinct(chart, found)
+    return _distinct(chart, [one for one in found if one.value < ceiling])
 
 
 def _distinct(chart: Chart, found: list[Pass]) -> list[Pass]:

@@ -133,7 +133,8 @@ def _joined(
     ceiling = escape.energy if escape else np.inf
     region = grid.region(points[0], ceiling)
     level = bottom.kind in ("flat", "ring", "sphere")
-    aside = points[0] + 0.3 * scales[0] * np.vstack([np.eye(chart.dimension), -np.eye(chart.dimension)])
+    middle = np.sqrt(scales[0] * chart.reach)
+    aside = points[0] + 0.1 * middle * np.vstack([np.eye(chart.dimension), -np.eye(chart.dimension)])
     unit = float(np.max(np.abs(chart.value(aside) - bottom.value), where=np.isfinite(chart.value(aside)), initial=0.0))
     found = [bottom]
     for point, value, scale in zip(points[1:], values[1:], scales[1:], strict=True):
