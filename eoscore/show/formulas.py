@@ -41,7 +41,8 @@ def _lines(name: str, formula: Mapping[str, Any]) -> Iterator[str]:
     for expansion in formula.get("expansions", ()):
         here = "" if expansion["value"] is None else f" = {quantity(expansion['value'], unit)}"
         yield f"    {expansion['limit']}: {expansion['text']}{here}"
-        yield f"      small = {expansion['small'].replace('**', '^')} = {expansion['small_value']:.3g}; {expansion['range']}"
+        small = expansion["small"].replace("**", "^")
+        yield f"      small = {small} = {expansion['small_value']:.3g}; {expansion['range']}"
     if "jump" in formula:
         yield f"    heat capacity jump at T_c: {formula['jump']['text']}"
     if slopes := formula.get("sensitivities"):
