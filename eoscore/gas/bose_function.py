@@ -27,7 +27,15 @@ from typing import TYPE_CHECKING, overload
 import numpy as np
 
 from eoscore.gas.blocks import blockwise, horner, horner_scalar
-from eoscore.gas.precise import checked_order, moved, polynomial, polynomial_value, powers, precisely, zeta_row
+from eoscore.gas.precise import (
+    checked_order,
+    moved,
+    polynomial,
+    polynomial_value,
+    powers,
+    precisely,
+    zeta_row,
+)
 from eoscore.gas.singular import AbstractSingular, singular_of
 
 if TYPE_CHECKING:

@@ -9,7 +9,8 @@ Beyond eta = 0 it is a part that grows as a power and its own mirror image, F_s(
 - Half orders: cos(pi s) = 0, and Y_s is the function. Y_s is a polynomial of degree 20 to 32 on each of five panels
   whose widths grow with the distance to the poles +-i pi (the error falls by 6.5 with each degree), and beyond 32
   eta^s times one in 1 / eta^2: Sommerfeld's expansion, made the best for that range.
-- Orders below -1/2: Taylor's series in eta for |eta| < 1/2, since the even ones of them vanish at eta = 0.
+- Orders below -1/2 change sign: there z Q(v) would cancel, and two polynomials in eta stand for -4.5 < eta < -1/2,
+  and Taylor's series for |eta| < 1/2, since the even whole ones of them vanish at eta = 0.
 
 Polynomials are good to some 1e-17 of the function. Near the other zeros of orders below -1 the error is that of a
 rounded eta. Method: D. Wood, "The computation of polylogarithms" (1992); J. M. Blakemore, Solid-State Electron. 25,
@@ -25,7 +26,7 @@ from typing import TYPE_CHECKING, overload
 import numpy as np
 
 from eoscore.gas.blocks import blockwise, horner, horner_scalar
-from eoscore.gas.fermi_table import EDGES, FermiTable, fermi_table
+from eoscore.gas.fermi_table import EDGES, SHOULDER, FermiTable, fermi_table
 from eoscore.gas.precise import checked_order
 
 if TYPE_CHECKING:
@@ -45,15 +46,20 @@ def _below(table: FermiTable, eta: Block) -> Block:
     result *= v
     result *= z
     np.subtract(z, result, out=result)
-    if table.middle:
-        near = np.flatnonzero(eta > table.low)
-        result[near] = horner(table.middle, eta.take(near))
+    for low, (origin, coefficients) in zip(SHOULDER, (*table.shoulder, (0.0, table.middle)), strict=False):
+        near = np.flatnonzero(eta > low) if table.middle else ()
+        if len(near):
+            result[near] = horner(coefficients, eta.take(near) - origin)
     return result
 
 
 def _whole_part(table: FermiTable, eta: Block) -> Block:
-    square = eta * eta
-    result = horner(table.whole, square) if len(table.whole) > 1 else np.full(eta.size, table.whole[0])
+    result = np.full(eta.size, table.whole[-1])
+    for coefficient in table.whole[-2::-1]:
+        # Not times a rounded square: its error would count once for each term.
+        result *= eta
+        result *= eta
+        result += coefficient
     if table.order % 2:
         result *= eta
     return result
@@ -74,7 +80,7 @@ def _whole(table: FermiTable, eta: Block) -> Block:
 def _far(table: FermiTable, eta: Block) -> Block:
     inverse = 1.0 / eta
     result = horner(table.far, inverse * inverse)
-    if table.mirror == 0.0 and table.order > 0:
+    if table.mirror == 0.0 and 0 < table.order < 8:
         result *= np.sqrt(eta)
         for _ in range(int(table.order)):
             result *= eta
@@ -86,7 +92,7 @@ def _far(table: FermiTable, eta: Block) -> Block:
 def _above(table: FermiTable, panel: int, eta: Block) -> Block:
     """F for eta > 0 in one panel."""
     if table.middle and panel == 1:
-        near = eta <= -table.low
+        near = eta <= -SHOULDER[-1]
         if near.any():
             return np.where(near, horner(table.middle, eta), _power_and_mirror(table, panel, eta))
     return _power_and_mirror(table, panel, eta)
@@ -129,16 +135,24 @@ def _one(table: FermiTable, panel: int, eta: Block) -> Block:
     return _above(table, panel, eta) if panel else _below(table, eta)
 
 
+def _scalar_below(table: FermiTable, eta: float) -> float:
+    if table.middle and eta > SHOULDER[0]:
+        if eta > SHOULDER[-1]:
+            return horner_scalar(table.middle, eta)
+        origin, coefficients = table.shoulder[bisect_left(SHOULDER, eta) - 1]
+        return horner_scalar(coefficients, eta - origin)
+    z = math.exp(eta)
+    return z - z * (z / (table.centre + z) * horner_scalar(table.below, z / (table.centre + z)))
+
+
 def _scalar(table: FermiTable, eta: float) -> float:
-    if table.middle and abs(eta) <= -table.low:
+    if table.middle and abs(eta) <= -SHOULDER[-1]:
         return horner_scalar(table.middle, eta)
-    z = math.exp(-abs(eta))
-    v = z / (table.centre + z)
-    mirror = z - z * (v * horner_scalar(table.below, v))
+    mirror = _scalar_below(table, -abs(eta))
     if not eta > 0:
         return mirror
     if table.order == round(table.order):
-        power = horner_scalar(table.whole, eta * eta) * (eta if table.order % 2 else 1.0)
+        power = float(_whole_part(table, np.array([eta]))[0]) if table.whole else 0.0
     elif eta > EDGES[-1]:
         power = float(np.power(eta, table.order)) * horner_scalar(table.far, 1.0 / eta / eta)
     else:
