@@ -61,11 +61,10 @@ def misfit(builtin: Builtin, given: Sequence[Dim]) -> int | None:
 
 
 def result(builtin: Builtin, given: Sequence[Dim]) -> Dim:
-    """The dimension of the value; a faulty argument spoils it where it would show."""
+    """The dimension of the value; a faulty argument among others would have fitted them."""
     if builtin.rule in ("pure", "drops"):
         return PURE
-    if Wild.FAULTY in given:
-        return Wild.FAULTY
     if builtin.rule == "root":
         return power(given[0], 0.5)
-    return next((dim for dim in given if not isinstance(dim, Wild)), Wild.ZERO)
+    faulty = Wild.FAULTY if Wild.FAULTY in given else Wild.ZERO
+    return next((dim for dim in given if not isinstance(dim, Wild)), faulty)

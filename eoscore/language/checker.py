@@ -23,7 +23,7 @@ __all__ = ["Checker"]
 
 Result = TypeVar("Result")
 _MOST_STEPS = 300_000  # for one name or expression; functions are worked through once per kind of call
-_STEPS_OF_ALL = 1_000_000  # for a whole text: some seconds
+_STEPS_OF_ALL = 500_000  # for a whole text: some seconds
 _LISTS = 100
 
 

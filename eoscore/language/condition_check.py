@@ -6,7 +6,7 @@ import math
 from typing import TYPE_CHECKING, Final, Literal
 
 from eoscore.language import nodes
-from eoscore.language.demand import must_be
+from eoscore.language.demand import above_zero, must_be
 from eoscore.language.faults import listed
 from eoscore.language.kind import PURE, Kind, Wild, alike, told
 from eoscore.language.mend import mend
@@ -117,9 +117,7 @@ def _thermodynamic(name: nodes.Ident, span: Span, kind: Kind, own: Named | None,
             )
         return False
     if name.name in _POSITIVE and kind.value is not None and kind.value <= 0:
-        checker.faults.add(
-            span, f"`{name.name}` must be above 0, `{short(span)}` is {kind.value:g}", "check its sign"
-        )
+        checker.faults.add(span, above_zero(f"`{name.name}`", kind.value, short(span)), "check its sign")
         return False
     return True
 

@@ -15,7 +15,7 @@ if TYPE_CHECKING:
     from eoscore.language.units import Dimension
     from eoscore.source import Span
 
-__all__ = ["must_be", "must_be_positive", "must_match"]
+__all__ = ["above_zero", "must_be", "must_be_positive", "must_match"]
 
 
 def must_be(kind: Kind, units: Sequence[str], span: Span, what: str, faults: Faults) -> bool:
@@ -43,10 +43,16 @@ def must_be_positive(kind: Kind, span: Span, what: str, faults: Faults) -> bool:
     """Whether a constant value is above zero; a fault if it is not, nothing said where it has no value."""
     if kind.dimension is Wild.FAULTY or kind.value is None or kind.value > 0:
         return kind.value is not None
-    faults.add(
-        span, f"{what} must be above 0, `{short(span)}` is {kind.value:g}", "check its sign and its unit"
-    )
+    faults.add(span, above_zero(what, kind.value, short(span)), "check its sign and its unit")
     return False
+
+
+def above_zero(what: str, value: float, words: str) -> str:
+    """The sentence for a value that must be above zero; that of a literal is not repeated."""
+    is_literal = words.lstrip("-(").startswith(tuple("0123456789."))
+    return f"{what} must be above 0, but `{words}` came" + (
+        "" if is_literal else f", which is {value:g} in SI"
+    )
 
 
 def _unit_hint(kind: Kind, units: Sequence[str]) -> str:

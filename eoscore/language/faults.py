@@ -85,8 +85,9 @@ def _likeness(name: str, other: str) -> float:
     if name.lower() == other.lower():
         return 2.0
     matcher = SequenceMatcher(None, name[:40], other[:40], autojunk=False)
-    bound = matcher.real_quick_ratio()
-    return matcher.ratio() if bound >= _NEAR and matcher.quick_ratio() >= _NEAR else 0.5 * bound
+    begun = 0.2 if name.startswith(other) or other.startswith(name) else 0.0
+    bound = matcher.quick_ratio()
+    return matcher.ratio() if bound >= _NEAR else 0.5 * bound + begun
 
 
 def listed(name: str, known: Iterable[str], *, what: str = "known here") -> str:

@@ -89,10 +89,11 @@ def binary(node: Binary, left: Kind, right: Kind, sink: Sink) -> Kind:
 
 
 def join(span: Span, parts: Sequence[tuple[Span, Dim]], sink: Sink, verb: str) -> Dim:
-    """The one dimension of parts that must be alike, a fault where they are not."""
-    if any(dim is Wild.FAULTY for _, dim in parts):
-        return Wild.FAULTY
-    (first, wanted), *others = [part for part in parts if not isinstance(part[1], Wild)] or [parts[0]]
+    """The one dimension of parts that must be alike, a fault where they are not; a faulty part would have fitted."""
+    known = [part for part in parts if not isinstance(part[1], Wild)]
+    if not known:
+        return Wild.FAULTY if any(dim is Wild.FAULTY for _, dim in parts) else Wild.ZERO
+    (first, wanted), *others = known
     for other, dim in others:
         if not alike(dim, wanted):
             message = (

@@ -35,7 +35,7 @@ def test_all_faults_come_in_one_pass_in_the_order_of_the_text():
 
 
 def test_a_faulty_name_does_not_cause_further_faults():
-    text = GAS + "trap t { w = nothing\n b = w + 1 m\n V(x) = b*w + exp(w) + if(w < b, w, 1 J) }"
+    text = GAS + "trap t { w = nothing\n b = w + 1 m\n V(x) = b*w + exp(w)*w + if(w < b, w, 1 J) }"
     with pytest.raises(TarnError, match="`nothing` is not known") as caught:
         program(text)
     assert len(caught.value.complaints) == 1
@@ -46,3 +46,19 @@ def test_a_fault_of_a_trap_is_told_once_for_all_gases_that_ask():
     with pytest.raises(TarnError, match="cannot be added") as caught:
         program(text + "find depth for sr in t\nfind depth for yb in t")
     assert len(caught.value.complaints) == 1
+
+
+def test_what_a_faulty_part_leaves_is_still_checked():
+    """The unknown name would have fitted; the other terms are no energy whatever it means."""
+    text = GAS + "trap t { V(x) = 3*x + nothing*x }"
+    with pytest.raises(TarnError, match=r"V must be kg m2/s2 .J., `3.x . nothing.x` is m") as caught:
+        program(text)
+    assert len(caught.value.complaints) == 2
+
+
+def test_a_value_below_zero_is_told_with_its_number():
+    with pytest.raises(TarnError, match="must be above 0, but `1 m3 - 3 m3` came") as caught:
+        program(GAS + "trap t { volume = 1 m3 - 3 m3 }")
+    assert len(caught.value.complaints) == 1
+    with pytest.raises(TarnError, match="must be above 0, but `w` came, which is -2 in SI"):
+        program(GAS + "trap t { w = 1 m3 - 3 m3\n volume = w }")
