@@ -96,9 +96,9 @@ class Ensemble(ABC):
             return np.full_like(kT, np.inf)
         return self.count(np.zeros_like(kT), kT)[0]
 
-    def alpha_of(self, number: FloatArray, kT: FloatArray) -> FloatArray | None:  # noqa: ARG002 - a default
-        """alpha at N in closed form; None where it has to be searched."""
-        return None
+    def alpha_of(self, number: FloatArray, kT: FloatArray) -> FloatArray | None:
+        """alpha at N in closed form, N = Z e^-alpha for a classical gas; None where it has to be searched."""
+        return np.log(self.boltzmann(kT)[0] / number) if self.statistics == "classical" else None
 
     def saturated_kT(self, number: FloatArray) -> FloatArray | None:  # noqa: ARG002 - a default
         """kT at which N(alpha = 0) = number in closed form; None where it has to be searched."""
