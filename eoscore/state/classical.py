@@ -71,7 +71,7 @@ class Classical(OverNodes):
 
 
 def _regular(k: float, x: FloatArray) -> FloatArray:
-    return gammainc(k, x) if k else np.ones_like(x)
+    return np.asarray(gammainc(k, x), dtype=float) if k else np.ones_like(x)
 
 
 def _moments(_: FloatArray, kT: FloatArray, rule: Nodes) -> tuple[FloatArray, ...]:

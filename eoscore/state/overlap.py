@@ -1,19 +1,23 @@
-"""The density averaged over the particles: int n^2 / int n."""
+"""Integrals of the local density over the place."""
 
 from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
 import numpy as np
+from scipy.special import roots_jacobi
 
 from eoscore.state.ensembles import ensemble_of
 
 if TYPE_CHECKING:
-    from eoscore.measure.base import Measure
+    from collections.abc import Callable
+
+    from eoscore.measure import Foot
+    from eoscore.state.held import HeldGas
     from eoscore.state.reading import FloatArray
     from eoscore.state.state import State
 
-__all__ = ["mean_density"]
+__all__ = ["RULE", "mean_density", "over_place"]
 
 RULE = (
     2e-12  # relative error of the rule below: ln v takes the cone that n has at the bottom of a saturated gas
@@ -29,26 +33,43 @@ def mean_density(state: State) -> tuple[FloatArray, FloatArray]:
         return sums.N, state.bound(held.model.whole.error, sums.N, by_alpha, by_log)
     some = np.flatnonzero(s.known)
     value = np.full(s.kT.shape, np.nan)
-    value[some] = _over_place(state, held.position, s.alpha[some], s.kT[some])
+    first, second = over_place(held, s.alpha[some], s.kT[some], lambda n, _: (n, n * n))
+    value[some] = second / first
     dalpha, dlog = state.doubt
     lean = dalpha * np.maximum(1.0, 1 / np.where(s.alpha > 0, s.alpha, 1.0)) + 2 * dlog
     return value, value * (held.model.whole.error + RULE + lean)
 
 
-def _over_place(state: State, position: Measure, alpha: FloatArray, kT: FloatArray) -> FloatArray:
-    """The two integrals over the nodes of the measure of V; below a top each node has its own."""
-    rule = position.nodes(45.0 * float(kT.max()))
-    k, foot = rule.foot.exponent, rule.foot
-    v = np.append(foot.edge * k / (k + 1), rule.v)
-    w = np.append(foot.volume, rule.w)
-    momentum = state.held.momentum
-    first, second = np.zeros((2, kT.size))
-    local = state.held.model.local
-    for energy, weight in zip(v, w, strict=True):
-        if np.isfinite(state.held.top):
-            local = ensemble_of(state.held.gas, momentum.cut(state.held.top - energy))
-        if local is not None:
-            n, _ = local.count(alpha + energy / kT, kT)
-            first += weight * n
-            second += weight * n * n
-    return second / first
+def over_place(
+    held: HeldGas,
+    alpha: FloatArray,
+    kT: FloatArray,
+    functions: Callable[[FloatArray, FloatArray], tuple[FloatArray, ...]],
+) -> tuple[FloatArray, ...]:
+    """Integrals over the place of functions of the local density n and of -dn/dalpha, for a gas in a potential.
+
+    Over the nodes of the measure of V; below an escape energy the momenta of each node have their own top.
+    """
+    if held.position is None or not kT.size:
+        return functions(np.zeros_like(kT), np.zeros_like(kT))
+    rule = held.position.nodes(45.0 * float(np.nanmax(kT)))
+    low, mass = _in_foot(rule.foot)
+    energies, weights = np.concatenate([low, rule.v]), np.concatenate([mass, rule.w])
+    local = held.model.local
+    total: tuple[FloatArray, ...] = ()
+    for v, w in zip(energies, weights, strict=True):
+        if np.isfinite(held.top):
+            local = ensemble_of(held.gas, held.momentum.cut(held.top - v))
+        if local is None:
+            break
+        parts = functions(*local.count(alpha + v / kT, kT))
+        total = tuple(t + w * p for t, p in zip(total or (0.0,) * len(parts), parts, strict=True))
+    return total
+
+
+def _in_foot(foot: Foot) -> tuple[FloatArray, FloatArray]:
+    """Nodes in the foot for functions of sqrt(v), as the density of a saturated gas is."""
+    if foot.exponent == 0:
+        return np.zeros(1), np.array([foot.volume])
+    x, w = roots_jacobi(6, 0.0, 2 * foot.exponent - 1)
+    return foot.edge * ((1 + x) / 2) ** 2, foot.volume * w / w.sum()

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING, NamedTuple
 
-from eoscore.state import bottom, collisions, geometry, saturation, thermal
+from eoscore.state import bottom, collisions, geometry, saturation, shifts, thermal
 
 if TYPE_CHECKING:
     from collections.abc import Callable
@@ -47,6 +47,8 @@ QUANTITIES: dict[str, Quantity] = {
     "r_min": Quantity(geometry.position, "m"),
     "V_min": Quantity(geometry.bottom_energy, "J"),
     "exponent": Quantity(saturation.exponent, "1"),
+    "shift_size": Quantity(shifts.of_size, "1"),
+    "shift_int": Quantity(shifts.of_interactions, "1"),
     "rate_coll": Quantity(collisions.rate, "1/s"),
 }
 
