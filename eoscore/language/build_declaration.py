@@ -19,6 +19,13 @@ _BLOCKS: dict[str, type[nodes.Gas | nodes.Trap | nodes.States]] = {
     "trap": nodes.Trap,
     "states": nodes.States,
 }
+_LINES: dict[type[nodes.Node], str] = {
+    nodes.Isotope: "isotope",
+    nodes.Statistics: "statistics",
+    nodes.Treatment: "treatment",
+    nodes.DispersionChoice: "dispersion",
+    nodes.Anchor: "anchor",
+}
 
 
 @dataclass(frozen=True)
@@ -71,7 +78,7 @@ class BuildDeclaration(BuildExpression):
     def _belongs(self, line: nodes.Node, kind: str) -> bool:
         if isinstance(line, nodes.Definition):
             return True
-        word = line.span.text.split(None, 1)[0]
+        word = _LINES[type(line)]
         home = LINE_WORDS[word]
         if home != kind:
             message = f"`{word}` came in a `{kind}` block; it belongs into `{home} NAME {{ ... }}`"

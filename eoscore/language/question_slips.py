@@ -23,6 +23,8 @@ def missing_gas(failure: Failure) -> Fault | None:
     if failure.kind in ("NAME", "NUMBER") and not failure.opens_a_line:
         message = f"{failure.came} between the quantities of a question; a comma or `for` was expected"
         return Fault(failure.span, message, f"write `{question} T_c, f_0 for GAS`")
+    if failure.kind not in ("IN", "FROM", "WITH", "OVER") and not failure.opens_a_line:
+        return None
     message = f"{failure.came}, but `{question}` does not say yet for which gas"
     return Fault(failure.span, message, f"write `{question} ... for GAS`, before `in`, `with` and `over`")
 

@@ -43,23 +43,27 @@ _TELLERS: Final[tuple[Callable[[Failure], Fault | None], ...]] = (
     misplaced.side_by_side,
     unfinished.unexpected,
 )
-_HEAD = rf"(?!(?:{'|'.join(RESERVED)})\b)[^\W\d]\w*[ \t]*(?:\([^()\n]*\)[ \t]*)?=(?!=)"
+_HEAD = (
+    rf"(?!(?:{'|'.join(RESERVED)})\b)[^\W\d]\w*[ \t]*(?:(?:\([^()\n]*\)[ \t]*)?=(?!=)|[^\W\d]\w*[ \t]*\{{)"
+)
 _RESUME = re.compile(
     rf"^[ \t]*(?:(?P<top>(?:{'|'.join(OPENERS)})\b(?!\s*[=(]))|(?P<line>(?:{'|'.join(LINE_WORDS)})\b|{_HEAD}))"
     r"|(?P<close>\})",
     re.MULTILINE,
 )
+_BLOCK_TYPES: Final = ("GAS", "TRAP", "STATES")
 _GOES_ON = re.compile(r"(?:[,=+\-*/^(<>]|\b(?:with|over|where|and|or|not|for|in|from|at))\s*$")
 
 
 def recover(error: UnexpectedInput, source: Source, faults: Faults) -> bool:
     """Notes the fault of a text and sets the parser where it can go on; True, since it always can."""
     failure = Failure.of(error, source)
-    faults.append(next(fault for teller in _TELLERS if (fault := teller(failure))))
+    fault = next(fault for teller in _TELLERS if (fault := teller(failure)))
+    faults.append(fault)
     parser = error.interactive_parser
     if failure.kind == "$END" or len(faults) >= FAULTS:  # what is left of the text is not read
         _go_on(parser, None, len(source.text))
-    elif not _repair_header(parser, failure):
+    elif not _repair_header(parser, failure, fault):
         _skip(parser, failure)
     return True
 
@@ -78,30 +82,37 @@ def _read_on(parser: InteractiveParser, position: int) -> None:
         parser.lexer_thread.state.line_ctr.char_pos = position
 
 
-def _repair_header(parser: InteractiveParser, failure: Failure) -> bool:
-    """Supplies the name and the brace that the head of a block lacks, so that its lines are read as a block's."""
-    blocks = ("GAS", "TRAP", "STATES")
-    lacks_name = failure.is_read(1, *blocks)
-    if not lacks_name and not failure.is_read(2, *blocks):
-        return False
+def _repair_header(parser: InteractiveParser, failure: Failure, fault: Fault) -> bool:
+    """Reads a faulty head of a block as a right one, so that its lines are read as a block's."""
     line_end = failure.text.find("\n", failure.start)
     brace = failure.text.find("{", failure.start, line_end if line_end >= 0 else None)
-    if brace < 0 and not failure.opens_a_line:
+    heads = [str(item).upper() for item in failure.entry[:2] if isinstance(item, Token)]
+    if not heads or len(failure.entry) > len(heads) or (brace < 0 and not failure.opens_a_line):
         return False
+    if heads[0] not in _BLOCK_TYPES and (brace < 0 or failure.kind not in ("NAME", "LBRACE")):
+        return False
+    kind = heads[0] if heads[0] in _BLOCK_TYPES else _meant(failure, fault)
     position = brace + 1 if brace >= 0 else failure.start
-    if lacks_name:
-        parser.feed_token(Token("NAME", "_", position, end_pos=position))
-    parser.feed_token(Token("LBRACE", "{", position, end_pos=position))
-    _read_on(parser, position)
+    _go_on(parser, failure.brace, position)
+    choices: dict[str, object] = parser.choices()  # type: ignore[no-untyped-call]  # lark leaves it unannotated
+    if kind not in choices:
+        return False
+    for token_type, text in ((kind, kind.lower()), ("NAME", "_"), ("LBRACE", "{")):
+        parser.feed_token(Token(token_type, text, position, end_pos=position))
     return True
+
+
+def _meant(failure: Failure, fault: Fault) -> str:
+    """The type of the word that a strange head of a block stands for, as its hint says."""
+    if failure.brace is not None:
+        return "DISPERSION"
+    return next((kind for kind in _BLOCK_TYPES if f"`{kind.lower()}" in (fault.hint or "")), "GAS")
 
 
 def _skip(parser: InteractiveParser, failure: Failure) -> None:
     """To the next line that opens an entry of the same block or of the file, or to the end of the block."""
     brace, text = failure.brace, failure.text
-    least = (
-        failure.entry_start + 1
-    )  # never back to the entry that is at fault, so the reading comes to an end
+    least = failure.entry_start + 1  # never back to the entry at fault, so that the reading comes to an end
     for found in _RESUME.finditer(text, failure.line_start):
         start = found.start(found.lastgroup or 0)
         if start < (failure.start if found["close"] else least) or (found["close"] and brace is None):

@@ -150,3 +150,16 @@ def test_no_sequence_of_tokens_raises_anything_but_a_complaint(tokens: list[str]
 @given(st.text(max_size=60) | st.binary(max_size=60) | st.text('gas{}=1 x()\n,;"', max_size=60))
 def test_no_text_raises_anything_but_a_complaint(text: str | bytes):
     assert all(complaint.line >= 1 and complaint.column >= 1 for complaint in faults_of(text))
+
+
+@settings(deadline=None)
+@given(
+    st.lists(
+        st.tuples(st.integers(0, len(LAB)), st.integers(0, 8), st.sampled_from(["", *TOKENS])), max_size=4
+    )
+)
+def test_no_slip_of_the_pen_raises_anything_but_a_complaint(slips: list[tuple[int, int, str]]):
+    text = LAB
+    for place, lost, written in slips:
+        text = text[:place] + written + text[place + lost :]
+    assert all(complaint.message and complaint.hint for complaint in faults_of(text))

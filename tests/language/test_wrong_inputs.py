@@ -44,6 +44,15 @@ def test_all_faults_come_in_one_pass_in_the_order_of_the_text():
     assert [complaint.line for complaint in complaints(text)] == [1, 2, 3, 4, 6, 7, 8, 9]
 
 
+@pytest.mark.parametrize(
+    "head", ["gass sr {", "gas {", "gas sr sr {", "atom sr {", "gas sr", "gas 3 {", "gas 'sr' {"]
+)
+def test_a_faulty_head_hides_nothing_of_its_block(head: str):
+    text = f"{head}\n isotope Sr84\n dispersoin trapped {{\n omega = 3 hz\n }}\n m = 3 uu\n}}\nb = 1"
+    first = 2 if head == "gas sr" else 1
+    assert [complaint.line for complaint in complaints(text)] == [first, 2, 3, 4, 6]
+
+
 def test_a_fault_in_a_question_of_many_lines_is_told_once():
     text = "find T_c\n  for g\n  in bowl\n  with N 2e5,\n    T = 400 nK\n  over P = [1, 2]\nb = 3"
     assert [complaint.line for complaint in complaints(text)] == [4]
