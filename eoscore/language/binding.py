@@ -6,7 +6,7 @@ import math
 from functools import cached_property
 from typing import TYPE_CHECKING, Literal, cast
 
-from eoscore.errors import Complaint, TarnError
+from eoscore.errors import Complaint, NoAnswerError, TarnError
 from eoscore.formula.field import Field
 from eoscore.language import nodes
 from eoscore.language.condition_check import settable
@@ -48,7 +48,7 @@ class Binding:
 
     @cached_property
     def gas(self) -> GasFacts:
-        """The gas in SI. Raises TarnError where a value given from outside makes no sense."""
+        """The gas in SI. Raises NoAnswerError, in words, where the values given make no sense."""
         gas = self._pair.gas
         own = gas.scope.names
         statistics = gas.statistics.name if gas.statistics else "bose"
@@ -66,7 +66,7 @@ class Binding:
 
     @cached_property
     def place(self) -> PlaceFacts | None:
-        """The place in SI, None where the gas holds itself. Raises TarnError as `gas` does."""
+        """The place in SI, None where the gas holds itself. Raises NoAnswerError as `gas` does."""
         place, own = self._pair.place, self._pair.scope.names
         if place is None:
             return None
@@ -106,18 +106,13 @@ class Binding:
     def _finite(self, named: Named) -> float:
         value = self._lowering.value(named)
         if not math.isfinite(value):
-            raise _senseless(named, f"`{named.name}` has no finite value here")
+            raise NoAnswerError(f"`{named.name}` has no finite value with the values given")
         return value
 
     def _positive(self, named: Named) -> float:
         value = self._finite(named)
         if value <= 0:
-            raise _senseless(named, f"`{named.name}` must be above 0, it is {value:g}")
+            raise NoAnswerError(
+                f"`{named.name}` must be above 0, with the values given it is {value:g} in SI"
+            )
         return value
-
-
-def _senseless(named: Named, message: str) -> TarnError:
-    hint = "check the values that it is made of, and those given for this question"
-    if named.definition is None:
-        return TarnError([Complaint("<value>", 1, 1, 1, 1, message, hint)])
-    return TarnError([Complaint.at(named.definition.name.span, message, hint)])

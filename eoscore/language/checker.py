@@ -22,7 +22,7 @@ if TYPE_CHECKING:
 __all__ = ["Checker"]
 
 Result = TypeVar("Result")
-_MOST_STEPS = 300_000  # for one name or expression; functions are worked through once per kind of call
+_MOST_STEPS = 100_000  # for one name or expression; functions are worked through once per kind of call
 _STEPS_OF_ALL = 500_000  # for a whole text: some seconds
 _LISTS = 100
 

@@ -6,11 +6,12 @@ that call functions do not blow up. The text was checked before; here every name
 
 from __future__ import annotations
 
+import math
 import operator
 from typing import TYPE_CHECKING, NamedTuple, TypeAlias
 
 from eoscore import formula
-from eoscore.errors import Complaint, TarnError
+from eoscore.errors import Complaint, NoAnswerError, TarnError
 from eoscore.language import nodes
 from eoscore.language.rules import short
 from eoscore.language.scope import read_in
@@ -27,7 +28,7 @@ if TYPE_CHECKING:
 
 __all__ = ["Lowering", "conjuncts"]
 
-_MOST_STEPS = 300_000
+_MOST_STEPS = 100_000
 
 
 class _Frame(NamedTuple):
@@ -62,7 +63,8 @@ class Lowering:
     """Lowers expressions with some names and some literals at other values than written.
 
     `values` are SI values of names, `literals` SI values of number nodes by their identity. Raises TarnError where
-    an expression expands into more steps than can be worked through.
+    an expression expands into more steps than can be worked through, NoAnswerError where the values given make a
+    part of a field infinite.
     """
 
     def __init__(self, values: Mapping[Named, float], literals: Mapping[int, float]) -> None:
@@ -70,6 +72,7 @@ class Lowering:
         self._names: dict[Named, Formula] = {}
         self._calls: dict[CallKey, Formula] = {}
         self._steps = 0
+        self._in_field = False
 
     def sets(self, named: Named) -> bool:
         """Whether a name has a value given from outside."""
@@ -89,8 +92,11 @@ class Lowering:
         parameters = [parameter.name for parameter in definition.parameters or ()]
         variables = {name: formula.variable(to) for name, to in zip(parameters, arguments, strict=True)}
         frame = _Frame(home, variables)
+        self._in_field = True
         walls = [formula.margin(run(self._condition(each, frame))) for each in conjuncts(definition.where)]
-        return run(self._expression(definition.value, frame)), tuple(walls)
+        body = run(self._expression(definition.value, frame))
+        self._in_field = False
+        return body, tuple(walls)
 
     def _expression(self, node: nodes.Expr, frame: _Frame) -> Step[Formula]:
         self._count(node)
@@ -101,20 +107,25 @@ class Lowering:
             case nodes.Name():
                 if node.name in frame.arguments:
                     return frame.arguments[node.name]
-                return (yield from self._name(frame.scope.get(node.name)))
+                return self._sound((yield from self._name(frame.scope.get(node.name))), node)
             case nodes.Negative():
                 operand: Formula = yield self._expression(node.operand, frame)
                 return -operand
             case nodes.Binary():
                 left = yield self._expression(node.left, frame)
-                return _OPERATORS[node.operator](left, (yield self._expression(node.right, frame)))
+                right = yield self._expression(node.right, frame)
+                if node.operator == "/" and right.op == "constant" and right.value == 0:
+                    self._sound(formula.constant(math.inf), node)
+                return self._sound(_OPERATORS[node.operator](left, right), node)
             case nodes.If():
-                holds = yield self._condition(node.condition, frame)
+                holds: Condition = yield self._condition(node.condition, frame)
+                if holds.op == "truth":
+                    return (yield from self._expression(node.then if holds.value else node.otherwise, frame))
                 then = yield self._expression(node.then, frame)
                 return formula.choose(holds, then, (yield self._expression(node.otherwise, frame)))
             case nodes.Call():
                 arguments = yield from every(self._expression(each, frame) for each in node.arguments)
-                return (yield from self._call(node.function.name, arguments, frame.scope))
+                return self._sound((yield from self._call(node.function.name, arguments, frame.scope)), node)
 
     def _condition(self, node: nodes.Condition, frame: _Frame) -> Step[Condition]:
         if isinstance(node, nodes.Compare):
@@ -129,6 +140,13 @@ class Lowering:
         for part in parts[1:]:
             whole = (formula.both if node.operator == "and" else formula.either)(whole, part)
         return whole
+
+    def _sound(self, result: Formula, node: nodes.Expr) -> Formula:
+        """The result itself; within a field a constant that is no number is the end, in words."""
+        if self._in_field and result.op == "constant" and not math.isfinite(result.value):
+            why = f"`{short(node.span)}` in line {node.span.line} has no finite value with the values given"
+            raise NoAnswerError(why)
+        return result
 
     def _count(self, node: nodes.Expr) -> None:
         self._steps += 1

@@ -5,7 +5,7 @@ from __future__ import annotations
 from pathlib import Path
 from typing import TYPE_CHECKING
 
-from eoscore.errors import TarnError
+from eoscore.errors import NoAnswerError, TarnError
 from eoscore.language import nodes
 from eoscore.language.block import Gas, pair
 from eoscore.language.checker import Checker
@@ -90,7 +90,7 @@ def _read(
     check_strays(world, checker)
     faults.raise_if_any()
     literals = _literals(world, checker)
-    return Program(
+    program = Program(
         file.span.source,
         file,
         world,
@@ -100,6 +100,22 @@ def _read(
         tuple(node for _, node in literals),
         set(world.pairs_made),
     )
+    _try_values(program, faults)
+    return program
+
+
+def _try_values(program: Program, faults: Faults) -> None:
+    """Faults for new values that leave no gas or no place, such as a waist of 0, before anything is computed."""
+    for question in program.questions:
+        for place in (question.place, *question.origins) if question.values else ():
+            binding = program.bind(question.gas, place, program.conditions(question).values)
+            try:
+                _ = binding.gas, binding.place
+            except NoAnswerError as senseless:
+                first, *_others, last = (*question.values.values(), *question.values.values())
+                span = first.node.span.to(last.node.span)
+                faults.add(span, senseless.why, "give another value")
+    faults.raise_if_any()
 
 
 def _check_names(world: World, checker: Checker) -> None:

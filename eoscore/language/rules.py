@@ -85,6 +85,8 @@ def binary(node: Binary, left: Kind, right: Kind, sink: Sink) -> Kind:
     if dim is Wild.FAULTY:
         return UNKNOWN
     value = binary_value(node.operator, left.value, right.value)
+    if node.operator == "/" and right.value == 0:
+        value = math.inf  # whatever stands above, a coordinate too
     return Kind(dim, finite(value, node, sink, left, right))
 
 

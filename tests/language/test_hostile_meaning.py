@@ -10,14 +10,14 @@ from eoscore.errors import TarnError
 
 from .labs import GAS, program
 
-SECONDS = 20.0  # on a slow machine that does other things too; the aim is a few
+SECONDS = 12.0  # of processor time on a slow machine; the aim is a few
 
 
 @pytest.fixture(autouse=True)
 def soon():
-    start = time.perf_counter()
+    start = time.process_time()
     yield
-    assert time.perf_counter() - start < SECONDS
+    assert time.process_time() - start < SECONDS
 
 
 def tower(levels: int, step: str) -> str:
@@ -39,13 +39,13 @@ def test_a_tower_of_functions_costs_a_walk_per_level():
 
 
 def test_a_tower_that_never_repeats_itself_is_a_complaint():
-    with pytest.raises(TarnError, match="expands into more than 300,000 steps"):
+    with pytest.raises(TarnError, match="expands into more than 100,000 steps"):
         program(f"{tower(60, 'f(2*x) + f(2*x + 1)')}\na = f60(1)")
 
 
 def test_a_tower_over_coordinates_is_a_complaint_when_it_is_bound():
     lab = program(f"{GAS}{tower(30, 'f(2*x + 1 m) + f(3*x)')}\ntrap t {{ V(x) = (1 J/m)*f30(x) }}")
-    with pytest.raises(TarnError, match="expand into more than 300,000 steps"):
+    with pytest.raises(TarnError, match="expand into more than 100,000 steps"):
         _ = lab.bind("sr", "t").place
 
 

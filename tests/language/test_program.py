@@ -6,7 +6,7 @@ import numpy as np
 import pytest
 from scipy import constants as si
 
-from eoscore.errors import PluginError, TarnError
+from eoscore.errors import NoAnswerError, PluginError, TarnError
 from eoscore.language import read
 from eoscore.language.facts import StatesFacts, TrapFacts, UniformFacts, VolumeFacts
 from eoscore.language.units import Dimension
@@ -158,11 +158,31 @@ def test_a_value_for_another_place_is_passed_over():
     assert program(LAB).bind("sr", "t", {"K": 7.0}).value("Q")[0] == 6.0
 
 
-def test_a_senseless_value_is_told_when_it_is_used():
-    with pytest.raises(TarnError, match="`volume` must be above 0, it is -1"):
-        _ = program(LAB).bind("sr", "t", {"R": -1.0}).place
-    with pytest.raises(TarnError, match="`volume` has no finite value here"):
-        _ = program(LAB).bind("sr", "t", {"R": np.inf}).place
+@pytest.mark.parametrize(
+    ("values", "why"),
+    [
+        ({"R": -1.0}, "`volume` must be above 0, with the values given it is -1 in SI"),
+        ({"R": np.inf}, "`volume` has no finite value with the values given"),
+    ],
+)
+def test_a_senseless_value_is_told_when_it_is_used(values, why):
+    binding = program(LAB).bind("sr", "t", values)
+    with pytest.raises(NoAnswerError, match=why):
+        _ = binding.place
+
+
+def test_a_value_that_makes_a_field_infinite_is_told_with_its_place():
+    binding = program(GAS + "trap t { w = 2 m\n V(x) = if(w > 1 m, 1, 2)*(1 J)*x/w }").bind(
+        "sr", "t", {"w": 0.0}
+    )
+    with pytest.raises(NoAnswerError, match="in line 3 has no finite value"):
+        _ = binding.place
+
+
+def test_a_question_with_a_senseless_value_is_a_complaint():
+    with pytest.raises(TarnError, match="`volume` must be above 0") as caught:
+        program(LAB + "find Q for sr in t with P = 3 W, R = 0 m")
+    assert caught.value.complaints[0].column == len("find Q for sr in t with ") + 1
 
 
 def test_uncertain_literals_are_variables_in_the_order_of_the_text():

@@ -82,6 +82,9 @@ DIMENSIONS = [
     Wrong("f(x) = 1 m + 1 s + x\na = f(2 m)", "1 m + 1 s", "cannot be added", "same dimension"),
     Wrong("a = 9^9^9^9", "9^9^9", "is too large for a number", "its parts are 9, "),
     Wrong("a = 1/(2 - 2)", "1/(2 - 2)", "or a division by 0", "its parts are 1, 0"),
+    Wrong(
+        in_trap("V(x) = (1 J)*x/(3 m - 3 m)"), "(1 J)*x/(3 m - 3 m)", "or a division by 0", "its parts are 0"
+    ),
     Wrong("a = sqrt(0 - 1)", "sqrt(0 - 1)", "has no value among the real numbers", "its parts are -1"),
     Wrong("f(x) = 1/x\na = f(0)", "f(0)", "`f` does not fit here", "line 1: `1/x`"),
 ]
