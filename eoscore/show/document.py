@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import json
+import math
 from dataclasses import asdict
 from typing import TYPE_CHECKING, Any
 
@@ -49,7 +50,7 @@ def _answer(answer: Answer) -> dict[str, Any]:
     given = {name: asdict(value) for name, value in answer.given.items()}
     tail = {"cautions": [asdict(caution) for caution in answer.cautions]}
     if isinstance(answer, DerivedAnswer):
-        return head | {"given": given, "formulas": dict(answer.formulas)} | tail
+        return head | {"given": given, "formulas": _finite(dict(answer.formulas))} | tail
     return (
         head
         | {"from": _origin(answer), "given": given}
@@ -101,6 +102,15 @@ def _plain(array: NDArray[np.float64], axes: int) -> Any:
     for point in np.ndindex(points.shape):
         points[point] = boxed[point].tolist() if finite[point].any() else None
     return points.tolist()
+
+
+def _finite(value: Any) -> Any:
+    """The same data with None for every number that JSON cannot say."""
+    if isinstance(value, dict):
+        return {name: _finite(part) for name, part in value.items()}
+    if isinstance(value, list | tuple):
+        return [_finite(part) for part in value]
+    return None if isinstance(value, float) and not math.isfinite(value) else value
 
 
 def _complaint(complaint: Complaint) -> dict[str, Any]:
