@@ -26,7 +26,14 @@ def derived(program: Program, question: Question, held: HeldGases) -> DerivedAns
     try:
         formulas = derive(binding, held.of(binding, question.dimension), names, conditions.given)
     except NoAnswerError as fault:
-        empty = {"sympy": None, "latex": None, "text": None, "closed": False, "where": {}, "value": None}
+        empty: dict[str, Any] = {
+            "sympy": None,
+            "latex": None,
+            "text": None,
+            "closed": False,
+            "where": {},
+            "value": None,
+        }
         formulas = {name: empty | {"why": fault.why} for name in names}
     words, given = words_of(question), given_of(question)
     return DerivedAnswer(question.line, words, question.gas, question.place, given, formulas)

@@ -2,8 +2,10 @@
 
 from __future__ import annotations
 
+import os
 from functools import cache
 from importlib.resources import files
+from pathlib import Path
 from threading import Lock
 from typing import TYPE_CHECKING
 
@@ -35,9 +37,23 @@ def _parser() -> tuple[Lark, Build]:
         lexer="contextual",
         keep_all_tokens=True,
         maybe_placeholders=True,
+        cache=_tables(),
         transformer=build,  # lark asks only for methods named as the rules
     )
     return lark, build
+
+
+def _tables() -> str | bool:
+    """The file where lark keeps the tables of the grammar: making them takes longer than all else of a short run.
+
+    lark checks a hash of the grammar and of its own version, and makes them anew where the file does not fit.
+    """
+    try:
+        folder = Path(os.environ.get("XDG_CACHE_HOME") or Path.home() / ".cache") / "eoscore"
+        folder.mkdir(mode=0o700, parents=True, exist_ok=True)
+    except (OSError, RuntimeError):  # no home, or one that may not be written
+        return False
+    return str(folder / "tarn.tables")
 
 
 def build_nodes(
