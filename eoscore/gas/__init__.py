@@ -4,6 +4,7 @@ from eoscore.gas.bose_function import bose
 from eoscore.gas.dispersion import Branch, Dispersion, Parameter
 from eoscore.gas.fermi_function import fermi
 from eoscore.gas.gas import Gas, gas_of
+from eoscore.gas.inverse import alpha_from_bose, eta_from_fermi
 from eoscore.gas.truncated import (
     bose_log_truncated,
     bose_truncated,
@@ -17,10 +18,12 @@ __all__ = [
     "Dispersion",
     "Gas",
     "Parameter",
+    "alpha_from_bose",
     "bose",
     "bose_log_truncated",
     "bose_truncated",
     "classical_truncated",
+    "eta_from_fermi",
     "fermi",
     "fermi_log_truncated",
     "fermi_truncated",

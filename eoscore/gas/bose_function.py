@@ -100,6 +100,9 @@ def _near(table: _Table, alpha: Block) -> Block:
     result += table.rest
     result += table.singular(alpha)
     result += table.regular[0]
+    if 1.0 < table.order < 1.5:
+        # So close to the pole of zeta the two parts are large, and their sum could pass its limit by a rounding.
+        np.minimum(result, table.limit, out=result)
     return result
 
 
@@ -142,7 +145,8 @@ def _scalar(table: _Table, alpha: float) -> float:
     if not alpha > 0:
         return table.limit if alpha == 0 else math.nan
     regular = alpha * horner_scalar(table.regular[1:], alpha) + table.rest
-    return table.regular[0] + (regular + table.singular.scalar(alpha))
+    total = table.regular[0] + (regular + table.singular.scalar(alpha))
+    return min(total, table.limit) if 1.0 < table.order < 1.5 else total
 
 
 @overload
