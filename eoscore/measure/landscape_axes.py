@@ -49,7 +49,7 @@ class Axis:
         if not known and len(self.marks) < MOST_MARKS:
             self.marks.add(place)
 
-    def see(self, decades: Array) -> None:
+    def see(self, decades: NDArray[np.int_]) -> None:
         """Take in decades where something happens."""
         if decades.size:
             self.least, self.most = min(self.least, int(decades.min())), max(self.most, int(decades.max()))
@@ -167,7 +167,7 @@ def _read_linear_parts(chart: Chart, axes: list[Axis]) -> None:
         if slopes.any():
             terms = polynomial(node, chart.names) or {}  # type: ignore[arg-type]  # a sum is a formula
             foot = -terms.get(zero, 0.0) * slopes / (slopes @ slopes)
-            for i in np.flatnonzero(foot):
+            for i in np.flatnonzero(foot).tolist():
                 axes[i].mark(float(foot[i]))
 
 

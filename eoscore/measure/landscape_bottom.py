@@ -27,7 +27,7 @@ def minimum_at(chart: Chart, point: Array, value: float, scale: float) -> Minimu
             return Minimum(position, value, "flat", bend, (0.0,) * _dimension(chart))
         return Minimum(position, value, kind, bend)
     size, axes = np.linalg.eigh(np.nan_to_num(bend))
-    growth = _growth(chart, point, value, axes, scale, size)
+    growth = _growth(chart, point, axes, scale, size)
     if np.any(growth < 1.5):
         return Minimum(position, value, "cone", bend)
     level = [k for k in range(size.size) if size[k] <= LEVEL * np.max(np.abs(size))]
@@ -64,7 +64,7 @@ def _on_a_wall(chart: Chart, point: Array, slope: Array, scale: float) -> bool:
     return False
 
 
-def _growth(chart: Chart, point: Array, value: float, axes: Array, scale: float, size: Array) -> Array:
+def _growth(chart: Chart, point: Array, axes: Array, scale: float, size: Array) -> Array:
     """The power by which V rises along each principal axis that is not level, from the slopes on both sides."""
     steep = size > LEVEL * np.max(np.abs(size))
     powers = [2.0]

@@ -16,9 +16,10 @@ if TYPE_CHECKING:
     from eoscore.formula import Formula
     from eoscore.formula.field import Field
 
-__all__ = ["Array", "Chart", "split_wall"]
+__all__ = ["Array", "Chart", "Index", "split_wall"]
 
 Array = NDArray[np.float64]
+Index = NDArray[np.intp]
 RADIAL = frozenset({"rho", "r", "p"})
 
 
@@ -35,16 +36,13 @@ class Chart:
         self.radial = np.array([name in RADIAL for name in self.names])
         self.formula = field.formula
         self.walls = tuple(part for wall in field.walls for part in split_wall(wall))
-        upper = [
-            entry
-            for i, row in enumerate(hessian(self.formula, self.names))
-            for entry in row[i:]
-        ]
+        upper = [entry for i, row in enumerate(hessian(self.formula, self.names)) for entry in row[i:]]
         self._value = tape_of(self.formula, *self.walls)
         self._slopes = tape_of(self.formula, *gradient(self.formula, self.names))
         self._jet = tape_of(self.formula, *gradient(self.formula, self.names), *upper)
         self._wall_jets = [
-            tape_of(wall, *gradient(wall, self.names), *sum(hessian(wall, self.names), ())) for wall in self.walls
+            tape_of(wall, *gradient(wall, self.names), *sum(hessian(wall, self.names), ()))
+            for wall in self.walls
         ]
         self._upper = np.triu_indices(self.dimension)
         self.nudge, self.reach = 0.0, np.inf

@@ -36,7 +36,9 @@ def descend(chart: Chart, starts: Array, radius: Array) -> tuple[Array, Array]:
         new = chart.value(trial)
         better = new < value[now]
         length = np.linalg.norm(step, axis=1)
-        model = np.einsum("ni,ni->n", slope[now], taken) + np.einsum("ni,nij,nj->n", taken, bend[now], taken) / 2
+        model = (
+            np.einsum("ni,ni->n", slope[now], taken) + np.einsum("ni,nij,nj->n", taken, bend[now], taken) / 2
+        )
         trusted = (new - value[now] < 0.5 * model) & (length > 0.7 * radius[now])
         radius[now] = np.where(better, np.where(trusted, 2 * radius[now], radius[now]), length / 4)
         moved = now[better]

@@ -11,12 +11,12 @@ from eoscore.formula import Formula, variable
 from eoscore.formula.expression import build
 from eoscore.formula.field import Field
 from eoscore.formula.tape import ordered
-from eoscore.measure.landscape_record import Landscape, Minimum
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
 
     from eoscore.formula.expression import Node
+    from eoscore.measure.landscape_record import Landscape, Minimum
 
     Array = NDArray[np.float64]
 
@@ -28,23 +28,29 @@ PARALLEL = 1e-9
 
 def _linear_forms(field: Field) -> dict[int, Array]:
     """Coefficients (d + 1, the constant last) of every linear node, by serial."""
-    names, known = field.coordinates, {}
+    names = field.coordinates
+    known: dict[int, Array | None] = {}
     for node in ordered([field.formula, *field.walls]):
-        args = [known.get(arg.serial) for arg in node.args]
         if node.op in ("constant", "variable"):
-            form = np.append([float(node.name == name) for name in names], node.value)
-            known[node.serial] = form
-        elif not args or any(arg is None for arg in args):
-            continue
-        elif node.op in ("add", "sub", "neg"):
-            known[node.serial] = {"add": 1.0, "sub": -1.0, "neg": 0.0}[node.op] * args[-1] + (
-                args[0] if len(args) > 1 else -args[0]
-            )
-        elif node.op == "mul" and (not args[0][:-1].any() or not args[1][:-1].any()):
-            known[node.serial] = args[0][-1] * args[1] if not args[0][:-1].any() else args[1][-1] * args[0]
-        elif node.op == "div" and not args[1][:-1].any() and args[1][-1]:
-            known[node.serial] = args[0] / args[1][-1]
+            known[node.serial] = np.append([float(node.name == name) for name in names], node.value)
+        elif node.args and all(arg.serial in known for arg in node.args):
+            form = _combined(node.op, *(known[arg.serial] for arg in node.args))
+            if form is not None:
+                known[node.serial] = form
     return known
+
+
+def _combined(op: str, a: Array, b: Array | None = None) -> Array | None:
+    """The linear form of an operation on linear forms, if it is one."""
+    if b is None:
+        return -a if op == "neg" else None
+    if op in ("add", "sub"):
+        return a + b if op == "add" else a - b
+    if op == "mul" and not a[:-1].any():
+        return np.asarray(a[-1] * b)
+    if op == "mul" and not b[:-1].any():
+        return np.asarray(b[-1] * a)
+    return np.asarray(a / b[-1]) if op == "div" and not b[:-1].any() and b[-1] else None
 
 
 def _directions(field: Field) -> Array:
@@ -110,7 +116,9 @@ def expressed(field: Field, frame: Array) -> Field:
                 total = total + slope * axis
             done[node.serial] = total
         else:
-            done[node.serial] = build(node.op, tuple(done[arg.serial] for arg in node.args)) if node.args else node
+            done[node.serial] = (
+                build(node.op, tuple(done[arg.serial] for arg in node.args)) if node.args else node
+            )
     results = [done[root.serial] for root in (field.formula, *field.walls)]
     formula, *walls = (result for result in results if isinstance(result, Formula))
     return Field(field.coordinates, formula, tuple(walls))

@@ -10,14 +10,17 @@ import numpy as np
 if TYPE_CHECKING:
     from numpy.typing import NDArray
 
-    from eoscore.measure.landscape_chart import Array, Chart
+    from eoscore.measure.landscape_chart import Array, Chart, Index
 
 __all__ = ["Grid", "Leak"]
 
 
 @dataclass(frozen=True)
 class Leak:
-    """Where the grid leaks: the level and V at the bottom (J), the grid point, and whether it is the limit at infinity beyond it."""
+    """Where the grid leaks: the level and V at the bottom (J), the grid point, the way out from the bottom (m).
+
+    at_infinity: whether the level is the limit of V beyond that point.
+    """
 
     energy: float
     bottom: float
@@ -34,29 +37,34 @@ class Grid:
         self.shape = tuple(axis.size for axis in axes)
         self.lowest_exit = np.inf  # the lowest level at which any end leads out, set by `leak`
         if np.array_equal(frame, np.eye(len(axes))):
-            mesh = np.meshgrid(*(o + a for o, a in zip(origin, axes, strict=True)), indexing="ij", sparse=True)
+            mesh = np.meshgrid(
+                *(o + a for o, a in zip(origin, axes, strict=True)), indexing="ij", sparse=True
+            )
             folded = [np.abs(x) if radial else x for x, radial in zip(mesh, chart.radial, strict=True)]
             self.v = chart.value_at(dict(zip(chart.names, folded, strict=True)))
         else:
-            self.v = chart.value(self.points(np.indices(self.shape).reshape(len(axes), -1).T)).reshape(self.shape)
+            self.v = chart.value(self.points(np.indices(self.shape).reshape(len(axes), -1).T)).reshape(
+                self.shape
+            )
 
-    def points(self, index: Array) -> Array:
+    def points(self, index: Index) -> Array:
         """Chart coordinates of grid indices (n, d)."""
         local = np.stack([axis[index[:, i].astype(int)] for i, axis in enumerate(self.axes)], axis=1)
         result: Array = self.origin + local @ self.frame.T
         return result
 
-    def spacing(self, index: Array) -> Array:
+    def spacing(self, index: Index) -> Array:
         """The distance to the nearest neighbour at grid indices (n, d), not less than the chart resolves."""
         gaps = [np.minimum(np.append(np.inf, np.diff(a)), np.append(np.diff(a), np.inf)) for a in self.axes]
         least = np.min([gap[index[:, i]] for i, gap in enumerate(gaps)], axis=0)
-        return np.maximum(least, 1e8 * self.chart.nudge)
+        result: Array = np.maximum(least, 1e8 * self.chart.nudge)
+        return result
 
-    def minima(self, most: int) -> Array:
+    def minima(self, most: int) -> Index:
         """Indices (n, d) of the lowest inner points that no neighbour along an axis undercuts."""
         return self._lowest(np.logical_and.reduce([self._turns(i, 1.0) for i in range(self.v.ndim)]), most)
 
-    def saddles(self, most: int) -> Array:
+    def saddles(self, most: int) -> Index:
         """Indices (n, d) of the lowest inner points that are highest along one axis and lowest along the others."""
         low, high = ([self._turns(i, side) for i in range(self.v.ndim)] for side in (1.0, -1.0))
         some = np.zeros(self.shape, bool)
@@ -71,11 +79,11 @@ class Grid:
         turns[1:-1] = (v[1:-1] <= v[:-2]) & (v[1:-1] <= v[2:]) & np.isfinite(v[1:-1])
         return np.moveaxis(turns, 0, axis)
 
-    def _lowest(self, some: NDArray[np.bool_], most: int) -> Array:
+    def _lowest(self, some: NDArray[np.bool_], most: int) -> Index:
         """The lowest of some points; among equals those nearest the origin come first."""
         index = np.argwhere(some)
         distance = np.linalg.norm(self.points(index), axis=1)
-        result: Array = index[np.lexsort((distance, self.v[some]))[:most]]
+        result: Index = index[np.lexsort((distance, self.v[some]))[:most]]
         return result
 
     def leak(self, bottom: Array) -> Leak | None:
@@ -95,7 +103,7 @@ class Grid:
         levels = levels[levels >= self.v[start]]
         structure = np.ones((3,) * self.v.ndim)
 
-        def joined(level: float) -> Array:
+        def joined(level: float) -> Index:
             regions = ndimage.label(self.v <= level, structure)[0]
             return np.flatnonzero((exits <= level) & (regions[tuple(ends.T)] == regions[start]))
 
@@ -111,7 +119,9 @@ class Grid:
         outward = self.points(np.array([chosen]))[0] - bottom
         last = np.argwhere(self.v == level)
         if not last.size or edge[tuple(last[0])] or exits[out].min() >= level > self.v[chosen]:
-            return Leak(level, float(self.v[start]), self.points(np.array([chosen]))[0], outward, at_infinity=True)
+            return Leak(
+                level, float(self.v[start]), self.points(np.array([chosen]))[0], outward, at_infinity=True
+            )
         return Leak(level, float(self.v[start]), self.points(last[:1])[0], outward, at_infinity=False)
 
     def region(self, bottom: Array, level: float) -> NDArray[np.bool_]:
@@ -122,7 +132,7 @@ class Grid:
         joined: NDArray[np.bool_] = regions == regions[self.nearest(bottom)]
         return joined
 
-    def _exits(self, ends: Array, low: float) -> Array:
+    def _exits(self, ends: Index, low: float) -> Array:
         """The level at which each end of the grid leads out: inf where V grows beyond or a wall stands there."""
         points = self.points(ends)
         far = [self.v[tuple(ends.T)]]

@@ -58,7 +58,9 @@ def survey_line(field: Field) -> Landscape:
     bottom = _lowest(wells)
     turns = pieces.points[1:-1]
     escape = _escape(f, name, bottom, turns, mirrored=name in RADIAL)
-    minima = [_minimum(field.formula, name, well, turns) for well in _joined(f, name, bottom, wells, turns, escape)]
+    minima = [
+        _minimum(field.formula, name, well, turns) for well in _joined(f, name, bottom, wells, turns, escape)
+    ]
     why = ""
     if escape and escape.energy - bottom.value <= 1e-13 * abs(bottom.value):
         why = f"V stays at its least value without end along {name}: this potential holds nothing"

@@ -45,7 +45,9 @@ def passes_from(chart: Chart, starts: Array, radius: Array) -> list[Pass]:
         step *= np.minimum(1.0, radius[now] / np.maximum(length, 1e-300))[:, None]
         points[now] += np.einsum("nij,nj->ni", axes, step)
         size_now = np.linalg.norm(points[now], axis=1)
-        active[now] = (length > 4e-16 * size_now) & (size_now < chart.reach) & (radius[now] > 1e-17 * size_now)
+        active[now] = (
+            (length > 4e-16 * size_now) & (size_now < chart.reach) & (radius[now] > 1e-17 * size_now)
+        )
     value, slope, bend = chart.jet(points)
     found = []
     for k in np.flatnonzero(np.linalg.norm(points, axis=1) < chart.reach):

@@ -59,7 +59,9 @@ class Escape:
         """The place and the direction of the leak."""
         if self.position is None:
             return f"at infinity along {self.sense}, where V levels off"
-        place = ", ".join(f"{name} = {x:.6g} m" for name, x in zip(self.coordinates, self.position, strict=True))
+        place = ", ".join(
+            f"{name} = {x:.6g} m" for name, x in zip(self.coordinates, self.position, strict=True)
+        )
         return f"over the pass at {place}, towards {self.sense}"
 
     @property

@@ -38,7 +38,9 @@ def lowest_way_out(chart: Chart, grid: Grid, leak: Leak | None, minima: Array) -
     others = _passes(chart, grid, minima, np.inf if best is None else best.value - 1e-12 * abs(best.value))
     if best is None or others:
         best = _through(chart, _distinct(chart, found + others), minima)
-    if best is None and leak is not None:  # a long chain of wells: the grid has seen that this is its highest pass
+    if (
+        best is None and leak is not None
+    ):  # a long chain of wells: the grid has seen that this is its highest pass
         seen = [one for one in found if abs(one.value - leak.energy) < SEEN * (leak.energy - leak.bottom)]
         best = min(seen, key=lambda one: abs(one.value - leak.energy), default=None)
     return best

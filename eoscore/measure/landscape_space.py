@@ -11,8 +11,8 @@ from eoscore.measure.landscape_bottom import minimum_at
 from eoscore.measure.landscape_chart import Chart
 from eoscore.measure.landscape_descent import descend, distinct
 from eoscore.measure.landscape_grid import Grid, Leak
-from eoscore.measure.landscape_routes import lowest_way_out
 from eoscore.measure.landscape_record import Escape, Landscape, Minimum, sense
+from eoscore.measure.landscape_routes import lowest_way_out
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
@@ -53,8 +53,10 @@ def _grid(chart: Chart, axes: list[Axis]) -> Grid:
     d = chart.dimension
     counts = [max(round(MOST_POINTS ** (1 / d)) - 8, axis.turns.size + 8) for axis in axes]
     while np.prod(counts, dtype=float) > MOST_POINTS and max(counts) > 12:
-        counts = [max(round(0.9 * count), min(axis.turns.size + 8, count)) if count > 12 else count
-                  for count, axis in zip(counts, axes, strict=True)]
+        counts = [
+            max(round(0.9 * count), min(axis.turns.size + 8, count)) if count > 12 else count
+            for count, axis in zip(counts, axes, strict=True)
+        ]
         if all(count <= axis.turns.size + 8 or count <= 12 for count, axis in zip(counts, axes, strict=True)):
             break
     lines = [axis.points(count) for axis, count in zip(axes, counts, strict=True)]
@@ -107,7 +109,9 @@ def _nearest_first(points: Array, values: Array, kept: list[int]) -> list[int]:
     return [first, *(k for k in kept if k != first)]
 
 
-def _escape(chart: Chart, grid: Grid, leak: Leak | None, minima: Array, low: float) -> tuple[Escape | None, float]:
+def _escape(
+    chart: Chart, grid: Grid, leak: Leak | None, minima: Array, low: float
+) -> tuple[Escape | None, float]:
     """The leak of the grid made exact: the pass near it, or the limit at infinity; and its relative error."""
     limit = leak.energy if leak is not None and leak.at_infinity else np.inf
     if leak is None or (leak.at_infinity and grid.lowest_exit >= limit):
@@ -127,7 +131,13 @@ def _escape(chart: Chart, grid: Grid, leak: Leak | None, minima: Array, low: flo
 
 
 def _joined(
-    chart: Chart, grid: Grid, points: Array, values: Array, scales: Array, bottom: Minimum, escape: Escape | None
+    chart: Chart,
+    grid: Grid,
+    points: Array,
+    values: Array,
+    scales: Array,
+    bottom: Minimum,
+    escape: Escape | None,
 ) -> tuple[Minimum, ...]:
     """The bottom and the other minima of its region below the escape."""
     ceiling = escape.energy if escape else np.inf
@@ -135,7 +145,9 @@ def _joined(
     level = bottom.kind in ("flat", "ring", "sphere")
     middle = np.sqrt(scales[0] * chart.reach)
     aside = points[0] + 0.1 * middle * np.vstack([np.eye(chart.dimension), -np.eye(chart.dimension)])
-    unit = float(np.max(np.abs(chart.value(aside) - bottom.value), where=np.isfinite(chart.value(aside)), initial=0.0))
+    unit = float(
+        np.max(np.abs(chart.value(aside) - bottom.value), where=np.isfinite(chart.value(aside)), initial=0.0)
+    )
     found = [bottom]
     for point, value, scale in zip(points[1:], values[1:], scales[1:], strict=True):
         same = level and value - bottom.value <= 1e-9 * unit
