@@ -29,7 +29,7 @@ PARALLEL = 1e-9
 def _linear_forms(field: Field) -> dict[int, Array]:
     """Coefficients (d + 1, the constant last) of every linear node, by serial."""
     names = field.coordinates
-    known: dict[int, Array | None] = {}
+    known: dict[int, Array] = {}
     for node in ordered([field.formula, *field.walls]):
         if node.op in ("constant", "variable"):
             known[node.serial] = np.append([float(node.name == name) for name in names], node.value)

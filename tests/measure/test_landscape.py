@@ -13,7 +13,7 @@ from eoscore.formula import call, choose, constant, less
 from eoscore.formula.field import Field
 from eoscore.measure.landscape import survey
 
-from .potentials import E, G, K_B, RB87, S, SR84, U, crossed, exp, r, rho, sagging, single, turned, x, y, z
+from .potentials import K_B, RB87, SR84, E, G, S, U, crossed, exp, r, rho, sagging, single, turned, x, y, z
 
 
 @pytest.mark.parametrize(
