@@ -21,6 +21,7 @@ def beginning(v: FloatArray, omega: FloatArray) -> tuple[float, float]:
 
     Exponents within 1e-6 of a fraction with a denominator of at most 24 are taken as that fraction.
     """
+    v, omega = v[omega > 0], omega[omega > 0]
     slopes = np.diff(np.log(omega)) / np.diff(np.log(v))
     steady = float(np.median(slopes[:5]))
     near = Fraction(steady).limit_denominator(24)

@@ -16,9 +16,9 @@ from eoscore.measure.sampled import Sampled
 if TYPE_CHECKING:
     from collections.abc import Iterator
 
-    Rule = tuple[FloatArray, FloatArray, FloatArray | None]  # v, dv, exact distance of v from a break
-
     from eoscore.measure.base import FloatArray, Measure
+
+    Rule = tuple[FloatArray, FloatArray, FloatArray | None]  # v, dv, exact distance of v from a break
 
 __all__ = ["convolve"]
 

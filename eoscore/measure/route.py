@@ -6,6 +6,8 @@ from functools import reduce
 from typing import TYPE_CHECKING
 
 from eoscore.errors import NoAnswerError
+from eoscore.measure.about import about
+from eoscore.measure.cells import cells
 from eoscore.measure.composed import composed
 from eoscore.measure.convolve import convolve
 from eoscore.measure.flat import flat
@@ -50,7 +52,11 @@ def _of_one(field: Field, landscape: Landscape | None) -> Measure:
     landscape = landscape or survey(field)
     if not landscape.holds:
         raise NoAnswerError(landscape.why)
-    found = flat(field, landscape) or line(field, landscape)
+    found = (
+        flat(field, landscape) or line(field, landscape) or about(field, landscape) or cells(field, landscape)
+    )
     if found is None:
-        raise NoAnswerError("this potential has no one-dimensional reduction that eoscore knows")
+        raise NoAnswerError(
+            "this potential is none that eoscore can measure: it takes one, two or three coordinates"
+        )
     return found

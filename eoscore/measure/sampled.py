@@ -30,7 +30,8 @@ class Sampled(Measure):
 
     scale: an energy (J) of the order at which Omega begins to leave its pure power.
     foot: below it Omega is taken as that power; by default so low that no double would show the difference.
-    error: relative bound on the function's own values; the tails of the series are added to it, each with the
+    error: relative bound on the function's own values so far, a number or a function that tells it; the tails
+    of the series are added to it, each with the
     share of energy that its panel takes (a panel as narrow as 4e-9 at a break hardly counts).
     """
 
@@ -42,14 +43,15 @@ class Sampled(Measure):
         scale: float,
         foot: float | None = None,
         top: float = inf,
-        error: float = 0.0,
+        error: float | Callable[[], float] = 0.0,
         route: str,
         breaks: tuple[float, ...] = (),
     ) -> None:
         breaks = tuple(b for b in breaks if 0 < b < top)
         scale = min(scale, top, *breaks)
-        super().__init__(exponent, top=top, error=error, route=route, breaks=breaks, scale=scale)
+        super().__init__(exponent, top=top, error=0.0, route=route, breaks=breaks, scale=scale)
         self._function = function
+        self._own_error = error
         self.foot = foot if foot is not None else scale * 2.0**-52
         self._ahead = stretches(self.foot, self.breaks, top)
         self._lock = Lock()
@@ -60,7 +62,11 @@ class Sampled(Measure):
     @property
     def error(self) -> float:
         """See `Measure.error`."""
-        return self._error + self._tail
+        return self._given_error + self._tail
+
+    @property
+    def _given_error(self) -> float:
+        return self._own_error if isinstance(self._own_error, float) else self._own_error()
 
     def volume(self, v: ArrayLike) -> FloatArray:
         """See `Measure.volume`."""
@@ -151,7 +157,7 @@ class Sampled(Measure):
 
     def _resolved(self, panel: Panel, tail: float, before: float) -> bool:
         """Whether a series is as good as it gets; `before` is the tail of the panel that was halved for it."""
-        if tail <= max(SHARPEST, self._error) or panel.stop - panel.start <= FINEST[panel.kind]:
+        if tail <= max(SHARPEST, self._given_error) or panel.stop - panel.start <= FINEST[panel.kind]:
             return True
         return NOISE > tail > before / 2
 
