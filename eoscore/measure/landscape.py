@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from functools import lru_cache
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -17,11 +18,12 @@ if TYPE_CHECKING:
 __all__ = ["Escape", "Landscape", "Minimum", "survey"]
 
 
+@lru_cache(maxsize=128)
 def survey(field: Field) -> Landscape:
     """The landscape of a field of one, two or three coordinates.
 
-    Independent coordinates are surveyed one by one. Never raises for a potential that holds nothing: its
-    `why` tells.
+    Independent coordinates are surveyed one by one; the last fields surveyed are remembered. Never raises for a
+    potential that holds nothing: its `why` tells.
     """
     with np.errstate(all="ignore"):  # searches step over poles and far outside; what they find is checked
         return _surveyed(field)

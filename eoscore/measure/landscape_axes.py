@@ -116,7 +116,7 @@ def _turns(chart: Chart, i: int, points: Array, turned: NDArray[np.bool_]) -> Ar
     row, k = np.nonzero(turned)
     low, high = points[row, k], points[row, k + 1]
     sign = np.sign(chart.slopes(low)[:, i])
-    for _ in range(30):
+    for _ in range(18):
         middle = (low + high) / 2
         same = np.sign(chart.slopes(middle)[:, i]) == sign
         low[same], high[~same] = middle[same], middle[~same]

@@ -17,8 +17,9 @@ __all__ = ["minimum_at"]
 LEVEL = 1e-9  # curvatures below this share of the largest are looked at more closely
 
 
-def minimum_at(chart: Chart, point: Array, value: float, scale: float) -> Minimum:
+def minimum_at(chart: Chart, point: Array, value: float | np.float64, scale: float | np.float64) -> Minimum:
     """The local minimum at a point; `scale` is a length over which V is resolved there."""
+    value, scale = float(value), float(scale)
     _, slope, bend = (x[0] for x in chart.jet(point[None]))
     position = tuple(float(x) for x in _folded(chart, point))
     if chart.walls and _on_a_wall(chart, point, slope, scale):

@@ -17,7 +17,7 @@ STEPS = 200
 def descend(chart: Chart, starts: Array, radius: Array) -> tuple[Array, Array]:
     """Local minima from many starts (n, d) with first trust radii (n,): points and values.
 
-    A point whose V falls without end runs far away, its value to -inf or its limit.
+    A point whose V falls without end stops beyond the chart's reach.
     """
     points, radius = starts.copy(), radius.copy()
     walled = bool(chart.walls)
@@ -46,7 +46,7 @@ def descend(chart: Chart, starts: Array, radius: Array) -> tuple[Array, Array]:
         value[moved], slope[moved], bend[moved] = chart.jet(points[moved])
         small = np.linalg.norm(taken, axis=1) <= 1e-15 * np.linalg.norm(points[now], axis=1)
         active[now] = ~small & (radius[now] > 1e-17 * np.linalg.norm(points[now], axis=1)) & (length > 0)
-        active[now] &= (radius[now] > 1e-40) & (np.linalg.norm(points[now], axis=1) < 1e3 * chart.reach)
+        active[now] &= (radius[now] > 1e-40) & (np.linalg.norm(points[now], axis=1) < chart.reach)
     return points if walled else _polished(chart, points), value
 
 

@@ -41,7 +41,8 @@ def survey_space(field: Field) -> Landscape:
     bottom = minimum_at(chart, points[0], float(values[0]), float(scales[0]))
     leak = grid.leak(points[0])
     escape, error = _escape(chart, grid, leak, points, bottom.value)
-    minima = _joined(chart, grid, points, values, scales, bottom, escape)
+    ceiling = min([escape.energy if escape else np.inf, leak.energy if leak else np.inf])
+    minima = _joined(chart, grid, (points, values, scales), bottom, ceiling)
     why = ""
     if escape is not None and escape.energy - bottom.value <= 1e-13 * abs(bottom.value):
         why = f"V stays at its least value without end ({escape.words}): this potential holds nothing"
@@ -70,7 +71,7 @@ def _minima(chart: Chart, grid: Grid, axes: list[Axis]) -> tuple[Array, Array, A
         return np.zeros((0, chart.dimension)), np.zeros(0), np.zeros(0)
     radius = grid.spacing(index)
     points, values = _snapped(chart, axes, *descend(chart, grid.points(index), radius))
-    values = np.where(np.linalg.norm(points, axis=1) < 10 * chart.reach, values, np.inf)
+    values = np.where(np.linalg.norm(points, axis=1) < chart.reach, values, np.inf)
     values = np.where(_stands(chart, points), values, np.inf)
     least = 10.0 ** min(axis.least for axis in axes)
     kept = distinct(points, values, 1e-3 * least)
@@ -131,29 +132,22 @@ def _escape(
 
 
 def _joined(
-    chart: Chart,
-    grid: Grid,
-    points: Array,
-    values: Array,
-    scales: Array,
-    bottom: Minimum,
-    escape: Escape | None,
+    chart: Chart, grid: Grid, found: tuple[Array, Array, Array], bottom: Minimum, ceiling: float
 ) -> tuple[Minimum, ...]:
-    """The bottom and the other minima of its region below the escape."""
-    ceiling = escape.energy if escape else np.inf
+    """The bottom and the other minima of its region below the ceiling; `found` are points, values, lengths."""
+    points, values, scales = found
     region = grid.region(points[0], ceiling)
-    level = bottom.kind in ("flat", "ring", "sphere")
-    middle = np.sqrt(scales[0] * chart.reach)
-    aside = points[0] + 0.1 * middle * np.vstack([np.eye(chart.dimension), -np.eye(chart.dimension)])
-    unit = float(
-        np.max(np.abs(chart.value(aside) - bottom.value), where=np.isfinite(chart.value(aside)), initial=0.0)
-    )
-    found = [bottom]
-    for point, value, scale in zip(points[1:], values[1:], scales[1:], strict=True):
-        same = level and value - bottom.value <= 1e-9 * unit
-        if value < ceiling and not same and region[grid.nearest(point)]:
-            found.append(minimum_at(chart, point, float(value), float(scale)))
-    return tuple(found)
+    others = (values < ceiling) & np.array([region[grid.nearest(point)] for point in points])
+    others[0] = False
+    if bottom.kind in ("flat", "ring", "sphere"):  # points of the same level bottom are no further minima
+        aside = (
+            0.1
+            * np.sqrt(scales[0] * chart.reach)
+            * np.vstack([np.eye(chart.dimension), -np.eye(chart.dimension)])
+        )
+        rises = np.abs(chart.value(points[0] + aside) - bottom.value)
+        others &= values - bottom.value > 1e-9 * np.max(rises, where=np.isfinite(rises), initial=0.0)
+    return (bottom, *(minimum_at(chart, points[k], values[k], scales[k]) for k in np.flatnonzero(others)))
 
 
 def _nothing(chart: Chart, grid: Grid) -> str:

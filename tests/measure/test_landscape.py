@@ -258,3 +258,20 @@ def test_a_lattice_in_an_envelope_counts_its_wells():
     grid = np.linspace(-60 * S, 60 * S, 2_000_001)
     slope = E * grid / S**2 + barrier * q / 2 * np.sin(q * grid)
     assert len(found.minima) == np.sum((slope[:-1] < 0) & (slope[1:] >= 0))
+
+
+def test_a_lattice_inside_a_gaussian_leaks_over_its_first_barrier():
+    """Where the standing wave vanishes V is the tilt alone: the pass lies a little below z = -period/4."""
+    wave = call("cos", 2 * math.pi * z / (0.5 * S)) ** 2
+    found = survey(
+        Field(("x", "y", "z"), -E * exp(-2 * (x**2 + y**2 + z**2 / 16) / S**2) * wave + 0.01 * E * z / S)
+    )
+
+    def line(u):
+        return -math.exp(-u * u / 8) * math.cos(4 * math.pi * u) ** 2 + 0.01 * u
+
+    options = {"xatol": 1e-13}
+    high = -minimize_scalar(lambda u: -line(u), bounds=(-0.14, -0.11), method="bounded", options=options).fun
+    low = minimize_scalar(line, bounds=(-0.05, 0.05), method="bounded", options=options).fun
+    assert found.depth / E == pytest.approx(high - low, rel=1e-10)
+    assert len(found.minima) == 1
