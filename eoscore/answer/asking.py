@@ -7,6 +7,7 @@ from math import inf
 from typing import TYPE_CHECKING
 
 from eoscore.answer.assembly import assembled
+from eoscore.answer.bending import bending
 from eoscore.answer.cautions import cautions_for
 from eoscore.answer.chain import Chain
 from eoscore.answer.holding import HeldGases
@@ -50,7 +51,7 @@ def answer_to(
         over={axis.name: axis.values for axis in question.over},
         over_units={axis.name: unit_of_dimension(axis.dimension) for axis in question.over},
         found=findings,
-        cautions=_cautions(parts, findings, accuracy),
+        cautions=_cautions(parts, [*bending(chain, findings), *_inaccurate(findings.items(), accuracy)]),
     )
 
 
@@ -63,16 +64,15 @@ def _with_leak(findings: Mapping[str, Finding], parts: list[Part]) -> dict[str, 
     return {**findings, "depth": replace(findings["depth"], note=f"leaks {place.escape_words}")}
 
 
-def _cautions(parts: list[Part], findings: Mapping[str, Finding], accuracy: float) -> tuple[Caution, ...]:
+def _cautions(parts: list[Part], others: Iterable[Caution]) -> tuple[Caution, ...]:
     """Each caution once: the first and the last stop of a grid speak for all."""
-    ends = [parts[0], parts[-1]] if len(parts) > 1 else parts
-    found: dict[str, Caution] = {}
-    for part in ends:
+    found: dict[str, Caution] = {caution.code: caution for caution in others}
+    for words in (words for part in parts for words in part.spill):
+        found.setdefault("spill", Caution("spill", f"{words}."))
+    for part in [parts[0], parts[-1]] if len(parts) > 1 else parts:
         if part.held is not None:
             for caution in cautions_for(Scene(part.binding, part.held, part.given, part.readings)):
                 found.setdefault(caution.code, caution)
-    for caution in _inaccurate(findings.items(), accuracy):
-        found.setdefault(caution.code, caution)
     return tuple(found.values())
 
 

@@ -24,7 +24,7 @@ if TYPE_CHECKING:
     from eoscore.answer.record import Finding
     from eoscore.language.program import UncertainLiteral
 
-__all__ = ["with_uncertainty"]
+__all__ = ["labelled", "with_uncertainty"]
 
 # Steps in units of sigma and of the value: small beside the scale on which answers bend, large beside the noise.
 _STEP_OF_SIGMA = 0.1
@@ -38,9 +38,10 @@ def with_uncertainty(
 ) -> dict[str, Finding]:
     """The findings with `sigma` and `budget`, where a literal with an uncertainty bears on them."""
     carried: dict[str, dict[str, NDArray[np.float64]]] = {name: {} for name in findings}
-    for literal in chain.program.literals_of(chain.question):
+    labels = labelled(chain.program.literals_of(chain.question))
+    for label, literal in labels.items():
         for name, variance in _variances(chain, parts, literal).items():
-            carried[name][_label(literal)] = variance
+            carried[name][label] = variance
     return {name: _with_variances(finding, carried[name]) for name, finding in findings.items()}
 
 
@@ -96,6 +97,13 @@ def _bears(name: str, parts: Sequence[Part], moved: Sequence[Part]) -> bool:
     return False
 
 
-def _label(literal: UncertainLiteral) -> str:
-    """The name that a literal defines, else the literal itself with its line."""
-    return literal.name or f"{literal.span.text} (line {literal.span.line})"
+def labelled(literals: Sequence[UncertainLiteral]) -> dict[str, UncertainLiteral]:
+    """The literals by the names they define, else by themselves with their place; never two under one label."""
+    labels: dict[str, UncertainLiteral] = {}
+    for literal in literals:
+        place = f"line {literal.span.line}"
+        label = literal.name or f"{literal.span.text} ({place})"
+        if label in labels:
+            label = f"{literal.name or literal.span.text} ({place}, column {literal.span.column})"
+        labels[label] = literal
+    return labels

@@ -86,3 +86,26 @@ def test_the_condensate_fraction_far_below_T_c():
     trap = "f = 100 Hz\n V(x, y, z) = m/2*(2*pi*f)^2*(x^2 + y^2 + z^2)"
     finding = found(trap, "f_0 for strontium in bowl with N = 1e5, T = 100(2) nK")["f_0"]
     assert float(finding.sigma) == pytest.approx(3 * (1 - float(finding.value)) * 0.02, rel=1e-6)
+
+
+def cautions(temperature):
+    trap = "f = 100 Hz\n V(x, y, z) = m/2*(2*pi*f)^2*(x^2 + y^2 + z^2)"
+    text = f"{GAS}trap bowl {{ {trap} }}\nfind f_0 for strontium in bowl with N = 1e5, T = {temperature}\n"
+    (answer,) = eoscore.loads(text).answers()
+    return {caution.code: caution.text for caution in answer.cautions}
+
+
+@pytest.mark.parametrize(
+    ("temperature", "misleads"),
+    [("100(5) nK", False), ("209(5) nK", True), ("212(5) nK", True), ("300(5) nK", False)],
+)
+def test_a_condensate_that_sets_in_within_the_uncertainty_is_told(temperature, misleads):
+    # T_c = 0.9405 hbar w N^(1/3)/k = 209.5 nK
+    assert ("first_derivative" in cautions(temperature)) is misleads
+
+
+def test_equal_literals_keep_their_own_shares():
+    trap = "V(x, y, z) = m/2*(2*pi)^2*((100(2) Hz)^2*x^2 + (100(2) Hz)^2*y^2 + (100(2) Hz)^2*z^2)"
+    finding = found(trap, "T_c for strontium in bowl with N = 1e5")["T_c"]
+    assert relative(finding) == pytest.approx(0.02 / math.sqrt(3), rel=1e-6)
+    assert list(map(float, finding.budget.values())) == pytest.approx([1 / 3] * 3)
