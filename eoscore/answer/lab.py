@@ -119,32 +119,33 @@ class Lab:
         """The answers to the text's own questions, in order; `accuracy` is the relative error wanted.
 
         Grids are shared among `workers` processes of this machine, or given to any `executor`.
-
-        Raises
-        ------
-        TarnError
-            Where a question cannot be answered by this version.
         """
+        count = len(self.program.questions)
+        return tuple(
+            self.answer(index, accuracy=accuracy, workers=workers, executor=executor)
+            for index in range(count)
+        )
+
+    def answer(
+        self, index: int, *, accuracy: float = 1e-6, workers: int = 1, executor: Executor | None = None
+    ) -> Answer:
+        """The answer to the question with this index, as in `answers`."""
+        question = self.program.questions[index]
         if executor is not None:
-            return self._shared(accuracy, executor, max(workers, 2))
-        if workers > 1 and any(question.over for question in self.program.questions):
+            return self._shared(index, accuracy, executor, max(workers, 2))
+        if workers > 1 and question.over:
             from concurrent.futures import ProcessPoolExecutor
 
             with ProcessPoolExecutor(workers) as processes:
-                return self._shared(accuracy, processes, workers)
+                return self._shared(index, accuracy, processes, workers)
         from eoscore.answer.asking import answer_to
 
-        return tuple(
-            answer_to(self.program, question, accuracy, self.held) for question in self.program.questions
-        )
+        return answer_to(self.program, question, accuracy, self.held)
 
-    def _shared(self, accuracy: float, executor: Executor, workers: int) -> tuple[Answer, ...]:
+    def _shared(self, index: int, accuracy: float, executor: Executor, workers: int) -> Answer:
         from eoscore.answer.sharing import shared_answer
 
-        return tuple(
-            shared_answer(self._recipe, self.program, index, accuracy, executor, workers)
-            for index in range(len(self.program.questions))
-        )
+        return shared_answer(self._recipe, self.program, index, accuracy, executor, workers)
 
     def contents(self) -> str:
         """How many gases, places and questions there are, in words."""

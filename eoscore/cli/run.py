@@ -16,7 +16,7 @@ from eoscore.errors import Complaint, TarnError
 if TYPE_CHECKING:
     from collections.abc import Callable
 
-    from eoscore.answer.record import Report
+    from eoscore.answer.record import Answer, Report
 
 __all__ = ["Asked", "answer_text", "asking", "run"]
 
@@ -107,27 +107,32 @@ def answer_text(text: Text, asked: Asked) -> int:
 
 
 def _report(text: Text, asked: Asked) -> Report:
+    """All answers that can be given, and complaints about the rest."""
     from eoscore.answer.record import Report
 
+    answers: list[Answer] = []
+    complaints: list[Complaint] = []
     try:
-        answers = text.lab(asked.settings).answers(accuracy=asked.accuracy, workers=asked.workers)
-        return Report(text.name, answers)
+        lab = text.lab(asked.settings)
     except TarnError as fault:
         return Report(text.name, complaints=fault.complaints)
-    except (click.ClickException, OSError, MemoryError):
-        raise
-    except Exception as fault:
-        if not asked.as_json:
+    for index, question in enumerate(lab.program.questions):
+        try:
+            answers.append(lab.answer(index, accuracy=asked.accuracy, workers=asked.workers))
+        except TarnError as fault:
+            complaints.extend(fault.complaints)
+        except (OSError, MemoryError):
             raise
-        # Whoever reads the document shall find a document, even when the fault is ours.
-        return Report(text.name, complaints=(Complaint(text.name, 1, 1, 1, 1, internal_fault(fault)),))
+        except Exception as fault:  # noqa: BLE001  one question that we fail on does not take the others with it
+            complaints.append(Complaint.at(question.node.span, internal_fault(fault)))
+    return Report(text.name, tuple(answers), tuple(complaints))
 
 
 def _show(report: Report, as_json: bool) -> None:
     if report.complaints:
         from eoscore.show.complaint import complaints_text
 
-        click.echo(complaints_text(report.complaints), err=True)
+        click.echo(complaints_text(report.complaints, computed=bool(report.answers)), err=True)
     if as_json:
         from eoscore.show.document import json_text
 

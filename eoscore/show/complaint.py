@@ -26,11 +26,12 @@ def complaint_text(complaint: Complaint) -> str:
     return "\n".join(lines)
 
 
-def complaints_text(complaints: Iterable[Complaint]) -> str:
+def complaints_text(complaints: Iterable[Complaint], *, computed: bool = False) -> str:
     """All complaints, one after the other, with a closing count."""
     texts = [complaint_text(complaint) for complaint in complaints]
     count = "1 fault" if len(texts) == 1 else f"{len(texts)} faults"
-    return "\n\n".join([*texts, f"{count} found; nothing was computed."])
+    end = "the other questions were answered." if computed else "nothing was computed."
+    return "\n\n".join([*texts, f"{count} found; {end}"])
 
 
 def _marked(complaint: Complaint) -> tuple[str, str]:
