@@ -130,7 +130,8 @@ def _whole(n: int) -> Coefficients:
 def _panels(s: float) -> tuple[tuple[tuple[float, Coefficients], ...], Coefficients]:
     order = Decimal(s)
     part = power_part(order)
-    degree = 20 + math.ceil(s / 3 if s > 0 else -2 * s)
+    # Few degrees, so that orders share their nodes and the logarithms there.
+    degree = 22 if 0 < s < 6 else 26 if -3 < s < 15 else 32
     # Above 1 all derivatives that count are positive: about the low end nothing cancels.
     panels = _pieces(part, EDGES, degree, low_end=s > 1)
 

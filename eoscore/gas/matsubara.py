@@ -11,7 +11,7 @@ function. For M = 0 this is Sommerfeld's expansion; with |W| >= 44, and 62 at s 
 from __future__ import annotations
 
 import math
-from decimal import Context, Decimal, localcontext
+from decimal import Context, Decimal, getcontext, localcontext
 from functools import cache, lru_cache
 from typing import TYPE_CHECKING
 
@@ -31,7 +31,7 @@ def power_part(order: Decimal) -> Callable[[Decimal], Decimal]:
     front = reciprocal_gamma(order)
     factors = _tail_factors(order)
     reach = 44 + 3 * max(0, -float(order))
-    digits = 34 + max(0, int(order))
+    digits = 34 if order < 8 else _DIGITS
 
     def value(eta: Decimal) -> Decimal:
         with localcontext(Context(prec=digits)):
@@ -77,7 +77,7 @@ def _tail(eta: Decimal, count: int, order: Decimal, factors: list[Decimal]) -> D
 def _power(eta: Decimal, count: int, exponent: Decimal) -> tuple[Decimal, Decimal]:
     """(eta + i pi count)^exponent, its real and imaginary part."""
     whole = math.floor(exponent)
-    real, imaginary = _root(eta, count, exponent - whole)
+    real, imaginary = _root(eta, count, exponent - whole, getcontext().prec)
     step, height = eta, PI * count
     if whole < 0:
         square = eta * eta + height * height
@@ -88,20 +88,20 @@ def _power(eta: Decimal, count: int, exponent: Decimal) -> tuple[Decimal, Decima
 
 
 @lru_cache(maxsize=8192)
-def _root(eta: Decimal, count: int, exponent: Decimal) -> tuple[Decimal, Decimal]:
+def _root(eta: Decimal, count: int, exponent: Decimal, digits: int) -> tuple[Decimal, Decimal]:  # noqa: ARG001
     """The power with an exponent in [0, 1): the same for all orders that differ by whole numbers."""
-    with localcontext(Context(prec=_DIGITS)):
-        log, angle = _polar(eta, count)
-        size = (exponent * log).exp()
-        cosine, sine = cosine_sine(exponent * angle)
-        return size * cosine, size * sine
+    log, angle = _polar(eta, count)
+    size = (exponent * log).exp()
+    cosine, sine = cosine_sine(exponent * angle)
+    return size * cosine, size * sine
 
 
 @cache
 def _polar(eta: Decimal, count: int) -> tuple[Decimal, Decimal]:
     """ln |eta + i pi count| and its angle, the angle of doubles mended to all digits: the same for all orders."""
-    height = PI * count
-    angle = Decimal(math.atan2(height, eta))
-    cosine, sine = cosine_sine(angle)
-    off = (height * cosine - eta * sine) / (eta * cosine + height * sine)
-    return (eta * eta + height * height).ln() / 2, angle + off - off**3 / 3
+    with localcontext(Context(prec=_DIGITS)):
+        height = PI * count
+        angle = Decimal(math.atan2(height, eta))
+        cosine, sine = cosine_sine(angle)
+        off = (height * cosine - eta * sine) / (eta * cosine + height * sine)
+        return (eta * eta + height * height).ln() / 2, angle + off - off**3 / 3
