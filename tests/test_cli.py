@@ -79,6 +79,7 @@ def test_a_dash_reads_standard_input(eoscore):
 
 
 def test_settings_override_parameters_and_conditions(eoscore, bowl):
+    assert "set from outside: f=50 Hz" in eoscore("run", bowl, "--set", "f=50 Hz")[1]
     _, out, _ = eoscore("run", bowl, "--json", "--set", "f=50 Hz")
     assert json.loads(out)["answers"][0]["found"]["T_c"]["value"] == pytest.approx(bowl_T_c(frequency=50.0))
 

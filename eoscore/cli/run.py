@@ -100,7 +100,7 @@ def answer_text(text: Text, asked: Asked) -> int:
 
         for path in save(report, asked.out):
             click.echo(f"wrote {path}", err=True)
-    _show(report, asked.as_json)
+    _show(report, asked)
     if report.complaints:
         return FAULTY
     return INACCURATE if _complain_of_accuracy(report, asked.accuracy) else ANSWERED
@@ -116,30 +116,33 @@ def _report(text: Text, asked: Asked) -> Report:
         lab = text.lab(asked.settings)
     except TarnError as fault:
         return Report(text.name, complaints=fault.complaints)
-    for index, question in enumerate(lab.program.questions):
-        try:
-            answers.append(lab.answer(index, accuracy=asked.accuracy, workers=asked.workers))
-        except TarnError as fault:
-            complaints.extend(fault.complaints)
-        except (OSError, MemoryError):
-            raise
-        except Exception as fault:  # noqa: BLE001  one question that we fail on does not take the others with it
-            complaints.append(Complaint.at(question.node.span, internal_fault(fault)))
+    with lab.answering(workers=asked.workers) as run:
+        for index, question in enumerate(lab.program.questions):
+            try:
+                answers.append(run.answer(index, asked.accuracy))
+            except TarnError as fault:
+                complaints.extend(fault.complaints)
+            except (OSError, MemoryError):
+                raise
+            except Exception as fault:  # noqa: BLE001  one question that we fail on does not take the others with it
+                complaints.append(Complaint.at(question.node.span, internal_fault(fault)))
     return Report(text.name, tuple(answers), tuple(complaints))
 
 
-def _show(report: Report, as_json: bool) -> None:
+def _show(report: Report, asked: Asked) -> None:
     if report.complaints:
         from eoscore.show.complaint import complaints_text
 
         click.echo(complaints_text(report.complaints, computed=bool(report.answers)), err=True)
-    if as_json:
+    if asked.as_json:
         from eoscore.show.document import json_text
 
         sys.stdout.write(json_text(report))
     elif report.answers:
         from eoscore.show.page import print_report
 
+        if asked.settings:
+            click.echo(f"set from outside: {', '.join(asked.settings)}\n")
         print_report(report, sys.stdout)
 
 
