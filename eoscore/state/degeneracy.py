@@ -35,11 +35,11 @@ def alpha_of_number(ensemble: Ensemble, number: FloatArray, kT: FloatArray) -> F
 def _of_bosons(ensemble: Ensemble, number: FloatArray, kT: FloatArray, count: Counter) -> FloatArray:
     """Far from saturation ln N against s = ln(e^alpha - 1): a straight line for one level, concave for others.
 
-    Since N <= Z e^-s with the classical Z, Newton's method from s = ln(Z/N) comes down to the root from above.
+    Since N <= Z e^-s with the classical Z, s = ln(Z/N) lies above the root, and Newton's method comes down from it.
     Close to saturation ln(N_c - N) against ln alpha, which is nearly straight there.
     """
     full = ensemble.saturated(kT)
-    z, _ = ensemble.boltzmann(kT)
+    z, mean = ensemble.boltzmann(kT)
     last = ensemble.largest_alpha(kT)
     near = number > 0.6 * full
     alpha = np.empty_like(kT)
@@ -57,8 +57,8 @@ def _of_bosons(ensemble: Ensemble, number: FloatArray, kT: FloatArray, count: Co
                 return 2 * (wanted - n) / (wanted + np.abs(n)), 4 * wanted * lean / (wanted + np.abs(n)) ** 2
             return np.log(wanted / n), lean / n
 
-    start = np.log(z[far] / number[far])
-    top = np.minimum(np.maximum(start, 0.0) + 2.0, _s_of(last[far]))
+    start = _second_order(number[far] / z[far], mean[far])
+    top = np.minimum(np.maximum(np.log(z[far] / number[far]), 0.0) + 2.0, _s_of(last[far]))
     s = rising_root(from_one_level, np.full(far.shape, LEAST), top, np.minimum(start, top))
     alpha[far] = np.logaddexp(0.0, s)
     close = np.flatnonzero(near)
@@ -75,6 +75,13 @@ def _of_bosons(ensemble: Ensemble, number: FloatArray, kT: FloatArray, count: Co
     log = rising_root(from_saturation, np.full(close.shape, LEAST), high, np.minimum(begin, high))
     alpha[close] = np.where(number[close] < full[close], np.exp(log), 0.0)
     return alpha
+
+
+def _second_order(ratio: FloatArray, mean: FloatArray) -> FloatArray:
+    """s from N/Z = z + c z^2 + ..., c = 2^-(E/kT) as for a pure power."""
+    c = 2.0**-mean
+    z = np.minimum(2 * ratio / (1 + np.sqrt(1 + 4 * c * ratio)), 0.97)
+    return np.asarray(np.log1p(-z) - np.log(z))
 
 
 def _s_of(alpha: FloatArray) -> FloatArray:

@@ -60,7 +60,8 @@ def rising_root(
         bisect[which] = false_position
         moved = np.abs(new - here)
         scale = np.maximum(np.abs(new), 1.0)
-        done = (value == 0) | (newton & (moved <= CLOSE * scale)) | (moved <= TIGHT * scale)
+        narrow = high[which] - low[which] <= TIGHT * scale
+        done = (value == 0) | (newton & (moved <= CLOSE * scale)) | narrow
         x[which] = np.where(value == 0, here, new)
         before[which] = moved
         which = which[~done]

@@ -19,6 +19,7 @@ if TYPE_CHECKING:
     from numpy.typing import ArrayLike, NDArray
 
     from eoscore.state.held import HeldGas
+    from eoscore.state.profile import Profile
     from eoscore.state.reading import FloatArray
     from eoscore.state.solution import Solution
     from eoscore.state.sums import Sums
@@ -132,6 +133,15 @@ class State:
         by_log = (function(s.alpha, s.kT * (1 + h)) - value) / h
         return value, self.bound(relative, value, by_alpha, by_log)
 
+    def profile(self, **positions: ArrayLike) -> Profile:
+        """V, density and pressure of the non-condensed gas at positions in m, by coordinate; of one state.
+
+        See `eoscore.state.profile.profile`.
+        """
+        from eoscore.state.profile import profile
+
+        return profile(self, positions)
+
     @property
     def reasons(self) -> list[Reason]:
         """Why points have no state."""
@@ -147,6 +157,10 @@ class State:
         """A reading of the state, in the shape of the question."""
         route = route or self.held.model.whole.route
         told = [*(self.reasons if self.solved else ()), *reasons]
+        lost = ~np.isfinite(value).reshape(self.shape)
+        for reason in told:
+            lost &= ~reason.where
+        told.append(Reason("no finite number came of it: it is beyond the range of doubles", lost))
         return reading_of(self.shaped(value), self.shaped(error), unit, route, told)
 
     @property
