@@ -11,6 +11,7 @@ import click
 from eoscore.cli.check import check
 from eoscore.cli.demo import demo
 from eoscore.cli.exits import guarded
+from eoscore.cli.explain import explain
 from eoscore.cli.plugins import plugins
 from eoscore.cli.run import run
 
@@ -27,7 +28,7 @@ def command() -> None:
     """
 
 
-for verb in (run, check, plugins, demo):
+for verb in (run, check, plugins, demo, explain):
     command.add_command(verb)
 
 
