@@ -78,9 +78,9 @@ class _Well:
         return result
 
 
-def about(field: Field, landscape: Landscape) -> Measure | None:
-    """Omega of a single well that is star-shaped about its quadratic bottom up to the escape energy, else None."""
-    bottom, depth = landscape.bottom, landscape.depth
+def about(field: Field, landscape: Landscape, ceiling: float) -> Measure | None:
+    """Omega of a single well that is star-shaped about its bottom up to the escape energy or the ceiling, else None."""
+    bottom, depth = landscape.bottom, min(landscape.depth, ceiling)
     if bottom is None or len(landscape.minima) > 1 or depth == inf:
         return None
     try:
@@ -92,7 +92,7 @@ def about(field: Field, landscape: Landscape) -> Measure | None:
         wells.exponent,
         scale=wells.scale,
         top=depth,
-        error=lambda: wells.error,
+        error=lambda v: np.full(v.shape, wells.error),
         route="about the bottom",
     )
 

@@ -20,7 +20,9 @@ __all__ = ["Angular"]
 
 WANTED = 1e-11  # relative difference between two rules at which the finer one is taken
 ENOUGH = 1e-9  # and of the two finest ones
+ON_AXIS = 1e-9  # of the width of a well: a bottom this close to the axis lies on it
 ASIDE = 1e-10  # m beside the tip of a cone
+HOPELESS = 1e-3  # and above which still finer ones are not tried
 LEAST = 1e-13  # error of the finest rule: that of the roots
 
 
@@ -40,9 +42,15 @@ class Angular:
         self.frame = _cone_frame(field, bottom) if self.degree == 1 else _well_frame(bottom)
         self.start, self.v_min, self.end = np.array(bottom.position), bottom.value, end
         self.error = LEAST
-        wide = float(np.abs(self.frame[0]).max())
         turning = field.coordinates == ("rho", "z")
-        self.ring = float(self.start[0]) if turning and self.start[0] > 1e-9 * wide else 0.0
+        if (
+            turning
+            and self.degree == 2
+            and abs(bottom.position[0]) <= ON_AXIS * sqrt(end) * np.abs(self.frame[0]).max()
+        ):
+            self.frame = np.diag(1 / np.sqrt(np.diag(np.asarray(bottom.hessian))))
+        wide = float(np.abs(self.frame[0]).max())
+        self.ring = float(self.start[0]) if turning and self.start[0] > ON_AXIS * sqrt(end) * wide else 0.0
         about_axis = turning and not self.ring
         walls = (*field.walls, variable("rho")) if self.ring else field.walls
         self.field = Field(field.coordinates, field.formula, walls)
@@ -69,6 +77,8 @@ class Angular:
                 self._rung = rung - 1
                 self.error = max(self.error, miss)
                 return fine
+            if miss > HOPELESS and rung >= 3:
+                break
             coarse = fine
         raise Declined
 

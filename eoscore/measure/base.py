@@ -80,6 +80,14 @@ class Measure(ABC):
         """Bound of the relative error of Omega, at every energy that was asked so far."""
         return self._error
 
+    def error_below(self, v: ArrayLike) -> FloatArray:
+        """Bound of the relative error of Omega at energies up to v (J), which rises with v to `error`.
+
+        The error of int g dOmega with falling g is at most int error_below(v) Omega(v) (-g'(v)) dv, which is far
+        less than `error` where only the highest energies are uncertain.
+        """
+        return np.full(np.shape(v), self.error)
+
     @property
     def floor(self) -> float:
         """Omega(0): the volume of a flat bottom, in units of Omega; 0 for every other bottom."""

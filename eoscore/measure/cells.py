@@ -11,33 +11,45 @@ from eoscore.errors import NoAnswerError
 from eoscore.measure.about import Wells
 from eoscore.measure.bottom import beginning
 from eoscore.measure.coordinate import dimension
-from eoscore.measure.mesh import held_boxes, typical_level
+from eoscore.measure.critical import saddles
+from eoscore.measure.mesh import SKETCH, held_boxes, held_lines, typical_level
 from eoscore.measure.rays import Declined
 from eoscore.measure.sampled import Sampled
 from eoscore.measure.slabs import Slabs
 
 if TYPE_CHECKING:
+    from numpy.typing import NDArray
+
     from eoscore.formula.field import Field
     from eoscore.measure.base import FloatArray, Measure
     from eoscore.measure.landscape_record import Landscape
 
 __all__ = ["cells"]
 
-DOUBT = 0.03  # of the difference between boxes and halved boxes: the error that extrapolation leaves, at most
-RUNG = 4.0  # ratio of the levels for which boxes of their own are made
-STARTS = 0.5 ** np.arange(1, 31)  # of the level: up to there the wells may be taken along rays
+DOUBT = 0.3  # of the difference between boxes and halved boxes, which is eight times the error of the latter
+RUNGS = (1.26, 2.0, 4.0)  # ratio of the levels for which boxes of their own are made: few, many, without end
+# Shares of the level up to which the wells may be taken along rays.
+STARTS = np.concatenate([[0.9, 0.8, 0.7, 0.6], 0.5 * 0.7 ** np.arange(60)])
+    [[0.9, 0.8, 0.7, 0.6], 0.5 * 0.7 ** np.arange(60)]
+)  # of the level: up to there the wells may be taken along rays
+OPEN = 0.99  # of the depth: a ceiling below this keeps away from an escape at infinity
+GROWTH = 1.4  # power of 1/(depth - v) in Omega at which, with 3/2 from the momenta, states are without number
+FADING = 0.2  # of the joint: how far above it boxes are led to the value of the rays
 LOWEST = 2e-3  # of the level, where they may not: below it Omega is taken as a power
 
 
-def cells(field: Field, landscape: Landscape) -> Measure | None:
-    """Omega of any field of two or three coordinates.
+def cells(field: Field, landscape: Landscape, ceiling: float) -> Measure | None:
+    """Omega of any field of two or three coordinates, up to the escape energy or the ceiling.
 
     Below the energy at which wells join or stop being star-shaped, from rays; above, the volume in boxes
-    that join the bottom at the escape energy, with V linear in each, extrapolated from two sizes of boxes.
+    that join the bottom at the escape energy, with V linear in each; the error from boxes twice as wide.
     """
     if len(field.coordinates) not in (2, 3) or landscape.bottom is None:
         return None
-    boxed = _Boxed(field, landscape)
+    top = min(landscape.depth, ceiling)
+    boxed = _Boxed(field, landscape, top)
+    if landscape.escape is not None and landscape.escape.position is None and top > OPEN * landscape.depth:
+        boxed.refuse_infinite()
     exponent, scale, foot = boxed.beginning()
     rises = tuple(minimum.value - landscape.bottom.value for minimum in landscape.minima[1:])
     return Sampled(
@@ -45,26 +57,27 @@ def cells(field: Field, landscape: Landscape) -> Measure | None:
         exponent,
         scale=scale,
         foot=foot,
-        top=landscape.depth,
-        error=lambda: boxed.error,
+        top=top,
+        error=boxed.error_below,
         route="cells",
-        breaks=(*rises, boxed.joint) if boxed.joint else rises,
+        breaks=(*rises, *boxed.saddles(), *((boxed.joint,) if boxed.joint else ())),
     )
 
 
 class _Boxed:
-    """Omega from rays up to `joint` and from boxes above; error: relative, the greatest so far."""
+    """Omega from rays up to `joint` and from boxes above."""
 
-    def __init__(self, field: Field, landscape: Landscape) -> None:
+    def __init__(self, field: Field, landscape: Landscape, top: float) -> None:
         bottom = landscape.bottom
         if bottom is None:
             raise NoAnswerError(landscape.why)
-        self.field, self.v_min, self.depth = field, bottom.value, landscape.depth
-        self.wells = tuple(minimum.position for minimum in landscape.minima)
-        self.error = 1e-10
-        self.level = landscape.depth if landscape.depth < inf else typical_level(field, bottom.value)
+        self.field, self.v_min = field, bottom.value
+        self.minima = landscape.minima
+        self.errors: dict[int, float] = {}
+        self.level = top if top < inf else typical_level(field, bottom.value)
         self.slabs: dict[int, tuple[Slabs, Slabs]] = {}
         self.rays, self.joint = self._low(landscape)
+        self.rung = RUNGS[2] if top == inf else RUNGS[0] if self.joint > top / 3 else RUNGS[1]
 
     def _low(self, landscape: Landscape) -> tuple[Wells | None, float]:
         """The wells along rays, as high as that goes."""
@@ -76,6 +89,30 @@ class _Boxed:
             except Declined:
                 continue
         return None, 0.0
+
+    def saddles(self) -> tuple[float, ...]:
+        """Energies at which wells join or arms open, below the level."""
+        lines = held_lines(self.field, self.minima, self.level, SKETCH[len(self.field.coordinates)])
+        return saddles(self.field, lines, self.v_min, self.level)
+
+    def refuse_infinite(self) -> None:
+        """Raise NoAnswerError where Omega grows like (depth - v)^-3/2 or faster towards an escape at infinity."""
+        shares = np.array([7 / 8, 31 / 32])
+        lower, upper = (self._under(float(share * self.level)) for share in shares)
+        if upper > lower * 4**GROWTH:
+            raise NoAnswerError(
+                "the number of states below the escape energy is infinite: towards it the region grows without "
+                "bound. Give the trap an E_max below the depth"
+            )
+
+    def _under(self, v: float) -> float:
+        """Omega at one energy, from regions of its own."""
+        try:
+            return float(Wells(self.field, self.minima, v)(np.array([v]))[0])
+        except Declined:
+            pass
+        boxes = held_boxes(self.field, self.minima, v)
+        return float(Slabs(self.field, boxes, self.v_min).below(np.array([v]))[0])
 
     def beginning(self) -> tuple[float, float, float | None]:
         """Exponent, scale and foot of Omega."""
@@ -98,36 +135,41 @@ class _Boxed:
         if low.any():
             result[low] = self.rays(v[low])
         if not low.all():
-            start = np.array([self.joint])
-            result[~low] = self.rays(start) + self._boxes(v[~low], start)
+            joint = np.array([self.joint])
+            miss = self.rays(joint) - self._boxes(joint * (1 + 1e-7))  # in the boxes that stand above it
+            result[~low] = self._boxes(v[~low]) + miss * np.exp(-(((v[~low] / self.joint - 1) / FADING) ** 2))
         return result
 
-    def _boxes(self, v: FloatArray, start: FloatArray | None = None) -> FloatArray:
-        """Volume between `start` (0) and energies, in any order, each in boxes that are made for its height."""
+    def _boxes(self, v: FloatArray) -> FloatArray:
+        """Volume in boxes below energies, in any order, each in boxes that are made for its height."""
         result = np.empty_like(v)
-        rung = np.ceil(np.log(v / self.level) / np.log(RUNG) - 1e-9).astype(int)
+        rung = self._rungs(v)
         for k in np.unique(rung):
             chosen = np.flatnonzero(rung == k)
             order = chosen[np.argsort(v[chosen])]
-            energies = v[order] if start is None else np.concatenate([start, v[order]])
-            coarse, fine = (slabs.below(energies) for slabs in self._made(int(k)))
-            doubt = np.abs(fine - coarse)
-            volume = fine + (fine - coarse) / 3
-            if start is not None:
-                doubt, volume = np.abs(doubt - doubt[0])[1:] + doubt[0], (volume - volume[0])[1:]
-                whole = fine[1:]
-            else:
-                whole = fine
-            self.error = max(
-                self.error, DOUBT * float(np.max(doubt[whole > 0] / whole[whole > 0], initial=0.0))
-            )
-            result[order] = volume
+            coarse, fine = (slabs.below(v[order]) for slabs in self._made(int(k)))
+            seen = fine > 0
+            doubt = np.abs(fine - coarse)[seen] / fine[seen]
+            self.errors[int(k)] = max(self.errors.get(int(k), 0.0), DOUBT * float(np.max(doubt, initial=0.0)))
+            result[order] = fine
         return result
+
+    def error_below(self, v: FloatArray) -> FloatArray:
+        """Relative error up to energies, as far as it is known."""
+        low = self.rays.error if self.rays is not None else 0.0
+        known = sorted(self.errors)
+        worst = np.maximum.accumulate([low, *(self.errors[k] for k in known)])
+        place = np.searchsorted(known, self._rungs(np.maximum(v, 1e-300)), side="right")
+        return np.asarray(np.where(v <= self.joint, low, worst[place]))
+
+    def _rungs(self, v: FloatArray) -> NDArray[np.int_]:
+        """Number of the rung up to which an energy belongs, 0 the one that ends at the level."""
+        return np.asarray(np.ceil(np.log(v / self.level) / np.log(self.rung) - 1e-9).astype(int))
 
     def _made(self, k: int) -> tuple[Slabs, Slabs]:
         """Boxes, and boxes half as wide, up to a rung of the ladder of levels."""
         if k not in self.slabs:
-            boxes = held_boxes(self.field, self.wells, self.v_min, float(self.level * RUNG**k))
+            boxes = held_boxes(self.field, self.minima, float(self.level * self.rung**k))
             self.slabs[k] = (
                 Slabs(self.field, boxes, self.v_min),
                 Slabs(self.field, boxes.halved(), self.v_min),

@@ -34,6 +34,10 @@ class Changed(Measure):
         """As of the measure it was made from."""
         return self.origin.error
 
+    def error_below(self, v: ArrayLike) -> FloatArray:
+        """See `Measure.error_below`."""
+        return self.origin.error_below(v)
+
     def volume(self, v: ArrayLike) -> FloatArray:
         """See `Measure.volume`."""
         return self.factor * self.origin.volume(np.minimum(v, self.top))

@@ -9,6 +9,7 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from eoscore.errors import NoAnswerError
 from eoscore.measure.powers import Powers
 from eoscore.measure.rules import graded, legendre
 from eoscore.measure.sampled import Sampled
@@ -41,6 +42,8 @@ def convolve(a: Measure, b: Measure) -> Measure:
         factor = _factor(one)
         if factor is not None:
             return other.scaled(factor).cut(top)
+    for one, other in ((a, b), (b, a)):
+        _refuse_infinite(one, other.exponent, top)
     terms_a, terms_b = a.powers(), b.powers()
     if terms_a and terms_b:
         terms = [(c1 * c2 * _joined(k1, k2), k1 + k2) for c1, k1 in terms_a for c2, k2 in terms_b]
@@ -52,7 +55,7 @@ def convolve(a: Measure, b: Measure) -> Measure:
         scale=min(a.scale, b.scale),
         foot=max(feet, default=None),
         top=top,
-        error=error + ROUNDING,
+        error=lambda v: a.error_below(v) + b.error_below(v) + ROUNDING,
         route=route,
         breaks=_joined_breaks(a, b),
     )
@@ -62,6 +65,18 @@ def _factor(measure: Measure) -> float | None:
     """The volume of a measure that is nothing but a flat floor without top."""
     terms = measure.powers()
     return terms[0][0] if terms and len(terms) == 1 and terms[0][1] == 0 else None
+
+
+def _refuse_infinite(measure: Measure, exponent: float, top: float) -> None:
+    """Raise NoAnswerError where Omega diverges at the top too fast for a partner that begins with an exponent."""
+    if measure.powers() is not None or top < measure.top or top == inf:
+        return
+    near, nearer = measure.volume(top * (1 - np.array([1e-6, 1e-9])))
+    if nearer > near * 1e3 ** (0.99 * exponent):
+        raise NoAnswerError(
+            "the number of states below the escape energy is infinite: towards it the region grows without bound. "
+            "Give the trap an E_max below the depth"
+        )
 
 
 def _joined(k1: float, k2: float) -> float:

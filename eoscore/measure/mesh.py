@@ -17,13 +17,15 @@ if TYPE_CHECKING:
 
     from eoscore.formula.field import Field
     from eoscore.measure.base import FloatArray
-    from eoscore.measure.landscape_axes import Axis
+    from eoscore.measure.landscape_record import Minimum
 
-__all__ = ["Boxes", "held_boxes", "typical_level"]
+__all__ = ["Boxes", "held_boxes", "held_lines", "typical_level"]
 
 SKETCH = {2: 160, 3: 40}  # points along each axis of the grid that finds the extent
-FINE = {2: 240, 3: 52}  # and of the grid whose boxes are kept
-TYPICAL = 0.1  # share of the points of a sketch below the first level that is looked at where nothing leaks
+FINE = {2: 240, 3: 56}  # and of the grid whose boxes are kept
+TYPICAL = 0.2  # share of the points of a sketch below the first level that is looked at where nothing leaks
+MOST_WELLS = 200  # whose places decide where boxes are small
+CORE = 0.25  # share of the ceiling up to which a well counts as its core
 MARGIN = 0.05  # of the ceiling: so far below it no grid steps over a barrier at the pass
 
 
@@ -34,6 +36,10 @@ class Boxes:
     centre: FloatArray
     edge: FloatArray
 
+    def part(self, start: int, stop: int) -> Boxes:
+        """Some of the boxes."""
+        return Boxes(self.centre[start:stop], self.edge[start:stop])
+
     def halved(self) -> Boxes:
         """Every box in 2^d."""
         d = self.centre.shape[1]
@@ -42,8 +48,17 @@ class Boxes:
         return Boxes(centre.reshape(-1, d), np.repeat(self.edge / 2, 2**d, axis=0))
 
 
-def held_boxes(field: Field, wells: Sequence[tuple[float, ...]], v_min: float, ceiling: float) -> Boxes:
-    """Boxes that hold all points which join one of the wells below v_min + ceiling."""
+def held_boxes(field: Field, minima: Sequence[Minimum], ceiling: float) -> Boxes:
+    """Boxes that hold all points which join one of the minima below `ceiling` (J from the first of them)."""
+    chart = Chart(field)
+    wells, v_min = [minimum.position for minimum in minima], minima[0].value
+    lines = held_lines(field, minima, ceiling, FINE[chart.dimension])
+    return _boxes(lines, *_held(chart, lines, wells, v_min, ceiling))
+
+
+def held_lines(field: Field, minima: Sequence[Minimum], ceiling: float, count: int) -> list[FloatArray]:
+    """`count` points along each axis over the extent of what joins the minima below `ceiling`."""
+    wells, v_min = [minimum.position for minimum in minima], minima[0].value
     chart = Chart(field)
     axes = axes_of(chart)
     d = chart.dimension
@@ -52,14 +67,15 @@ def held_boxes(field: Field, wells: Sequence[tuple[float, ...]], v_min: float, c
     ]
     held, _ = _held(chart, lines, wells, v_min, ceiling)
     spans = [_span(line, held, i) for i, line in enumerate(lines)]
-    lines = [_between(axis, span, FINE[d]) for axis, span in zip(axes, spans, strict=True)]
-    return _boxes(lines, *_held(chart, lines, wells, v_min, ceiling))
+    return [_between(minima, i, span, ceiling, count) for i, span in enumerate(spans)]
 
 
 def typical_level(field: Field, v_min: float) -> float:
     """An energy from the bottom, below which a fair part of the points lie at which V changes."""
     chart = Chart(field)
-    lines = [axis.points(SKETCH[chart.dimension] // 2) for axis in axes_of(chart)]
+    axes = axes_of(chart)
+    lines = [axis.points(SKETCH[chart.dimension] // 2) for axis in axes]
+    lines = [line[np.abs(line) <= 10.0**axis.most] for line, axis in zip(lines, axes, strict=True)]
     mesh = np.meshgrid(*lines, indexing="ij", sparse=True)
     rise = np.asarray(chart.value_at(dict(zip(chart.names, mesh, strict=True)))) - v_min
     return float(np.quantile(rise[np.isfinite(rise) & (rise > 0)], TYPICAL))
@@ -91,7 +107,10 @@ def _held(
         core[place] = True
     root = _downhill(v, settled=regions > 0)
     ours = core.ravel()[root].reshape(v.shape)
-    return (v < ceiling) & ours, (v < ceiling) & ~ours
+    held = (v < ceiling) & ours
+    for place in at:
+        held[place] = True
+    return held, (v < ceiling) & ~ours & ~held
 
 
 def _downhill(v: FloatArray, *, settled: NDArray[np.bool_]) -> NDArray[np.intp]:
@@ -120,12 +139,40 @@ def _span(line: FloatArray, held: NDArray[np.bool_], i: int) -> tuple[float, flo
     return float(line[max(along[0] - 1, 0)]), float(line[min(along[-1] + 1, line.size - 1)])
 
 
-def _between(axis: Axis, span: tuple[float, float], count: int) -> FloatArray:
-    """Points of an axis in a stretch, closer where V changes more."""
-    lo, hi = np.interp(span, axis.known, axis.change)
-    shares = np.linspace(lo, hi, count)
-    points = np.interp(shares, axis.change, axis.known)
-    return np.unique(np.concatenate([[span[0]], points[(points > span[0]) & (points < span[1])], [span[1]]]))
+def _between(
+    minima: Sequence[Minimum], i: int, span: tuple[float, float], ceiling: float, count: int
+) -> FloatArray:
+    """Points of axis i in a stretch: even within the width of a well, in steady proportion to the distance beyond."""
+    lo, hi = span
+    x = np.linspace(lo, hi, 100 * count)
+    gaps = []
+    for minimum in minima[:MOST_WELLS]:
+        with np.errstate(all="ignore"):
+            width = np.sqrt(2 * CORE * ceiling / minimum.hessian[i, i])
+        width = width if np.isfinite(width) else (hi - lo) / 8
+        gaps.append(np.minimum(width, (hi - lo) / 4))
+    nearest = np.min([np.abs(x - m.position[i]) + g for m, g in zip(minima, gaps, strict=False)], axis=0)
+    fine = (
+        _graded(lo, hi, [m.position[i] for m in minima[:MOST_WELLS]], gaps)
+        if hi - lo > 50 * nearest.min()
+        else x
+    )
+    fine = np.unique(np.concatenate([x, fine]))
+    middle = (fine[1:] + fine[:-1]) / 2
+    near = np.min([np.abs(middle - m.position[i]) + g for m, g in zip(minima, gaps, strict=False)], axis=0)
+    total = np.concatenate([[0.0], np.cumsum(np.diff(fine) / near)])
+    return np.interp(np.linspace(0, total[-1], count), total, fine)
+
+
+def _graded(lo: float, hi: float, centres: list[float], gaps: list[float]) -> FloatArray:
+    """Points that go out from the centres in steps that grow with the distance."""
+    points = [
+        centre + side * gap * np.sinh(np.linspace(0, np.arcsinh((hi - lo) / gap), 400))
+        for centre, gap in zip(centres, gaps, strict=True)
+        for side in (-1, 1)
+    ]
+    merged = np.concatenate(points)
+    return merged[(merged > lo) & (merged < hi)]
 
 
 def _boxes(lines: list[FloatArray], held: NDArray[np.bool_], lost: NDArray[np.bool_]) -> Boxes:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from functools import reduce
+from math import inf
 from typing import TYPE_CHECKING
 
 from eoscore.errors import NoAnswerError
@@ -25,18 +26,21 @@ if TYPE_CHECKING:
 __all__ = ["measure_of"]
 
 
-def measure_of(field: Field, landscape: Landscape | None = None) -> Measure:
+def measure_of(field: Field, landscape: Landscape | None = None, ceiling: float = inf) -> Measure:
     """The measure of a field: the d-volume of its held region below each energy, J from the bottom.
 
-    `landscape` is surveyed where it is needed and not given. Independent coordinates are taken apart and
-    convolved. Raises NoAnswerError where nothing is held, or where the volume is infinite.
+    `landscape` is surveyed where it is needed and not given. `ceiling`: energies (J) above it will not be asked,
+    which may save work, and is needed where the region grows without bound towards the escape. Independent
+    coordinates are taken apart and convolved. Raises NoAnswerError where nothing is held, or where the volume
+    is infinite.
     """
     parts = independent_parts(field)
     if len(parts) > 1 and (whole := quadratic(field)) is None:
-        return reduce(convolve, sorted(map(measure_of, parts), key=_cost))
+        measures = [measure_of(part, ceiling=ceiling) for part in parts]
+        return reduce(convolve, sorted(measures, key=_cost)).cut(ceiling)
     if len(parts) > 1 and whole is not None:
-        return whole
-    return _of_one(field, landscape)
+        return whole.cut(ceiling)
+    return _of_one(field, landscape, ceiling).cut(ceiling)
 
 
 def _cost(measure: Measure) -> int:
@@ -44,7 +48,7 @@ def _cost(measure: Measure) -> int:
     return 0 if measure.powers() else 1
 
 
-def _of_one(field: Field, landscape: Landscape | None) -> Measure:
+def _of_one(field: Field, landscape: Landscape | None, ceiling: float) -> Measure:
     """The measure of a field whose coordinates do not separate."""
     closed = quadratic(field) or homogeneous(field) or composed(field, measure_of)
     if closed is not None:
@@ -53,7 +57,10 @@ def _of_one(field: Field, landscape: Landscape | None) -> Measure:
     if not landscape.holds:
         raise NoAnswerError(landscape.why)
     found = (
-        flat(field, landscape) or line(field, landscape) or about(field, landscape) or cells(field, landscape)
+        flat(field, landscape)
+        or line(field, landscape)
+        or about(field, landscape, ceiling)
+        or cells(field, landscape, ceiling)
     )
     if found is None:
         raise NoAnswerError(

@@ -22,7 +22,7 @@ __all__ = ["Sampled"]
 
 FINEST = {"log": 2.0**-6, "left": 2.0**-14, "right": 2.0**-14}  # panels this short in t are not halved
 SHARPEST = 1e-14  # relative tail of a series at which a panel counts as resolved
-NOISE = 1e-6  # a tail below this that halving does not lower is the rounding of the function itself
+NOISE = 1e-4  # a tail below this that halving does not lower is the rounding of the function itself
 
 
 class Sampled(Measure):
@@ -30,8 +30,8 @@ class Sampled(Measure):
 
     scale: an energy (J) of the order at which Omega begins to leave its pure power.
     foot: below it Omega is taken as that power; by default so low that no double would show the difference.
-    error: relative bound on the function's own values so far, a number or a function that tells it; the tails
-    of the series are added to it, each with the
+    error: relative bound on the function's own values, or a function of energies (any shape) that tells it up
+    to each as far as it is known; the tails of the series are added to it, each with the
     share of energy that its panel takes (a panel as narrow as 4e-9 at a break hardly counts).
     """
 
@@ -43,7 +43,7 @@ class Sampled(Measure):
         scale: float,
         foot: float | None = None,
         top: float = inf,
-        error: float | Callable[[], float] = 0.0,
+        error: float | Callable[[FloatArray], FloatArray] = 0.0,
         route: str,
         breaks: tuple[float, ...] = (),
     ) -> None:
@@ -57,16 +57,25 @@ class Sampled(Measure):
         self._lock = Lock()
         self._table: Table | None = None
         self._reach = self.foot
-        self._tail = 0.0
+        self._tails = np.empty(0)
 
     @property
     def error(self) -> float:
         """See `Measure.error`."""
-        return self._given_error + self._tail
+        return float(self.error_below(self._reach))
 
-    @property
-    def _given_error(self) -> float:
-        return self._own_error if isinstance(self._own_error, float) else self._own_error()
+    def error_below(self, v: ArrayLike) -> FloatArray:
+        """See `Measure.error_below`."""
+        energy = np.asarray(v, dtype=float)
+        tail = np.zeros_like(energy)
+        if self._table is not None:
+            tails = np.concatenate([[0.0], np.maximum.accumulate(self._tails)])
+            tail = tails[np.searchsorted(self._table.firsts, energy)]
+        return np.asarray(tail + self._function_error(energy))
+
+    def _function_error(self, v: FloatArray) -> FloatArray:
+        own = self._own_error
+        return own(v) if callable(own) else np.full(v.shape, own)
 
     def volume(self, v: ArrayLike) -> FloatArray:
         """See `Measure.volume`."""
@@ -135,21 +144,21 @@ class Sampled(Measure):
     def _extend(self) -> None:
         """Add the next stretch, in panels fine enough for their series to converge."""
         stretch = next(self._ahead)
-        done: list[tuple[Panel, FloatArray]] = []
+        done: list[tuple[Panel, FloatArray, float]] = []
         waiting = [(stretch, inf)]
         while waiting:
             series, tails = self._sample([panel for panel, _ in waiting])
             halved: list[tuple[Panel, float]] = []
             for (panel, before), row, tail in zip(waiting, series, tails, strict=True):
                 if self._resolved(panel, tail, before):
-                    done.append((panel, row))
-                    self._tail = max(self._tail, tail * min(1.0, log(panel.last / panel.first)))
+                    done.append((panel, row, tail * min(1.0, log(panel.last / panel.first))))
                 else:
                     halved += [(half, tail) for half in panel.halves()]
             waiting = halved
-        done.sort(key=lambda pair: (pair[0].first, pair[0].start))
-        panels = tuple(panel for panel, _ in done)
-        series = np.array([row for _, row in done])
+        done.sort(key=lambda item: (item[0].first, item[0].start))
+        panels = tuple(panel for panel, _, _ in done)
+        series = np.array([row for _, row, _ in done])
+        self._tails = np.concatenate([self._tails, [tail for _, _, tail in done]])
         if self._table is not None:
             panels, series = self._table.panels + panels, np.concatenate([self._table.series, series])
         self._table = Table(panels, series)
@@ -157,7 +166,10 @@ class Sampled(Measure):
 
     def _resolved(self, panel: Panel, tail: float, before: float) -> bool:
         """Whether a series is as good as it gets; `before` is the tail of the panel that was halved for it."""
-        if tail <= max(SHARPEST, self._given_error) or panel.stop - panel.start <= FINEST[panel.kind]:
+        if (
+            tail <= max(SHARPEST, 0.3 * float(self._function_error(np.asarray(panel.last))))
+            or panel.stop - panel.start <= FINEST[panel.kind]
+        ):
             return True
         return NOISE > tail > before / 2
 

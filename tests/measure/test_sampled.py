@@ -109,3 +109,14 @@ def test_a_changed_measure_is_scaled_and_cut(gaussian):
     assert changed.density(0.7) == 0
     nodes = changed.nodes()
     assert nodes.w.sum() + nodes.foot.volume == pytest.approx(3 * well(0.5), rel=1e-13)
+
+
+def test_the_error_rises_with_energy():
+    measure = Sampled(
+        lambda v: v, 1.0, scale=1.0, top=2.0, error=lambda v: np.where(v > 1, 1e-3, 1e-12), route="test"
+    )
+    measure.volume(2.0)
+    low, high = measure.error_below([0.5, 1.9])
+    assert low < 1e-11
+    assert high == pytest.approx(1e-3, rel=1e-6)
+    assert measure.error == pytest.approx(1e-3, rel=1e-6)

@@ -1,0 +1,83 @@
+"""The route of one coordinate against inverse functions that are known."""
+
+import numpy as np
+import pytest
+from scipy.special import iv
+
+from eoscore.errors import NoAnswerError
+from eoscore.formula import call, variable
+from eoscore.formula.field import Field
+from eoscore.measure import measure_of
+
+S, L = 1e-30, 1e-6
+x, r, rho = (variable(name) / L for name in ("x", "r", "rho"))
+SPREAD = np.geomspace(1e-9, 0.99, 30)
+
+
+def omega(coordinate, v, walls=()):
+    return measure_of(Field((coordinate,), S * v, tuple(walls)))
+
+
+def double_well(v):
+    outer, inner = np.sqrt(1 + np.sqrt(v)), np.sqrt(np.maximum(1 - np.sqrt(v), 0))
+    return 2 * L * (outer - inner)
+
+
+def ring(v):
+    return np.pi * L**2 * np.where(v < 1, 2 * np.sqrt(v), 1 + np.sqrt(v))
+
+
+def test_a_double_well_counts_both_halves_and_their_joining():
+    measure = omega("x", (x**2 - 1) ** 2)
+    v = np.concatenate([SPREAD, [0.9999, 1.0001, 2, 1e3]])
+    np.testing.assert_allclose(measure.volume(v * S), double_well(v), rtol=1e-11)
+    assert measure.breaks == (pytest.approx(S),)
+    assert measure.exponent == 0.5
+
+
+def test_a_ring_in_the_plane():
+    measure = omega("rho", (rho**2 - 1) ** 2)
+    v = np.concatenate([SPREAD, [1.0001, 2, 1e3]])
+    np.testing.assert_allclose(measure.volume(v * S), ring(v), rtol=1e-11)
+
+
+def test_a_gaussian_far_from_the_origin_keeps_its_digits():
+    measure = omega("x", 1 - call("exp", -2 * ((x - 1000) / 10) ** 2) + 0 * call("abs", x))
+    np.testing.assert_allclose(
+        measure.volume(SPREAD * S), 20 * L * np.sqrt(-np.log1p(-SPREAD) / 2), rtol=1e-11
+    )
+
+
+def test_a_leak_over_a_pass():
+    """x^2 - x^3/3 has its pass at x = 2, 4/3 above the bottom; at that height the other end is at x = -1."""
+    measure = omega("x", x**2 - x**3 / 3)
+    assert measure.top == pytest.approx(4 / 3 * S, rel=1e-12)
+    assert measure.volume(4 / 3 * S) == pytest.approx(3 * L, rel=1e-8)
+
+
+def test_a_wall_ends_a_well():
+    """x^2 with a wall at L: symmetric below v = 1, the wall on one side above."""
+    measure = omega("x", x**2 + 0 * call("abs", x), (L - variable("x"),))
+    assert measure.volume(0.25 * S) == pytest.approx(L, rel=1e-12)
+    assert measure.volume(4 * S) == pytest.approx(3 * L, rel=1e-12)
+
+
+@pytest.mark.parametrize("b", [0.3, 3.0])
+def test_a_lattice_band_has_the_bessel_partition_function(b):
+    """int e^(-b(1 - cos k)) dk over the zone = 2 pi I_0(b) e^-b (DLMF 10.32.1)."""
+    nodes = omega("x", 1 - call("cos", x), (np.pi * L - call("abs", variable("x")),)).nodes(5 * S)
+    total = nodes.w @ np.exp(-b * nodes.v / S) + nodes.foot.volume
+    assert total == pytest.approx(2 * np.pi * L * iv(0, b) * np.exp(-b), rel=1e-11)
+
+
+def test_a_wall_never_adds():
+    free = omega("x", (x**2 - 1) ** 2)
+    walled = omega("x", (x**2 - 1) ** 2, (variable("x") + L / 2,))
+    v = np.linspace(0.1, 3, 20) * S
+    assert np.all(walled.volume(v) <= free.volume(v) * (1 + 1e-12))
+
+
+@pytest.mark.parametrize("v", [x, x**3, -call("abs", x)])
+def test_a_slope_holds_nothing(v):
+    with pytest.raises(NoAnswerError, match="holds nothing"):
+        omega("x", v)
