@@ -8,24 +8,23 @@ from typing import TYPE_CHECKING
 
 from eoscore.answer.assembly import assembled
 from eoscore.answer.bending import bending
-from eoscore.answer.cautions import cautions_for
 from eoscore.answer.chain import Chain
 from eoscore.answer.holding import HeldGases
-from eoscore.answer.record import Caution, FoundAnswer
-from eoscore.answer.scene import Scene
+from eoscore.answer.looking import cautions_at, inaccurate, thinned
+from eoscore.answer.record import Caution, FoundAnswer, Piece
 from eoscore.answer.uncertainty import with_uncertainty
 from eoscore.answer.unit import unit_of_dimension
 from eoscore.answer.wording import given_of, words_of
 
 if TYPE_CHECKING:
-    from collections.abc import Iterable, Mapping
+    from collections.abc import Iterable, Mapping, Sequence
 
     from eoscore.answer.chain import Part
     from eoscore.answer.record import Answer, Finding
     from eoscore.language.program import Program
     from eoscore.language.question import Question
 
-__all__ = ["answer_to"]
+__all__ = ["answer_from", "answer_to", "cautions_over", "piece_of"]
 
 
 def answer_to(
@@ -37,10 +36,31 @@ def answer_to(
         from eoscore.answer.deriving import derived
 
         return derived(program, question, held)
+    if question.over:
+        piece = piece_of(program, question, held)
+        return answer_from(question, piece, cautions_over(program, question, held), accuracy)
     chain = Chain(program, question, held)
     parts = chain.parts()
-    findings = {name: assembled(chain.grid, [part.readings[name] for part in parts]) for name in chain.names}
-    findings = with_uncertainty(chain, parts, _with_leak(findings, parts))
+    return answer_from(question, _piece(chain, parts), cautions_at(parts), accuracy)
+
+
+def piece_of(program: Program, question: Question, held: HeldGases, whole: Question | None = None) -> Piece:
+    """What is found over a grid, or over the chunk `question` of the grid of `whole`."""
+    chain = Chain(program, question, held, whole)
+    return _piece(chain, chain.parts())
+
+
+def cautions_over(program: Program, question: Question, held: HeldGases) -> tuple[Caution, ...]:
+    """The cautions of a grid: the first and the last stop speak for all, with some of their states."""
+    ends = thinned(question)
+    return cautions_at([part for end in ends for part in Chain(program, end, held, question).parts()])
+
+
+def answer_from(
+    question: Question, piece: Piece, cautions: Iterable[Caution], accuracy: float
+) -> FoundAnswer:
+    """The record of a `find` of which everything is known; each caution once."""
+    every = [*piece.cautions, *inaccurate(piece.found.items(), accuracy), *cautions]
     return FoundAnswer(
         line=question.line,
         question=words_of(question),
@@ -50,34 +70,24 @@ def answer_to(
         given=given_of(question),
         over={axis.name: axis.values for axis in question.over},
         over_units={axis.name: unit_of_dimension(axis.dimension) for axis in question.over},
-        found=findings,
-        cautions=_cautions(parts, [*bending(chain, findings), *_inaccurate(findings.items(), accuracy)]),
+        found=piece.found,
+        cautions=tuple({caution.code: caution for caution in reversed(every)}.values())[::-1],
+        file=question.node.span.source.name,
+        text=question.node.span.source.text,
     )
 
 
-def _with_leak(findings: Mapping[str, Finding], parts: list[Part]) -> dict[str, Finding]:
+def _piece(chain: Chain, parts: Sequence[Part]) -> Piece:
+    findings = {name: assembled(chain.grid, [part.readings[name] for part in parts]) for name in chain.names}
+    findings = with_uncertainty(chain, parts, _with_leak(findings, parts))
+    spills = (Caution("spill", f"{words}.") for part in parts for words in part.spill)
+    return Piece(findings, (*bending(chain, findings), *spills))
+
+
+def _with_leak(findings: Mapping[str, Finding], parts: Sequence[Part]) -> dict[str, Finding]:
     """The depth with the words that tell where and which way the trap leaks, at the first stop that holds."""
     held = next((part.held for part in parts if part.held is not None), None)
     place = None if held is None else held.place
     if "depth" not in findings or place is None or place.top == inf:
         return dict(findings)
     return {**findings, "depth": replace(findings["depth"], note=f"leaks {place.escape_words}")}
-
-
-def _cautions(parts: list[Part], others: Iterable[Caution]) -> tuple[Caution, ...]:
-    """Each caution once: the first and the last stop of a grid speak for all."""
-    found: dict[str, Caution] = {caution.code: caution for caution in others}
-    for words in (words for part in parts for words in part.spill):
-        found.setdefault("spill", Caution("spill", f"{words}."))
-    for part in [parts[0], parts[-1]] if len(parts) > 1 else parts:
-        if part.held is not None:
-            for caution in cautions_for(Scene(part.binding, part.held, part.given, part.readings)):
-                found.setdefault(caution.code, caution)
-    return tuple(found.values())
-
-
-def _inaccurate(findings: Iterable[tuple[str, Finding]], accuracy: float) -> Iterable[Caution]:
-    missed = [f"{name} ({finding.worst():.0e})" for name, finding in findings if finding.worst() > accuracy]
-    if missed:
-        text = f"the relative error wanted, {accuracy:g}, was not reached by {', '.join(missed)}."
-        yield Caution("accuracy", text)

@@ -6,7 +6,7 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from eoscore.answer.record import Finding, Reason
+from eoscore.answer.record import Finding, Points, Reason
 
 if TYPE_CHECKING:
     from collections.abc import Iterator, Sequence
@@ -58,4 +58,4 @@ def _reasons(grid: Grid, readings: Sequence[Reading]) -> Iterator[Reason]:
             for reading in readings
         ]
         points = np.argwhere(grid.assemble(marks))
-        yield Reason(text, tuple(map(tuple, points.tolist())))
+        yield Reason(text, Points(points))

@@ -46,11 +46,12 @@ class Part:
 
 @dataclass
 class Chain:
-    """One question of one program."""
+    """One question of one program; `whole` is the question of which this is a chunk."""
 
     program: Program
     question: Question
     held: HeldGases
+    whole: Question | None = None
     grid: Grid = field(init=False)
 
     def __post_init__(self) -> None:

@@ -2,21 +2,23 @@
 
 from __future__ import annotations
 
+from contextlib import ExitStack, contextmanager
 from dataclasses import dataclass
 from functools import cached_property
 from pathlib import Path
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 from eoscore.answer.recipe import Recipe
 from eoscore.errors import EoscoreError
 
 if TYPE_CHECKING:
-    from collections.abc import Sequence
+    from collections.abc import Callable, Iterator, Sequence
     from concurrent.futures import Executor
     from os import PathLike
 
     from eoscore.answer.holding import HeldGases
     from eoscore.answer.record import Answer
+    from eoscore.answer.running import Run
     from eoscore.language.program import Program
     from eoscore.state import HeldGas
 
@@ -113,39 +115,50 @@ class Lab:
             return LabPlace(self, name)
         raise UnknownNameError(name, [*self.program.gases, *self.program.places, "uniform"])
 
-    def answers(
-        self, *, accuracy: float = 1e-6, workers: int = 1, executor: Executor | None = None
-    ) -> tuple[Answer, ...]:
+    def answers(self, *, accuracy: float = 1e-6, **aid: Any) -> tuple[Answer, ...]:
         """The answers to the text's own questions, in order; `accuracy` is the relative error wanted.
 
-        Grids are shared among `workers` processes of this machine, or given to any `executor`.
+        Grids take help as in `answering`: `workers=4`, `executor=...`, `keep="scan.part"`, `progress=...`.
         """
-        count = len(self.program.questions)
-        return tuple(
-            self.answer(index, accuracy=accuracy, workers=workers, executor=executor)
-            for index in range(count)
-        )
+        with self.answering(**aid) as run:
+            return tuple(run.answer(index, accuracy) for index in range(len(self.program.questions)))
 
-    def answer(
-        self, index: int, *, accuracy: float = 1e-6, workers: int = 1, executor: Executor | None = None
-    ) -> Answer:
-        """The answer to the question with this index, as in `answers`."""
-        question = self.program.questions[index]
-        if executor is not None:
-            return self._shared(index, accuracy, executor, max(workers, 2))
-        if workers > 1 and question.over:
-            from concurrent.futures import ProcessPoolExecutor
+    @contextmanager
+    def answering(
+        self,
+        *,
+        workers: int = 1,
+        executor: Executor | None = None,
+        keep: str | PathLike[str] | None = None,
+        progress: Callable[[int, int], None] | None = None,
+    ) -> Iterator[Run]:
+        """A run, whose `answer(index, accuracy)` answers one question.
 
-            with ProcessPoolExecutor(workers) as processes:
-                return self._shared(index, accuracy, processes, workers)
-        from eoscore.answer.asking import answer_to
+        Grids are shared among `workers` processes of this machine (a script then wants the usual
+        `if __name__ == "__main__":`), or given to any `executor`; the numbers are the same to the last bit.
+        Finished chunks of grids are kept in the file `keep`, where a later run finds them; the caller removes it.
+        `progress` is told the points that are done, and all of them.
 
-        return answer_to(self.program, question, accuracy, self.held)
+        Raises
+        ------
+        WorkersLostError
+            Where worker processes died, and those that took their place.
+        OSError
+            Where `keep` cannot be written, or belongs to a run that is still going on.
+        """
+        from eoscore.answer.running import Help, Run
 
-    def _shared(self, index: int, accuracy: float, executor: Executor, workers: int) -> Answer:
-        from eoscore.answer.sharing import shared_answer
+        with ExitStack() as stack:
+            journal = crew = None
+            if keep is not None:
+                from eoscore.answer.journal import Journal
 
-        return shared_answer(self._recipe, self.program, index, accuracy, executor, workers)
+                journal = stack.enter_context(Journal(Path(keep), self._recipe, self.program))
+            if workers > 1 and executor is None:
+                from eoscore.answer.workers import Crew
+
+                crew = stack.enter_context(Crew(workers))
+            yield Run(self._recipe, self.program, self.held, Help(executor, crew, journal, progress))
 
     def contents(self) -> str:
         """How many gases, places and questions there are, in words."""

@@ -2,19 +2,30 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from dataclasses import dataclass, field
 from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
 if TYPE_CHECKING:
-    from collections.abc import Mapping
+    from collections.abc import Iterator, Mapping
 
-    from numpy.typing import NDArray
+    from numpy.typing import ArrayLike, NDArray
 
     from eoscore.errors import Complaint
 
-__all__ = ["Answer", "Caution", "DerivedAnswer", "Finding", "FoundAnswer", "Given", "Reason", "Report"]
+__all__ = [
+    "Answer",
+    "Caution",
+    "DerivedAnswer",
+    "Finding",
+    "FoundAnswer",
+    "Given",
+    "Points",
+    "Reason",
+    "Report",
+]
 
 
 @dataclass(frozen=True)
@@ -25,12 +36,38 @@ class Given:
     unit: str
 
 
+class Points(Sequence[tuple[int, ...]]):
+    """Points of a grid as index tuples, kept in one array of shape (points, axes): there may be a million."""
+
+    def __init__(self, points: ArrayLike) -> None:
+        self.array: NDArray[np.int64] = np.asarray(points, dtype=np.int64)
+
+    def __len__(self) -> int:
+        return len(self.array)
+
+    def __getitem__(self, index: Any) -> Any:
+        part = self.array[index].tolist()
+        return tuple(map(tuple, part)) if isinstance(index, slice) else tuple(part)
+
+    def __iter__(self) -> Iterator[tuple[int, ...]]:
+        return iter(map(tuple, self.array.tolist()))
+
+    def __eq__(self, other: object) -> bool:
+        return isinstance(other, Points) and np.array_equal(self.array, other.array)
+
+    def __hash__(self) -> int:
+        return hash((self.array.shape, self.array.tobytes()))
+
+    def __repr__(self) -> str:
+        return f"Points({self.array.tolist()})"
+
+
 @dataclass(frozen=True)
 class Reason:
     """Why there is no value, and at which points of the grid (index tuples; `()` without a grid)."""
 
     text: str
-    points: tuple[tuple[int, ...], ...] = ((),)
+    points: Points = field(default_factory=lambda: Points([()]))
 
 
 @dataclass(frozen=True)
@@ -77,8 +114,16 @@ class Finding:
 
 
 @dataclass(frozen=True)
+class Piece:
+    """What was found over a part of a grid, or over all of it, and the cautions that its points deserve."""
+
+    found: Mapping[str, Finding]
+    cautions: tuple[Caution, ...] = ()
+
+
+@dataclass(frozen=True)
 class FoundAnswer:
-    """The answer to a `find`."""
+    """The answer to a `find`; `file` and `text` are where it was asked."""
 
     line: int
     question: str
@@ -91,6 +136,8 @@ class FoundAnswer:
     found: Mapping[str, Finding]
     cautions: tuple[Caution, ...] = ()
     verb: str = "find"
+    file: str = "<text>"
+    text: str = field(default="", repr=False)
 
 
 @dataclass(frozen=True)

@@ -66,7 +66,7 @@ class Scene:
     @cached_property
     def frequencies(self) -> tuple[float, ...]:
         """The trap's non-zero frequencies in Hz, ascending; empty where the bottom is not quadratic."""
-        values = self.number("freq") if self.binding.place is not None else None
+        values = self._solved("freq", {}) if self.binding.place is not None else None
         return () if values is None else tuple(f for f in values.tolist() if f > 0.0)
 
     def parameters(self, unit: str) -> dict[str, float]:

@@ -50,18 +50,16 @@ def grid_columns(answer: FoundAnswer) -> Iterator[Column]:
 def grid_table(answer: FoundAnswer) -> Table:
     """The grid for a screen: one prefix per column, cut in the middle where it is long."""
     parts = list(grid_columns(answer))
-    heads, texts = zip(*(_written_column(part) for part in parts), strict=True)
+    shown = _shown(parts[0].values.size)
+    heads, texts = zip(*(_written_column(part, shown) for part in parts), strict=True)
     table = columns(*heads)
     for column in table.columns:
         column.justify = "right"
     rows = list(zip(*texts, strict=True))
-    half = _ROWS // 2
-    for row in rows if len(rows) <= _ROWS else rows[:half]:
+    for place, row in enumerate(rows):
+        if place == _ROWS // 2 and hidden_rows(answer):
+            table.add_row(*["…"] * len(parts))
         table.add_row(*row)
-    if len(rows) > _ROWS:
-        table.add_row(*["…"] * len(parts))
-        for row in rows[-half:]:
-            table.add_row(*row)
     return table
 
 
@@ -71,10 +69,17 @@ def hidden_rows(answer: FoundAnswer) -> int:
     return rows - 2 * (_ROWS // 2) if rows > _ROWS else 0
 
 
-def _written_column(part: Column) -> tuple[str, list[str]]:
+def _shown(rows: int) -> NDArray[np.intp]:
+    """The rows of a table that are written: all, or the first and the last ones."""
+    half = _ROWS // 2
+    return np.arange(rows) if rows <= _ROWS else np.r_[:half, rows - half : rows]
+
+
+def _written_column(part: Column, shown: NDArray[np.intp]) -> tuple[str, list[str]]:
+    """The head and the texts; the prefix fits the whole column, whatever is shown of it."""
     finite = np.abs(part.values[np.isfinite(part.values) & (part.values != 0.0)])
     factor, unit = fitting(float(np.median(finite)), part.unit) if finite.size else (1.0, part.unit)
-    sigmas = [None] * part.values.size if part.sigma is None else (part.sigma / factor).tolist()
+    sigmas = [None] * shown.size if part.sigma is None else (part.sigma[shown] / factor).tolist()
     head = part.name if unit == "1" else f"{part.name} ({unit})"
-    pairs = zip((part.values / factor).tolist(), sigmas, strict=True)
+    pairs = zip((part.values[shown] / factor).tolist(), sigmas, strict=True)
     return head, [written(value, sigma) for value, sigma in pairs]

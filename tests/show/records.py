@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
-from eoscore.answer.record import Caution, Finding, FoundAnswer, Given, Reason, Report
+from eoscore.answer.record import Caution, Finding, FoundAnswer, Given, Points, Reason, Report
 from eoscore.errors import Complaint
 
 
@@ -16,7 +16,7 @@ def finding(value, unit="K", *, sigma=None, error=0.0, why=None, points=((),), b
         error=np.broadcast_to(np.asarray(error, dtype=float), array.shape),
         route="closed form",
         sigma=None if sigma is None else np.array(sigma, dtype=float),
-        reasons=() if why is None else (Reason(why, points),),
+        reasons=() if why is None else (Reason(why, Points(points)),),
         budget={name: np.array(share) for name, share in (budget or {}).items()},
     )
 

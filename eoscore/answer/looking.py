@@ -1,0 +1,60 @@
+"""Where cautions look: at the ends of a grid, and at some states there; at all of a single answer."""
+
+from __future__ import annotations
+
+from dataclasses import replace
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from eoscore.answer.cautions import cautions_for
+from eoscore.answer.grid import Grid
+from eoscore.answer.record import Caution
+from eoscore.answer.scene import Scene
+
+if TYPE_CHECKING:
+    from collections.abc import Iterable, Sequence
+
+    from eoscore.answer.chain import Part
+    from eoscore.answer.record import Finding
+    from eoscore.language.question import Axis, Question
+
+__all__ = ["cautions_at", "inaccurate", "thinned"]
+
+_STATES = (
+    1000  # about as many show the extremes of quantities that bend slowly; the corners are always among them
+)
+
+
+def thinned(question: Question) -> tuple[Question, ...]:
+    """The question at the first and at the last stop of its grid, with some of the states there."""
+    grid = Grid(question.over)
+    count = max(2, round(_STATES ** (1 / max(1, len(grid.conditions)))))
+    ends = (0, -1) if any(axis.points > 1 for axis in grid.parameters) else (0,)
+    return tuple(
+        replace(question, over=tuple(_some(axis, count, end) for axis in question.over)) for end in ends
+    )
+
+
+def _some(axis: Axis, count: int, end: int) -> Axis:
+    if axis.thermodynamic:
+        which = np.unique(np.linspace(0, axis.points - 1, min(count, axis.points)).astype(int))
+    else:
+        which = np.array([end])
+    values = tuple(axis.values[which].tolist())
+    return replace(axis, kind="list", ends=values, points=len(values))
+
+
+def cautions_at(parts: Sequence[Part]) -> tuple[Caution, ...]:
+    """The cautions of the first and of the last part."""
+    ends = [parts[place] for place in dict.fromkeys((0, len(parts) - 1))]
+    scenes = (Scene(p.binding, p.held, p.given, p.readings) for p in ends if p.held is not None)
+    return tuple(caution for scene in scenes for caution in cautions_for(scene))
+
+
+def inaccurate(findings: Iterable[tuple[str, Finding]], accuracy: float) -> Iterable[Caution]:
+    """A caution where a relative error is above the one wanted."""
+    missed = [f"{name} ({finding.worst():.0e})" for name, finding in findings if finding.worst() > accuracy]
+    if missed:
+        text = f"the relative error wanted, {accuracy:g}, was not reached by {', '.join(missed)}."
+        yield Caution("accuracy", text)
