@@ -30,8 +30,6 @@ DOUBT = 0.3  # of the difference between boxes and halved boxes, which is eight 
 RUNGS = (1.26, 2.0, 4.0)  # ratio of the levels for which boxes of their own are made: few, many, without end
 # Shares of the level up to which the wells may be taken along rays.
 STARTS = np.concatenate([[0.9, 0.8, 0.7, 0.6], 0.5 * 0.7 ** np.arange(60)])
-    [[0.9, 0.8, 0.7, 0.6], 0.5 * 0.7 ** np.arange(60)]
-)  # of the level: up to there the wells may be taken along rays
 OPEN = 0.99  # of the depth: a ceiling below this keeps away from an escape at infinity
 GROWTH = 1.4  # power of 1/(depth - v) in Omega at which, with 3/2 from the momenta, states are without number
 FADING = 0.2  # of the joint: how far above it boxes are led to the value of the rays

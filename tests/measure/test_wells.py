@@ -44,7 +44,7 @@ def test_a_focused_beam_below_a_knife(coordinates, radius2):
 
 
 def test_a_focused_beam_at_its_threshold_holds_no_finite_number():
-    with pytest.raises(NoAnswerError, match="infinite.*E_max"):
+    with pytest.raises(NoAnswerError, match=r"infinite.*E_max"):
         measure_of(Field(("rho", "z"), S * beam(rho**2)))
 
 
