@@ -37,7 +37,7 @@ def horner_scalar(coefficients: Sequence[float], x: float) -> float:
     return result
 
 
-def blockwise(kernel: Callable[[Block], Block], x: Block, out: Block | None) -> Block:
+def blockwise(kernel: Callable[[Block], Block], x: Block, out: Block | None, size: int = BLOCK) -> Block:
     """`kernel` at all of x, block by block, into `out` (or a new array of the same shape)."""
     result = np.empty(x.shape) if out is None else out
     if result.shape != x.shape or result.dtype != np.float64:
@@ -46,22 +46,22 @@ def blockwise(kernel: Callable[[Block], Block], x: Block, out: Block | None) -> 
             f"expected shape {x.shape} and float64; give an array made by numpy.empty({x.shape})"
         )
     with np.errstate(all="ignore"):
-        if x.size <= BLOCK:
+        if x.size <= size:
             result[...] = kernel(x.reshape(-1)).reshape(x.shape)
         elif x.flags.c_contiguous and result.flags.c_contiguous:
-            _flat(kernel, x.reshape(-1), result.reshape(-1))
+            _flat(kernel, x.reshape(-1), result.reshape(-1), size)
         else:
-            _strided(kernel, x, result)
+            _strided(kernel, x, result, size)
     return result
 
 
-def _flat(kernel: Callable[[Block], Block], x: Block, result: Block) -> None:
-    for start in range(0, x.size, BLOCK):
-        result[start : start + BLOCK] = kernel(x[start : start + BLOCK])
+def _flat(kernel: Callable[[Block], Block], x: Block, result: Block, size: int) -> None:
+    for start in range(0, x.size, size):
+        result[start : start + size] = kernel(x[start : start + size])
 
 
-def _strided(kernel: Callable[[Block], Block], x: Block, result: Block) -> None:
+def _strided(kernel: Callable[[Block], Block], x: Block, result: Block, size: int) -> None:
     flags: list[Literal["external_loop", "buffered"]] = ["external_loop", "buffered"]
-    with np.nditer([x, result], flags, [["readonly"], ["writeonly"]], buffersize=BLOCK) as chunks:
+    with np.nditer([x, result], flags, [["readonly"], ["writeonly"]], buffersize=size) as chunks:
         for chunk, target in chunks:
             target[...] = kernel(chunk)

@@ -6,7 +6,7 @@ Beyond eta = 0 it is a part that grows as a power and its own mirror image, F_s(
 - eta <= 0: z - z v Q(v) with z = e^eta, the polynomial in v = z / (c + z), c = 1 + sqrt 2, which puts the cut of
   the function, z <= -1, equally far from both ends of the range of v.
 - Whole orders: Y_s is the polynomial 2 sum_k eta(2k) eta^(s-2k) / (s-2k)!, and 0 for s < 0.
-- Half orders: cos(pi s) = 0, and Y_s is the function. Y_s is a polynomial of degree 20 to 32 on each of five panels
+- Half orders: cos(pi s) = 0, and Y_s is the function. Y_s is a polynomial of degree 20 (to 32) on each of five panels
   whose widths grow with the distance to the poles +-i pi (the error falls by 6.5 with each degree), and beyond 32
   eta^s times one in 1 / eta^2: Sommerfeld's expansion, made the best for that range.
 - Orders below -1/2 change sign: there z Q(v) would cancel, and two polynomials in eta stand for -4.5 < eta < -1/2,
@@ -21,11 +21,12 @@ from __future__ import annotations
 
 import math
 from bisect import bisect_left
+from itertools import pairwise
 from typing import TYPE_CHECKING, overload
 
 import numpy as np
 
-from eoscore.gas.blocks import blockwise, horner, horner_scalar
+from eoscore.gas.blocks import BLOCK, blockwise, horner, horner_scalar
 from eoscore.gas.fermi_table import EDGES, SHOULDER, FermiTable, fermi_table
 from eoscore.gas.precise import checked_order
 
@@ -113,19 +114,18 @@ def _power_and_mirror(table: FermiTable, panel: int, eta: Block) -> Block:
 
 def _sorted(table: FermiTable, eta: Block) -> Block:
     """F for any other order: the points sorted by panel, each panel at once."""
-    panel = np.zeros(eta.size, dtype=np.uint8)
+    panel, starts = np.zeros(eta.size, dtype=np.uint8), [0]
     for edge in EDGES:
-        panel += eta > edge
-    counts = np.bincount(panel, minlength=len(EDGES) + 1)
-    if counts.max() == eta.size:
-        return _one(table, int(panel[0]), eta)
+        beyond = eta > edge
+        panel += beyond
+        starts.append(eta.size - int(np.count_nonzero(beyond)))
+    parts = [(index, part) for index, part in enumerate(pairwise([*starts, eta.size])) if part[0] < part[1]]
+    if len(parts) == 1:
+        return _one(table, parts[0][0], eta)
     order = np.argsort(panel, kind="stable")
-    gathered, start = eta.take(order), 0
-    for index, count in enumerate(counts.tolist()):
-        if count:
-            part = slice(start, start + count)
-            gathered[part] = _one(table, index, gathered[part])
-            start += count
+    gathered = eta.take(order)
+    for index, (start, stop) in parts:
+        gathered[start:stop] = _one(table, index, gathered[start:stop])
     result = np.empty(eta.size)
     result[order] = gathered
     return result
@@ -175,5 +175,8 @@ def fermi(s: float, eta: float | ArrayLike, out: Block | None = None) -> Block |
     table = fermi_table(checked_order(s))
     if out is None and isinstance(eta, float | int):
         return _scalar(table, float(eta))
-    kernel = _whole if table.order == round(table.order) else _sorted
-    return blockwise(lambda block: kernel(table, block), np.asarray(eta, dtype=np.float64), out)[()]
+    values = np.asarray(eta, dtype=np.float64)
+    if table.order == round(table.order):
+        return blockwise(lambda block: _whole(table, block), values, out)[()]
+    # Sorted by panel, a block falls into seven parts: four times the size keeps each worth its calls.
+    return blockwise(lambda block: _sorted(table, block), values, out, 4 * BLOCK)[()]

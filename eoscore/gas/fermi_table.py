@@ -118,7 +118,7 @@ def _below(alternating: list[Decimal], low: float, taylor: list[Decimal]) -> tup
         quotient = (1 - polynomial_value(taylor, z.ln()) / z) / z if near else polynomial_value(tail, z)
         return (Decimal(centre) + z) * quotient
 
-    return centre, _rounded(polynomial(rest, 0.0, edge / (centre + edge), 17))
+    return centre, _rounded(polynomial(rest, 0.0, edge / (centre + edge), 15))
 
 
 def _whole(n: int) -> Coefficients:
@@ -131,7 +131,7 @@ def _panels(s: float) -> tuple[tuple[tuple[float, Coefficients], ...], Coefficie
     order = Decimal(s)
     part = power_part(order)
     # Few degrees, so that orders share their nodes and the logarithms there.
-    degree = 22 if 0 < s < 6 else 26 if -3 < s < 15 else 32
+    degree = 20 if 0 < s < 3 else 26 if -3 < s < 15 else 32
     # Above 1 all derivatives that count are positive: about the low end nothing cancels.
     panels = _pieces(part, EDGES, degree, low_end=s > 1)
 
