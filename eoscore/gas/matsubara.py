@@ -89,7 +89,10 @@ def _power(eta: Decimal, count: int, exponent: Decimal) -> tuple[Decimal, Decima
 
 @lru_cache(maxsize=8192)
 def _root(eta: Decimal, count: int, exponent: Decimal, digits: int) -> tuple[Decimal, Decimal]:  # noqa: ARG001
-    """The power with an exponent in [0, 1): the same for all orders that differ by whole numbers."""
+    """The power with an exponent in [0, 1): the same for all orders that differ by whole numbers.
+
+    The digits are those of the context: an argument only so that the cache keeps them apart.
+    """
     log, angle = _polar(eta, count)
     size = (exponent * log).exp()
     cosine, sine = cosine_sine(exponent * angle)
