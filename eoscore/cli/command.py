@@ -12,6 +12,7 @@ from eoscore.cli.check import check
 from eoscore.cli.demo import demo
 from eoscore.cli.exits import guarded
 from eoscore.cli.explain import explain
+from eoscore.cli.format import format_
 from eoscore.cli.plugins import plugins
 from eoscore.cli.run import run
 
@@ -28,7 +29,7 @@ def command() -> None:
     """
 
 
-for verb in (run, check, plugins, demo, explain):
+for verb in (run, check, plugins, demo, explain, format_):
     command.add_command(verb)
 
 
