@@ -10,7 +10,7 @@ import time
 import pytest
 
 HARMONIC = """
-gas strontium { isotope Sr-84 }
+gas strontium { m = 83.9134191 u }
 trap bowl { f = 100 Hz
     V(x, y, z) = m/2*(2*pi*f)^2*(x^2 + y^2 + 4*z^2) }
 find T_c for strontium in bowl with N = 1e5
@@ -23,10 +23,11 @@ LAZY = ("sympy", "pint", "periodictable", "uncertainties", "matplotlib", "xarray
 ROUNDS = 7
 
 
-@pytest.fixture
-def seconds(tmp_path):
+@pytest.fixture(scope="module")
+def seconds(tmp_path_factory):
     """Time of a fresh interpreter; compiled files are kept, as they are after an installation."""
-    kept = {"PYTHONPYCACHEPREFIX": str(tmp_path / "compiled"), "XDG_CACHE_HOME": str(tmp_path / "cache")}
+    folder = tmp_path_factory.mktemp("kept")
+    kept = {"PYTHONPYCACHEPREFIX": str(folder / "compiled"), "XDG_CACHE_HOME": str(folder / "cache")}
     environment = {key: value for key, value in os.environ.items() if key != "PYTHONDONTWRITEBYTECODE"} | kept
 
     def run(*arguments):
