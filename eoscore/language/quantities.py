@@ -19,6 +19,7 @@ QUANTITIES: Final[dict[str, Need]] = {
         ("N", "n", "T", "mu", "S", "U", "fugacity", "N_0", "f_0", "n_peak", "PSD", "C_N"), "state"
     ),
     **dict.fromkeys(("pressure", "kappa_T", "rate_coll"), "state"),
+    **dict.fromkeys(("U_int", "E_release", "n_0_peak", "R_TF"), "state"),
     "lambda_T": "temperature",
     "eta": "temperature",
     **dict.fromkeys(("depth", "freq", "r_min", "V_min"), "nothing"),

@@ -15,7 +15,8 @@ if TYPE_CHECKING:
 
 __all__ = ["MissingExtraError", "dataset", "write_netcdf"]
 
-_ENTRIES = {"freq": "direction", "r_min": "coordinate"}  # the last axis of quantities that are lists
+# The last axis of quantities that are lists.
+_ENTRIES = {"freq": "direction", "r_min": "coordinate", "R_TF": "direction"}
 
 
 class MissingExtraError(EoscoreError, ImportError):

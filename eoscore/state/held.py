@@ -11,6 +11,7 @@ import numpy as np
 from eoscore.constants import K_B
 from eoscore.errors import NoAnswerError
 from eoscore.state.state import State
+from eoscore.state.treatment import state_of
 
 if TYPE_CHECKING:
     from collections.abc import Iterable, Mapping
@@ -52,14 +53,14 @@ class HeldGas:
 
         Arrays broadcast. NoAnswerError where the conditions fix no state; single points that have none are masked.
         """
-        state = State(self, given)
+        state = state_of(self, given)
         _ = state.solution
         return state
 
     def find(self, names: Iterable[str], given: Mapping[str, ArrayLike]) -> dict[str, Reading]:
         """Readings of quantities under conditions, all in SI units; what has no answer says why in its reading."""
         try:
-            state = State(self, given)
+            state = state_of(self, given)
         except NoAnswerError as error:
             state = State(self, {})
             return {name: self._nothing(name, error.why, given) for name in names}
@@ -74,15 +75,15 @@ class HeldGas:
 
     def T_c(self, **given: ArrayLike) -> float | FloatArray:
         """Critical temperature in K of N particles, or of a density n; NoAnswerError where there is none."""
-        return State(self, given).reading("T_c").number()
+        return state_of(self, given).reading("T_c").number()
 
     def N_c(self, T: ArrayLike) -> float | FloatArray:
         """Critical number at T in K."""
-        return State(self, {"T": T}).reading("N_c").number()
+        return state_of(self, {"T": T}).reading("N_c").number()
 
     def n_c(self, T: ArrayLike) -> float | FloatArray:
         """Critical density at the bottom, in m^-d, at T in K."""
-        return State(self, {"T": T}).reading("n_c").number()
+        return state_of(self, {"T": T}).reading("n_c").number()
 
     def brought_from(self, other: HeldGas | State, **given: ArrayLike) -> State:
         """The state after a slow change from another place, at the same N and entropy.

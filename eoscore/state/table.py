@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING, NamedTuple
 
-from eoscore.state import bottom, collisions, geometry, saturation, shifts, thermal
+from eoscore.state import beyond, bottom, collisions, geometry, saturation, shifts, thermal
 
 if TYPE_CHECKING:
     from collections.abc import Callable
@@ -49,6 +49,10 @@ QUANTITIES: dict[str, Quantity] = {
     "exponent": Quantity(saturation.exponent, "1"),
     "shift_size": Quantity(shifts.of_size, "1"),
     "shift_int": Quantity(shifts.of_interactions, "1"),
+    "U_int": Quantity(beyond.interaction_energy, "J"),
+    "E_release": Quantity(beyond.release_energy, "J"),
+    "n_0_peak": Quantity(beyond.condensate_peak, "m^-d"),
+    "R_TF": Quantity(beyond.radii, "m"),
     "rate_coll": Quantity(collisions.rate, "1/s"),
 }
 

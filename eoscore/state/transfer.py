@@ -10,10 +10,11 @@ from scipy.special import gammaincc
 
 from eoscore.constants import K_B
 from eoscore.errors import NoAnswerError
-from eoscore.state.state import State
+from eoscore.state.treatment import state_of
 
 if TYPE_CHECKING:
     from eoscore.state.held import HeldGas
+    from eoscore.state.state import State
 
 __all__ = ["bring", "spill_of"]
 
@@ -34,7 +35,7 @@ def bring(held: HeldGas, before: State) -> State:
     for reading in (number, entropy):
         if reading.why is not None and reading.missing.all():
             raise NoAnswerError(f"in the first place: {reading.why}")
-    after = State(held, {"N": number.value, "S": entropy.value})
+    after = state_of(held, {"N": number.value, "S": entropy.value})
     after.spill = tuple(words for words in [spill_of(after)] if words)
     return after
 

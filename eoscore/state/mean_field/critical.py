@@ -1,0 +1,88 @@
+"""Where a gas with a mean field begins to condense."""
+
+from __future__ import annotations
+
+from math import log
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from eoscore.constants import K_B
+from eoscore.errors import NoAnswerError
+from eoscore.state import saturation, shifts
+from eoscore.state.critical import saturated_kT
+from eoscore.state.mean_field.matter import is_flat
+from eoscore.state.reading import Reason
+from eoscore.state.root import rising_root
+
+if TYPE_CHECKING:
+    from numpy.typing import NDArray
+
+    from eoscore.state.mean_field.state import MeanFieldState
+    from eoscore.state.reading import FloatArray, Reading
+
+__all__ = ["exponent", "number", "shift", "temperature"]
+
+ROUTE = "Hartree-Fock in local density"
+STEP = 1e-3
+
+
+def temperature(state: MeanFieldState, unit: str) -> Reading:
+    """T_c in K: where N particles just begin to condense at the bottom; in a flat place that of the ideal gas."""
+    setting = state.filling.setting
+    if is_flat(state.held):
+        return saturation.critical_temperature(state, unit)
+    count, _ = state.number
+    sensible = count > 0
+    value = np.full(count.shape, np.nan)
+    start = np.log(saturated_kT(state.held.model.whole, "N", count[sensible]))
+    a = 1.5 + setting.measure.exponent
+
+    def work(x: FloatArray, which: NDArray[np.intp]) -> tuple[FloatArray, FloatArray]:
+        held = np.array([setting.at_onset(float(kT)).number for kT in np.exp(x)])
+        return np.log(held / count[sensible][which]), np.full(x.shape, a)
+
+    value[sensible] = np.exp(rising_root(work, start - 3, start + 3, start)) / K_B
+    none = Reason("N must be above zero", state.shaped(~sensible))
+    return state.read(value, state.relative * value, unit, ROUTE, [none])
+
+
+def number(state: MeanFieldState, unit: str) -> Reading:
+    """N_c: the most particles without a condensate."""
+    if is_flat(state.held):
+        return saturation.critical_number(state, unit)
+    return _told(state, _numbers(state, 0.0), unit, state.relative)
+
+
+def exponent(state: MeanFieldState, unit: str) -> Reading:
+    """d ln N_c/d ln T, by central differences."""
+    if is_flat(state.held):
+        return saturation.exponent(state, unit)
+    near, far = (
+        np.log(_numbers(state, s) / _numbers(state, -s)) / log((1 + s) / (1 - s)) for s in (STEP, 2 * STEP)
+    )
+    return _told(state, (4 * near - far) / 3, unit, 1e-5)
+
+
+def _numbers(state: MeanFieldState, shifted: float) -> FloatArray:
+    kT = state.kT[0] * (1 + shifted)
+    setting = state.filling.setting
+    return np.array([setting.at_onset(float(x)).number if x > 0 else np.nan for x in kT])
+
+
+def _told(state: MeanFieldState, value: FloatArray, unit: str, relative: float) -> Reading:
+    none = Reason("T must be above zero", state.shaped(~(state.kT[0] > 0)))
+    return state.read(value, relative * np.abs(value), unit, ROUTE, [none])
+
+
+def shift(state: MeanFieldState, unit: str) -> Reading:
+    """To first order as for the ideal gas; none in a flat place, where a mean field alone moves nothing.
+
+    G. Baym et al., Eur. Phys. J. B 24, 107 (2001): at fixed density the mean field does not shift T_c.
+    """
+    if not is_flat(state.held):
+        return shifts.of_interactions(state, unit)
+    if not np.all(state.number[0] > 0):
+        raise NoAnswerError("N must be above zero")
+    zero = np.zeros_like(state.number[0])
+    return state.read(zero, zero, unit, "mean field alone, at fixed density: none")
