@@ -138,9 +138,12 @@ def key_of(recipe: Recipe, program: Program) -> str:
     from eoscore import __version__
 
     world = program.world
-    blocks = [block.node for block in (*world.gases.values(), *world.places.values()) if block.node]
-    named = [named.definition for named in world.scope.names.values() if named.definition is not None]
-    used = {node.span.source.name: node.span.source.text for node in (*blocks, *named)}
+    gases = [gas.node.span.source for gas in world.gases.values()]
+    places = [place.node.span.source for place in world.places.values() if place.node is not None]
+    names = [
+        each.definition.span.source for each in world.scope.names.values() if each.definition is not None
+    ]
+    used = {source.name: source.text for source in (*gases, *places, *names)}
     plugins = sorted(
         (point.name, point.value, "" if point.dist is None else point.dist.version)
         for point in entry_points(group="eoscore.dispersions")

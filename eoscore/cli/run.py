@@ -9,14 +9,18 @@ from typing import TYPE_CHECKING, Any, TypeVar
 
 import click
 
+from eoscore.cli.cluster import ClusterError, is_of_cluster
 from eoscore.cli.exits import ANSWERED, FAULTY, INACCURATE, internal_fault
+from eoscore.cli.grid_run import grid_options, grid_run
+from eoscore.cli.keeping import kept_beside
 from eoscore.cli.reading import Text
-from eoscore.errors import Complaint, TarnError
+from eoscore.errors import Complaint, EoscoreError, TarnError
 
 if TYPE_CHECKING:
     from collections.abc import Callable
 
     from eoscore.answer.record import Answer, Report
+    from eoscore.cli.keeping import Kept
 
 __all__ = ["Asked", "answer_text", "asking", "run"]
 
@@ -51,13 +55,7 @@ def asking(function: _F) -> _F:
                 show_default=True,
                 help="Relative error wanted of every number.",
             ),
-            click.option(
-                "--workers",
-                type=click.IntRange(1),
-                default=1,
-                show_default=True,
-                help="Processes that share a grid.",
-            ),
+            grid_options,
         )
     ):
         function = option(function)
@@ -82,6 +80,8 @@ class Asked:
     out: Path | None
     accuracy: float
     workers: int
+    cluster: str | None
+    plot: Path | None
 
 
 @click.command()
@@ -94,19 +94,32 @@ def run(file: str, **options: Any) -> int:
 
 def answer_text(text: Text, asked: Asked) -> int:
     """Answer a text's questions, show and save the answers; the exit status."""
-    report = _report(text, asked)
-    if asked.out is not None and not report.complaints:
-        from eoscore.show.saving import save
-
-        for path in save(report, asked.out):
-            click.echo(f"wrote {path}", err=True)
+    with kept_beside(asked.out) as kept:
+        report = _report(text, asked, kept)
+        if not report.complaints:
+            _save(report, asked)
     _show(report, asked)
     if report.complaints:
         return FAULTY
     return INACCURATE if _complain_of_accuracy(report, asked.accuracy) else ANSWERED
 
 
-def _report(text: Text, asked: Asked) -> Report:
+def _save(report: Report, asked: Asked) -> None:
+    """Write the files that were asked for."""
+    written: tuple[Path, ...] = ()
+    if asked.out is not None:
+        from eoscore.show.saving import save
+
+        written += save(report, asked.out)
+    if asked.plot is not None:
+        from eoscore.show.plotting import draw
+
+        written += draw(report, asked.plot)
+    for path in written:
+        click.echo(f"wrote {path}", err=True)
+
+
+def _report(text: Text, asked: Asked, kept: Kept) -> Report:
     """All answers that can be given, and complaints about the rest."""
     from eoscore.answer.record import Report
 
@@ -116,15 +129,17 @@ def _report(text: Text, asked: Asked) -> Report:
         lab = text.lab(asked.settings)
     except TarnError as fault:
         return Report(text.name, complaints=fault.complaints)
-    with lab.answering(workers=asked.workers) as run:
+    with grid_run(lab, asked, kept) as run:
         for index, question in enumerate(lab.program.questions):
             try:
                 answers.append(run.answer(index, asked.accuracy))
             except TarnError as fault:
                 complaints.extend(fault.complaints)
-            except (OSError, MemoryError):
+            except (OSError, MemoryError, EoscoreError):
                 raise
-            except Exception as fault:  # noqa: BLE001  one question that we fail on does not take the others with it
+            except Exception as fault:  # noqa: BLE001  one question that we fail on takes no other with it
+                if asked.cluster is not None and is_of_cluster(fault):
+                    raise ClusterError(asked.cluster, fault) from None
                 complaints.append(Complaint.at(question.node.span, internal_fault(fault)))
     return Report(text.name, tuple(answers), tuple(complaints))
 

@@ -1,0 +1,93 @@
+"""The figure of one question: a panel for each quantity, its axes in units that fit.  Imports matplotlib."""
+
+from __future__ import annotations
+
+from textwrap import fill
+from typing import TYPE_CHECKING, Any
+
+import numpy as np
+from matplotlib import rc_context
+from matplotlib.figure import Figure
+
+from eoscore.show.panel_lines import draw_lines
+from eoscore.show.panel_map import draw_map
+from eoscore.show.scale import Scale
+
+if TYPE_CHECKING:
+    from matplotlib.axes import Axes
+
+    from eoscore.answer.record import Finding, FoundAnswer
+
+__all__ = ["figure_of"]
+
+_FAMILY = 6  # values of one name that are drawn as lines of their own rather than as a map
+_LOOK: Any = {
+    "font.family": "sans-serif",
+    "font.size": 9.0,
+    "axes.titlesize": 9.0,
+    "axes.linewidth": 0.6,
+    "axes.edgecolor": "0.35",
+    "axes.labelcolor": "0.1",
+    "axes.unicode_minus": True,
+    "xtick.color": "0.35",
+    "ytick.color": "0.35",
+    "xtick.labelcolor": "0.1",
+    "ytick.labelcolor": "0.1",
+    "xtick.direction": "out",
+    "lines.linewidth": 1.4,
+    "svg.hashsalt": "eoscore",  # the same question gives the same file
+    "savefig.dpi": 160,
+}
+
+
+def figure_of(answer: FoundAnswer) -> Figure:
+    """The figure of a question over one or two names; points without an answer stay blank, with the reason below."""
+    names = list(answer.found)
+    as_map = len(answer.over) == 2 and min(values.size for values in answer.over.values()) > _FAMILY
+    with rc_context(_LOOK):
+        figure = Figure(figsize=(5.2, 0.9 + 2.5 * len(names)), layout="constrained")
+        panels = figure.subplots(len(names), 1, squeeze=False, sharex=True)[:, 0]
+        for axes, name in zip(panels, names, strict=True):
+            _draw(axes, answer, name, as_map=as_map)
+        for axes in panels[:-1]:
+            axes.set_xlabel("")
+        figure.suptitle(fill(answer.question, 84), fontsize=8.5, color="0.1")
+        if notes := _notes(answer):
+            figure.supxlabel(notes, fontsize=7.5, color="0.3", x=0.02, ha="left")
+        figure.draw_without_rendering()  # with the look in force: texts are laid out now
+    return figure
+
+
+def _draw(axes: Axes, answer: FoundAnswer, name: str, *, as_map: bool) -> None:
+    finding = answer.found[name]
+    scales = {each: Scale.of(values, answer.over_units[each], each) for each, values in answer.over.items()}
+    value = Scale.of(finding.value, finding.unit, name)
+    if not np.isfinite(finding.value).any():
+        _say_nothing(axes, name, finding, scales)
+    elif as_map and finding.value.ndim == 2:
+        draw_map(axes, list(scales.values()), value)
+    else:
+        draw_lines(axes, list(scales.values()), value, finding.sigma)
+
+
+def _say_nothing(axes: Axes, name: str, finding: Finding, scales: dict[str, Scale]) -> None:
+    """Words where a whole panel has no number."""
+    axes.set_ylabel(name)
+    axes.set_yticks([])
+    axes.set_xlabel(next(iter(scales.values())).label)
+    axes.text(
+        0.5, 0.5, fill(f"no value: {finding.why}", 60), transform=axes.transAxes, ha="center", va="center"
+    )
+
+
+def _notes(answer: FoundAnswer) -> str:
+    """Why points are blank, and what a band means."""
+    lines = []
+    if any(finding.sigma is not None for finding in answer.found.values()):
+        lines.append("Bands: one standard deviation carried from the input.")
+    reasons: dict[str, list[str]] = {}
+    for name, finding in answer.found.items():
+        for reason in finding.reasons:
+            reasons.setdefault(reason.text, []).append(name)
+    lines += [f"Blank in {', '.join(names)}: {text}" for text, names in list(reasons.items())[:3]]
+    return "\n".join(fill(line, 100) for line in lines)

@@ -1,0 +1,69 @@
+"""A panel of lines: one for each value of a second name or each entry of a list, told apart by dash and label."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+if TYPE_CHECKING:
+    from collections.abc import Iterator, Sequence
+
+    from matplotlib.axes import Axes
+    from numpy.typing import NDArray
+
+    from eoscore.show.scale import Scale
+
+__all__ = ["draw_lines"]
+
+_MOST = 6  # lines in a panel
+_DASHES = ("-", (0, (6, 2)), (0, (1.5, 1.5)), (0, (7, 2, 1.5, 2)), (0, (3, 3)), (0, (7, 2, 1.5, 2, 1.5, 2)))
+_FEW = 15  # points that are marked one by one
+
+
+def draw_lines(axes: Axes, over: Sequence[Scale], value: Scale, sigma: NDArray[np.float64] | None) -> None:
+    """Draw a quantity over one name, or over two of which the shorter one gives a line for each value."""
+    along = max(range(len(over)), key=lambda place: over[place].values.size)
+    x = over[along]
+    lines = list(_lines(over, along, value, sigma))
+    many = len(lines) > 1
+    for place, (label, y, spread) in enumerate(lines):
+        colour = _colour(place, len(lines))
+        marker = "o" if x.values.size <= _FEW else None
+        axes.plot(
+            x.values, y, color=colour, linestyle=_DASHES[place], marker=marker, markersize=2.5, label=label
+        )
+        if spread is not None:
+            axes.fill_between(x.values, y - spread, y + spread, color=colour, alpha=0.22, linewidth=0)
+    axes.set_xscale("log" if x.logarithmic else "linear")
+    axes.set_yscale("log" if value.logarithmic else "linear")
+    axes.set_xlabel(x.label)
+    axes.set_ylabel(value.label)
+    axes.grid(visible=True, color="0.9", linewidth=0.5)
+    axes.set_axisbelow(True)
+    axes.spines[["top", "right"]].set_visible(False)
+    axes.margins(x=0.02)
+    if many:
+        axes.legend(frameon=False, fontsize=7.5, handlelength=3.2)
+
+
+def _lines(
+    over: Sequence[Scale], along: int, value: Scale, sigma: NDArray[np.float64] | None
+) -> Iterator[tuple[str, NDArray[np.float64], NDArray[np.float64] | None]]:
+    """Label, values and standard deviations of every line."""
+    own = value.values.ndim > len(over)
+    spread = None if sigma is None else np.moveaxis(sigma / value.factor, along, -1)
+    table = np.moveaxis(value.values, along, -1)
+    others = [scale for place, scale in enumerate(over) if place != along]
+    for index in list(np.ndindex(table.shape[:-1]))[:_MOST]:
+        words = [scale.text(float(scale.values[i])) for scale, i in zip(others, index, strict=False)]
+        words += [f"{value.name}, {index[-1] + 1}"] if own else []
+        yield ", ".join(words) or value.name, table[index], None if spread is None else spread[index]
+
+
+def _colour(place: int, count: int) -> tuple[float, float, float, float]:
+    """From dark to light within cividis, whose lightness rises steadily."""
+    from matplotlib import colormaps
+
+    red, green, blue, alpha = colormaps["cividis"](0.12 + 0.58 * place / max(1, count - 1))
+    return red, green, blue, alpha

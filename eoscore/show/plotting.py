@@ -1,0 +1,82 @@
+"""Quick looks at grids over one or two names: lines with their uncertainty, maps with contour labels.
+
+Nothing is told by colour alone: lines differ in dash and carry their labels, maps grow lighter with the value
+(cividis: Nuñez, Anderton and Renslow, PLoS ONE 13, e0199239 (2018)), so that grey paper shows the same.
+"""
+
+from __future__ import annotations
+
+import os
+from typing import TYPE_CHECKING
+
+from eoscore.errors import EoscoreError
+from eoscore.show.dataset import MissingExtraError
+from eoscore.show.saving import appearing
+
+if TYPE_CHECKING:
+    from pathlib import Path
+
+    from eoscore.answer.record import FoundAnswer, Report
+
+__all__ = ["NothingToDrawError", "draw", "undrawable"]
+
+FORMATS = (".png", ".svg", ".pdf")
+
+
+class NothingToDrawError(EoscoreError, ValueError):
+    """No question has a grid over one or two names."""
+
+    def __init__(self, file: str) -> None:
+        self.file = file
+        super().__init__(
+            f"nothing to draw: no question of {file} has a grid over one or two names; `over NAME = even(a, b, 50)` "
+            "makes one"
+        )
+
+
+def undrawable(target: Path) -> str | None:
+    """Why nothing can be drawn there, found before anything is computed; None where it can."""
+    if target.suffix.lower() not in FORMATS:
+        return f"{target} ends in {target.suffix or 'nothing'}; the formats are {', '.join(FORMATS)}"
+    if target.is_dir():
+        return f"{target} is a folder"
+    if not target.parent.is_dir():
+        return f"the folder {target.parent} does not exist"
+    if not os.access(target if target.exists() else target.parent, os.W_OK):
+        return f"{target} may not be written"
+    return None
+
+
+def draw(report: Report, target: Path) -> tuple[Path, ...]:
+    """Draw every question over one or two names; the paths written, named as by `save`.
+
+    Raises
+    ------
+    NothingToDrawError
+        Where there is no such question.
+    MissingExtraError
+        Where matplotlib is not installed.
+    """
+    answers = _drawn(report)
+    if not answers:
+        raise NothingToDrawError(report.file)
+    try:
+        from eoscore.show.figure import figure_of
+    except ImportError:
+        raise MissingExtraError("matplotlib", "plot") from None
+    names = [
+        target if len(answers) == 1 else target.with_stem(f"{target.stem}-line{answer.line}")
+        for answer in answers
+    ]
+    for answer, name in zip(answers, names, strict=True):
+        with appearing(name) as path:
+            kind = target.suffix.lower().removeprefix(".")
+            undated = {"svg": {"Date": None}, "pdf": {"CreationDate": None}, "png": {}}[kind]
+            figure_of(answer).savefig(path, format=kind, metadata=undated)
+    return tuple(names)
+
+
+def _drawn(report: Report) -> list[FoundAnswer]:
+    from eoscore.answer.record import FoundAnswer
+
+    return [a for a in report.answers if isinstance(a, FoundAnswer) and 1 <= len(a.over) <= 2]
