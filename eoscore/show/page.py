@@ -111,5 +111,5 @@ def _caution_lines(answer: Answer, told: set[Caution]) -> Iterator[str]:
 
 def _budget(finding: Finding) -> str:
     shares = {name: float(share.reshape(-1)[0]) for name, share in finding.budget.items()}
-    ordered = sorted(shares.items(), key=lambda item: -item[1])
+    ordered = sorted(shares.items(), key=lambda item: -round(item[1], 3))  # equal shares keep their order
     return ", ".join(f"{name} ({100.0 * share:.0f} %)" for name, share in ordered if share >= 5e-3)
