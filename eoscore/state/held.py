@@ -31,8 +31,8 @@ __all__ = ["HeldGas"]
 class HeldGas:
     """A gas in equilibrium in a place; `eoscore.state.hold` makes one.
 
-    model: what is counted. dimension: of the place (0 where every direction is held as levels). position: the
-    measure of V, None without one. momentum: that of E(p) per m^d. top: energies above it are not counted, J.
+    model: what is counted. dimension: of the place (0 where every direction is held as levels). momentum: the
+    measure of E(p) per m^d. top: energies above it are not counted, J.
     volume: the content of a flat box, m^d. uniform: whether numbers are densities.
     """
 
@@ -41,7 +41,6 @@ class HeldGas:
     model: Model
     dimension: int
     momentum: Measure
-    position: Measure | None = None
     top: float = inf
     volume: float | None = None
     uniform: bool = False
@@ -114,6 +113,13 @@ class HeldGas:
                 )
             conditions["N"] = conditions.pop("n") * (self.volume or 1.0)
         return conditions
+
+    @property
+    def position(self) -> Measure | None:
+        """The measure of V, None for a place that has none. NoAnswerError where its volume is infinite."""
+        if self.place is None or self.uniform or self.volume is not None or not self.dimension:
+            return None
+        return self.place.measure
 
     @property
     def name(self) -> str:

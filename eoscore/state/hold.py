@@ -36,32 +36,28 @@ def hold(gas: Gas, place: Place | None) -> HeldGas:
     momentum = gas.momentum_measure(dimension)
     free = ensemble_of(gas, momentum)
     if place is None:
-        return HeldGas(gas, None, Model(_on_levels(gas, momentum), None, None, gas.degeneracy), 0, momentum)
+        return HeldGas(
+            gas, None, Model(lambda: _on_levels(gas, momentum), None, None, gas.degeneracy), 0, momentum
+        )
     local = _counted(gas, momentum.cut(place.top))
     if isinstance(place, UniformPlace):
-        model = Model(local, local, free, gas.degeneracy)
+        model = Model(lambda: local, local, free, gas.degeneracy)
         return HeldGas(gas, place, model, dimension, momentum, uniform=True)
-    flat = isinstance(place, VolumePlace)
-    combined = (
-        momentum.scaled(place.volume) if isinstance(place, VolumePlace) else convolve(momentum, place.measure)
-    )
-    model = Model(_counted(gas, combined.cut(place.top)), local, free, gas.degeneracy)
-    return HeldGas(
-        gas,
-        place,
-        model,
-        dimension,
-        momentum,
-        position=None if flat else place.measure,
-        top=place.top,
-        volume=place.volume if isinstance(place, VolumePlace) else None,
-    )
+    volume = place.volume if isinstance(place, VolumePlace) else None
+
+    def whole() -> Ensemble:
+        # Made when a state first needs it: a place whose states are without number still has its frequencies.
+        combined = convolve(momentum, place.measure) if volume is None else momentum.scaled(volume)
+        return _counted(gas, combined.cut(place.top))
+
+    model = Model(whole, local, free, gas.degeneracy)
+    return HeldGas(gas, place, model, dimension, momentum, top=place.top, volume=volume)
 
 
 def _of_states(gas: Gas, place: StatesPlace) -> HeldGas:
     if gas.quanta:
         raise NoAnswerError(f"{gas.name} holds levels of its own, and {place.name} gives all states at once")
-    model = Model(ensemble_of(gas, place.measure.cut(place.top)), None, None, gas.degeneracy)
+    model = Model(lambda: ensemble_of(gas, place.measure.cut(place.top)), None, None, gas.degeneracy)
     return HeldGas(gas, place, model, 0, place.measure, top=place.top)
 
 

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import cached_property
 from math import inf
 from typing import TYPE_CHECKING
 
@@ -11,6 +12,8 @@ import numpy as np
 from eoscore.constants import K_B
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
     from eoscore.state.ensemble import Ensemble
     from eoscore.state.reading import FloatArray
     from eoscore.state.sums import Sums
@@ -22,16 +25,21 @@ CONDITIONS = ("T", "N", "mu", "fugacity", "n_peak", "PSD", "U", "S", "f_0", "N_0
 
 @dataclass(frozen=True)
 class Model:
-    """`whole`: the ensemble that N counts (per volume in a uniform gas); `local`: that at the bottom, per m^d.
+    """`count` makes `whole`, the ensemble that N counts (per volume in a uniform gas); `local` is that at the bottom.
 
     `free` is the local ensemble without the cut of the place, spin states counted: it sets lambda_T. Both are None
     where every direction is held as levels.
     """
 
-    whole: Ensemble
+    count: Callable[[], Ensemble]
     local: Ensemble | None
     free: Ensemble | None
     degeneracy: float
+
+    @cached_property
+    def whole(self) -> Ensemble:
+        """Everything that is counted. NoAnswerError where the states are without number."""
+        return self.count()
 
     def value(
         self, name: str, alpha: FloatArray, kT: FloatArray, sums: Sums | None = None
