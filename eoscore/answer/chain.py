@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from eoscore.answer.grid import Grid, Stop
+from eoscore.answer.origin import Origins
 from eoscore.answer.unit import unit_of_dimension
 from eoscore.errors import NoAnswerError
 from eoscore.language.quantities import QUANTITIES
@@ -56,6 +57,7 @@ class Chain:
 
     def __post_init__(self) -> None:
         self.grid = Grid(self.question.over)
+        self._origins = Origins(self.program, self.whole or self.question)
 
     @property
     def names(self) -> tuple[str, ...]:
@@ -76,31 +78,37 @@ class Chain:
         physical = tuple(name for name in self.names if name in QUANTITIES)
         named = self._named(binding)
         try:
-            held = self._held(binding)
+            held = self._held(binding, question.place, stop)
             if not question.origins:
                 return Part(stop, binding, held, given, dict(held.find(physical, given)) | named)
-            state = self._brought(held, given, conditions.values | dict(stop.values), literals)
+            state = self._brought(held, given, stop, values, literals)
             arrived = {name: state.reading(name).value for name in ("N", "S")}
             readings = {name: state.reading(name) for name in physical}
             return Part(stop, binding, held, arrived, readings | named, state.spill)
         except NoAnswerError as fault:
             return Part(stop, binding, None, given, self._without(physical, fault.why) | named)
 
-    def _held(self, binding: Binding) -> HeldGas:
-        return self.held.of(binding, self.question.dimension)
+    def _held(self, binding: Binding, place: str | None, stop: Stop) -> HeldGas:
+        like = None if place is None else self._origins.of(place, stop.values)
+        return self.held.of(binding, self.question.dimension, like)
 
     def _brought(
         self,
         held: HeldGas,
         given: Mapping[str, NDArray[np.float64]],
+        stop: Stop,
         values: Mapping[str, float],
         literals: Mapping[int, float],
     ) -> State:
         """The state after slow changes from the first place of origin through all others to the last one."""
-        gas, (first, *later) = self.question.gas, self.question.origins
-        state = self._held(self.program.bind(gas, first, values, literals)).state(**given)
-        for place in later:
-            state = self._held(self.program.bind(gas, place, values, literals)).brought_from(state)
+        gas = self.question.gas
+        first, *later = (
+            self._held(self.program.bind(gas, place, values, literals), place, stop)
+            for place in self.question.origins
+        )
+        state = first.state(**given)
+        for other in later:
+            state = other.brought_from(state)
         return held.brought_from(state)
 
     def _named(self, binding: Binding) -> dict[str, Reading]:

@@ -27,14 +27,20 @@ _BOTTOMS = {
 class TrapPlace(Place):
     """A surveyed trap for particles of a mass in kg, which only its frequencies ask for.
 
-    e_max: energies above it are not counted, J from the bottom. NoAnswerError where the potential holds nothing.
+    e_max: energies above it are not counted, J from the bottom. landscape: of the field, where it is known.
+    NoAnswerError where the potential holds nothing.
     """
 
     def __init__(
-        self, name: str, field: Field, e_max: float | None = None, mass: float | None = None
+        self,
+        name: str,
+        field: Field,
+        e_max: float | None = None,
+        mass: float | None = None,
+        landscape: Landscape | None = None,
     ) -> None:
         self.name, self.field, self.mass = name, field, mass
-        self.landscape: Landscape = survey(field)
+        self.landscape: Landscape = landscape or survey(field)
         if not self.landscape.holds or self.landscape.bottom is None:
             raise NoAnswerError(f"{name}: {self.landscape.why}")
         if e_max is not None and e_max <= 0:
@@ -47,9 +53,14 @@ class TrapPlace(Place):
     @cached_property
     def measure(self) -> Measure:
         """Omega(v) in m^d of the region that joins the bottom below the top."""
+        return self.whole.cut(self.top)
+
+    @cached_property
+    def whole(self) -> Measure:
+        """The measure as high as it is known: at least up to the top."""
         from eoscore.measure import measure_of
 
-        return measure_of(self.field, self.landscape).cut(self.top)
+        return measure_of(self.field, self.landscape, self.top if self.e_max < self.landscape.depth else inf)
 
     @property
     def r_min(self) -> tuple[float, ...]:
