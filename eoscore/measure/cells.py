@@ -27,7 +27,7 @@ if TYPE_CHECKING:
 __all__ = ["cells"]
 
 DOUBT = 0.3  # of the difference between boxes and halved boxes, which is eight times the error of the latter
-RUNGS = (1.26, 2.0, 4.0)  # ratio of the levels for which boxes of their own are made: few, many, without end
+RUNGS = (1.45, 2.0, 4.0)  # ratio of the levels for which boxes of their own are made: few, many, without end
 # Shares of the level up to which the wells may be taken along rays.
 STARTS = np.concatenate([[0.9, 0.8, 0.7, 0.6], 0.5 * 0.7 ** np.arange(60)])
 OPEN = 0.99  # of the depth: a ceiling below this keeps away from an escape at infinity

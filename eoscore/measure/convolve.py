@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from functools import cache
+from functools import cache, partial
 from itertools import pairwise
 from math import inf
 from typing import TYPE_CHECKING
@@ -13,9 +13,10 @@ from eoscore.errors import NoAnswerError
 from eoscore.measure.powers import Powers
 from eoscore.measure.rules import graded, legendre
 from eoscore.measure.sampled import Sampled
+from eoscore.measure.smeared import smeared
 
 if TYPE_CHECKING:
-    from collections.abc import Iterator
+    from collections.abc import Callable, Iterator
 
     from eoscore.measure.base import FloatArray, Measure
 
@@ -23,7 +24,7 @@ if TYPE_CHECKING:
 
 __all__ = ["convolve"]
 
-ROUNDING = 2e-14  # of the quadrature below, measured against Beta functions
+ROUNDING = 2e-13  # of the quadrature below, measured against Beta functions
 BLOCK = 64  # energies taken at once, so that the arrays stay in the cache
 POWER = 2  # v leaves a break as t^2, which takes 1/sqrt out of a density
 
@@ -50,7 +51,7 @@ def convolve(a: Measure, b: Measure) -> Measure:
         return Powers(terms, top, error=error, route=route)
     feet = [m.foot for m in (a, b) if isinstance(m, Sampled)]
     return Sampled(
-        lambda energies: _volume(a, b, energies),
+        _function(a, b),
         a.exponent + b.exponent,
         scale=min(a.scale, b.scale),
         foot=max(feet, default=None),
@@ -59,6 +60,14 @@ def convolve(a: Measure, b: Measure) -> Measure:
         route=route,
         breaks=_joined_breaks(a, b),
     )
+
+
+def _function(a: Measure, b: Measure) -> Callable[[FloatArray], FloatArray]:
+    """Omega of the two together as a function of energies."""
+    for one, other in ((a, b), (b, a)):
+        if isinstance(one, Sampled) and not one.breaks and isinstance(other, Powers):
+            return partial(smeared, one, other)
+    return partial(_volume, a, b)
 
 
 def _factor(measure: Measure) -> float | None:

@@ -134,7 +134,8 @@ def _change(v: Array, turned: NDArray[np.bool_]) -> Array:
     scale = scale or float(np.median(np.abs(v[inside] - np.median(v[inside])))) or 1.0
     with np.errstate(all="ignore"):
         level = np.arcsinh((v - np.median(v[inside])) / scale)
-    return np.nan_to_num(np.abs(np.diff(level)), posinf=0.0)
+    with np.errstate(invalid="ignore"):
+        return np.nan_to_num(np.abs(np.diff(level)), posinf=0.0)
 
 
 def _crossings(chart: Chart, i: int, points: Array) -> Array:

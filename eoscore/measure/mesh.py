@@ -22,7 +22,7 @@ if TYPE_CHECKING:
 __all__ = ["Boxes", "held_boxes", "held_lines", "typical_level"]
 
 SKETCH = {2: 160, 3: 40}  # points along each axis of the grid that finds the extent
-FINE = {2: 240, 3: 56}  # and of the grid whose boxes are kept
+FINE = {2: 240, 3: 44}  # and of the grid whose boxes are kept
 TYPICAL = 0.2  # share of the points of a sketch below the first level that is looked at where nothing leaks
 MOST_WELLS = 200  # whose places decide where boxes are small
 CORE = 0.25  # share of the ceiling up to which a well counts as its core

@@ -57,7 +57,7 @@ def _of_one(field: Field, landscape: Landscape | None, ceiling: float) -> Measur
     if not landscape.holds:
         raise NoAnswerError(landscape.why)
     found = (
-        flat(field, landscape)
+        flat(field, landscape, measure_of)
         or line(field, landscape)
         or about(field, landscape, ceiling)
         or cells(field, landscape, ceiling)

@@ -20,8 +20,10 @@ if TYPE_CHECKING:
 
 __all__ = ["Sampled"]
 
-FINEST = {"log": 2.0**-6, "left": 2.0**-14, "right": 2.0**-14}  # panels this short in t are not halved
+FINEST = {"log": 2.0**-11, "left": 2.0**-14, "right": 2.0**-14}  # panels this short in t are not halved
 SHARPEST = 1e-14  # relative tail of a series at which a panel counts as resolved
+SHORT = 2.0**-5  # and one this short in t not, where halving did not help
+STALLED = 0.7  # share of the tail before, above which halving did not help
 NOISE = 1e-4  # a tail below this that halving does not lower is the rounding of the function itself
 
 
@@ -113,6 +115,15 @@ class Sampled(Measure):
         ]
         return Nodes(np.concatenate([v for v, _ in rules]), np.concatenate([w for _, w in rules]), foot)
 
+    def whole_panels(self, upto: float) -> tuple[FloatArray, Nodes]:
+        """Where the panels of a rule begin, and the rule: to the end of the panel that holds `upto` (J)."""
+        panels = self._up_to(np.array([self.end(upto)])).panels
+        edges = []
+        for panel in panels:
+            parts = max(1, int(np.ceil(np.log(panel.last / panel.first) / np.log(RATIO))))
+            edges.append(panel.energy(np.linspace(panel.start, panel.stop, parts + 1)[:-1]))
+        return np.concatenate(edges), self.nodes(panels[-1].last)
+
     def _rule(self, panel: Panel, series: FloatArray, end: float) -> tuple[FloatArray, FloatArray]:
         """Nodes and weights dOmega on the part of a panel below `end`."""
         if panel.first >= end:
@@ -171,14 +182,16 @@ class Sampled(Measure):
             or panel.stop - panel.start <= FINEST[panel.kind]
         ):
             return True
-        return NOISE > tail > before / 2
+        return tail > STALLED * before and (tail < NOISE or panel.stop - panel.start <= SHORT)
 
     def _sample(self, panels: list[Panel]) -> tuple[FloatArray, list[float]]:
-        """Series of Omega / (v/scale)^exponent on panels, and the relative size of their last coefficients."""
+        """Series of Omega / (v/scale)^exponent on panels, and the size of their last coefficients beside its least value."""
         s = points()
         v = np.array([p.energy(p.start + (p.stop - p.start) * s) for p in panels])
         omega = self._function(v.ravel()).reshape(v.shape)
         values = omega / (v / self.scale) ** self.exponent
         series = values @ to_series().T
-        tails = np.abs(series[:, -3:]).max(axis=1) / np.abs(values).max(axis=1)
+        tails = np.abs(series[:, -3:]).max(axis=1) / np.maximum(
+            np.abs(values).min(axis=1), 1e-6 * np.abs(values).max(axis=1)
+        )
         return series, [float(tail) for tail in tails]
