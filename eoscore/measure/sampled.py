@@ -185,7 +185,7 @@ class Sampled(Measure):
         return tail > STALLED * before and (tail < NOISE or panel.stop - panel.start <= SHORT)
 
     def _sample(self, panels: list[Panel]) -> tuple[FloatArray, list[float]]:
-        """Series of Omega / (v/scale)^exponent on panels, and the size of their last coefficients beside its least value."""
+        """Series of Omega / (v/scale)^exponent on panels, and their last coefficients beside its least value."""
         s = points()
         v = np.array([p.energy(p.start + (p.stop - p.start) * s) for p in panels])
         omega = self._function(v.ravel()).reshape(v.shape)
