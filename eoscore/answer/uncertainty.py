@@ -29,7 +29,7 @@ __all__ = ["labelled", "with_uncertainty"]
 # Steps in units of sigma and of the value: small beside the scale on which answers bend, large beside the noise.
 _STEP_OF_SIGMA = 0.1
 _STEP_OF_VALUE = 5e-4
-# Which conditions a quantity can depend on, by what the language says it needs.
+# Which conditions a quantity depends on where they are given, by what the language says it needs; else on all.
 _CONDITIONS = {"nothing": (), "number": ("N", "n"), "temperature": ("T",)}
 
 
@@ -91,10 +91,16 @@ def _bears(name: str, parts: Sequence[Part], moved: Sequence[Part]) -> bool:
             continue
         if (part.binding.gas, part.binding.place) != (other.binding.gas, other.binding.place):
             return True
-        needed = _CONDITIONS.get(QUANTITIES[name], tuple(part.given))
-        if any(not np.array_equal(part.given[c], other.given[c]) for c in needed if c in part.given):
+        if any(not np.array_equal(part.given[c], other.given[c]) for c in _needed(name, part)):
             return True
     return False
+
+
+def _needed(name: str, part: Part) -> tuple[str, ...]:
+    """The conditions that a quantity depends on: with S and U in place of T, lambda_T depends on both."""
+    need = QUANTITIES[name]
+    enough = tuple(each for each in _CONDITIONS.get(need, ()) if each in part.given)
+    return enough if enough or need == "nothing" else tuple(part.given)
 
 
 def labelled(literals: Sequence[UncertainLiteral]) -> dict[str, UncertainLiteral]:

@@ -17,11 +17,14 @@ if TYPE_CHECKING:
     from eoscore.language.block import Gas, Pair
     from eoscore.language.checker import Checker
     from eoscore.language.question import Axis, Given, Question
+    from eoscore.language.role import Roles
 
 __all__ = ["check_ask"]
 
+_KNOWN = ", ".join(CONDITIONS)
 
-def check_ask(question: Question, pairs: Sequence[Pair], checker: Checker) -> Question:
+
+def check_ask(question: Question, pairs: Sequence[Pair], roles: Roles, checker: Checker) -> Question:
     """The question with its dimension; faults for what is missing, too much, or does not fit."""
     for pair, name in zip(pairs, [question.node.place, *_origins(question)], strict=True):
         _mass(question, pair, checker)
@@ -33,8 +36,9 @@ def check_ask(question: Question, pairs: Sequence[Pair], checker: Checker) -> Qu
                 "`uniform` is unbounded: no gas can be brought into it or out of it",
                 "use a volume",
             )
-    _quantities(question, pairs[0], checker)
-    _conditions(question, pairs[-1] if len(pairs) > 1 else pairs[0], checker)
+    written = _written(question, roles)
+    _quantities(question, pairs[0], written, checker)
+    _conditions(question, pairs[-1] if len(pairs) > 1 else pairs[0], written, checker)
     dims = [_dimension(question, pair, checker) for pair in pairs]
     return replace(question, dimension=dims[0])
 
@@ -47,11 +51,11 @@ def _thermodynamic(question: Question) -> list[Given | Axis]:
     return [*question.given.values(), *(axis for axis in question.over if axis.thermodynamic)]
 
 
-def _written(question: Question) -> list[nodes.Ident]:
+def _written(question: Question, roles: Roles) -> list[nodes.Ident]:
     """The thermodynamic names as written, faulty values or not, so that one fault does not cause another."""
     names = [condition.name for condition in question.node.conditions]
     names += [axis.name for axis in question.node.over] if isinstance(question.node, nodes.Find) else []
-    return [name for name in names if name.name in CONDITIONS]
+    return [name for name in names if roles.of(name.name) == "condition"]
 
 
 def _mass(question: Question, pair: Pair, checker: Checker) -> None:
@@ -80,7 +84,7 @@ def _dimension(question: Question, pair: Pair, checker: Checker) -> int | None:
         return None
     name = question.node.gas.span
     own = None if gas.momenta == ("p",) else len(gas.momenta)
-    density = next((each for each in _thermodynamic(question) if each.name == "n"), None)
+    density = next((each for each in _thermodynamic(question) if each.name in ("n", "n_peak")), None)
     by_density = next((d for d in (1, 2, 3) if density and density.dimension == dimension(f"m-{d}")), None)
     found = dimension_of(pair, checker)
     if place.node is None:
@@ -95,12 +99,12 @@ def _dimension(question: Question, pair: Pair, checker: Checker) -> int | None:
         message = f"`{gas.name}` holds {', '.join(gas.held)} as levels: {left}"
         checker.faults.add(name, message, "leave the held directions out of the place")
     if density is not None and by_density not in (None, found):
-        message = f"`{place.name}` is {found}D: its density n must be in m-{found}"
-        checker.faults.add(density.node.name.span, message, f"write n in m-{found}")
+        message = f"`{place.name}` is {found}D: its density {density.name} must be in m-{found}"
+        checker.faults.add(density.node.name.span, message, f"write {density.name} in m-{found}")
     return found
 
 
-def _quantities(question: Question, pair: Pair, checker: Checker) -> None:
+def _quantities(question: Question, pair: Pair, written: Sequence[nodes.Ident], checker: Checker) -> None:
     seen: set[str] = set()
     for name in question.quantities:
         if name.name in seen:
@@ -108,7 +112,7 @@ def _quantities(question: Question, pair: Pair, checker: Checker) -> None:
         elif question.verb == "derive":
             _derived(name, checker)
         elif name.name in QUANTITIES:
-            _needs(name, question, checker)
+            _needs(name, question, written, checker)
         else:
             _own_name(name, pair, checker)
         seen.add(name.name)
@@ -134,15 +138,15 @@ def _own_name(name: nodes.Ident, pair: Pair, checker: Checker) -> None:
         checker.named(named)
 
 
-def _needs(name: nodes.Ident, question: Question, checker: Checker) -> None:
+def _needs(name: nodes.Ident, question: Question, written: Sequence[nodes.Ident], checker: Checker) -> None:
     need = QUANTITIES[name.name]
-    given = [each.name for each in _written(question)]
+    given = [each.name for each in written]
     is_state = len(set(given)) >= 2 or bool(question.origins)
     lacking = {
         "nothing": None,
-        "number": None if {"N", "n"} & set(given) or question.origins else "the number N (or the density n)",
+        "number": None if {"N", "n"} & set(given) or is_state else "the number N (or the density n)",
         "temperature": None if "T" in given or is_state else "the temperature T",
-        "state": None if is_state else "a state, which is two of N, n, T, mu, S, U",
+        "state": None if is_state else f"a state, which is two of {_KNOWN}",
     }[need]
     if lacking is not None:
         came = f"only {', '.join(given)} is given" if given else "nothing is given"
@@ -150,14 +154,14 @@ def _needs(name: nodes.Ident, question: Question, checker: Checker) -> None:
         checker.faults.add(name.span, f"`{name.name}` needs {lacking}; {came}", f"write: with {example}")
 
 
-def _conditions(question: Question, pair: Pair, checker: Checker) -> None:
-    written, faults = _written(question), checker.faults
+def _conditions(question: Question, pair: Pair, written: Sequence[nodes.Ident], checker: Checker) -> None:
+    faults = checker.faults
     names = [each.name for each in written]
     if question.origins and len(set(names)) != 2:
-        message = f"`from {question.origins[0]}` needs the state there: two of N, n, T, mu, S, U"
+        message = f"`from {question.origins[0]}` needs the state there: two of {_KNOWN}"
         faults.add(_origins(question)[0].span, message, "write: with N = 2e5, T = 500 nK")
     for extra in written[2:] if len(set(names)) == len(names) else ():
-        message = f"`{extra.name}` is one condition too many: a state is given by two of N, n, T, mu, S, U"
+        message = f"`{extra.name}` is one condition too many: a state is given by two of {_KNOWN}"
         faults.add(extra.span, message, f"{' and '.join(names[:2])} are given already; take one out")
     place = pair.place
     unbounded = place is not None and place.node is None
@@ -167,7 +171,7 @@ def _conditions(question: Question, pair: Pair, checker: Checker) -> None:
             faults.add(
                 each.span, "a density n is a condition in `uniform` or a `volume` only", "give the number N"
             )
-        if each.name in ("N", "S", "U") and unbounded:
+        if each.name in ("N", "S", "U", "N_0") and unbounded:
             message = f"`uniform` is unbounded: a gas in it has no total {each.name}"
             faults.add(each.span, message, "give the density n (its unit chooses the dimension), T or mu")
     if flat and {"n", "N"} <= set(names):

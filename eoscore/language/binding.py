@@ -9,11 +9,11 @@ from typing import TYPE_CHECKING, Literal, cast
 from eoscore.errors import Complaint, NoAnswerError, TarnError
 from eoscore.formula.field import Field
 from eoscore.language import nodes
-from eoscore.language.condition_check import settable
 from eoscore.language.facts import GasFacts, PlaceFacts, StatesFacts, TrapFacts, UniformFacts, VolumeFacts
 from eoscore.language.faults import listed
 from eoscore.language.kind import PURE, Wild
 from eoscore.language.place_check import dimension_of
+from eoscore.language.role import settable
 
 if TYPE_CHECKING:
     from eoscore.language.block import Pair

@@ -19,60 +19,49 @@ if TYPE_CHECKING:
     from collections.abc import Sequence
 
     from eoscore.language.checker import Checker
+    from eoscore.language.role import Roles
     from eoscore.language.scope import Named, Scope
     from eoscore.language.units import Dimension
     from eoscore.source import Span
 
-__all__ = ["check_axis", "check_condition", "check_grid", "settable"]
+__all__ = ["check_axis", "check_condition", "check_grid"]
 
 MOST_POINTS: Final = 10**7  # of one axis
 LARGEST_GRID: Final = 10**8
-_POSITIVE: Final = ("N", "n", "T")
+_POSITIVE: Final = ("N", "n", "T", "fugacity", "n_peak", "PSD")
 
 
-def settable(scopes: Sequence[Scope]) -> dict[str, Named]:
-    """The names that a question may give new values: all but functions and constants, inner ones first."""
-    found: dict[str, Named] = {}
-    for scope in scopes:
-        for inner in scope.chain():
-            if inner is not constant_scope():
-                found.update({k: v for k, v in inner.names.items() if k not in found and not v.is_function})
-    return found
-
-
-def check_condition(node: nodes.Definition, scopes: Sequence[Scope], checker: Checker) -> Given | None:
+def check_condition(node: nodes.Definition, roles: Roles, checker: Checker) -> Given | None:
     """A condition with its value, None with a fault where it makes no sense."""
-    kind = checker.kind(node.value, scopes[0])
-    if not _fits(node.name, [(node.value.span, kind)], scopes, checker) or kind.value is None:
+    kind = checker.kind(node.value, roles.scopes[0])
+    if not _fits(node.name, [(node.value.span, kind)], roles, checker) or kind.value is None:
         return None
-    thermodynamic = node.name.name in CONDITIONS
-    return Given(node.name.name, kind.value, _solid(kind), node, thermodynamic)
+    return Given(node.name.name, kind.value, _solid(kind), node, roles.of(node.name.name) != "parameter")
 
 
-def check_axis(node: nodes.Axis, scopes: Sequence[Scope], checker: Checker) -> Axis | None:
+def check_axis(node: nodes.Axis, roles: Roles, checker: Checker) -> Axis | None:
     """An axis of a grid, None with a fault where it makes no sense."""
     spans = (
         node.values.values
         if isinstance(node.values, nodes.Listing)
         else (node.values.start, node.values.stop)
     )
-    kinds = [checker.kind(expr, scopes[0]) for expr in spans]
+    kinds = [checker.kind(expr, roles.scopes[0]) for expr in spans]
     fits = _fits(
-        node.name, [(expr.span, kind) for expr, kind in zip(spans, kinds, strict=True)], scopes, checker
+        node.name, [(expr.span, kind) for expr, kind in zip(spans, kinds, strict=True)], roles, checker
     )
     how: Literal["even", "geometric", "list"] = "list"
     points: int | None = len(kinds)
     if isinstance(node.values, nodes.Range):
         how = node.values.kind
-        points = _points(node.values.points, scopes[0], checker)
+        points = _points(node.values.points, roles.scopes[0], checker)
         fits = fits and not (how == "geometric" and _changes_sign(node, kinds, checker))
     ends = [kind.value for kind in kinds if kind.value is not None]
     if not fits or not points or len(ends) < len(kinds):
         return None
     dim = next((kind.dimension for kind in kinds if not isinstance(kind.dimension, Wild)), PURE)
-    return Axis(
-        node.name.name, how, tuple(ends), points, _solid(Kind(dim)), node, node.name.name in CONDITIONS
-    )
+    inner = roles.of(node.name.name) != "parameter"
+    return Axis(node.name.name, how, tuple(ends), points, _solid(Kind(dim)), node, inner)
 
 
 def check_grid(axes: Sequence[Axis], checker: Checker) -> None:
@@ -88,19 +77,19 @@ def _solid(kind: Kind) -> Dimension:
     return PURE if isinstance(kind.dimension, Wild) else kind.dimension
 
 
-def _fits(
-    name: nodes.Ident, parts: Sequence[tuple[Span, Kind]], scopes: Sequence[Scope], checker: Checker
-) -> bool:
+def _fits(name: nodes.Ident, parts: Sequence[tuple[Span, Kind]], roles: Roles, checker: Checker) -> bool:
     """Whether a name can be set, and to values of these kinds."""
-    known = settable(scopes)
-    own = known.get(name.name)
-    if name.name in CONDITIONS:
+    own, role = roles.known.get(name.name), roles.of(name.name)
+    if role == "condition":
         fits = [_thermodynamic(name, span, kind, own, checker) for span, kind in parts]
-        return all(fits)
-    if own is None:
-        return _unknown(name, known, scopes, checker)
-    wanted = checker.named(own)
-    fits = [_like(name, span, kind, wanted, checker) for span, kind in parts]
+    elif role == "coordinate":
+        what = f"the coordinate `{name.name}`"
+        fits = [must_be(kind, ("m",), span, what, checker.faults) for span, kind in parts]
+    elif own is None:
+        return _unknown(name, roles, checker)
+    else:
+        wanted = checker.named(own)
+        fits = [_like(name, span, kind, wanted, checker) for span, kind in parts]
     return all(fits)
 
 
@@ -131,14 +120,15 @@ def _like(name: nodes.Ident, span: Span, kind: Kind, wanted: Kind, checker: Chec
     return False
 
 
-def _unknown(name: nodes.Ident, known: dict[str, Named], scopes: Sequence[Scope], checker: Checker) -> bool:
+def _unknown(name: nodes.Ident, roles: Roles, checker: Checker) -> bool:
+    scopes = roles.scopes
     if name.name in constant_scope().names and scopes[0].find(name.name) is constant_scope().names[name.name]:
         message, hint = f"`{name.name}` is a constant", "define a name of your own to vary it"
     elif scopes[0].find(name.name) is not None:
         message, hint = f"`{name.name}` is a function and cannot be set", "set the values that it uses"
     else:
         message = f"`{name.name}` is neither a condition nor a name that can be set here"
-        hint = listed(name.name, [*CONDITIONS, *known], what="can be set")
+        hint = listed(name.name, [*CONDITIONS, *roles.coordinates, *roles.known], what="can be set")
     checker.faults.add(name.span, message, hint)
     return False
 

@@ -10,10 +10,10 @@ from eoscore.errors import Complaint, TarnError
 from eoscore.language.binding import Binding
 from eoscore.language.block import UNIFORM
 from eoscore.language.checker import Checker
-from eoscore.language.condition_check import settable
 from eoscore.language.faults import Faults, listed
 from eoscore.language.lower import Lowering
 from eoscore.language.place_check import check_place
+from eoscore.language.role import settable
 
 if TYPE_CHECKING:
     from collections.abc import Mapping

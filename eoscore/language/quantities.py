@@ -4,10 +4,16 @@ from __future__ import annotations
 
 from typing import Final, Literal
 
-__all__ = ["CONDITIONS", "DERIVED", "QUANTITIES", "Need"]
+__all__ = ["AT_POSITIONS", "CONDITIONS", "DERIVED", "QUANTITIES", "Need"]
 
 # What a quantity needs: nothing, the number (N or n), the temperature, a state (two conditions).
 Need = Literal["nothing", "number", "temperature", "state"]
+
+# What is asked at a position, which coordinates among the conditions and axes give.
+AT_POSITIONS: Final[dict[str, Need]] = {
+    "V_at": "nothing",
+    **dict.fromkeys(("n_at", "pressure_at", "n_column"), "state"),
+}
 
 # tarn.md, the table of questions.
 QUANTITIES: Final[dict[str, Need]] = {
@@ -24,9 +30,11 @@ QUANTITIES: Final[dict[str, Need]] = {
     "eta": "temperature",
     **dict.fromkeys(("depth", "freq", "r_min", "V_min"), "nothing"),
     **dict.fromkeys(("shift_size", "shift_int"), "number"),
+    # **AT_POSITIONS,
 }
 
-# The thermodynamic conditions and their units; that of `n` is one of three and chooses the dimension.
+# The thermodynamic conditions and their units; those of densities are one of three, and that of `n` chooses the
+# dimension.
 CONDITIONS: Final[dict[str, tuple[str, ...]]] = {
     "N": ("1",),
     "n": ("m-3", "m-2", "m-1"),
@@ -34,6 +42,8 @@ CONDITIONS: Final[dict[str, tuple[str, ...]]] = {
     "mu": ("J",),
     "S": ("J/K",),
     "U": ("J",),
+    **dict.fromkeys(("fugacity", "f_0", "N_0", "PSD"), ("1",)),
+    "n_peak": ("m-3", "m-2", "m-1"),
 }
 
 DERIVED: Final = ("T_c", "N_c", "f_0", "U", "S", "C_N", "g", "rho")

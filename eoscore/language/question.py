@@ -20,7 +20,10 @@ __all__ = ["Axis", "Given", "Question"]
 
 @dataclass(frozen=True)
 class Given:
-    """A condition: its SI value, its dimension, the expression behind it, and whether it is thermodynamic."""
+    """A condition: its SI value, its dimension, the expression behind it.
+
+    `thermodynamic` tells conditions of the gas, and coordinates at which it is looked at, from parameters.
+    """
 
     name: str
     value: float
@@ -56,8 +59,9 @@ class Axis:
 class Question:
     """One `find` or `derive`: the gas, the place (None where the gas holds itself), the places it comes from.
 
-    `given` holds the thermodynamic conditions, `values` new values of named parameters. `dimension` is that of the
-    space the place holds the gas in, levels not counted; None where only physics can tell.
+    `given` holds the thermodynamic conditions, and positions where `coordinates` of the place may be given;
+    `values` new values of named parameters. `dimension` is that of the space the place holds the gas in, levels not
+    counted; None where only physics can tell.
     """
 
     node: nodes.Find | nodes.Derive
@@ -70,6 +74,7 @@ class Question:
     values: Mapping[str, Given]
     over: tuple[Axis, ...]
     dimension: int | None
+    coordinates: tuple[str, ...] = ()
 
     @property
     def line(self) -> int:

@@ -10,13 +10,11 @@ from eoscore.language.block import UNIFORM, Gas, Place
 from eoscore.language.condition_check import check_axis, check_condition, check_grid
 from eoscore.language.faults import listed
 from eoscore.language.question import Question
+from eoscore.language.role import Roles
 
 if TYPE_CHECKING:
-    from collections.abc import Sequence
-
     from eoscore.language.checker import Checker
     from eoscore.language.question import Axis, Given
-    from eoscore.language.scope import Scope
     from eoscore.language.world import World
 
 __all__ = ["check_question"]
@@ -31,9 +29,9 @@ def check_question(node: nodes.Find | nodes.Derive, world: World, checker: Check
     if gas is None or (node.place is not None and place is None) or None in origins:
         return None
     pairs = [world.pair(gas, place), *(world.pair(gas, origin) for origin in origins)]
-    scopes = [each.scope for each in pairs]
-    given = _conditions(node, scopes, world, checker)
-    axes = _axes(node, given, scopes, checker)
+    roles = Roles.of_question(node, pairs)
+    given = _conditions(node, roles, world, checker)
+    axes = _axes(node, given, roles, checker)
     question = Question(
         node,
         "find" if is_find else "derive",
@@ -45,8 +43,9 @@ def check_question(node: nodes.Find | nodes.Derive, world: World, checker: Check
         {name: each for name, each in given.items() if not each.thermodynamic},
         tuple(axes),
         None,
+        roles.coordinates,
     )
-    return check_ask(question, pairs, checker)
+    return check_ask(question, pairs, roles, checker)
 
 
 def _gas(name: nodes.Ident, world: World, checker: Checker) -> Gas | None:
@@ -71,7 +70,7 @@ def _place(name: nodes.Ident | None, world: World, checker: Checker) -> Place | 
 
 
 def _conditions(
-    node: nodes.Find | nodes.Derive, scopes: Sequence[Scope], world: World, checker: Checker
+    node: nodes.Find | nodes.Derive, roles: Roles, world: World, checker: Checker
 ) -> dict[str, Given]:
     found: dict[str, Given] = {}
     seen: set[str] = set()
@@ -81,21 +80,21 @@ def _conditions(
             checker.faults.add(written.name.span, f"`{written.name.name}` is given twice", "keep one of them")
             continue
         seen.add(written.name.name)
-        given = check_condition(condition, scopes, checker)
+        given = check_condition(condition, roles, checker)
         if given is not None:
             found[given.name] = given
     return found
 
 
 def _axes(
-    node: nodes.Find | nodes.Derive, given: dict[str, Given], scopes: Sequence[Scope], checker: Checker
+    node: nodes.Find | nodes.Derive, given: dict[str, Given], roles: Roles, checker: Checker
 ) -> list[Axis]:
     axes: list[Axis] = []
     for written in node.over if isinstance(node, nodes.Find) else ():
         if written.name.name in given or any(axis.name == written.name.name for axis in axes):
             checker.faults.add(written.name.span, f"`{written.name.name}` is given twice", "keep one of them")
             continue
-        axis = check_axis(written, scopes, checker)
+        axis = check_axis(written, roles, checker)
         if axis is not None:
             axes.append(axis)
     if axes:

@@ -9,7 +9,6 @@ from eoscore.errors import NoAnswerError, TarnError
 from eoscore.language import nodes
 from eoscore.language.block import Gas, pair
 from eoscore.language.checker import Checker
-from eoscore.language.condition_check import settable
 from eoscore.language.faults import Faults
 from eoscore.language.gas_check import check_gas
 from eoscore.language.include import Includer
@@ -18,6 +17,7 @@ from eoscore.language.parse import parse
 from eoscore.language.place_check import check_place
 from eoscore.language.program import Program, UncertainLiteral
 from eoscore.language.question_check import check_question
+from eoscore.language.role import settable
 from eoscore.language.scope import Named, Scope
 from eoscore.language.setting import settings_of
 from eoscore.language.stray import check_strays

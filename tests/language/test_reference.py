@@ -11,7 +11,7 @@ from eoscore.errors import TarnError
 from eoscore.language import limits
 from eoscore.language.builtin import BUILTINS
 from eoscore.language.parse import parse
-from eoscore.language.quantities import QUANTITIES
+from eoscore.language.quantities import CONDITIONS, QUANTITIES
 from eoscore.language.reserved import RESERVED
 from eoscore.language.scope import constant_scope
 from eoscore.language.units import PLAIN, PREFIXED, PREFIXES
@@ -37,6 +37,7 @@ def test_every_example_is_read_and_written_back(example: str):
         ("prefixes", PREFIXES),
         ("constants", constant_scope().names),
         ("functions", BUILTINS),
+        ("conditions", CONDITIONS),
     ],
 )
 def test_a_list_is_complete(title: str, known: dict[str, object] | frozenset[str]):
