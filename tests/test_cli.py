@@ -68,7 +68,7 @@ def test_json_stands_alone_on_standard_output(eoscore, bowl):
     status, out, err = eoscore("run", bowl, "--json")
     assert (status, err) == (0, "")
     (answer,) = json.loads(out)["answers"]
-    assert answer["found"]["T_c"]["value"] == pytest.approx(bowl_T_c(), rel=1e-12)
+    assert answer["found"]["T_c"]["value"] == pytest.approx(bowl_T_c(), rel=1e-12, abs=0)
     assert (answer["line"], answer["verb"], answer["from"]) == (6, "find", None)
 
 
@@ -197,7 +197,7 @@ def test_a_grid_is_written_and_shown(eoscore, tmp_path):
     assert status == 0
     assert "grid.csv" in err
     values = json.loads(out)["answers"][0]["found"]["T_c"]["value"]
-    assert values == pytest.approx([bowl_T_c(number) for number in (1e3, 1e4, 1e5)], rel=1e-12)
+    assert values == pytest.approx([bowl_T_c(number) for number in (1e3, 1e4, 1e5)], rel=1e-12, abs=0)
     assert "T_c (K)" in (tmp_path / "grid.csv").read_text()
 
 

@@ -32,32 +32,32 @@ def inline(formula, *momenta, walls=()):
 def test_wavelength_of_a_free_particle(d):
     T = np.array([[1e-7], [3.0]])
     wanted = H / np.sqrt(2 * math.pi * M * K_B * T)
-    assert gas_of(facts()).thermal_wavelength(T, d) == pytest.approx(wanted, rel=1e-14)
+    assert gas_of(facts()).thermal_wavelength(T, d) == pytest.approx(wanted, rel=1e-14, abs=0)
 
 
 def test_wavelength_of_a_massless_particle():
     """int d^3p e^{-cp/kT} = 8 pi (kT/c)^3."""
     gas = gas_of(inline(C * variable("p"), "p"))
     wanted = H / (8 * math.pi) ** (1 / 3) / (K_B * 4.0 / C)
-    assert gas.thermal_wavelength(4.0, 3) == pytest.approx(wanted, rel=1e-12)
+    assert gas.thermal_wavelength(4.0, 3) == pytest.approx(wanted, rel=1e-12, abs=0)
 
 
 def test_degeneracy_counts_states_but_not_wavelengths():
     one, three = gas_of(facts()), gas_of(facts(degeneracy=3.0))
     assert three.momentum_measure(3).volume(1e-30) == pytest.approx(
-        3 * one.momentum_measure(3).volume(1e-30), rel=1e-15
+        3 * one.momentum_measure(3).volume(1e-30), rel=1e-15, abs=0
     )
     assert three.thermal_wavelength(1e-6, 3) == one.thermal_wavelength(1e-6, 3)
     assert three.local_density(-1e-31, 1e-7, 3) == pytest.approx(
-        3 * one.local_density(-1e-31, 1e-7, 3), rel=1e-15
+        3 * one.local_density(-1e-31, 1e-7, 3), rel=1e-15, abs=0
     )
 
 
 def test_levels_leave_the_other_directions_free():
     gas = gas_of(facts(dispersion="trapped", parameters={"omega_x": 1e3, "omega_z": 2e3}))
-    assert gas.quanta == pytest.approx((1e3 * HBAR, 2e3 * HBAR), rel=1e-15)
+    assert gas.quanta == pytest.approx((1e3 * HBAR, 2e3 * HBAR), rel=1e-15, abs=0)
     wanted = gas_of(facts()).momentum_measure(1).volume(1e-30)
-    assert gas.momentum_measure(1).volume(1e-30) == pytest.approx(wanted, rel=1e-15)
+    assert gas.momentum_measure(1).volume(1e-30) == pytest.approx(wanted, rel=1e-15, abs=0)
 
 
 def test_all_directions_held_leave_one_state_for_each_spin():
@@ -76,7 +76,7 @@ def test_antiparticles_count_against_particles():
     assert gas.local_density(middle, 300.0, 3) == 0
     alone = gas_of(facts(mass=m, dispersion="relativistic"))
     assert gas.local_pressure(middle, 300.0, 3) == pytest.approx(
-        2 * alone.local_pressure(middle, 300.0, 3), rel=1e-14
+        2 * alone.local_pressure(middle, 300.0, 3), rel=1e-14, abs=0
     )
 
 
@@ -84,7 +84,9 @@ def test_least_value_of_an_inline_energy_counts_as_zero():
     p = variable("p")
     low, high = (gas_of(inline(p**2 / (2 * M) + shift, "p")) for shift in (0.0, 7e-29))
     E = np.array([1e-32, 1e-30, 1e-28])
-    assert high.momentum_measure(3).volume(E) == pytest.approx(low.momentum_measure(3).volume(E), rel=1e-9)
+    assert high.momentum_measure(3).volume(E) == pytest.approx(
+        low.momentum_measure(3).volume(E), rel=1e-9, abs=0
+    )
 
 
 @pytest.mark.parametrize(
@@ -151,10 +153,10 @@ def test_all_valleys_of_a_zone_count():
     edge = math.pi * 1e-27
     energy = 1e-30 * (1 - call("cos", 2 * px / 1e-27) - 0.1 * call("cos", px / 1e-27))
     measure = gas_of(inline(energy, "px", walls=(edge - call("abs", px),))).momentum_measure(1)
-    assert measure.volume(1e-29) == pytest.approx(2 * edge / H, rel=1e-12)
+    assert measure.volume(1e-29) == pytest.approx(2 * edge / H, rel=1e-12, abs=0)
     low = 1.5e-31 / 1e-30  # in units of the band, above the least value: cos 2q + 0.1 cos q > 0.95
     inner = brentq(lambda q: math.cos(2 * q) + 0.1 * math.cos(q) - (1.1 - low), 0, 1)
-    assert measure.volume(1.5e-31) == pytest.approx(2 * inner * 1e-27 / H, rel=1e-9)
+    assert measure.volume(1.5e-31) == pytest.approx(2 * inner * 1e-27 / H, rel=1e-9, abs=0)
 
 
 def test_a_gas_is_frozen():

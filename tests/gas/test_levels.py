@@ -67,12 +67,12 @@ def level_by_level(statistics, quanta, eta):
 def test_sums_equal_those_over_listed_levels(statistics, quanta, eta):
     came, wanted = sums(statistics, quanta, eta), level_by_level(statistics, quanta, eta)
     for name in FIELDS:  # listed up to 60 kT: what lies above is 1e-22 of it
-        assert came[name] == pytest.approx(wanted[name], rel=1e-12 * max(1, eta**2)), name
+        assert came[name] == pytest.approx(wanted[name], rel=1e-12 * max(1, eta**2), abs=0), name
 
 
 def test_cold_bosons_keep_their_relative_accuracy():
     came = sums("bose", (300.0,), 0.0)["N"]  # kT of a three-hundredth of a quantum
-    assert came == pytest.approx(math.exp(-300), rel=1e-14)
+    assert came == pytest.approx(math.exp(-300), rel=1e-14, abs=0)
 
 
 def hot_number(x, dimensions):
@@ -89,7 +89,9 @@ def hot_number(x, dimensions):
 @pytest.mark.parametrize("dimensions", [1, 2, 3])
 @pytest.mark.parametrize("x", [1e-6, 1e-4, 1e-2])
 def test_hot_bosons_against_their_expansion(x, dimensions):
-    assert sums("bose", (x,) * dimensions, 0.0)["N"] == pytest.approx(hot_number(x, dimensions), rel=1e-12)
+    assert sums("bose", (x,) * dimensions, 0.0)["N"] == pytest.approx(
+        hot_number(x, dimensions), rel=1e-12, abs=0
+    )
 
 
 @pytest.mark.parametrize("statistics", ["bose", "fermi", "classical"])
@@ -99,7 +101,7 @@ def test_a_measure_of_levels_stands_for_levels(statistics):
     along = sums(statistics, (0.7,), -0.4)["N"]
     layers = sum(sums(statistics, (0.7,), -0.4 - 0.7 * n)["N"] for n in range(1, 60))
     grounds = along  # levels without a quantum along the other direction
-    assert both == pytest.approx(along + grounds + layers, rel=1e-12)
+    assert both == pytest.approx(along + grounds + layers, rel=1e-12, abs=0)
 
 
 @pytest.mark.parametrize(("statistics", "eta"), [("bose", -0.2), ("fermi", 6.0), ("classical", -1.0)])
@@ -109,7 +111,7 @@ def test_a_power_rest_against_its_nodes(statistics, eta, k):
     whole = Powers([(KT**-k, k)])
     came, nodes = (sums(statistics, (0.4, 1.1), eta, rest) for rest in (whole, whole.cut(300 * KT)))
     for name in FIELDS:
-        assert came[name] == pytest.approx(nodes[name], rel=1e-11), name
+        assert came[name] == pytest.approx(nodes[name], rel=1e-11, abs=0), name
 
 
 def test_free_direction_is_the_limit_of_a_soft_one():
@@ -120,7 +122,7 @@ def test_free_direction_is_the_limit_of_a_soft_one():
     free = sums("bose", (2.0,), -0.5, rest)["N"]
     half = sums("bose", (2.0,), -0.5)["N"] / 2
     lowest = sum(1 / math.expm1(0.5 + q * n) for n in range(1, 400_000))
-    assert soft - lowest == pytest.approx(free + half, rel=1e-8)
+    assert soft - lowest == pytest.approx(free + half, rel=1e-8, abs=0)
 
 
 @settings(deadline=None)
@@ -150,7 +152,7 @@ def test_arrays_broadcast():
     mu = -np.array([0.1, 1.0]) * KT
     moments = levels.moments(mu, T)
     assert moments.N.shape == (3, 2)
-    assert moments.N[2, 1] == pytest.approx(float(levels.moments(mu[1], T[2, 0]).N), rel=1e-14)
+    assert moments.N[2, 1] == pytest.approx(float(levels.moments(mu[1], T[2, 0]).N), rel=1e-14, abs=0)
 
 
 @pytest.mark.parametrize(

@@ -50,7 +50,7 @@ def unit(text: str) -> tuple[float, Dimension]:
     ],
 )
 def test_factor_and_dimension(text: str, factor: float, dimension: Dimension):
-    assert unit(text) == (pytest.approx(factor, rel=1e-15), dimension)
+    assert unit(text) == (pytest.approx(factor, rel=1e-15, abs=0), dimension)
 
 
 def test_no_symbol_can_be_taken_for_another_with_a_prefix():

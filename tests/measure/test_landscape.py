@@ -26,10 +26,10 @@ from .potentials import K_B, RB87, SR84, E, G, S, U, crossed, exp, r, rho, saggi
 def test_a_gaussian_that_sags(depth, z_min, escape, softening):
     """Rows O6 and O7 of the check list: root finding of another hand."""
     found = survey(sagging(depth))
-    assert found.bottom.position[0] == pytest.approx(z_min, rel=1e-7)
-    assert found.depth / K_B == pytest.approx(escape, rel=1e-7)
+    assert found.bottom.position[0] == pytest.approx(z_min, rel=1e-7, abs=0)
+    assert found.depth / K_B == pytest.approx(escape, rel=1e-7, abs=0)
     free = 4 * depth * K_B / 50e-6**2
-    assert math.sqrt(found.bottom.curvatures[0] / free) == pytest.approx(softening, rel=1e-7)
+    assert math.sqrt(found.bottom.curvatures[0] / free) == pytest.approx(softening, rel=1e-7, abs=0)
     assert "towards -z" in found.escape.words
 
 
@@ -37,7 +37,7 @@ def test_the_sag_of_a_harmonic_trap():
     """Row O4: g/w^2 at 100 Hz; frequencies are exact."""
     omega = 2 * math.pi * 100
     found = survey(Field(("x", "y", "z"), RB87 / 2 * omega**2 * (x**2 + y**2 + 4 * z**2) + RB87 * 4 * G * z))
-    assert found.bottom.position[2] == pytest.approx(-24.8405346392e-6, rel=1e-10)
+    assert found.bottom.position[2] == pytest.approx(-24.8405346392e-6, rel=1e-10, abs=0)
     wanted = RB87 * omega**2 * np.array([1, 1, 4])
     np.testing.assert_allclose(found.bottom.curvatures, wanted, rtol=1e-13)
     assert found.escape is None
@@ -77,15 +77,15 @@ def _strontium_pass(power=1.5, waist=55e-6):
 def test_crossed_beams_leak_over_an_arm():
     depth, arm = _strontium_pass()
     found = survey(crossed())
-    assert found.depth == pytest.approx(depth, rel=1e-10)
-    assert max(map(abs, found.escape.position[:2])) == pytest.approx(arm, rel=1e-4)
+    assert found.depth == pytest.approx(depth, rel=1e-10, abs=0)
+    assert max(map(abs, found.escape.position[:2])) == pytest.approx(arm, rel=1e-4, abs=0)
     assert found.error <= 1e-8
 
 
 @pytest.mark.parametrize("field", [crossed(gravity=0), single(0)], ids=["crossed", "single"])
 def test_without_gravity_a_beam_leaks_at_infinity(field):
     found = survey(field)
-    assert found.depth == pytest.approx(-found.bottom.value, rel=1e-12)
+    assert found.depth == pytest.approx(-found.bottom.value, rel=1e-12, abs=0)
     assert found.escape.position is None
     assert "at infinity" in found.escape.words
 
@@ -104,7 +104,7 @@ def test_turning_the_trap_changes_nothing(field, seed):
     frame = Rotation.random(random_state=seed).as_matrix()
     shift = tuple(2e-6 * np.random.default_rng(seed).standard_normal(3))
     straight, oblique = survey(field), survey(turned(field, frame.tolist(), shift))
-    assert oblique.depth == pytest.approx(straight.depth, rel=1e-9)
+    assert oblique.depth == pytest.approx(straight.depth, rel=1e-9, abs=0)
     np.testing.assert_allclose(oblique.bottom.curvatures, straight.bottom.curvatures, rtol=1e-9)
     place = frame.T @ np.array(straight.bottom.position) + shift
     np.testing.assert_allclose(oblique.bottom.position, place, atol=1e-13)
@@ -112,7 +112,7 @@ def test_turning_the_trap_changes_nothing(field, seed):
 
 def test_scaling_all_lengths_scales_the_landscape():
     small, large = survey(crossed(waist=55e-6)), survey(crossed(1.5 * 100**2, 55e-4, G / 100))
-    assert large.bottom.position[2] == pytest.approx(100 * small.bottom.position[2], rel=0.2)
+    assert large.bottom.position[2] == pytest.approx(100 * small.bottom.position[2], rel=0.2, abs=0)
     assert large.holds
 
 
@@ -168,8 +168,8 @@ def test_what_holds_nothing_says_why(field, words):
 
 def test_both_halves_of_a_double_well_count():
     found = survey(Field(("x",), E * ((x / S) ** 4 - 2 * (x / S) ** 2)))
-    assert sorted(m.position[0] for m in found.minima) == pytest.approx([-S, S], rel=1e-14)
-    assert [m.value for m in found.minima] == pytest.approx([-E, -E], rel=1e-14)
+    assert sorted(m.position[0] for m in found.minima) == pytest.approx([-S, S], rel=1e-14, abs=0)
+    assert [m.value for m in found.minima] == pytest.approx([-E, -E], rel=1e-14, abs=0)
 
 
 def test_a_well_beyond_the_escape_does_not_count():
@@ -203,7 +203,7 @@ def test_a_side_guide_of_a_wire():
     bx, by = bias - strength * y / (x**2 + y**2), strength * x / (x**2 + y**2)
     found = survey(Field(("x", "y"), moment * call("sqrt", bx**2 + by**2 + ioffe**2)))
     assert found.bottom.position == pytest.approx((0, strength / bias), abs=1e-14)
-    assert found.depth == pytest.approx(moment * (math.hypot(bias, ioffe) - ioffe), rel=1e-10)
+    assert found.depth == pytest.approx(moment * (math.hypot(bias, ioffe) - ioffe), rel=1e-10, abs=0)
 
 
 _SLOPE = -E * exp(-2 * (x**2 + y**2) / S**2) - 0.05 * E * x / S
@@ -225,7 +225,7 @@ def test_passes_on_a_wall(height, lean):
     options = {"xatol": 1e-12}
     low = minimize_scalar(line, bounds=(-0.5, 0.6), method="bounded", options=options).fun
     high = minimize_scalar(lambda u: -line(u), bounds=(0.8, 2.9), method="bounded", options=options).fun
-    assert survey(Field(("x", "y"), _SLOPE, wall)).depth / E == pytest.approx(-high - low, rel=1e-9)
+    assert survey(Field(("x", "y"), _SLOPE, wall)).depth / E == pytest.approx(-high - low, rel=1e-9, abs=0)
 
 
 def test_walls_that_close_the_way_out_leave_no_escape():
@@ -273,5 +273,5 @@ def test_a_lattice_inside_a_gaussian_leaks_over_its_first_barrier():
     options = {"xatol": 1e-13}
     high = -minimize_scalar(lambda u: -line(u), bounds=(-0.14, -0.11), method="bounded", options=options).fun
     low = minimize_scalar(line, bounds=(-0.05, 0.05), method="bounded", options=options).fun
-    assert found.depth / E == pytest.approx(high - low, rel=1e-10)
+    assert found.depth / E == pytest.approx(high - low, rel=1e-10, abs=0)
     assert len(found.minima) == 1

@@ -24,9 +24,9 @@ def _trap(formula, coordinates=("x", "y", "z"), e_max=None, walls=(), mass=MASS)
 
 def test_a_harmonic_trap():
     place = _trap(MASS / 2 * OMEGA**2 * (x**2 + 4 * y**2 + 9 * (z - 1e-5) ** 2) + 3e-30)
-    assert place.frequencies == pytest.approx((100, 200, 300), rel=1e-13)
+    assert place.frequencies == pytest.approx((100, 200, 300), rel=1e-13, abs=0)
     assert place.r_min == pytest.approx((0, 0, 1e-5), abs=1e-18)
-    assert place.v_min == pytest.approx(3e-30, rel=1e-12)
+    assert place.v_min == pytest.approx(3e-30, rel=1e-12, abs=0)
     assert (place.dimension, place.depth, place.escape_words) == (
         3,
         math.inf,
@@ -36,7 +36,7 @@ def test_a_harmonic_trap():
 
 def test_e_max_is_the_depth_where_it_is_lower():
     v = 1e-28 * (1 - call("exp", -(x**2) / 1e-10)) * constant(1)
-    assert _trap(v, ("x",)).depth == pytest.approx(1e-28, rel=1e-12)
+    assert _trap(v, ("x",)).depth == pytest.approx(1e-28, rel=1e-12, abs=0)
     cut = _trap(v, ("x",), e_max=3e-29)
     assert (cut.depth, cut.escape_words) == (3e-29, "over E_max")
 
@@ -61,8 +61,8 @@ def test_frequencies_ask_for_a_mass():
 
 def test_a_ring_counts_its_level_direction_as_zero():
     place = _trap(MASS / 2 * OMEGA**2 * (rho - 1e-5) ** 2, ("rho",))
-    assert place.frequencies == pytest.approx((0, 100), rel=1e-12)
-    assert (place.dimension, place.r_min[0]) == (2, pytest.approx(1e-5, rel=1e-12))
+    assert place.frequencies == pytest.approx((0, 100), rel=1e-12, abs=0)
+    assert (place.dimension, place.r_min[0]) == (2, pytest.approx(1e-5, rel=1e-12, abs=0))
 
 
 def test_boxes():
@@ -95,7 +95,7 @@ def test_any_density_is_summed():
     place = place_of(StatesFacts("s", 1e40 * energy**0.5 * call("exp", energy / 1e-30), None, None, None))
     for top in (1e-31, 1e-30, 3e-30):
         wanted = mpmath.quad(lambda e: 1e40 * mpmath.sqrt(e) * mpmath.exp(e / 1e-30), [0, top])
-        assert float(place.measure.volume(top)) == pytest.approx(float(wanted), rel=1e-10)
+        assert float(place.measure.volume(top)) == pytest.approx(float(wanted), rel=1e-10, abs=0)
 
 
 def test_an_anchor_fixes_the_scale():
@@ -104,7 +104,7 @@ def test_an_anchor_fixes_the_scale():
     ((coefficient, exponent),) = place.measure.powers()
     kT = 1.380649e-23 * 90e-9
     number = coefficient * exponent * mpmath.gamma(1.65) * mpmath.zeta(1.65) * kT**1.65
-    assert float(number) == pytest.approx(3e5, rel=1e-13)
+    assert float(number) == pytest.approx(3e5, rel=1e-13, abs=0)
 
 
 @pytest.mark.parametrize(
@@ -127,5 +127,5 @@ def test_the_measure_of_a_trap_ends_at_its_top():
     place = _trap(MASS / 2 * OMEGA**2 * (x**2 + y**2 + z**2), e_max=1e-29)
     assert isinstance(place, TrapPlace)
     radius = math.sqrt(2 * 5e-30 / MASS) / OMEGA
-    assert float(place.measure.volume(5e-30)) == pytest.approx(4 / 3 * math.pi * radius**3, rel=1e-12)
+    assert float(place.measure.volume(5e-30)) == pytest.approx(4 / 3 * math.pi * radius**3, rel=1e-12, abs=0)
     assert place.measure.top == 1e-29

@@ -19,7 +19,7 @@ def test_shape_change_of_a_classical_gas(before, after, gain):
     """PSD_f/PSD_i = exp(delta_f - delta_i), delta = 3/p (Pinkse et al., Phys. Rev. Lett. 78, 990, 1997)."""
     start = power_trap(before, CLASSICAL).state(N=1e5, T=1e-6)
     end = power_trap(after, CLASSICAL).brought_from(start)
-    assert pytest.approx(gain, rel=1e-11) == end.PSD / start.PSD
+    assert pytest.approx(gain, rel=1e-11, abs=0) == end.PSD / start.PSD
 
 
 @pytest.mark.parametrize(
@@ -30,7 +30,7 @@ def test_condensing_by_a_shape_change(before, after, fraction):
     """From T_c: N_0/N = 1 - S_i/S_f with the critical entropies of `test_traps`."""
     start = power_trap(before)
     end = power_trap(after).brought_from(start, N=1e5, T=start.T_c(N=1e5))
-    assert end.f_0 == pytest.approx(fraction, rel=1e-10)
+    assert end.f_0 == pytest.approx(fraction, rel=1e-10, abs=0)
 
 
 def test_scale_change_keeps_the_phase_space():
@@ -39,9 +39,9 @@ def test_scale_change_keeps_the_phase_space():
     T = weak.T_c(N=1e5) * np.array([0.2, 0.9, 1.1, 3.0])
     start = weak.state(N=1e5, T=T)
     end = tight.brought_from(start)
-    assert pytest.approx(8 * T, rel=1e-11) == end.T
-    assert end.f_0 == pytest.approx(start.f_0, rel=1e-10)
-    assert pytest.approx(start.PSD, rel=1e-10) == end.PSD
+    assert pytest.approx(8 * T, rel=1e-11, abs=0) == end.T
+    assert end.f_0 == pytest.approx(start.f_0, rel=1e-10, abs=0)
+    assert pytest.approx(start.PSD, rel=1e-10, abs=0) == end.PSD
 
 
 TRUNCATED = [
@@ -62,10 +62,10 @@ def test_truncated_boltzmann_gas(p, eta, fraction, energy):
     V = f"V(r) = 1e-30 J * (r/(1 um))^{p}"
     whole, cut = held(V, CLASSICAL), held(f"{V}\n{top}", CLASSICAL)
     mu = -3e-29
-    assert pytest.approx(fraction, rel=1e-11) == cut.state(mu=mu, T=T).N / whole.state(mu=mu, T=T).N
+    assert pytest.approx(fraction, rel=1e-11, abs=0) == cut.state(mu=mu, T=T).N / whole.state(mu=mu, T=T).N
     state = cut.state(N=1e5, T=T)
-    assert pytest.approx(energy, rel=2e-12) == state.U / (1e5 * K_B * T)
-    assert state.eta == pytest.approx(eta, rel=1e-12)
+    assert pytest.approx(energy, rel=2e-12, abs=0) == state.U / (1e5 * K_B * T)
+    assert state.eta == pytest.approx(eta, rel=1e-12, abs=0)
 
 
 def test_spilling_is_told():

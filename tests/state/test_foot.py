@@ -16,12 +16,12 @@ def test_means_of_one_over_t(k):
     with mpmath.workdps(30):
         one = [float(mpmath.hyp2f1(1, k, k + 1, -1 / mpmath.mpf(a)) / a) for a in A]
         two = [float(mpmath.hyp2f1(2, k, k + 1, -1 / mpmath.mpf(a)) / mpmath.mpf(a) ** 2) for a in A]
-    assert first == pytest.approx(one, rel=2e-13)
-    assert second == pytest.approx(two, rel=2e-12)
+    assert first == pytest.approx(one, rel=2e-13, abs=0)
+    assert second == pytest.approx(two, rel=2e-12, abs=0)
 
 
 @pytest.mark.parametrize("k", [1.5, 2.0, 3.0])
 def test_limits_at_saturation(k):
     first, second = foot_means(k, np.zeros(1))
-    assert first[0] == pytest.approx(k / (k - 1), rel=1e-14)
-    assert second[0] == (pytest.approx(k / (k - 2), rel=1e-13) if k > 2 else np.inf)
+    assert first[0] == pytest.approx(k / (k - 1), rel=1e-14, abs=0)
+    assert second[0] == (pytest.approx(k / (k - 2), rel=1e-13, abs=0) if k > 2 else np.inf)

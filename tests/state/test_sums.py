@@ -29,7 +29,7 @@ def test_nodes_of_bosons_agree_with_closed_forms(terms, name):
     some = asked(terms)
     closed = ClosedBose(Powers(terms)).sums(ALPHA[some], KT[some])
     nodes = NodeBose(Powers(terms)).sums(ALPHA[some], KT[some])
-    assert getattr(nodes, name) == pytest.approx(getattr(closed, name), rel=1e-12)
+    assert getattr(nodes, name) == pytest.approx(getattr(closed, name), rel=1e-12, abs=0)
 
 
 @pytest.mark.parametrize("terms", TERMS)
@@ -40,7 +40,7 @@ def test_nodes_of_a_sampled_measure(terms):
     sampled = Sampled(powers.volume, powers.exponent, scale=1.0, route="function")
     closed, nodes = (e.sums(ALPHA[some], KT[some]) for e in (ClosedBose(powers), NodeBose(sampled)))
     for name in NAMES:
-        assert getattr(nodes, name) == pytest.approx(getattr(closed, name), rel=1e-11)
+        assert getattr(nodes, name) == pytest.approx(getattr(closed, name), rel=1e-11, abs=0)
 
 
 @pytest.mark.parametrize("terms", TERMS)
@@ -51,9 +51,9 @@ def test_steps_of_fermions_agree_with_closed_forms(terms):
     steps = StepFermi(Powers(terms))
     steps.closed = None
     for name in ("N", "U", "Y", "B0"):
-        assert getattr(steps.sums(-eta, kT), name) == pytest.approx(getattr(closed, name), rel=1e-12)
+        assert getattr(steps.sums(-eta, kT), name) == pytest.approx(getattr(closed, name), rel=1e-12, abs=0)
     for name in ("S", "B1", "B2"):  # differences in the closed form
-        assert getattr(steps.sums(-eta, kT), name) == pytest.approx(getattr(closed, name), rel=1e-11)
+        assert getattr(steps.sums(-eta, kT), name) == pytest.approx(getattr(closed, name), rel=1e-11, abs=0)
 
 
 @pytest.mark.parametrize("eta", [30.0, 1e3, 1e7, 1e11])
@@ -65,12 +65,12 @@ def test_degenerate_fermions(eta, sampled):
         measure = Sampled(measure.volume, 3.0, scale=1.0, route="function")
     sums = StepFermi(measure).sums(np.array([-eta]), np.ones(1))
     pi2 = np.pi**2
-    assert pytest.approx(eta**3 + pi2 * eta, rel=1e-13) == sums.N
-    assert pytest.approx(0.75 * eta**4 + 1.5 * pi2 * eta**2 + 7 * pi2**2 / 20, rel=1e-13) == sums.U
-    assert pytest.approx(pi2 * eta**2 + 7 * pi2**2 / 15, rel=1e-12) == sums.S
-    assert pytest.approx(3 * eta**2 + pi2, rel=1e-13) == sums.B0
+    assert pytest.approx(eta**3 + pi2 * eta, rel=1e-13, abs=0) == sums.N
+    assert pytest.approx(0.75 * eta**4 + 1.5 * pi2 * eta**2 + 7 * pi2**2 / 20, rel=1e-13, abs=0) == sums.U
+    assert pytest.approx(pi2 * eta**2 + 7 * pi2**2 / 15, rel=1e-12, abs=0) == sums.S
+    assert pytest.approx(3 * eta**2 + pi2, rel=1e-13, abs=0) == sums.B0
     assert (
-        pytest.approx(2 * pi2 * eta, rel=1e-12 + 1e-15 * eta) == sums.B1
+        pytest.approx(2 * pi2 * eta, rel=1e-12 + 1e-15 * eta, abs=0) == sums.B1
     )  # the two sides of the step cancel
 
 
@@ -92,9 +92,9 @@ def test_below_an_escape_energy(statistics, alpha, top):
             return f(x) * (1 + x + alpha)
         return -f(x) * mpmath.log(f(x)) - sign * (1 - sign * f(x)) * mpmath.log(1 - sign * f(x))
 
-    assert sums.N[0] == pytest.approx(integral(f), rel=1e-12)
-    assert sums.U[0] == pytest.approx(integral(lambda x: x * f(x)), rel=1e-12)
-    assert sums.S[0] == pytest.approx(integral(entropy), rel=1e-12)
+    assert sums.N[0] == pytest.approx(integral(f), rel=1e-12, abs=0)
+    assert sums.U[0] == pytest.approx(integral(lambda x: x * f(x)), rel=1e-12, abs=0)
+    assert sums.S[0] == pytest.approx(integral(entropy), rel=1e-12, abs=0)
 
 
 @settings(max_examples=40, deadline=None)
@@ -113,10 +113,10 @@ def test_second_derivatives(statistics, alpha, exponent, top):
     mu = -alpha + np.array([0.0, h, -h, 0.0, 0.0]) * alpha
     kT = 1.0 + np.array([0.0, 0.0, 0.0, h, -h])
     s = ensemble.sums(-mu / kT, kT)
-    assert (s.N[1] - s.N[2]) / (2 * h * alpha) == pytest.approx(s.B0[0], rel=1e-5)
-    assert (s.N[3] - s.N[4]) / (2 * h) == pytest.approx(s.B1[0], rel=1e-5)
-    assert (s.S[3] - s.S[4]) / (2 * h) == pytest.approx(s.B2[0], rel=1e-5)
-    assert s.S[0] == pytest.approx(s.Y[0] + s.U[0] + alpha * s.N[0], rel=1e-11)
+    assert (s.N[1] - s.N[2]) / (2 * h * alpha) == pytest.approx(s.B0[0], rel=1e-5, abs=0)
+    assert (s.N[3] - s.N[4]) / (2 * h) == pytest.approx(s.B1[0], rel=1e-5, abs=0)
+    assert (s.S[3] - s.S[4]) / (2 * h) == pytest.approx(s.B2[0], rel=1e-5, abs=0)
+    assert s.S[0] == pytest.approx(s.Y[0] + s.U[0] + alpha * s.N[0], rel=1e-11, abs=0)
 
 
 def test_nothing_comes_of_nothing():
