@@ -41,7 +41,8 @@ class OnLevels(Ensemble):
     @property
     def error(self) -> float:
         """See `Ensemble.error`."""
-        return self.levels.rest.error + 4000 * EPS
+        # The entropy of degenerate fermions is a difference of two numbers mu/kT times as large: room for 1e3.
+        return self.levels.rest.error + (5e6 if self.statistics == "fermi" else 4000) * EPS
 
     @property
     def condenses(self) -> bool:
