@@ -1,8 +1,9 @@
 """eoscore: where a quantum gas condenses in a given trap, and in what state it is.
 
 The front door is narrow. `load` and `loads` read a Tarn text into a `Lab`, which answers the text's own
-questions and hands out its gases and places; `bose` and `fermi` are the functions behind every number; all errors
-descend from `EoscoreError`. Quantities are SI floats, arrays are NumPy's.
+questions and hands out its gases and places; `dataset` makes labelled arrays of an answer; `bose` and `fermi` are
+the functions behind every number; all errors descend from `EoscoreError`. Quantities are SI floats, arrays are
+NumPy's.
 """
 
 from __future__ import annotations
@@ -16,6 +17,7 @@ if TYPE_CHECKING:
     from eoscore.errors import EoscoreError, NoAnswerError, PluginError, TarnError
     from eoscore.gas.bose_function import bose
     from eoscore.gas.fermi_function import fermi
+    from eoscore.show.dataset import dataset
 
 __version__ = "0.1.0"
 __all__ = [
@@ -25,6 +27,7 @@ __all__ = [
     "PluginError",
     "TarnError",
     "bose",
+    "dataset",
     "fermi",
     "load",
     "loads",
@@ -38,6 +41,7 @@ _ROOMS = {
     "PluginError": "eoscore.errors",
     "TarnError": "eoscore.errors",
     "bose": "eoscore.gas.bose_function",
+    "dataset": "eoscore.show.dataset",
     "fermi": "eoscore.gas.fermi_function",
     "load": "eoscore.answer.lab",
     "loads": "eoscore.answer.lab",

@@ -94,9 +94,10 @@ class Run:
         if self.help.executor is not None:
             return shared(self.help.executor, self.recipe, index, waiting, self._keep)
         question = self.program.questions[index]
+        cautions = asking.cautions_over(self.program, question, self.held)  # first, as in every worker
         for chunk in waiting:
             self._keep(chunk, asking.piece_of(self.program, chunk.of(question), self.held, question))
-        return asking.cautions_over(self.program, question, self.held)
+        return cautions
 
     def _waiting(self, index: int) -> list[Chunk]:
         return [chunk for chunk in self.chunks[index] if chunk not in self._pieces]

@@ -52,12 +52,18 @@ def _known(recipe: Recipe) -> tuple[Program, HeldGases]:
     return recipe.program(), HeldGases()
 
 
+@lru_cache(maxsize=1)
+def _cautions(recipe: Recipe, index: int) -> tuple[Caution, ...]:
+    """The cautions of a grid, once for each process.
+
+    The ends of the grid are asked before its chunks: the error of a measure is that of the energies asked so far.
+    """
+    program, held = _known(recipe)
+    return cautions_over(program, program.questions[index], held)
+
+
 def _piece(recipe: Recipe, chunk: Chunk) -> Piece:
+    _cautions(recipe, chunk.question)
     program, held = _known(recipe)
     question = program.questions[chunk.question]
     return piece_of(program, chunk.of(question), held, question)
-
-
-def _cautions(recipe: Recipe, index: int) -> tuple[Caution, ...]:
-    program, held = _known(recipe)
-    return cautions_over(program, program.questions[index], held)

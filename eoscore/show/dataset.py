@@ -4,14 +4,17 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING, Any
 
+import numpy as np
+
 from eoscore.errors import EoscoreError
 
 if TYPE_CHECKING:
     from pathlib import Path
 
     import xarray
+    from numpy.typing import NDArray
 
-    from eoscore.answer.record import Finding, FoundAnswer, Report
+    from eoscore.answer.record import Finding, FoundAnswer
 
 __all__ = ["MissingExtraError", "dataset", "write_netcdf"]
 
@@ -27,8 +30,11 @@ class MissingExtraError(EoscoreError, ImportError):
         super().__init__(f"{wanted} is not installed; pip install 'eoscore[{extra}]' brings it")
 
 
-def dataset(answer: FoundAnswer, file: str = "<text>") -> xarray.Dataset:
+def dataset(answer: FoundAnswer) -> xarray.Dataset:
     """One question as a Dataset: dimensions named as in `over`, SI units in the attribute `units`.
+
+    Its attributes hold the file's name and text, the question and the version. Where a quantity has points without
+    a value, `NAME_why` is 0 at points with one, else the number of the attribute `why_1`, `why_2`... with the words.
 
     Raises
     ------
@@ -47,12 +53,18 @@ def dataset(answer: FoundAnswer, file: str = "<text>") -> xarray.Dataset:
     coordinates = {
         name: ((name,), values, {"units": answer.over_units[name]}) for name, values in answer.over.items()
     }
-    about = {"file": file, "question": answer.question, "version": f"eoscore {__version__}"}
+    about = {
+        "file": answer.file,
+        "line": answer.line,
+        "question": answer.question,
+        "version": f"eoscore {__version__}",
+        "text": answer.text,
+    }
     given = {f"given_{name}": f"{value.value!r} {value.unit}" for name, value in answer.given.items()}
     return xarray.Dataset(variables, coordinates, about | given)
 
 
-def write_netcdf(report: Report, answer: FoundAnswer, path: Path) -> None:
+def write_netcdf(answer: FoundAnswer, path: Path) -> None:
     """Write one question's grid as netCDF 4.
 
     Raises
@@ -60,7 +72,7 @@ def write_netcdf(report: Report, answer: FoundAnswer, path: Path) -> None:
     MissingExtraError
         Where xarray or h5netcdf is not installed.
     """
-    data = dataset(answer, report.file)
+    data = dataset(answer)
     try:
         data.to_netcdf(path, engine="h5netcdf")
     except (ImportError, ValueError) as fault:
@@ -79,4 +91,16 @@ def _variables(name: str, finding: Finding, axes: tuple[str, ...]) -> dict[str, 
     }
     if finding.sigma is not None:
         variables[f"{name}_sigma"] = (dims, finding.sigma, {"units": finding.unit})
+    if finding.reasons and axes:
+        variables[f"{name}_why"] = (axes, *_reasons(finding, finding.value.shape[: len(axes)]))
     return variables
+
+
+def _reasons(finding: Finding, shape: tuple[int, ...]) -> tuple[NDArray[np.int16], dict[str, str]]:
+    """The number of the reason at every point, and the words of each number."""
+    which = np.zeros(shape, dtype=np.int16)
+    words = {}
+    for number, reason in enumerate(finding.reasons, 1):
+        which[tuple(reason.points.array.T)] = number
+        words[f"why_{number}"] = reason.text
+    return which, words

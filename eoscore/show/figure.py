@@ -52,7 +52,7 @@ def figure_of(answer: FoundAnswer) -> Figure:
         for axes in panels[:-1]:
             axes.set_xlabel("")
         figure.suptitle(fill(answer.question, 84), fontsize=8.5, color="0.1")
-        if notes := _notes(answer):
+        if notes := _notes(answer, as_map=as_map):
             figure.supxlabel(notes, fontsize=7.5, color="0.3", x=0.02, ha="left")
         figure.draw_without_rendering()  # with the look in force: texts are laid out now
     return figure
@@ -80,10 +80,10 @@ def _say_nothing(axes: Axes, name: str, finding: Finding, scales: dict[str, Scal
     )
 
 
-def _notes(answer: FoundAnswer) -> str:
+def _notes(answer: FoundAnswer, *, as_map: bool) -> str:
     """Why points are blank, and what a band means."""
     lines = []
-    if any(finding.sigma is not None for finding in answer.found.values()):
+    if not as_map and any(finding.sigma is not None for finding in answer.found.values()):
         lines.append("Bands: one standard deviation carried from the input.")
     reasons: dict[str, list[str]] = {}
     for name, finding in answer.found.items():

@@ -16,7 +16,7 @@ if TYPE_CHECKING:
 
 __all__ = ["draw_lines"]
 
-_MOST = 6  # lines in a panel
+_MOST = 6  # lines in a panel; of more, as many from the first to the last
 _DASHES = ("-", (0, (6, 2)), (0, (1.5, 1.5)), (0, (7, 2, 1.5, 2)), (0, (3, 3)), (0, (7, 2, 1.5, 2, 1.5, 2)))
 _FEW = 15  # points that are marked one by one
 
@@ -55,7 +55,9 @@ def _lines(
     spread = None if sigma is None else np.moveaxis(sigma / value.factor, along, -1)
     table = np.moveaxis(value.values, along, -1)
     others = [scale for place, scale in enumerate(over) if place != along]
-    for index in list(np.ndindex(table.shape[:-1]))[:_MOST]:
+    every = list(np.ndindex(table.shape[:-1]))
+    shown = np.unique(np.linspace(0, len(every) - 1, min(_MOST, len(every))).astype(int))
+    for index in (every[place] for place in shown):
         words = [scale.text(float(scale.values[i])) for scale, i in zip(others, index, strict=False)]
         words += [f"{value.name}, {index[-1] + 1}"] if own else []
         yield ", ".join(words) or value.name, table[index], None if spread is None else spread[index]

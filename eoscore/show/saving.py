@@ -79,4 +79,4 @@ def _write_table(report: Report, answer: FoundAnswer, path: Path, suffix: str) -
     else:
         from eoscore.show.dataset import write_netcdf
 
-        write_netcdf(report, answer, path)
+        write_netcdf(answer, path)
