@@ -14,6 +14,7 @@ from eoscore.cli.exits import guarded
 from eoscore.cli.explain import explain
 from eoscore.cli.format import format_
 from eoscore.cli.plugins import plugins
+from eoscore.cli.report import report
 from eoscore.cli.run import run
 
 __all__ = ["command", "main"]
@@ -29,7 +30,7 @@ def command() -> None:
     """
 
 
-for verb in (run, check, plugins, demo, explain, format_):
+for verb in (run, check, plugins, demo, report, explain, format_):
     command.add_command(verb)
 
 

@@ -18,7 +18,7 @@ if TYPE_CHECKING:
 
     from eoscore.answer.record import FoundAnswer
 
-__all__ = ["Column", "grid_columns", "grid_table", "hidden_rows"]
+__all__ = ["Column", "grid_columns", "grid_rows", "grid_table", "hidden_rows"]
 
 _ROWS = 40  # more rows than this are cut in the middle
 
@@ -49,18 +49,24 @@ def grid_columns(answer: FoundAnswer) -> Iterator[Column]:
 
 def grid_table(answer: FoundAnswer) -> Table:
     """The grid for a screen: one prefix per column, cut in the middle where it is long."""
-    parts = list(grid_columns(answer))
-    shown = _shown(parts[0].values.size)
-    heads, texts = zip(*(_written_column(part, shown) for part in parts), strict=True)
+    heads, rows = grid_rows(answer)
     table = columns(*heads)
     for column in table.columns:
         column.justify = "right"
-    rows = list(zip(*texts, strict=True))
-    for place, row in enumerate(rows):
-        if place == _ROWS // 2 and hidden_rows(answer):
-            table.add_row(*["…"] * len(parts))
+    for row in rows:
         table.add_row(*row)
     return table
+
+
+def grid_rows(answer: FoundAnswer) -> tuple[tuple[str, ...], list[tuple[str, ...]]]:
+    """The heads and the rows of the table as texts, with a row of dots where rows are left out."""
+    parts = list(grid_columns(answer))
+    shown = _shown(parts[0].values.size)
+    heads, texts = zip(*(_written_column(part, shown) for part in parts), strict=True)
+    rows = list(zip(*texts, strict=True))
+    if hidden_rows(answer):
+        rows.insert(_ROWS // 2, ("…",) * len(parts))
+    return heads, rows
 
 
 def hidden_rows(answer: FoundAnswer) -> int:

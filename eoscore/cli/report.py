@@ -1,0 +1,68 @@
+"""`eoscore report FILE --out FILE.html`: the answers of a file as one page."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+import click
+
+from eoscore.cli.exits import ANSWERED, FAULTY
+from eoscore.cli.reading import Text
+from eoscore.errors import TarnError
+
+__all__ = ["report"]
+
+
+@click.command()
+@click.argument("file")
+@click.option(
+    "--out", type=click.Path(path_type=Path), required=True, metavar="FILE.html", help="The page to write."
+)
+@click.option("--set", "settings", multiple=True, metavar="NAME=VALUE", help='Override a parameter: "P=2 W".')
+@click.option(
+    "--accuracy",
+    type=click.FloatRange(0.0, 1.0, min_open=True, max_open=True),
+    default=1e-6,
+    show_default=True,
+    help="Relative error wanted of every number.",
+)
+@click.option(
+    "--workers", type=click.IntRange(1), default=1, show_default=True, help="Processes that share a grid."
+)
+def report(file: str, out: Path, settings: tuple[str, ...], accuracy: float, workers: int) -> int:
+    """Answer every question of FILE on one self-contained page: tables, trap, curves, formulas, source.
+
+    The page asks the network for nothing and prints well. Pictures want the extra `plot`.
+    """
+    if not out.parent.is_dir():
+        raise click.BadParameter(f"the folder {out.parent} does not exist.", param_hint="--out")
+    text = Text.of(file)
+    try:
+        page = _page(text, settings, accuracy, workers)
+    except TarnError as fault:
+        from eoscore.show.complaint import complaints_text
+
+        click.echo(complaints_text(fault.complaints), err=True)
+        return FAULTY
+    out.write_text(page, encoding="utf-8")
+    click.echo(f"wrote {out}")
+    return ANSWERED
+
+
+def _page(text: Text, settings: tuple[str, ...], accuracy: float, workers: int) -> str:
+    _require_matplotlib()
+    from eoscore.answer.record import Report
+    from eoscore.show.report.build import Input, report_page
+
+    lab = text.lab(settings)
+    answers = Report(text.name, lab.answers(accuracy=accuracy, workers=workers))
+    return report_page(Input(text.name, text.content, settings, accuracy), lab, answers)
+
+
+def _require_matplotlib() -> None:
+    from importlib.util import find_spec
+
+    if find_spec("matplotlib") is None:
+        from eoscore.show.dataset import MissingExtraError
+
+        raise MissingExtraError("matplotlib", "plot")

@@ -1,0 +1,100 @@
+"""Questions and their answers as tables with error bars, reasons and cautions."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+from eoscore.answer.record import DerivedAnswer
+from eoscore.show.grid_table import grid_rows, hidden_rows
+from eoscore.show.page import error_text
+from eoscore.show.prefix import quantity
+from eoscore.show.report.budget import budgets
+from eoscore.show.report.formulas import formulas
+from eoscore.show.report.grids import grid_picture
+from eoscore.show.report.markup import Markup, element, listed, table, together
+
+if TYPE_CHECKING:
+    from collections.abc import Iterator
+
+    from eoscore.answer.record import Answer, Caution, Finding, FoundAnswer, Report
+    from eoscore.show.report.picture import Gallery
+
+__all__ = ["HARDWARE", "answer_sections", "hardware_cautions"]
+
+# Codes of cautions about what can hurt people: they stand at the top of the page as well.
+HARDWARE = ("laser_class_4", "laser_class_3b", "coil_current", "high_voltage")
+
+
+def hardware_cautions(report: Report) -> Markup:
+    """What can hurt, once each, in a box of its own; nothing where nothing can."""
+    told: dict[str, None] = {}
+    for answer in report.answers:
+        told.update((caution.text, None) for caution in answer.cautions if caution.code in HARDWARE)
+    if not told:
+        return Markup("")
+    heading = element("h2", "Hardware that can hurt", id="hardware")
+    return element("section", heading, listed(told), class_="hardware", aria_labelledby="hardware")
+
+
+def answer_sections(report: Report, gallery: Gallery) -> Iterator[Markup]:
+    """An article for each answer, in the order asked."""
+    told: set[Caution] = set()
+    for number, answer in enumerate(report.answers, 1):
+        heading = element("h3", f"{number}. ", element("code", answer.question))
+        line = element("a", f"line {answer.line}", href=f"#L{answer.line}")
+        origin = element("p", "Asked in ", line, " of the source.", class_="origin")
+        body = formulas(answer) if isinstance(answer, DerivedAnswer) else _found(answer, gallery)
+        yield element("article", heading, origin, body, _cautions(answer, told), id=f"answer-{number}")
+        told.update(answer.cautions)
+
+
+def _found(answer: FoundAnswer, gallery: Gallery) -> Markup:
+    if answer.over:
+        heads, rows = grid_rows(answer)
+        hidden = hidden_rows(answer)
+        summary = f"The numbers ({hidden} rows in the middle left out)" if hidden else "The numbers"
+        points = element("details", element("summary", summary), table(answer.question, heads, rows))
+        return together(grid_picture(answer, gallery), points, _reasons(answer), _notes(answer))
+    rows = [(element("code", name), *_cells(finding)) for name, finding in answer.found.items()]
+    heads = ("quantity", "value", "numerical error", "route")
+    return together(table(answer.question, heads, rows), _reasons(answer), _notes(answer), budgets(answer))
+
+
+def _cells(finding: Finding) -> tuple[str, str, str]:
+    if finding.reasons and finding.value.ndim == 0:
+        return f"no value: {finding.why}", "", finding.route
+    values = finding.value.reshape(-1).tolist()
+    sigmas = [None] * len(values) if finding.sigma is None else finding.sigma.reshape(-1).tolist()
+    shown = (_with_error_bar(v, finding.unit, s) for v, s in zip(values, sigmas, strict=True))
+    return ", ".join(shown), error_text(finding), finding.route
+
+
+def _with_error_bar(value: float, unit: str, sigma: float | None) -> str:
+    """`703(14) nK`, in the concise notation of the SI Brochure that the file itself uses."""
+    return quantity(value, unit, sigma).replace("-", "\N{MINUS SIGN}", value < 0.0)
+
+
+def _reasons(answer: FoundAnswer) -> Markup:
+    told: dict[str, list[str]] = {}
+    for name, finding in answer.found.items():
+        for reason in finding.reasons if answer.over or finding.value.ndim else ():
+            points = f"{name} at {len(reason.points)} points" if answer.over else name
+            told.setdefault(reason.text, []).append(points)
+    return listed(f"{', '.join(names)}: no value, because {why}" for why, names in told.items())
+
+
+def _notes(answer: FoundAnswer) -> Markup:
+    return listed(f"{name}: {finding.note}" for name, finding in answer.found.items() if finding.note)
+
+
+def _cautions(answer: Answer, told: set[Caution]) -> Markup:
+    """Cautions in full where they come first, by their codes where they were told before."""
+    items = [
+        together(element("b", f"Caution ({caution.code}): "), caution.text)
+        for caution in answer.cautions
+        if caution not in told
+    ]
+    again = [caution.code for caution in answer.cautions if caution in told]
+    if again:
+        items.append(together(f"Cautions as above: {', '.join(again)}"))
+    return listed(items, class_="cautions")

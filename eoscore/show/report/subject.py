@@ -1,0 +1,105 @@
+"""What the pictures of a page are about: each gas in each place that is asked for, with a number and a temperature."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from eoscore.errors import EoscoreError, NoAnswerError
+from eoscore.place import TrapPlace
+
+if TYPE_CHECKING:
+    from collections.abc import Iterator
+
+    from eoscore.answer.lab import Lab
+    from eoscore.language.question import Question
+    from eoscore.state import HeldGas, State
+
+__all__ = ["Subject", "subjects"]
+
+
+@dataclass
+class Subject:
+    """A gas held in a place, or the reason why it is not; SI numbers of the first questions that give them."""
+
+    gas: str
+    place: str | None
+    held: HeldGas | None
+    why: str = ""
+    given: dict[str, float] = field(default_factory=dict)
+
+    @property
+    def name(self) -> str:
+        """`strontium in crossed`."""
+        return self.gas if self.place is None else f"{self.gas} in {self.place}"
+
+    @property
+    def number(self) -> str | None:
+        """The name of the number that is given: `N`, or the density `n`."""
+        return next((name for name in ("N", "n") if name in self.given), None)
+
+    @property
+    def trap(self) -> TrapPlace | None:
+        """The place where it has a potential."""
+        place = None if self.held is None else self.held.place
+        return place if isinstance(place, TrapPlace) else None
+
+    def read(self, name: str, **given: float) -> float | None:
+        """One number of the held gas; None where it has no answer."""
+        if self.held is None:
+            return None
+        try:
+            value = np.asarray(self.held.find((name,), given)[name].value, dtype=float)
+        except EoscoreError:
+            return None
+        return float(value) if value.ndim == 0 and np.isfinite(value) else None
+
+    @property
+    def critical(self) -> float | None:
+        """T_c in K of the number that is given."""
+        return None if self.number is None else self.read("T_c", **{self.number: self.given[self.number]})
+
+    @property
+    def temperature(self) -> float | None:
+        """The temperature in play in K: the one given, else T_c."""
+        return self.given.get("T") or self.critical
+
+    def state(self) -> State | None:
+        """The state whose cloud is drawn: of the number at the temperature in play."""
+        if self.held is None or self.number is None or self.temperature is None:
+            return None
+        try:
+            return self.held.state(**{self.number: self.given[self.number], "T": self.temperature})
+        except NoAnswerError:
+            return None
+
+
+def subjects(lab: Lab) -> Iterator[Subject]:
+    """Every pair of a gas and a place that a question asks about, in their order."""
+    groups: dict[tuple[str, str | None], list[Question]] = {}
+    for question in lab.program.questions:
+        groups.setdefault((question.gas, question.place), []).append(question)
+    for (gas, place), questions in groups.items():
+        yield _subject(lab, gas, place, questions)
+
+
+def _subject(lab: Lab, gas: str, place: str | None, questions: list[Question]) -> Subject:
+    first = questions[0]
+    binding = lab.program.bind(gas, place, lab.program.conditions(first).values)
+    try:
+        held = lab.held.of(binding, first.dimension)
+    except NoAnswerError as fault:
+        return Subject(gas, place, None, fault.why)
+    given: dict[str, float] = {}
+    for question in questions:
+        if question.origins:
+            continue
+        told = dict(lab.program.conditions(question).given)
+        for axis in question.over:
+            if axis.thermodynamic:
+                told.setdefault(axis.name, float(axis.values[axis.points // 2]))
+        for name, value in told.items():
+            given.setdefault(name, value)
+    return Subject(gas, place, held, given=given)

@@ -1,0 +1,91 @@
+"""Which part of a trap a picture shows: up to its escape energy, or as far as the cloud reaches."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from math import inf
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from eoscore.constants import K_B
+
+if TYPE_CHECKING:
+    from collections.abc import Mapping
+
+    from numpy.typing import ArrayLike, NDArray
+
+    from eoscore.place import TrapPlace
+
+__all__ = ["View", "view_of"]
+
+_STEPS = np.geomspace(1e-9, 1.0, 400)  # m: from the size of a molecule to that of an apparatus
+_HOT = 60.0  # a trap that is deeper in kT is shown as far as the cloud reaches
+_REACH = 7.0  # kT up to which a cloud is shown
+_RADIAL = ("rho", "r")
+
+
+@dataclass(frozen=True)
+class View:
+    """The range of each coordinate in m, and the energy above the bottom in J up to which the picture goes."""
+
+    trap: TrapPlace
+    energy: float
+    ranges: tuple[tuple[float, float], ...]
+
+    def energies(self, positions: Mapping[str, ArrayLike]) -> NDArray[np.float64]:
+        """V - V_min in J at positions by coordinate; nan behind walls."""
+        return _energies(self.trap, positions)
+
+    def at_bottom(self) -> dict[str, float]:
+        """The bottom by coordinate."""
+        return dict(zip(self.trap.field.coordinates, self.trap.r_min, strict=True))
+
+    def shows(self, position: tuple[float, ...]) -> bool:
+        """Whether a point lies within the ranges."""
+        return all(low <= x <= high for x, (low, high) in zip(position, self.ranges, strict=True))
+
+
+def view_of(trap: TrapPlace, temperature: float | None) -> View | None:
+    """The view of a trap with a cloud at a temperature in K; None where no length can be told."""
+    energy = trap.top
+    if temperature is not None and energy > _HOT * K_B * temperature:
+        energy = _REACH * K_B * temperature
+    if energy == inf:
+        far = dict(zip(trap.field.coordinates, trap.r_min, strict=True))
+        far[trap.field.coordinates[0]] += 2e-5
+        energy = float(_energies(trap, far))  # no temperature is known: what lies 20 um from the bottom
+    if not np.isfinite(energy) or energy <= 0.0:
+        return None
+    reaches = [_reach(trap, place, 0.6 * energy) for place in range(len(trap.field.coordinates))]
+    known = [reach for pair in reaches for reach in pair if reach is not None]
+    if not known:
+        return None
+    ranges = []
+    for name, at, (low, high) in zip(trap.field.coordinates, trap.r_min, reaches, strict=True):
+        below, above = low or high or max(known), high or low or max(known)
+        start = 0.0 if name in _RADIAL else at - 1.5 * below
+        ranges.append((start, at + 1.5 * above))
+    return View(trap, energy, tuple(ranges))
+
+
+def _reach(trap: TrapPlace, place: int, energy: float) -> tuple[float | None, float | None]:
+    """How far from the bottom, downwards and upwards, V first rises by an energy or a wall stands; None if never."""
+    found: list[float | None] = []
+    name = trap.field.coordinates[place]
+    for sign in (-1.0, 1.0):
+        positions: dict[str, ArrayLike] = dict(zip(trap.field.coordinates, trap.r_min, strict=True))
+        positions[name] = trap.r_min[place] + sign * _STEPS
+        values = _energies(trap, positions)
+        beyond = np.flatnonzero(~(values < energy))
+        found.append(float(_STEPS[beyond[0]]) if beyond.size else None)
+    return found[0], found[1]
+
+
+def _energies(trap: TrapPlace, positions: Mapping[str, ArrayLike]) -> NDArray[np.float64]:
+    given = {name: np.asarray(x, dtype=float) for name, x in positions.items()}
+    shape = np.broadcast_shapes(*(x.shape for x in given.values()))
+    values = np.broadcast_to(np.asarray(trap.field.formula.evaluate(given)) - trap.v_min, shape).copy()
+    for wall in trap.field.walls:
+        values[~(np.broadcast_to(np.asarray(wall.evaluate(given)), shape) > 0)] = np.nan
+    return np.asarray(values)
