@@ -20,9 +20,9 @@ __all__ = ["assembled", "values_of"]
 
 
 def values_of(grid: Grid, readings: Sequence[Reading], part: str = "value") -> NDArray[np.float64]:
-    """The values (or the `error`s) of one quantity at all stops, shaped like the grid."""
+    """The values (or the `error`s, or the `scale`s) of one quantity at all stops, shaped like the grid."""
     entries, own = _entries(grid, readings), len(grid.conditions)
-    arrays = [getattr(reading, part) for reading in readings]
+    arrays = [np.abs(r.value) if (array := getattr(r, part)) is None else array for r in readings]
     if entries:  # a stop without a number has no entries of its own
         arrays = [array[..., None] if array.ndim == own else array for array in arrays]
     return np.asarray(grid.assemble(arrays, entries))
@@ -37,6 +37,7 @@ def assembled(grid: Grid, readings: Sequence[Reading]) -> Finding:
         error=values_of(grid, readings, "error"),
         route="; ".join(routes),
         reasons=tuple(_reasons(grid, readings)),
+        scale=None if all(r.scale is None for r in readings) else values_of(grid, readings, "scale"),
     )
 
 

@@ -13,7 +13,9 @@ from eoscore.answer.unit import unit_of_dimension
 from eoscore.errors import NoAnswerError
 from eoscore.language.quantities import QUANTITIES
 from eoscore.state.reading import Reason, reading_of
+from eoscore.state.scale import with_scale
 from eoscore.state.table import unit_in
+from eoscore.state.treatment import state_of
 
 if TYPE_CHECKING:
     from collections.abc import Mapping
@@ -79,12 +81,13 @@ class Chain:
         named = self._named(binding)
         try:
             held = self._held(binding, question.place, stop)
-            if not question.origins:
-                return Part(stop, binding, held, given, dict(held.find(physical, given)) | named)
-            state = self._brought(held, given, stop, values, literals)
-            arrived = {name: state.reading(name).value for name in ("N", "S")}
-            readings = {name: state.reading(name) for name in physical}
-            return Part(stop, binding, held, arrived, readings | named, state.spill)
+            if question.origins:
+                state = self._brought(held, given, stop, values, literals)
+                given = {name: state.reading(name).value for name in ("N", "S")}
+            else:
+                state = state_of(held, given)
+            readings = {name: with_scale(state, name, state.reading(name)) for name in physical}
+            return Part(stop, binding, held, given, readings | named, state.spill)
         except NoAnswerError as fault:
             return Part(stop, binding, None, given, self._without(physical, fault.why) | named)
 

@@ -39,6 +39,7 @@ def _whole(shape: tuple[int, ...], parts: Sequence[_Part]) -> Finding:
     target = (*shape, *entries)
     labels = dict.fromkeys(label for finding in findings for label in finding.budget)
     uncertain = any(finding.sigma is not None for finding in findings)
+    scaled = any(finding.scale is not None for finding in findings)
     return replace(
         findings[0],
         value=_placed(target, parts, [f.value for f in findings]),
@@ -51,6 +52,7 @@ def _whole(shape: tuple[int, ...], parts: Sequence[_Part]) -> Finding:
             for label in labels
         },
         note=next((finding.note for finding in findings if finding.note), None),
+        scale=_placed(target, parts, [_or_value(f.scale, f) for f in findings]) if scaled else None,
     )
 
 
@@ -68,6 +70,10 @@ def _placed(
 def _or_none(array: NDArray[np.float64] | None, finding: Finding) -> NDArray[np.float64]:
     """What a literal adds where it does not bear on a chunk: nothing, where there is a value."""
     return np.where(np.isfinite(finding.value), 0.0, np.nan) if array is None else array
+
+
+def _or_value(scale: NDArray[np.float64] | None, finding: Finding) -> NDArray[np.float64]:
+    return np.abs(finding.value) if scale is None else scale
 
 
 def _reasons(parts: Sequence[_Part]) -> Iterator[Reason]:

@@ -69,6 +69,7 @@ def _packed(finding: Finding, numbers: _Numbers) -> dict[str, Any]:
         "reasons": [[reason.text, numbers.put(reason.points.array)] for reason in finding.reasons],
         "budget": {label: numbers.put(share) for label, share in finding.budget.items()},
         "note": finding.note,
+        "scale": None if finding.scale is None else numbers.put(finding.scale),
     }
 
 
@@ -83,4 +84,5 @@ def _unpacked(told: Mapping[str, Any], numbers: _Numbers) -> Finding:
         reasons=tuple(Reason(text, Points(numbers.take(points))) for text, points in told["reasons"]),
         budget={label: numbers.take(share) for label, share in told["budget"].items()},
         note=told["note"],
+        scale=None if told["scale"] is None else numbers.take(told["scale"]),
     )

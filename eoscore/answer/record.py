@@ -85,7 +85,8 @@ class Finding:
     `value` is nan where there is no answer, and `reasons` say why. `error` is the absolute numerical error,
     `sigma` one standard deviation carried from the input (None where no input had one), `budget` the share of
     the variance of each uncertain literal, named as in the file. `note` says more in words: for the depth, where
-    and which way the trap leaks.
+    and which way the trap leaks. `scale` is what the error is judged by where it is larger than the value: 1 for
+    f_0, N for N_0, kT for mu.
     """
 
     value: NDArray[np.float64]
@@ -96,6 +97,7 @@ class Finding:
     reasons: tuple[Reason, ...] = ()
     budget: Mapping[str, NDArray[np.float64]] = field(default_factory=dict)
     note: str | None = None
+    scale: NDArray[np.float64] | None = None
 
     @property
     def why(self) -> str | None:
@@ -103,12 +105,14 @@ class Finding:
         return "; ".join(reason.text for reason in self.reasons) or None
 
     def worst(self) -> float:
-        """The largest relative numerical error among the points that have a value; 0 where none has."""
+        """The largest numerical error among the points that have a value, relative to it or to `scale`."""
         known = np.isfinite(self.value)
         value, error = np.abs(self.value[known]), self.error[known]
         if not value.size or not error.any():
             return 0.0
         scale = np.where(value > 0.0, value, value.max())
+        if self.scale is not None:
+            scale = np.fmax(scale, self.scale[known])
         with np.errstate(divide="ignore"):
             return float(np.max(error / scale, where=error > 0.0, initial=0.0))
 

@@ -34,6 +34,7 @@ class Reading:
 
     `value` and `error` (absolute; the true error is below it) in SI units as named by `unit`, of the shape of
     the question, with one axis more for `freq` and `r_min`; nan where `reasons` say that there is no number.
+    `scale`, of the shape of `value`, is what the error is judged by where it is larger than the value.
     """
 
     value: FloatArray
@@ -41,6 +42,7 @@ class Reading:
     unit: str
     route: str
     reasons: tuple[Reason, ...] = ()
+    scale: FloatArray | None = None
 
     @property
     def why(self) -> str | None:
