@@ -32,7 +32,7 @@ def guarded(run: Callable[[], int]) -> int:
         fault.show()
         return fault.exit_code
     except (KeyboardInterrupt, click.Abort):
-        return _say("interrupted; nothing was written", INTERRUPTED)
+        return _say("interrupted", INTERRUPTED)
     except BrokenPipeError:
         _silence(sys.stdout)
         return READER_LEFT

@@ -2,8 +2,9 @@
 
 from __future__ import annotations
 
+import glob
 from contextlib import contextmanager
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, cast
 
 import click
 
@@ -21,7 +22,7 @@ class Kept:
 
     def __init__(self, out: Path | None) -> None:
         self.path = None if out is None else out.with_name(f".{out.name}.chunks")
-        self._run: Run | None = None
+        self._out, self._run = out, cast("Run | None", None)
 
     def begin(self, run: Run) -> None:
         """Say where a run stands before its first step."""
@@ -44,9 +45,11 @@ class Kept:
             journal.path.unlink(missing_ok=True)
 
     def remove(self) -> None:
-        """Remove the file, which is not needed any more."""
-        if self.path is not None and self._run is not None and self._run.help.journal is not None:
-            self.path.unlink(missing_ok=True)
+        """Remove the file, which is not needed any more, and what runs that were killed left while they wrote."""
+        if self._out is not None and self._run is not None and self._run.help.journal is not None:
+            self._run.help.journal.path.unlink(missing_ok=True)
+            for rest in self._out.parent.glob(f".{glob.escape(self._out.stem)}*.part"):
+                rest.unlink(missing_ok=True)
 
     def _count(self) -> str:
         run = self._run

@@ -1,0 +1,82 @@
+"""V times a number: the measure is stretched, not made again, and the numbers are those of the trap itself."""
+
+from __future__ import annotations
+
+import numpy as np
+import pytest
+
+import eoscore
+from eoscore import measure
+from eoscore.formula import call, choose, constant, less, variable
+from eoscore.formula.ratio import ratio
+
+X, Y = variable("x"), variable("y")
+DIMPLE = """
+gas strontium { m = 84 u }
+trap dimple {
+    Q = 2 uK
+    E_max = 0.4*k_B*Q
+    V(x) = -k_B*Q*exp(-2*x^2/(50 um)^2)PULL
+}
+find S, depth, V_min for strontium in dimple with N = 1e3, T = 200 nK over Q = [1 uK, 2 uK, 5 uK, 9 uK]
+"""
+
+
+def well(depth):
+    return -constant(depth) * call("exp", -(X**2)) / (1 + Y**2) - depth * call("exp", -(Y**2))
+
+
+@pytest.mark.parametrize(
+    ("f", "g", "c"),
+    [
+        (well(6.0), well(2.0), 3.0),
+        (well(1.0), well(7.0), 1 / 7),
+        (2 * X + 4 * Y, X + 2 * Y, 2.0),
+        (call("sqrt", 4 * X), call("sqrt", X), 2.0),
+        (call("abs", -3 * X), call("abs", X), 3.0),
+        ((3 * X) ** 2, X**2, 9.0),
+        (choose(less(X, 1.0), 2 * X, 2 * Y), choose(less(X, 1.0), X, Y), 2.0),
+        (call("max", 2 * X, 2 * Y), call("max", X, Y), 2.0),
+    ],
+)
+def test_a_ratio_is_shown_by_structure(f, g, c):
+    assert ratio(f, g) == pytest.approx(c, rel=1e-14, abs=0)
+
+
+@pytest.mark.parametrize(
+    ("f", "g"),
+    [
+        (2 * X + 3 * Y, X + Y),
+        (call("exp", 2 * X), call("exp", X)),
+        (X + 1, X),
+        (X**2, X**3),
+        (choose(less(X, 2.0), X, Y), choose(less(X, 1.0), X, Y)),
+        (call("max", -2 * X, -2 * Y), call("max", X, Y)),
+        (constant(0.0), X),
+    ],
+)
+def test_no_ratio_is_invented(f, g):
+    assert ratio(f, g) is None
+
+
+def test_formulas_deeper_than_the_walk_are_not_compared():
+    deep = X
+    for _ in range(5000):
+        deep = call("sin", deep) + X
+    assert ratio(2 * deep, 3 * (deep + Y)) is None
+    assert ratio(2 * deep, 3 * deep) == pytest.approx(2 / 3, rel=1e-15, abs=0)
+
+
+@pytest.mark.parametrize(("pull", "measured"), [("", 1), (" + m*g_n/10*x", 4)])
+def test_a_trap_is_measured_once_unless_gravity_pulls(monkeypatch, pull, measured):
+    asked, whole = set(), measure.measure_of
+    monkeypatch.setattr(measure, "measure_of", lambda field, *a: asked.add(field) or whole(field, *a))
+    text = DIMPLE.replace("PULL", pull)
+    (answer,) = eoscore.loads(text).answers()
+    assert len(asked) == measured
+    for place, depth in enumerate("1259"):
+        alone = text.replace(" over Q = [1 uK, 2 uK, 5 uK, 9 uK]", "")
+        (single,) = eoscore.loads(alone, settings=[f"Q={depth} uK"]).answers()
+        for name, finding in single.found.items():
+            assert np.isfinite(finding.value)
+            np.testing.assert_allclose(answer.found[name].value[place], finding.value, rtol=1e-9, atol=0)
