@@ -14,11 +14,13 @@ from eoscore.show.panel_map import draw_map
 from eoscore.show.scale import Scale
 
 if TYPE_CHECKING:
+    from pathlib import Path
+
     from matplotlib.axes import Axes
 
     from eoscore.answer.record import Finding, FoundAnswer
 
-__all__ = ["figure_of"]
+__all__ = ["figure_of", "write_figure"]
 
 _FAMILY = 6  # values of one name that are drawn as lines of their own rather than as a map
 _LOOK: Any = {
@@ -38,6 +40,13 @@ _LOOK: Any = {
     "svg.hashsalt": "eoscore",  # the same question gives the same file
     "savefig.dpi": 160,
 }
+
+
+def write_figure(answer: FoundAnswer, path: Path, kind: str) -> None:
+    """Write the figure of a question as "png", "svg" or "pdf", without a date: the same answer, the same file."""
+    undated: dict[str, dict[str, Any]] = {"svg": {"Date": None}, "pdf": {"CreationDate": None}}
+    with rc_context(_LOOK):
+        figure_of(answer).savefig(path, format=kind, metadata=undated.get(kind))
 
 
 def figure_of(answer: FoundAnswer) -> Figure:

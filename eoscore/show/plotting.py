@@ -61,7 +61,7 @@ def draw(report: Report, target: Path) -> tuple[Path, ...]:
     if not answers:
         raise NothingToDrawError(report.file)
     try:
-        from eoscore.show.figure import figure_of
+        from eoscore.show.figure import write_figure
     except ImportError:
         raise MissingExtraError("matplotlib", "plot") from None
     names = [
@@ -70,9 +70,7 @@ def draw(report: Report, target: Path) -> tuple[Path, ...]:
     ]
     for answer, name in zip(answers, names, strict=True):
         with appearing(name) as path:
-            kind = target.suffix.lower().removeprefix(".")
-            undated = {"svg": {"Date": None}, "pdf": {"CreationDate": None}, "png": {}}[kind]
-            figure_of(answer).savefig(path, format=kind, metadata=undated)
+            write_figure(answer, path, target.suffix.lower().removeprefix("."))
     return tuple(names)
 
 

@@ -72,7 +72,7 @@ def test_a_scale_reads_well(values, unit, label, logarithmic):
 
 
 def test_without_a_grid_there_is_nothing_to_draw(tmp_path):
-    with pytest.raises(NothingToDrawError, match="no question of pancake.tarn has a grid"):
+    with pytest.raises(NothingToDrawError, match=r"no question of pancake\.tarn has a grid"):
         draw(report(answer({"U": finding(1.0, "J")})), tmp_path / "a.png")
 
 
