@@ -12,6 +12,7 @@ from eoscore.show.report.budget import budgets
 from eoscore.show.report.formulas import formulas
 from eoscore.show.report.grids import grid_picture
 from eoscore.show.report.markup import Markup, element, listed, table, together
+from eoscore.show.report.raised import raised
 
 if TYPE_CHECKING:
     from collections.abc import Iterator
@@ -27,13 +28,15 @@ HARDWARE = ("laser_class_4", "laser_class_3b", "coil_current", "high_voltage")
 
 def hardware_cautions(report: Report) -> Markup:
     """What can hurt, once each, in a box of its own; nothing where nothing can."""
-    told: dict[str, None] = {}
+    told: dict[str, str] = {}
     for answer in report.answers:
-        told.update((caution.text, None) for caution in answer.cautions if caution.code in HARDWARE)
+        for caution in answer.cautions:
+            if caution.code in HARDWARE:
+                told.setdefault(caution.code, caution.text)
     if not told:
         return Markup("")
     heading = element("h2", "Hardware that can hurt", id="hardware")
-    return element("section", heading, listed(told), class_="hardware", aria_labelledby="hardware")
+    return element("section", heading, listed(told.values()), class_="hardware", aria_labelledby="hardware")
 
 
 def answer_sections(report: Report, gallery: Gallery) -> Iterator[Markup]:
@@ -71,7 +74,7 @@ def _cells(finding: Finding) -> tuple[str, str, str]:
 
 def _with_error_bar(value: float, unit: str, sigma: float | None) -> str:
     """`703(14) nK`, in the concise notation of the SI Brochure that the file itself uses."""
-    return quantity(value, unit, sigma).replace("-", "\N{MINUS SIGN}", value < 0.0)
+    return raised(quantity(value, unit, sigma)).replace("-", "\N{MINUS SIGN}", value < 0.0)
 
 
 def _reasons(answer: FoundAnswer) -> Markup:

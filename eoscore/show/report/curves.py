@@ -33,7 +33,8 @@ def curve_pictures(subject: Subject, gallery: Gallery) -> Iterator[Markup]:
     if subject.held is None or middle is None:
         return
     density = subject.number == "n"
-    wide = np.geomspace(middle / 10.0, middle * 10.0, _POINTS)
+    asked = subject.temperature or middle
+    wide = np.geomspace(min(middle / 10.0, asked / 2.0), max(middle * 10.0, asked * 2.0), _POINTS)
     critical = _read(subject, "n_c" if density else "N_c", T=wide)
     if critical is not None:
         yield gallery.draw(*_critical_words(subject), _Critical(subject, wide, critical))

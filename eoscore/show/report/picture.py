@@ -63,9 +63,10 @@ def _inline(text: str, name: str, title: str) -> str:
     svg = text[text.index("<svg") :]
     svg = re.sub(r"<metadata>.*?</metadata>\s*", "", svg, flags=re.DOTALL)
     svg = re.sub(r"<!--.*?-->\s*", "", svg, flags=re.DOTALL)
-    used = set(re.findall(r'(?:href="#|url\(#)([^")]+)', svg))
-    svg = re.sub(r' id="([^"]*)"', lambda m: f' id="{name}-{m[1]}"' if m[1] in used else "", svg)
-    svg = re.sub(r'(href="#|url\(#)', rf"\g<1>{name}-", svg)
+    used = dict.fromkeys(re.findall(r'(?:href="#|url\(#)([^")]+)', svg))
+    short = {each: f"{name}-{place}" for place, each in enumerate(used)}
+    svg = re.sub(r' id="([^"]*)"', lambda m: f' id="{short[m[1]]}"' if m[1] in short else "", svg)
+    svg = re.sub(r'(href="#|url\(#)([^")]+)', lambda m: m[1] + short[m[2]], svg)
     svg = re.sub(r"xlink:href", "href", svg)
     svg = re.sub(r'(?<= d=")[^"]*', _rounded, svg)
     svg = re.sub(r'<svg [^>]*viewBox="([^"]*)"[^>]*>', _opening(name, title), svg, count=1)

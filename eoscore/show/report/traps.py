@@ -12,7 +12,8 @@ from eoscore.errors import NoAnswerError
 from eoscore.show.prefix import quantity
 from eoscore.show.report.axis import as_temperature, length
 from eoscore.show.report.picture import BLUE, INK, ORANGE
-from eoscore.show.report.view import view_of
+from eoscore.show.report.raised import raised
+from eoscore.show.report.view import views_of
 
 if TYPE_CHECKING:
     from collections.abc import Iterator
@@ -35,18 +36,18 @@ _DENSITIES = (0.02, 0.1, 0.3, 0.5, 0.7, 0.9, 1.01)  # shades, of the peak
 
 def trap_pictures(subject: Subject, gallery: Gallery) -> Iterator[Markup]:
     """A cut along every coordinate and a map of every pair, through the bottom."""
-    trap = subject.trap
-    view = None if trap is None else view_of(trap, subject.temperature)
-    if view is None:
-        return
-    cloud = _Cloud(subject, view)
-    for place, name in enumerate(view.trap.field.coordinates):
-        words = f"{_cut_words(subject, view, name)}{cloud.words}"
-        yield gallery.draw(f"{subject.name}: cut along {name}", words, _Cut(view, cloud, place))
-    for pair in combinations(range(len(view.trap.field.coordinates)), 2):
-        names = " and ".join(view.trap.field.coordinates[place] for place in pair)
-        map_ = _Map(view, cloud, pair)
-        yield gallery.draw(f"{subject.name}: map of {names}", f"{map_.words}{cloud.map_words}", map_)
+    views = [] if subject.trap is None else list(views_of(subject.trap, subject.temperature))
+    for number, view in enumerate(views):
+        cloud = _Cloud(subject, view)
+        close = " close to the cloud" if number else ""
+        names = view.trap.field.coordinates
+        for place, name in enumerate(names if not number else ()):
+            words = f"{_cut_words(subject, view, name)}{cloud.words}"
+            yield gallery.draw(f"{subject.name}: cut along {name}", words, _Cut(view, cloud, place))
+        for pair in combinations(range(len(names)), 2):
+            drawn = _Map(view, cloud, pair)
+            title = f"{subject.name}: map of {names[pair[0]]} and {names[pair[1]]}{close}"
+            yield gallery.draw(title, f"{drawn.words}{cloud.map_words}", drawn)
 
 
 class _Cloud:
@@ -65,14 +66,22 @@ class _Cloud:
             return
         order = np.argsort(profile.potential)
         self._energies, self._densities = profile.potential[order], profile.density[order]
+        diverges = not np.isfinite(self._densities).all()  # a flat gas that condenses, at the bottom
+        self._densities = np.minimum(self._densities, self._densities[np.isfinite(self._densities)].max())
         self.peak, self.kT = float(self._densities.max()), K_B * subject.temperature
         self.unit = f"m^-{view.trap.dimension}" if view.trap.dimension > 1 else "m^-1"
         of = "" if not state.f_0 else ", without the condensate, which has no width in this picture"
         self.words = (
             f" Shaded: density of the non-condensed gas at T = {quantity(subject.temperature, 'K')}{of}; "
-            f"its peak is {quantity(self.peak, self.unit)}."
+            + (
+                "it diverges at the bottom."
+                if diverges
+                else f"its peak is {raised(quantity(self.peak, self.unit))}."
+            )
         )
-        self.map_words = " Shades from light to dark: 2, 10, 30, 50, 70 and 90 % of the peak density."
+        self.map_words = (
+            " Shades: the density is above 2, 10, 30, 50, 70 and 90 % of its peak, from the rim inwards."
+        )
 
     def at(self, energies: NDArray[np.float64]) -> NDArray[np.float64]:
         """Density in m^-d where V - V_min has these values; 0 behind walls."""

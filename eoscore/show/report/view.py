@@ -11,16 +11,17 @@ import numpy as np
 from eoscore.constants import K_B
 
 if TYPE_CHECKING:
-    from collections.abc import Mapping
+    from collections.abc import Iterator, Mapping
 
     from numpy.typing import ArrayLike, NDArray
 
     from eoscore.place import TrapPlace
 
-__all__ = ["View", "view_of"]
+__all__ = ["View", "views_of"]
 
 _STEPS = np.geomspace(1e-9, 1.0, 400)  # m: from the size of a molecule to that of an apparatus
-_HOT = 60.0  # a trap that is deeper in kT is shown as far as the cloud reaches
+_HOT = 60.0  # in a trap that is deeper in kT the cloud is shown closely as well
+_DEEPEST = 3000.0  # a trap that is deeper in kT is shown as far as the cloud reaches only
 _REACH = 7.0  # kT up to which a cloud is shown
 _RADIAL = ("rho", "r")
 
@@ -46,11 +47,16 @@ class View:
         return all(low <= x <= high for x, (low, high) in zip(position, self.ranges, strict=True))
 
 
-def view_of(trap: TrapPlace, temperature: float | None) -> View | None:
-    """The view of a trap with a cloud at a temperature in K; None where no length can be told."""
-    energy = trap.top
-    if temperature is not None and energy > _HOT * K_B * temperature:
-        energy = _REACH * K_B * temperature
+def views_of(trap: TrapPlace, temperature: float | None) -> Iterator[View]:
+    """The whole trap, and the cloud at a temperature in K where it is small in there; none without a length."""
+    kT = None if temperature is None else K_B * temperature
+    if kT is None or trap.top <= _DEEPEST * kT:
+        yield from filter(None, [_view_up_to(trap, trap.top)])
+    if kT is not None and trap.top > _HOT * kT:
+        yield from filter(None, [_view_up_to(trap, _REACH * kT)])
+
+
+def _view_up_to(trap: TrapPlace, energy: float) -> View | None:
     if energy == inf:
         far = dict(zip(trap.field.coordinates, trap.r_min, strict=True))
         far[trap.field.coordinates[0]] += 2e-5

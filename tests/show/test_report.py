@@ -1,0 +1,191 @@
+"""The page of a file: whole, self-contained, linked, and readable by eye, keyboard and machine."""
+
+from __future__ import annotations
+
+import re
+from hashlib import sha256
+from pathlib import Path
+from xml.etree import ElementTree as ET
+
+import pytest
+from click.testing import CliRunner
+
+from eoscore.cli import command
+
+pytest.importorskip("matplotlib", reason="the extra `plot` is not installed")
+
+TEXT = """\
+# A bowl of strontium <above a beam>
+gas strontium {
+    isotope Sr-84
+}
+
+trap bowl {
+    P = 2 W
+    f = 120(2) Hz
+    V(x, y) = m/2*(2*pi*f)^2*(x^2 + y^2)
+    E_max = k_B*2 uK
+}
+
+trap wide {
+    V(x, y) = m/2*(2*pi*20 Hz)^2*(x^2 + y^2)
+}
+
+find freq, depth, T_c for strontium in bowl with N = 2.0(1)e5
+find f_0, kappa_T for strontium in bowl with N = 2e5, T = 100 nK
+find T_c for strontium in bowl with N = 2e5 over f = [60 Hz, 120 Hz]
+derive N_c for strontium in wide with T = 100 nK
+"""
+
+
+@pytest.fixture(scope="module")
+def page(tmp_path_factory):
+    folder = tmp_path_factory.mktemp("page")
+    (folder / "bowl.tarn").write_text(TEXT)
+    words = ["report", str(folder / "bowl.tarn"), "--out", str(folder / "bowl.html")]
+    shown = CliRunner().invoke(command, words, standalone_mode=False)
+    assert shown.return_value == 0, shown.output
+    return folder / "bowl.html"
+
+
+@pytest.fixture(scope="module")
+def text(page):
+    return page.read_text(encoding="utf-8")
+
+
+def test_the_page_asks_the_network_for_nothing(text):
+    assert not re.findall(r'(?:src|href)="(?!#|data:)[^"]*"', text)
+    assert not re.findall(r"url\((?!#)|@import|<script", text)
+
+
+def test_every_link_leads_somewhere_and_ids_are_unique(text):
+    ids = re.findall(r' id="([^"]+)"', text)
+    assert len(ids) == len(set(ids))
+    assert set(re.findall(r'href="#([^"]+)"', text)) <= set(ids)
+
+
+def test_answers_come_first_and_link_to_their_lines(text):
+    order = [text.index(f'id="{name}"') for name in ("hardware", "answers", "traps", "curves", "source")]
+    assert order == sorted(order)
+    for number, line in enumerate((17, 18, 19, 20), 1):
+        assert f'href="#L{line}"' in text
+        assert f'href="#answer-{number}"' in text
+
+
+@pytest.mark.parametrize(
+    "words",
+    [
+        "class 4",
+        "no value: ",
+        "numerical error",
+        "Uncertainty budget",
+        "<math ",
+        "How it was derived",
+        "SHA-256",
+    ],
+)
+def test_the_page_tells(text, words):
+    assert words in text
+
+
+def test_the_hash_is_that_of_the_input(text):
+    assert sha256(TEXT.encode()).hexdigest() in text
+
+
+def test_words_of_the_file_are_no_markup(text):
+    assert "<title>A bowl of strontium &lt;above a beam&gt;</title>" in text
+    assert "<above" not in text
+
+
+def test_every_picture_has_a_name_and_words(text):
+    pictures = re.findall(r"<figure>.*?</figure>", text, re.DOTALL)
+    assert len(pictures) >= 7
+    for picture in pictures:
+        name = re.search(r'aria-labelledby="([^"]+)"', picture)[1]
+        assert re.search(rf'<title id="{name}">.+?</title>', picture)
+        assert len(re.search(r"<figcaption>(.*)</figcaption>", picture, re.DOTALL)[1]) > 60
+
+
+def test_pictures_and_formulas_are_well_formed(text):
+    for part in re.findall(r"<svg .*?</svg>|<math .*?</math>", text, re.DOTALL):
+        ET.fromstring(part)  # noqa: S314  our own page
+
+
+def test_the_page_is_light(text):
+    assert len(text) < 3_000_000
+
+
+def test_the_same_input_gives_the_same_page(page, text):
+    again = page.with_name("again.html")
+    words = ["report", str(page.with_name("bowl.tarn")), "--out", str(again)]
+    CliRunner().invoke(command, words, standalone_mode=False)
+    assert again.read_text(encoding="utf-8") == text
+
+
+def test_a_faulty_file_has_no_page(tmp_path):
+    (tmp_path / "a.tarn").write_text("f = 2 khz")
+    words = ["report", str(tmp_path / "a.tarn"), "--out", str(tmp_path / "a.html")]
+    assert CliRunner().invoke(command, words, standalone_mode=False).return_value == 1
+    assert not (tmp_path / "a.html").exists()
+
+
+# In a browser ------------------------------------------------------------------------------------------------
+
+CHROMIUM = Path("/usr/bin/chromium")
+FLAGS = [
+    "--headless",
+    "--no-sandbox",
+    "--disable-gpu",
+    "--disable-quic",
+    "--no-first-run",
+    "--disable-background-networking",
+    "--disable-component-update",
+    "--disable-sync",
+]
+
+
+@pytest.fixture(scope="module")
+def browser():
+    playwright = pytest.importorskip("playwright.sync_api", reason="playwright is not installed")
+    if not CHROMIUM.exists():
+        pytest.skip("there is no chromium at /usr/bin/chromium")
+    with playwright.sync_playwright() as driver:
+        browser = driver.chromium.launch(executable_path=str(CHROMIUM), args=FLAGS)
+        yield browser
+        browser.close()
+
+
+@pytest.mark.parametrize("scheme", ["light", "dark"])
+def test_the_page_opens_without_a_fault_and_passes_axe(browser, page, scheme):
+    heard = []
+    tab = browser.new_page(color_scheme=scheme)
+    tab.on("console", lambda message: heard.append(message.text))
+    tab.on("request", lambda request: heard.append(request.url))
+    tab.goto(page.as_uri())
+    assert heard == [page.as_uri()]
+    axe = pytest.importorskip("axe_playwright_python", reason="axe-core is not installed")
+    script = next(Path(axe.__file__).parent.rglob("axe.min.js"))
+    tab.evaluate(script.read_text())
+    assert [found["id"] for found in tab.evaluate("axe.run()")["violations"]] == []
+
+
+def test_a_narrow_page_at_double_size_does_not_scroll_sideways(browser, page):
+    tab = browser.new_page(viewport={"width": 640, "height": 800}, device_scale_factor=2)
+    tab.goto(page.as_uri())
+    assert tab.evaluate("document.documentElement.scrollWidth") <= 640
+
+
+def test_the_keyboard_reaches_every_link_and_fold(browser, page):
+    tab = browser.new_page()
+    tab.goto(page.as_uri())
+    wanted = tab.evaluate("document.querySelectorAll('a, summary, [tabindex=\"0\"]').length")
+    reached = set()
+    for _ in range(wanted + 2):
+        tab.keyboard.press("Tab")
+        script = (
+            "[...document.querySelectorAll('a, summary, [tabindex=\"0\"]')].indexOf(document.activeElement)"
+        )
+        reached.add(tab.evaluate(script))
+    assert len(reached - {-1}) >= wanted - tab.evaluate(
+        "document.querySelectorAll('details:not([open]) .wide').length"
+    )
