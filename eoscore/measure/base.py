@@ -55,8 +55,11 @@ class Measure(ABC):
     Laws: Omega rises with v, Omega(v) / v^exponent has a positive limit for v -> 0, Omega(v) = Omega(top) above
     `top`, the derivative is analytic between neighbouring `breaks`, and the true relative error of Omega is at
     most `error`. `scale` is an energy (J) at which Omega begins to leave its pure power, inf where it never does.
-    A measure never changes after it was built, and may be asked from several threads.
+    A measure never changes after it was built, and may be asked from several threads. `bounded` tells that its
+    space is known to stay bounded up to the top, so that Omega is finite there.
     """
+
+    bounded = False
 
     def __init__(
         self,

@@ -27,7 +27,7 @@ class Changed(Measure):
             breaks=origin.breaks,
             scale=origin.scale,
         )
-        self.origin, self.factor = origin, factor
+        self.origin, self.factor, self.bounded = origin, factor, origin.bounded
 
     @property
     def error(self) -> float:

@@ -78,7 +78,7 @@ def _factor(measure: Measure) -> float | None:
 
 def _refuse_infinite(measure: Measure, exponent: float, top: float) -> None:
     """Raise NoAnswerError where Omega diverges at the top too fast for a partner that begins with an exponent."""
-    if measure.powers() is not None or top < measure.top or top == inf:
+    if measure.bounded or measure.powers() is not None or top < measure.top or top == inf:
         return
     near, nearer = measure.volume(top * (1 - np.array([1e-6, 1e-9])))
     if nearer > near * 1e3 ** (0.99 * exponent):

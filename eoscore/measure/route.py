@@ -66,4 +66,6 @@ def _of_one(field: Field, landscape: Landscape | None, ceiling: float) -> Measur
         raise NoAnswerError(
             "this potential is none that eoscore can measure: it takes one, two or three coordinates"
         )
+    # A pass at a place of its own keeps the region below it away from everything that lies further out.
+    found.bounded = landscape.escape is not None and landscape.escape.position is not None
     return found

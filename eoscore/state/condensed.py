@@ -65,7 +65,7 @@ def _refuse_fractions(f: FloatArray, solution: Solution) -> None:
 def _dlog(model: Model, name: str, kT: FloatArray) -> FloatArray:
     """Error of ln T where the excited states alone fix it."""
     x, _, by_log = model.value(name, np.zeros_like(kT), kT)
-    return (model.whole.error + 8 * EPS) * np.abs(x / by_log)
+    return (model.whole.error_at(kT) + 8 * EPS) * np.abs(x / by_log)
 
 
 def split_phases(

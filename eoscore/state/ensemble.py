@@ -42,7 +42,11 @@ class Ensemble(ABC):
     @property
     @abstractmethod
     def error(self) -> float:
-        """Bound of the relative error of every sum."""
+        """Bound of the relative error of every sum, at every kT asked so far."""
+
+    def error_at(self, kT: FloatArray) -> FloatArray:
+        """The same at each kT (J) alone: energies that the gas hardly reaches count little."""
+        return np.full(kT.shape, self.error)
 
     @property
     def condenses(self) -> bool:

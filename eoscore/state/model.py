@@ -90,16 +90,17 @@ class Model:
         """The most that N can be."""
         return self.whole.capacity
 
-    def noise(self, name: str, value: FloatArray, sums: Sums) -> FloatArray:
+    def noise(self, name: str, value: FloatArray, sums: Sums, kT: FloatArray) -> FloatArray:
         """Absolute error of a condition as a function of alpha and T."""
         size = np.abs(value)
         if name == "N" and self.whole.highest < inf:
             size = size + sums.B0  # N is a difference; B0 counts particles and antiparticles
-        return self.error_of(name) * size
+        return self.error_of(name, kT) * size
 
-    def error_of(self, name: str) -> float:
+    def error_of(self, name: str, kT: FloatArray) -> FloatArray:
         """Relative error of a condition as a function of alpha and T."""
         if name in ("T", "mu", "fugacity"):
-            return 0.0
-        local = self.local.error if self.local is not None else inf
-        return local if name in ("n_peak", "PSD") else self.whole.error
+            return np.zeros_like(kT)
+        if name not in ("n_peak", "PSD"):
+            return self.whole.error_at(kT)
+        return np.full(kT.shape, inf) if self.local is None else self.local.error_at(kT)

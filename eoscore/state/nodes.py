@@ -1,7 +1,7 @@
 """Bose and classical gases over any measure, or below a top: sums over its nodes.
 
 The nodes are fixed energies, so a state costs one exponential for each. States are told apart by their kT in
-stretches of a factor 16, since nodes reach 45 kT far.
+octaves, since nodes reach 45 kT far and what lies higher costs most.
 """
 
 from __future__ import annotations
@@ -30,11 +30,12 @@ if TYPE_CHECKING:
 
 __all__ = ["NodeBose", "OverNodes"]
 
-STRETCH = 4  # octaves of kT that share nodes
+STRETCH = 1  # octaves of kT that share nodes
 CACHED = 200_000  # numbers of a block that is asked again and again
 SERIES = (
-    44  # terms of ln N_c in ln kT over a stretch: it is analytic for |Im ln kT| < pi/2, and falls as 2.6^-n
+    20  # terms of ln N_c in ln kT over a stretch: it is analytic for |Im ln kT| < pi/2, and falls as 9^-n
 )
+SHARES = np.geomspace(1e-2, 45.0, 200)  # E/kT at which the error of Omega is weighed
 
 
 class OverNodes(Ensemble):
@@ -48,11 +49,31 @@ class OverNodes(Ensemble):
             f"sums over nodes ({measure.route}{'' if measure.top == inf else ', up to the escape energy'})"
         )
         self._rules = lru_cache(maxsize=64)(self._rule)
+        self._weighed = lru_cache(maxsize=256)(self._weigh)
 
     @property
     def error(self) -> float:
         """See `Ensemble.error`: of the measure, which may grow while it is asked further up, and of the rule."""
         return self.measure.error + 2000 * EPS
+
+    def error_at(self, kT: FloatArray) -> FloatArray:
+        """See `Ensemble.error_at`: of the hottest kT in each octave."""
+        sensible = np.where(kT > 0, kT, 1.0)
+        keys, back = np.unique(np.floor(np.log2(sensible)).astype(int), return_inverse=True)
+        bounds = np.array([self._weighed(int(key)) for key in keys])
+        return np.where(kT > 0, bounds[back.reshape(kT.shape)], 0.0)
+
+    def _weigh(self, octave: int) -> float:
+        """The mean of `error_below` with the weight Omega (-g'), and x^2 more for U and the heat capacity."""
+        kT = 2.0 ** (octave + 1)
+        energies = np.minimum(SHARES * kT, self.top)
+        weight = self.measure.volume(energies) * SHARES**3 * np.exp(-SHARES)
+        bounds = self.measure.error_below(energies)
+        mean = float(np.sum(weight * bounds) / np.sum(weight))
+        at_top = float(bounds[-1]) if self.top < SHARES[-1] * kT else 0.0
+        share = np.exp(-self.top / kT) if at_top else 0.0
+        least = float(self.measure.error_below(np.minimum(kT, self.top)))
+        return max(mean, least, at_top * float(share)) + 2000 * EPS
 
     def _rule(self, stretch: int) -> Nodes:
         return rule_for(self.measure, 2.0 ** (stretch * STRETCH), 2.0 ** ((stretch + 1) * STRETCH))
@@ -143,14 +164,14 @@ class NodeBose(OverNodes):
 
 def energy_below(measure: Measure, number: FloatArray) -> FloatArray:
     """An energy (J) within a factor 2 of where Omega reaches `number`; the top where it does not."""
-    start = measure.top if measure.top < inf else (measure.breaks or (measure.scale,))[0]
-    low = np.full(number.shape, start if start < inf else 1e-30)
+    # From the bottom up: what lies near the top costs most, and is seldom needed.
+    low = np.full(number.shape, measure.scale if measure.scale < inf else min(measure.top, 1e-30))
     for _ in range(2000):
         volume = measure.volume(low)
         up, down = (2 * volume < number) & (low < measure.top), volume > 2 * number
         if not np.any(up | down):
             break
         with np.errstate(divide="ignore", invalid="ignore"):
-            jump = np.clip(np.log2(number / volume) / max(measure.exponent, 0.5), -30, 30)
+            jump = np.clip(np.log2(number / volume) / max(measure.exponent, 0.5), -30, 6)
         low = np.minimum(np.where(up | down, low * 2.0**jump, low), measure.top)
     return low

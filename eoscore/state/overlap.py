@@ -30,14 +30,14 @@ def mean_density(state: State) -> tuple[FloatArray, FloatArray]:
     if held.position is None:
         sums = state.local_sums
         by_alpha, by_log = sums.slopes("N", s.alpha, s.kT)
-        return sums.N, state.bound(held.model.whole.error, sums.N, by_alpha, by_log)
+        return sums.N, state.bound(held.model.whole.error_at(s.kT), sums.N, by_alpha, by_log)
     some = np.flatnonzero(s.known)
     value = np.full(s.kT.shape, np.nan)
     first, second = over_place(held, s.alpha[some], s.kT[some], lambda n, _: (n, n * n))
     value[some] = second / first
     dalpha, dlog = state.doubt
     lean = dalpha * np.maximum(1.0, 1 / np.where(s.alpha > 0, s.alpha, 1.0)) + 2 * dlog
-    return value, value * (held.model.whole.error + RULE + lean)
+    return value, value * (held.model.whole.error_at(s.kT) + RULE + lean)
 
 
 def over_place(

@@ -110,7 +110,7 @@ def _at_temperature(model: Model, name: str, T: FloatArray, x: FloatArray, solut
         return
     if model.bosons and model.whole.condenses:
         most = model.value(name, np.zeros_like(kT), kT)[0]
-        beyond = x >= most * (1 - 2 * model.error_of(name))
+        beyond = x >= most * (1 - 2 * model.error_of(name, kT))
         words = (
             f"at this temperature {name} is at most {spread(most[beyond])}, which it has for any condensate"
         )
@@ -157,7 +157,8 @@ def bounds(
     rows = [model.value(name, solution.alpha, solution.kT, sums) for name in given]
     (x1, a1, t1), (x2, a2, t2) = rows
     e1, e2 = (
-        model.noise(name, x, sums) + 8 * EPS * np.abs(x) for name, x in zip(given, (x1, x2), strict=True)
+        model.noise(name, x, sums, solution.kT) + 8 * EPS * np.abs(x)
+        for name, x in zip(given, (x1, x2), strict=True)
     )
     det = np.abs(a1 * t2 - a2 * t1)
     dalpha = (np.abs(t2) * e1 + np.abs(t1) * e2) / det

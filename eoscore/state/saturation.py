@@ -42,7 +42,7 @@ def critical_temperature(state: State, unit: str) -> Reading:
     sensible = number > 0
     kT[sensible] = saturated_kT(whole, "N", number[sensible])
     held, slope = _at_zero(whole, np.where(sensible, kT, 1.0))
-    error = kT * ((whole.error + 8 * EPS) * held + of_number) / slope
+    error = kT * ((whole.error_at(kT) + 8 * EPS) * held + of_number) / slope
     label = "n" if state.held.uniform else "N"
     reason = Reason(f"{label} must be above zero", state.shaped(~sensible))
     return state.read(kT / K_B, error / K_B, unit, "", [reason])
@@ -62,7 +62,7 @@ def critical_number(state: State, unit: str) -> Reading:
     whole = _condensing(state.held.model.whole)
     kT, dlog, reason = _temperature(state)
     held, slope = _at_zero(whole, kT)
-    return state.read(held, (whole.error + 4 * EPS) * held + slope * dlog, unit, "", [reason])
+    return state.read(held, (whole.error_at(kT) + 4 * EPS) * held + slope * dlog, unit, "", [reason])
 
 
 def critical_density(state: State, unit: str) -> Reading:
@@ -83,4 +83,4 @@ def exponent(state: State, unit: str) -> Reading:
     value = slope / held
     further = _at_zero(whole, kT * 1.0001)
     drift = np.abs(further[1] / further[0] - value) * 1e4 * dlog
-    return state.read(value, (2 * whole.error + 8 * EPS) * value + drift, unit, "", [reason])
+    return state.read(value, (2 * whole.error_at(kT) + 8 * EPS) * value + drift, unit, "", [reason])

@@ -113,17 +113,19 @@ class State:
         """N, U (J) or S (J/K) of the excited gas and the bound of the error."""
         s, model = self.solution, self.held.model
         value, by_alpha, by_log = model.value(name, s.alpha, s.kT, self.sums)
-        return value, model.noise(name, value, self.sums) + self.bound(0.0, value, by_alpha, by_log)
+        return value, model.noise(name, value, self.sums, s.kT) + self.bound(0.0, value, by_alpha, by_log)
 
     def bound(
-        self, relative: float, value: FloatArray, by_alpha: FloatArray, by_log: FloatArray
+        self, relative: float | FloatArray, value: FloatArray, by_alpha: FloatArray, by_log: FloatArray
     ) -> FloatArray:
         """The error of a function of alpha and ln T from its own, and from those of alpha and ln T."""
         dalpha, dlog = self.doubt
         lean = np.where(dalpha > 0, np.abs(by_alpha) * dalpha, 0.0)
         return (relative + 4 * EPS) * np.abs(value) + lean + np.abs(by_log) * dlog
 
-    def numeric_bound(self, relative: float, function: _OfState) -> tuple[FloatArray, FloatArray]:
+    def numeric_bound(
+        self, relative: float | FloatArray, function: _OfState
+    ) -> tuple[FloatArray, FloatArray]:
         """A function of (alpha, kT) at the state and its error, with slopes by differences (an error may be rough)."""
         s = self.solution
         value = function(s.alpha, s.kT)

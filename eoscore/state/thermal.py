@@ -107,7 +107,7 @@ def _condensate(state: State) -> tuple[FloatArray, FloatArray]:
     if "N_0" in state.given:
         return s.condensate, 2 * EPS * s.condensate
     if "T" in state.given and "N" in state.given:  # no sums are needed for what N and N_c already tell
-        error = (state.held.model.whole.error + 40 * EPS) * (state.given["N"] - s.condensate)
+        error = (state.held.model.whole.error_at(s.kT) + 40 * EPS) * (state.given["N"] - s.condensate)
     else:
         _, error = state.of_sums("N")
     return s.condensate, np.where(s.condensed, error + 4 * EPS * s.condensate, 0.0)
@@ -135,7 +135,7 @@ def heat_capacity(state: State, unit: str) -> Reading:
         fixed_n, fixed_mu = whole.sums(alpha, kT).heat()
         return K_B * np.where(s.condensed, fixed_mu, fixed_n)
 
-    value, error = state.numeric_bound(2 * whole.error, heat)
+    value, error = state.numeric_bound(2 * whole.error_at(s.kT), heat)
     sums = state.sums
-    cancelled = np.where(s.condensed, 0.0, whole.error * K_B * sums.B2)
+    cancelled = np.where(s.condensed, 0.0, whole.error_at(s.kT) * K_B * sums.B2)
     return state.read(value, error + cancelled, unit)
