@@ -53,6 +53,13 @@ if (_checkout / "grammar" / "tarn.lark").is_file():
     __path__.append(str(_checkout))
 
 
+def load_ipython_extension(shell: Any) -> None:
+    """`%load_ext eoscore` in a notebook: rich displays, and the cell magic `%%tarn`."""
+    from eoscore.show.notebook import install
+
+    install(shell)
+
+
 def __getattr__(name: str) -> Any:
     if name not in _ROOMS:
         raise AttributeError(f"eoscore has no {name!r}; it has {', '.join(__all__)}")

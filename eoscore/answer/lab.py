@@ -115,6 +115,10 @@ class Lab:
             return LabPlace(self, name)
         raise UnknownNameError(name, [*self.program.gases, *self.program.places, "uniform"])
 
+    def _ipython_key_completions_(self) -> list[str]:
+        """What a notebook completes behind `lab["`."""
+        return [*self.program.gases, *self.program.places, "uniform"]
+
     def answers(self, *, accuracy: float = 1e-6, **aid: Any) -> tuple[Answer, ...]:
         """The answers to the text's own questions, in order; `accuracy` is the relative error wanted.
 

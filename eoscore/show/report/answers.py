@@ -10,7 +10,6 @@ from eoscore.show.page import error_text
 from eoscore.show.prefix import quantity
 from eoscore.show.report.budget import budgets
 from eoscore.show.report.formulas import formulas
-from eoscore.show.report.grids import grid_picture
 from eoscore.show.report.markup import Markup, element, listed, table, together
 from eoscore.show.report.raised import raised
 
@@ -39,28 +38,40 @@ def hardware_cautions(report: Report) -> Markup:
     return element("section", heading, listed(told.values()), class_="hardware", aria_labelledby="hardware")
 
 
-def answer_sections(report: Report, gallery: Gallery) -> Iterator[Markup]:
-    """An article for each answer, in the order asked."""
+def answer_sections(report: Report, gallery: Gallery | None, *, linked: bool = True) -> Iterator[Markup]:
+    """An article for each answer, in the order asked; without a gallery there are no pictures of grids.
+
+    `linked` where the source stands on the same page.
+    """
     told: set[Caution] = set()
     for number, answer in enumerate(report.answers, 1):
         heading = element("h3", f"{number}. ", element("code", answer.question))
         line = element("a", f"line {answer.line}", href=f"#L{answer.line}")
-        origin = element("p", "Asked in ", line, " of the source.", class_="origin")
+        origin = element("p", "Asked in ", line, " of the source.", class_="origin") if linked else ""
         body = formulas(answer) if isinstance(answer, DerivedAnswer) else _found(answer, gallery)
-        yield element("article", heading, origin, body, _cautions(answer, told), id=f"answer-{number}")
+        named = {"id": f"answer-{number}"} if linked else {}
+        yield element("article", heading, origin, body, _cautions(answer, told), **named)
         told.update(answer.cautions)
 
 
-def _found(answer: FoundAnswer, gallery: Gallery) -> Markup:
+def _found(answer: FoundAnswer, gallery: Gallery | None) -> Markup:
     if answer.over:
         heads, rows = grid_rows(answer)
         hidden = hidden_rows(answer)
         summary = f"The numbers ({hidden} rows in the middle left out)" if hidden else "The numbers"
         points = element("details", element("summary", summary), table(answer.question, heads, rows))
-        return together(grid_picture(answer, gallery), points, _reasons(answer), _notes(answer))
+        return together(_picture(answer, gallery), points, _reasons(answer), _notes(answer))
     rows = [(element("code", name), *_cells(finding)) for name, finding in answer.found.items()]
     heads = ("quantity", "value", "numerical error", "route")
     return together(table(answer.question, heads, rows), _reasons(answer), _notes(answer), budgets(answer))
+
+
+def _picture(answer: FoundAnswer, gallery: Gallery | None) -> Markup:
+    if gallery is None:
+        return Markup("")
+    from eoscore.show.report.grids import grid_picture  # draws with matplotlib, an extra
+
+    return grid_picture(answer, gallery)
 
 
 def _cells(finding: Finding) -> tuple[str, str, str]:
