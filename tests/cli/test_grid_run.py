@@ -77,10 +77,10 @@ def interrupted(folder, monkeypatch, capsys):
     return capsys.readouterr().err
 
 
-@pytest.mark.parametrize("seed", range(6))
+@pytest.mark.parametrize("seed", range(4))
 def test_a_run_that_is_killed_goes_on_to_the_same_bits(folder, reference, seed):
     whole, seconds = reference
-    workers = ("--workers", "2") if seed == 5 else ()
+    workers = ("--workers", "2") if seed == 3 else ()
     killed(folder, np.random.default_rng(seed).uniform(0.3, 1.1) * seconds, *workers)
     assert finish(folder)[0] == whole
 
