@@ -10,6 +10,7 @@ import pytest
 from eoscore.errors import TarnError
 from eoscore.language import limits
 from eoscore.language.builtin import BUILTINS
+from eoscore.language.include import shelf_files
 from eoscore.language.parse import parse
 from eoscore.language.quantities import CONDITIONS, QUANTITIES
 from eoscore.language.reserved import RESERVED
@@ -43,6 +44,14 @@ def test_every_example_is_read_and_written_back(example: str):
 def test_a_list_is_complete(title: str, known: dict[str, object] | frozenset[str]):
     listed = REFERENCE.split(f"<!-- {title} -->\n")[1].split("\n\n")[0]
     assert sorted(re.findall(r"`([^`]+)`", listed)) == sorted(known)
+
+
+@pytest.mark.parametrize("shelf", shelf_files())
+def test_the_functions_of_a_shelf_are_listed_with_their_arguments(shelf: str):
+    listed = REFERENCE.split(f"<!-- shelf {shelf} -->\n")[1].split("\n\n")[0]
+    file = parse(shelf_files()[shelf].read_bytes())
+    heads = [write(entry).split(" = ")[0] for entry in file.entries]
+    assert re.findall(r"`([^`]+)`", listed) == heads
 
 
 def test_the_table_of_quantities_is_complete():

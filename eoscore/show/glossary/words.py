@@ -43,6 +43,7 @@ WORDS: Final[dict[str, tuple[str, str]]] = {
     "isotope": ("gives a gas the mass of an isotope", "isotope Yb-174"),
     "statistics": ("says how particles fill states: bose, fermi or classical", "statistics fermi"),
     "treatment": ("says how the interaction enters a state", "treatment hartree_fock"),
+    "levels": ("counts the true levels of a trap in place of the continuum", "levels exact"),
     "dispersion": ("chooses E(p) by the name of a plugin", "dispersion trapped { omega_z = 2*pi*5 kHz }"),
     "anchor": (
         "a measured point that sets the scale of a `states` place",
