@@ -55,9 +55,7 @@ if (_checkout / "grammar" / "tarn.lark").is_file():
 
 def load_ipython_extension(shell: Any) -> None:
     """`%load_ext eoscore` in a notebook: rich displays, and the cell magic `%%tarn`."""
-    from eoscore.show.notebook import install
-
-    install(shell)
+    import_module("eoscore.show.notebook").install(shell)
 
 
 def __getattr__(name: str) -> Any:

@@ -2,6 +2,10 @@
 
 from __future__ import annotations
 
+import os
+import subprocess
+import sys
+
 from click.testing import CliRunner
 
 from eoscore.cli import command
@@ -27,3 +31,12 @@ def test_an_unknown_name_is_answered_with_the_near_ones():
 
 def test_a_name_like_nothing_points_to_the_reference():
     assert "grammar/README.md" in run("qqqqqqq").output
+
+
+def test_the_shell_completes_names():
+    """As click's own completion asks the command."""
+    words = {"_EOSCORE_COMPLETE": "bash_complete", "COMP_WORDS": "eoscore explain lamb", "COMP_CWORD": "2"}
+    shown = subprocess.run(
+        [sys.executable, "-m", "eoscore"], env=os.environ | words, capture_output=True, text=True, check=True
+    )
+    assert "plain,lambda_T" in shown.stdout
