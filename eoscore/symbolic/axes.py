@@ -76,13 +76,13 @@ def with_walls(
 def _cut(axis: Axis, wall: sp.Expr) -> Axis | None:
     """The axis cut by a wall that is linear in x, |x| or x^2; None where it is none of these."""
     x = axis.symbol
-    size = sp.Symbol("size", positive=True)
+    size = sp.Symbol("size'", positive=True)
     for form, even in ((sp.Abs(x), True), (x**2, True), (x, False)):
         linear = sp.expand(wall).subs(form, size)
         if x in linear.free_symbols or sp.diff(linear, size, 2) != 0:
             continue
         slope = sp.diff(linear, size)
-        bound = sp.simplify(-linear.subs(size, 0) / slope)
+        bound = sp.factor(-linear.subs(size, 0) / slope)
         if not even:
             return _tighten(axis, bound, bound, lower=bool(slope.is_positive), upper=bool(slope.is_negative))
         if slope.is_negative:

@@ -7,7 +7,6 @@ from typing import TYPE_CHECKING
 import mpmath
 import numpy as np
 import sympy as sp
-from scipy.optimize import brentq
 
 from eoscore.symbolic.evaluate import compiled
 from eoscore.symbolic.quantities import K_B, NUMBER, TEMPERATURE, Model, critical_number
@@ -17,7 +16,7 @@ if TYPE_CHECKING:
 
     from eoscore.symbolic.partition import Power
 
-__all__ = ["explicit", "heat_capacity_jump", "number_at", "root"]
+__all__ = ["explicit", "heat_capacity_jump", "number_at", "number_of", "root"]
 
 
 def explicit(power: Power) -> sp.Expr:
@@ -38,9 +37,15 @@ def heat_capacity_jump(power: Power, exponent: float) -> sp.Expr:
 
 def number_at(model: Model, values: Mapping[sp.Symbol, float]) -> Callable[[float], float]:
     """N_c as a function of T in K."""
-    expression = critical_number(model)
-    symbols = [s for s in expression.free_symbols if s != TEMPERATURE]
-    function = compiled(expression, [TEMPERATURE, *symbols])
+    return number_of(critical_number(model), values)
+
+
+def number_of(
+    expression: sp.Expr, values: Mapping[sp.Symbol, float], free: sp.Symbol = TEMPERATURE
+) -> Callable[[float], float]:
+    """An expression as a function of one of its symbols, T in K by default, in SI units."""
+    symbols = [s for s in expression.free_symbols if s != free]
+    function = compiled(expression, [free, *symbols])
     fixed = [mpmath.mpf(values[s]) for s in symbols]
 
     def at(temperature: float) -> float:
@@ -55,6 +60,7 @@ def root(count: Callable[[float], float], number: float) -> float:
 
     Raises ValueError where none is found between 1e-15 K and 1e15 K.
     """
+    from scipy.optimize import brentq  # 0.3 s to import, and only an implicit T_c wants it
 
     def excess(log_t: float) -> float:
         found = count(float(np.exp(log_t)))

@@ -6,14 +6,15 @@ from functools import cached_property
 from typing import TYPE_CHECKING, Any
 
 import sympy as sp
-from scipy.optimize import brentq
 
-from eoscore.symbolic.critical import explicit, heat_capacity_jump, number_at, root
-from eoscore.symbolic.evaluate import number
-from eoscore.symbolic.expansion import Expansion, expansions
+from eoscore.symbolic.algebra import log_slope
+from eoscore.symbolic.critical import explicit, heat_capacity_jump, number_at
+from eoscore.symbolic.evaluate import number, numerical_slope
+from eoscore.symbolic.expansion import expansions
+from eoscore.symbolic.implicit import implicit
 from eoscore.symbolic.partition import ALPHA
 from eoscore.symbolic.quantities import ENERGY, K_B, NUMBER, QUANTITIES, TEMPERATURE, Model, critical_number
-from eoscore.symbolic.writing import forms, plain, tidy
+from eoscore.symbolic.writing import forms, missing_words, plain, tidy, where, written_name
 
 if TYPE_CHECKING:
     from collections.abc import Mapping
@@ -22,7 +23,17 @@ if TYPE_CHECKING:
 
 __all__ = ["UNITS", "Derivation"]
 
-UNITS = {"T_c": "K", "N_c": "1", "f_0": "1", "U": "J", "S": "J/K", "C_N": "J/K", "rho": "1/J", "g": "1"}
+UNITS = {
+    "T_c": "K",
+    "N_c": "1",
+    "f_0": "1",
+    "U": "J",
+    "S": "J/K",
+    "C_N": "J/K",
+    "rho": "1/J",
+    "g": "1",
+    "DeltaC": "J/K",
+}
 _FREE = {"rho": {ENERGY, TEMPERATURE, ALPHA}, "g": {TEMPERATURE, ALPHA}}
 
 
@@ -38,9 +49,9 @@ class Derivation:
         entry = (
             self._critical_temperature() if temperature else self._entry(name, QUANTITIES[name](self.model))
         )
-        if "why" in entry:
+        if "sympy" not in entry:
             return entry
-        return {**entry, "conditions": [plain(c) for c in self.problem.conditions], "steps": self._steps}
+        return {**entry, "conditions": self._conditions, "steps": self._steps}
 
     def _tidy(self, expression: sp.Expr) -> sp.Expr:
         """Tidied, in n where the place is unbounded, and without moduli whose sign the values settle."""
@@ -93,6 +104,8 @@ class Derivation:
     @cached_property
     def _alpha(self) -> float:
         """-mu/(k_B T) above T_c, from N at T by a bracketed root."""
+        from scipy.optimize import brentq
+
         total = self.model.number.total(ALPHA).subs(self._beta)
         values = self._values(total.free_symbols - {ALPHA})
         target = self.given["N"]
@@ -114,6 +127,15 @@ class Derivation:
         return {BETA: 1 / (K_B * TEMPERATURE)}
 
     @cached_property
+    def _conditions(self) -> list[str]:
+        """What must hold: for the integrals to converge, and for the gas to condense where that is open."""
+        found = [plain(condition) for condition in self.problem.conditions]
+        power = None if self.no_condensate else self.condensed.number.single
+        if power is not None and not (power.exponent - 1).is_positive:
+            found.append(f"{plain(self._tidy(power.exponent))} > 1")
+        return found
+
+    @cached_property
     def _steps(self) -> list[str]:
         whole = (
             plain(self.problem.number.subs(self._beta)) if len(str(self.problem.number)) < 200 else "as above"
@@ -132,75 +154,50 @@ class Derivation:
         if name == "g":
             scale = self._tidy(self.model.number.whole.subs(self._beta))
             entry["scale"] = forms("N_scale", scale)
-        if name in ("U", "S", "C_N", "f_0"):
+        if name in ("U", "S", "C_N", "f_0") and not self.no_condensate:
             entry["side"] = "T <= T_c" if self.model.condensed else "T > T_c"
-        return entry
+        return entry | (self._jump() if name == "C_N" else {})
 
     def _filled(self, name: str, expression: sp.Expr) -> dict[str, Any]:
         """Forms, `where` and value; a value needs every symbol but the free ones."""
         values = self._values(expression.free_symbols - _FREE.get(name, set()))
-        missing = expression.free_symbols - set(values)
-        value, why = None, None
-        if missing:
-            why = f"no value for {', '.join(sorted(map(str, missing)))}"
-        else:
-            value = number(expression, values)
-        where = {str(s): v for s, v in sorted(values.items(), key=lambda item: str(item[0]))}
-        entry = {**forms(name, expression), "closed": not expression.has(sp.Sum), "where": where}
-        entry |= {"value": value, "unit": UNITS[name]}
-        return entry | ({"missing": why} if why else {})
+        why = missing_words(expression.free_symbols - set(values))
+        value = None if why else number(expression, values)
+        entry = {
+            **forms(name, expression),
+            "closed": not expression.has(sp.Sum),
+            "where": where(values.items()),
+        }
+        entry |= {"value": value, "unit": UNITS[name], "why": why}
+        return entry
 
     def _critical_temperature(self) -> dict[str, Any]:
         if self.no_condensate:
             return {"why": self.no_condensate}
         power = self.condensed.number.single
         if power is None:
-            return self._implicit()
+            count, expanded = critical_number(self.condensed), expansions(self.problem.number)
+            return implicit(count, expanded, self._values(count.free_symbols | {NUMBER}), self._tidy)
         expression = self._tidy(explicit(power))
+        return {**self._filled("T_c", expression), "sensitivities": self._slopes(expression)} | self._jump()
+
+    def _slopes(self, expression: sp.Expr) -> dict[str, str | float]:
+        """d ln T_c / d ln of every symbol; numbers, where there are values, for the symbols in exponents."""
+        exponents = {s for power in expression.atoms(sp.Pow) for s in power.exp.free_symbols}
+        values = self._values(expression.free_symbols)
+        slopes: dict[str, str | float] = {}
+        for symbol in sorted(expression.free_symbols - {K_B}, key=str):
+            if symbol not in exponents:
+                slopes[written_name(symbol.name)] = plain(log_slope(expression, symbol))
+            elif len(values) == len(expression.free_symbols):
+                slopes[written_name(symbol.name)] = numerical_slope(expression, values, symbol)
+        return slopes
+
+    def _jump(self) -> dict[str, Any]:
+        """The jump of C_N at T_c, where one power of beta is all of Z1."""
+        power = self.condensed.number.single
+        if power is None or self.no_condensate:
+            return {}
         exponent = number(power.exponent, self._values(power.exponent.free_symbols))
         jump = self._tidy(heat_capacity_jump(power, exponent))
-        slopes = {
-            str(s): plain(sp.simplify(s * sp.diff(expression, s) / expression))
-            for s in sorted(expression.free_symbols - {K_B}, key=str)
-        }
-        entry = {**self._filled("T_c", expression), "sensitivities": slopes}
-        return {**entry, "jump": forms("DeltaC", jump)}
-
-    def _implicit(self) -> dict[str, Any]:
-        """N_c(T) - N = 0 with its root, slopes by the implicit function theorem, and the leading expansions."""
-        count = critical_number(self.condensed)
-        equation = count - NUMBER
-        values = self._values(equation.free_symbols)
-        entry = {**forms("T_c", equation), "closed": False, "equation": sp.sstr(equation, full_prec=True)}
-        entry["text"] = f"T_c solves {plain(count)} = N"
-        entry["where"] = {str(s): v for s, v in sorted(values.items(), key=lambda item: str(item[0]))}
-        entry |= {"value": None, "unit": "K"}
-        if missing := equation.free_symbols - set(values) - {TEMPERATURE}:
-            return entry | {"missing": f"no value for {', '.join(sorted(map(str, missing)))}"}
-        at = number_at(self.condensed, values)
-        entry["value"] = temperature = root(at, values[NUMBER])
-        here = {**values, TEMPERATURE: temperature}
-        slope = number(sp.diff(count, TEMPERATURE), here) * temperature
-        for symbol in sorted(set(values) - {K_B, NUMBER}, key=str):
-            rise = number(sp.diff(count, symbol), here) * values[symbol]
-            entry.setdefault("sensitivities", {"N": values[NUMBER] / slope})[str(symbol)] = -rise / slope
-        several = [self._written(e, here, at, temperature) for e in expansions(self.problem.number)]
-        several.sort(key=lambda e: float(e["small_value"]))
-        return entry | ({"expansion": several[0], "expansions": several} if several else {})
-
-    def _written(
-        self, expansion: Expansion, here: Mapping[sp.Symbol, float], count: Any, at: float
-    ) -> dict[str, Any]:
-        whole, small = self._tidy(expansion.whole), self._tidy(expansion.small)
-        size = number(small, here)
-        reach = expansion.reach(count, here, at)
-        good = f"within 1 % up to small = {reach:.2g}" if reach is not None else "not within 1 % near this N"
-        return {
-            **forms("T_c", whole),
-            "limit": expansion.limit,
-            "small": sp.sstr(small),
-            "small_value": size,
-            "range": f"small -> 0; {good}",
-            # Two terms of a series say nothing where the next one is as large as they are.
-            "value": number(whole, here) if size < 1 else None,
-        }
+        return {"jump": self._filled("DeltaC", jump)}

@@ -16,7 +16,7 @@ if TYPE_CHECKING:
 
     from numpy.typing import NDArray
 
-__all__ = ["compiled", "number"]
+__all__ = ["compiled", "number", "numerical_slope"]
 
 # Bessel functions without their exponential, so that large arguments neither overflow nor cancel.
 _SCALED_I, _SCALED_K = sp.Function("scaled_i"), sp.Function("scaled_k")
@@ -148,3 +148,17 @@ def number(expression: sp.Expr, values: Mapping[sp.Symbol, float]) -> float:
             msg = f"not a finite real number: {found}"
             raise ValueError(msg)
         return float(mpmath.re(found))
+
+
+def numerical_slope(expression: sp.Expr, values: Mapping[sp.Symbol, float], x: sp.Symbol) -> float:
+    """d ln(expression) / d ln x at `values`, from central differences at 40 digits: exact in double precision."""
+    symbols = list(expression.free_symbols)
+    function = compiled(expression, symbols)
+    with mpmath.workdps(40):
+        at = [mpmath.mpf(values[s]) for s in symbols]
+        place = symbols.index(x)
+
+        def along(value: mpmath.mpf) -> mpmath.mpf:
+            return mpmath.log(function(*at[:place], value, *at[place + 1 :]))
+
+        return float(mpmath.re(at[place] * mpmath.diff(along, at[place])))

@@ -7,14 +7,13 @@ from typing import TYPE_CHECKING
 
 import sympy as sp
 
-from eoscore.symbolic.critical import explicit
-from eoscore.symbolic.evaluate import number
+from eoscore.symbolic.critical import explicit, number_of
 from eoscore.symbolic.integrals.rule import BETA
 from eoscore.symbolic.partition import Power, partition_of
-from eoscore.symbolic.quantities import K_B, NUMBER
+from eoscore.symbolic.quantities import K_B, TEMPERATURE
 
 if TYPE_CHECKING:
-    from collections.abc import Callable, Mapping
+    from collections.abc import Mapping
 
 __all__ = ["Expansion", "expansions"]
 
@@ -28,27 +27,25 @@ class Expansion:
     correction: sp.Expr
     small: sp.Expr
 
-    @property
-    def whole(self) -> sp.Expr:
-        """Leading term with its first correction."""
-        return self.leading * (1 + self.correction)
-
+    @staticmethod
     def reach(
-        self, count: Callable[[float], float], values: Mapping[sp.Symbol, float], around: float
+        count: sp.Expr, written: tuple[sp.Expr, sp.Expr], total: sp.Symbol, here: Mapping[sp.Symbol, float]
     ) -> float | None:
         """The largest `small` at which the two terms are within 1 % of the root; None where nowhere.
 
-        Found by walking T away from `around` (K), with N = N_c(T) so that T is the exact answer.
+        written: T_c and `small`. Found by walking T away from the root in `here` (K), with N = N_c(T) so that T
+        is the exact answer; all is compiled once.
         """
+        at = number_of(count, here)
+        whole, small = (number_of(part, here, total) for part in written)
         best = None
         for step in range(-16, 17):
-            temperature = around * 10.0 ** (step / 4)
-            at = {**values, NUMBER: count(temperature)}
-            if at[NUMBER] <= 0:
+            temperature = here[TEMPERATURE] * 10.0 ** (step / 4)
+            if (number := at(temperature)) <= 0:
                 continue
-            small = number(self.small, at)
-            if abs(number(self.whole, at) / temperature - 1) < 0.01 and (best is None or small > best):
-                best = small
+            size = small(number)
+            if abs(whole(number) / temperature - 1) < 0.01 and (best is None or size > best):
+                best = size
         return best
 
 
@@ -64,7 +61,7 @@ def expansions(whole: sp.Expr) -> list[Expansion]:
 def _expansion(limit: str, first: Power, second: Power) -> Expansion:
     """One Newton step from the leading power; the next power must itself have a converging sum (a > 1)."""
     leading = explicit(first)
-    ratio = sp.simplify(second.size / first.size) * (K_B * leading) ** (second.exponent - first.exponent)
+    ratio = sp.powsimp(second.size / first.size) * (K_B * leading) ** (second.exponent - first.exponent)
     weight = sp.zeta(second.exponent) / (first.exponent * sp.zeta(first.exponent))
     correction = -weight * ratio if (second.exponent - 1).is_positive else sp.Integer(0)
     return Expansion(limit, leading, correction, sp.Abs(ratio))

@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING
 
 import sympy as sp
 
+from eoscore.symbolic.algebra import monomial
 from eoscore.symbolic.integrals.rule import BETA
 
 if TYPE_CHECKING:
@@ -90,13 +91,14 @@ class Partition:
 def partition_of(whole: sp.Expr, sign: int) -> Partition:
     """Take an expression in `BETA` apart into powers where it is a sum of them."""
     powers: dict[sp.Expr, sp.Expr] = {}
-    for term in sp.Add.make_args(sp.expand(whole)):
-        size, varying = sp.powsimp(term).as_independent(BETA, as_Add=False)
-        exponent = sp.simplify(-BETA * sp.diff(varying, BETA) / varying)
-        if BETA in exponent.free_symbols or sp.simplify(varying * BETA**exponent).free_symbols & {BETA}:
+    for term in (whole,) if monomial(whole, BETA) else sp.Add.make_args(sp.expand(whole)):
+        law = monomial(term, BETA)
+        if law is None:
             return Partition((), whole, sign)
-        powers[exponent] = powers.get(exponent, sp.Integer(0)) + size * sp.simplify(varying * BETA**exponent)
+        powers[-law[1]] = powers.get(-law[1], sp.Integer(0)) + law[0]
     ordered = sorted(powers.items(), key=lambda item: sp.default_sort_key(item[0]), reverse=True)
     return Partition(
-        tuple(Power(sp.factor(size), exponent) for exponent, size in ordered), sp.Integer(0), sign
+        tuple(Power(sp.factor(size) if size.is_Add else size, exponent) for exponent, size in ordered),
+        sp.Integer(0),
+        sign,
     )

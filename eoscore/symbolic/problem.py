@@ -14,12 +14,12 @@ from eoscore.symbolic.integrals import Boltzmann, boltzmann
 from eoscore.symbolic.integrals.rule import BETA, Task
 from eoscore.symbolic.partition import partition_of
 from eoscore.symbolic.quantities import ENERGY, K_B, Model
+from eoscore.symbolic.signed import Signed
 
 if TYPE_CHECKING:
     from collections.abc import Mapping
 
     from eoscore.language.binding import Binding
-    from eoscore.language.symbolic import Symbolic
     from eoscore.state import HeldGas
 
 __all__ = ["HBAR", "CutError", "Problem", "problem_of"]
@@ -61,7 +61,7 @@ def problem_of(binding: Binding, held: HeldGas) -> Problem:
         raise CutError(
             f"states above {held.top:.6g} J are not counted, and no closed form is known for the rest"
         )
-    known = binding.symbolic()
+    known = Signed(binding.symbolic())
     if isinstance(binding.place, StatesFacts):
         whole = Boltzmann(sp.Integer(0), _of_states(known), ("rho(E) as given, its Laplace transform",))
         return _assembled(known, held, [whole])
@@ -69,7 +69,7 @@ def problem_of(binding: Binding, held: HeldGas) -> Problem:
     return _assembled(known, held, [part for part in parts if part is not None])
 
 
-def _assembled(known: Symbolic, held: HeldGas, parts: list[Boltzmann]) -> Problem:
+def _assembled(known: Signed, held: HeldGas, parts: list[Boltzmann]) -> Problem:
     degeneracy = known.of("degeneracy")
     one = sp.Mul(degeneracy if degeneracy is not None else 1, *(part.integral for part in parts))
     steps = [step for part in parts for step in part.steps]
@@ -103,7 +103,7 @@ def degeneracy_of(degeneracy: sp.Expr | None) -> sp.Expr:
     return sp.Integer(1) if degeneracy is None else degeneracy
 
 
-def _values(known: Symbolic, held: HeldGas) -> dict[str, float]:
+def _values(known: Signed, held: HeldGas) -> dict[str, float]:
     from eoscore import constants
 
     always = {"hbar": constants.HBAR, "k_B": constants.K_B, "c": constants.C}
@@ -112,12 +112,12 @@ def _values(known: Symbolic, held: HeldGas) -> dict[str, float]:
     return {**always, **mass, **own, **known.values}
 
 
-def _mass(known: Symbolic) -> sp.Expr:
+def _mass(known: Signed) -> sp.Expr:
     found = known.of("m")
     return sp.Symbol("m", positive=True) if found is None else found
 
 
-def _momenta(known: Symbolic, held: HeldGas) -> Boltzmann | None:
+def _momenta(known: Signed, held: HeldGas) -> Boltzmann | None:
     """K(beta) over (2 pi hbar)^d: inline energies by integration, plugins by their own closed form if they have one."""
     d, dispersion = held.dimension, held.gas.dispersion
     if d == 0:
@@ -141,7 +141,7 @@ def _momenta(known: Symbolic, held: HeldGas) -> Boltzmann | None:
     )
 
 
-def _named(expression: Any, known: Symbolic, held: HeldGas) -> Any:
+def _named(expression: Any, known: Signed, held: HeldGas) -> Any:
     """A plugin's expression with its mass and parameters as this file's symbols."""
     renamed = {}
     for symbol in expression.free_symbols:
@@ -153,7 +153,7 @@ def _named(expression: Any, known: Symbolic, held: HeldGas) -> Any:
     return expression.subs(renamed, simultaneous=True)
 
 
-def _position(binding: Binding, known: Symbolic) -> Boltzmann | None:
+def _position(binding: Binding, known: Signed) -> Boltzmann | None:
     """Q(beta), the volume of a box, or nothing for the unbounded place (everything is then per volume)."""
     if isinstance(binding.place, TrapFacts):
         task = Task(
@@ -165,12 +165,12 @@ def _position(binding: Binding, known: Symbolic) -> Boltzmann | None:
     return None
 
 
-def _pairs(known: Symbolic, expression: sp.Expr) -> tuple[tuple[sp.Symbol, float], ...]:
-    values = known.values
-    return tuple((s, values[s.name]) for s in sorted(expression.free_symbols, key=str) if s.name in values)
+def _pairs(known: Signed, expression: sp.Expr) -> tuple[tuple[sp.Symbol, float], ...]:
+    values, free = known.values, expression.free_symbols if expression is not None else ()
+    return tuple((s, values[s.name]) for s in sorted(free, key=str) if s.name in values)
 
 
-def _of_states(known: Symbolic) -> sp.Expr:
+def _of_states(known: Signed) -> sp.Expr:
     """The Laplace transform of rho(E); with an anchor, Z1 = N_c / zeta(a) (k_B T)^-a beta^-a."""
     if known.rho is not None:
         terms = sp.Add.make_args(sp.expand(known.rho))

@@ -3,34 +3,112 @@
 from __future__ import annotations
 
 import re
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 import sympy as sp
 
-__all__ = ["forms", "tidy"]
+if TYPE_CHECKING:
+    from collections.abc import Iterable
+
+__all__ = ["forms", "gathered", "missing_words", "plain", "tidy", "where", "written_name"]
+
+# Words of SymPy that a formula may hold, or that its reader puts in: no symbol of a file may shadow them.
+_WORDS = frozenset(
+    """
+    Abs Max Min acos asin atan atan2 besseli besselj besselk cos cosh elliptic_e elliptic_k erf erfc exp gamma log
+    lowergamma polylog sign sin sinh sqrt tan tanh uppergamma zeta
+    Float Function Integer Integral Rational Sum Symbol oo pi
+    """.split()  # noqa: SIM905 - a table of words reads better than 37 quoted ones
+)
+
+
+def written_name(name: str) -> str:
+    """The name under which a symbol is written: one that SymPy would take for its own word gets a trailing `_`."""
+    return f"{name}_" if name in _WORDS else name
+
+
+def _renamed(expression: sp.Expr) -> sp.Expr:
+    """Symbols under their written names, and sums over an index that is no symbol of the file."""
+    free = expression.free_symbols
+    names = {symbol: sp.Symbol(written_name(symbol.name), **symbol.assumptions0) for symbol in free}
+    names = {old: new for old, new in names.items() if old.name != new.name}
+    taken = {symbol.name for symbol in free}
+    for index in {limit[0] for total in expression.atoms(sp.Sum) for limit in total.limits}:
+        if index.name in taken:
+            names[index] = sp.Symbol(f"{index.name}_", integer=True, positive=True)
+    return expression.xreplace(names) if names else expression
 
 
 def tidy(expression: sp.Expr) -> sp.Expr:
     """Powers of products gathered, common factors out: the shortest of a few equal writings."""
     if expression.has(sp.Sum):
         return expression
-    candidates = [expression, sp.powsimp(sp.powdenest(expression)), sp.factor_terms(sp.powsimp(expression))]
-    candidates.append(sp.powdenest(sp.powsimp(sp.simplify(expression)), force=False))
+    merged = sp.powsimp(sp.powdenest(expression))
+    candidates = [expression, merged, sp.factor_terms(merged)]
+    if expression.has(sp.Add) and all(power.exp.is_number for power in expression.atoms(sp.Pow)):
+        candidates += [sp.powsimp(sp.together(each)) for each in candidates[1:]]
     return min(candidates, key=lambda e: (sp.count_ops(e), len(str(e))))
+
+
+def gathered(expression: sp.Expr) -> sp.Expr:
+    """Equal powers of positive factors as the power of a product: N^(1/3)/zeta(3)^(1/3) as (N/zeta(3))^(1/3)."""
+    if not expression.args or isinstance(expression, sp.Sum):
+        return expression
+    if not isinstance(expression, sp.Mul):
+        parts = [gathered(part) for part in expression.args]
+        if all(new is old for new, old in zip(parts, expression.args, strict=True)):
+            return expression
+        return expression.func(*parts, evaluate=False)
+    alone: list[sp.Expr] = []
+    powers: dict[sp.Expr, list[sp.Expr]] = {}
+    for factor in expression.args:
+        base, exponent = factor.as_base_exp()
+        if exponent in (1, -1) or not _positive(base):
+            alone.append(gathered(factor))
+            continue
+        turned = exponent.could_extract_minus_sign()
+        powers.setdefault(-exponent if turned else exponent, []).append(1 / base if turned else base)
+    written = [_power(bases, exponent) for exponent, bases in powers.items()]
+    return sp.Mul(*alone, *written, evaluate=False)
+
+
+def _power(bases: list[sp.Expr], exponent: sp.Expr) -> sp.Expr:
+    product = sp.Mul(*bases)
+    turned = sp.fraction(product)[0] == 1  # m^(-3/8) rather than (1/m)^(3/8)
+    return (
+        sp.Pow(1 / product, -exponent, evaluate=False)
+        if turned
+        else sp.Pow(product, exponent, evaluate=False)
+    )
+
+
+def _positive(base: sp.Expr) -> bool:
+    return bool(base.is_positive) or isinstance(base, (sp.zeta, sp.gamma))
 
 
 def forms(name: str, expression: sp.Expr) -> dict[str, Any]:
     """SymPy text, LaTeX, plain text and presentation MathML of `name = expression`."""
-    left = sp.Symbol(name)
-    equation = sp.Eq(left, expression, evaluate=False)
+    written = gathered(_renamed(expression))
+    equation = sp.Eq(sp.Symbol(name), written, evaluate=False)
     return {
-        "sympy": sp.sstr(expression, full_prec=True),
+        "sympy": sp.sstr(written, full_prec=True),
         "latex": sp.latex(equation),
-        "text": f"{name} = {plain(expression)}",
+        "text": f"{name} = {plain(written)}",
         "mathml": sp.mathml(equation, printer="presentation").replace("<mi>hbar</mi>", "<mi>&#x210F;</mi>"),
     }
 
 
 def plain(expression: sp.Expr) -> str:
     """One line in the file's own notation: `^` for powers."""
-    return re.sub(r"\*\*", "^", sp.sstr(expression))
+    return re.sub(r"\*\*", "^", sp.sstr(_renamed(expression)))
+
+
+def missing_words(missing: Iterable[sp.Symbol]) -> str | None:
+    """Why there is no number: the symbols that have none; None where none is missing."""
+    names = sorted(written_name(symbol.name) for symbol in missing)
+    return f"no value for {', '.join(names)}" if names else None
+
+
+def where(values: Iterable[tuple[sp.Symbol, float]]) -> dict[str, float]:
+    """SI values by written name, in alphabetical order."""
+    return dict(sorted((written_name(symbol.name), value) for symbol, value in values))

@@ -21,7 +21,7 @@ def band(task: Task, solve: Solve) -> Boltzmann | None:  # noqa: ARG001 - every 
     match = varying.match(size * sp.cos(wave * x))
     if match is None or not axis.high.is_finite:
         return None
-    periods = sp.simplify((axis.high - axis.low) * match[wave] / (2 * sp.pi))
+    periods = sp.cancel((axis.high - axis.low) * match[wave] / (2 * sp.pi))
     amplitude = sp.Abs(match[size])
     if not periods.is_integer:
         return None

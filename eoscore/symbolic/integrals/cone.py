@@ -10,6 +10,12 @@ from eoscore.symbolic.integrals.rule import BETA, Boltzmann, Solve, Task
 __all__ = ["cone"]
 
 
+def _root_of(square: sp.Expr) -> sp.Expr:
+    """The root of a perfect square, and any other expression as it is: both are below 1 together."""
+    root = sp.sqrt(square)
+    return square if any(power.exp == sp.Rational(1, 2) for power in root.atoms(sp.Pow)) else root
+
+
 def cone(task: Task, solve: Solve) -> Boltzmann | None:  # noqa: ARG001 - every rule has the same signature
     """Gamma(d + 1) Omega(1) beta^-d, Omega(1) = V_d (1 - f.A^-1.f)^{-(d+1)/2} / sqrt(det A); needs f.A^-1.f < 1.
 
@@ -19,7 +25,7 @@ def cone(task: Task, solve: Solve) -> Boltzmann | None:  # noqa: ARG001 - every 
         return None
     symbols = [axis.symbol for axis in task.axes]
     mirrored = task.function.subs({s: -s for s in symbols}, simultaneous=True)
-    odd = sp.simplify((task.function - mirrored) / 2)
+    odd = sp.expand((task.function - mirrored) / 2)
     if odd == 0 or not odd.is_polynomial(*symbols) or sp.Poly(odd, *symbols).total_degree() != 1:
         return None
     square = sp.expand((task.function - odd) ** 2)
@@ -40,9 +46,9 @@ def cone(task: Task, solve: Solve) -> Boltzmann | None:  # noqa: ARG001 - every 
     determinant = sp.factor(form.det()) * sp.Mul(
         *(form[i, i] ** (a.dimension - 1) for i, a in enumerate(task.axes))
     )
-    steepness = sp.simplify((tilt.T * form.LUsolve(tilt))[0])
+    steepness = sp.factor((tilt.T * form.LUsolve(tilt))[0])
     volume = sphere(d) / d * (1 - steepness) ** sp.Rational(-(d + 1), 2) / sp.sqrt(determinant)
-    condition = sp.Lt(sp.factor(steepness), 1)
+    condition = sp.Lt(*sp.fraction(_root_of(steepness)))
     step = (
         f"a tilted cone: level surfaces are ellipsoids with the tip in a focus, eccentricity^2 = {steepness}"
     )

@@ -6,6 +6,7 @@ from dataclasses import replace
 
 import sympy as sp
 
+from eoscore.symbolic.algebra import constant_in
 from eoscore.symbolic.axes import Axis, with_walls
 from eoscore.symbolic.integrals.rule import Boltzmann, Solve, Task, symbols_of
 
@@ -17,8 +18,8 @@ def _stretch(function: sp.Expr, x: sp.Symbol, y: sp.Symbol, all_symbols: set[sp.
     slope = sp.diff(function, x) / x
     if slope == 0:
         return None
-    ratio = sp.simplify(sp.diff(function, y) / y / slope)
-    return ratio if ratio.is_positive and not ratio.free_symbols & all_symbols else None
+    ratio = constant_in(sp.diff(function, y) / y / slope, all_symbols)
+    return ratio if ratio is not None and ratio.is_positive else None
 
 
 def ellipsoid(task: Task, solve: Solve) -> Boltzmann | None:
@@ -46,12 +47,12 @@ def _forms(task: Task, lead: Axis, other: Axis) -> list[sp.Expr]:
 def _grouped(task: Task, lead: Axis, stretches: dict[Axis, sp.Expr], solve: Solve) -> Boltzmann | None:
     dimension = lead.dimension + sum(axis.dimension for axis in stretches)
     jacobian = sp.Mul(*(q ** sp.Rational(-axis.dimension, 2) for axis, q in stretches.items()))
-    r = sp.Symbol(f"r{dimension}_{lead.symbol}", positive=True)
+    r = sp.Symbol(f"{lead.symbol}'", positive=True)
     to_radius = {lead.symbol: r} | {axis.symbol: sp.Integer(0) for axis in stretches}
     radius = Axis(r, sp.Integer(0), sp.oo, dimension, radius=True)
     rest = tuple(axis for axis in task.axes if axis is not lead and axis not in stretches)
     axes, walls = with_walls((radius, *rest), [wall.subs(to_radius) for wall in task.walls])
-    inner = solve(replace(task, function=sp.simplify(task.function.subs(to_radius)), axes=axes, walls=walls))
+    inner = solve(replace(task, function=task.function.subs(to_radius), axes=axes, walls=walls))
     if inner is None:
         return None
     names = ", ".join(str(axis.symbol) for axis in (lead, *stretches))

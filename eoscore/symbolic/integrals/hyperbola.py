@@ -4,10 +4,20 @@ from __future__ import annotations
 
 import sympy as sp
 
-from eoscore.symbolic.integrals.power import half
+from eoscore.symbolic.integrals.power import half, measure_of
 from eoscore.symbolic.integrals.rule import BETA, Boltzmann, Solve, Task
 
 __all__ = ["hyperbola"]
+
+
+def _scaled_k(order: sp.Expr, z: sp.Expr) -> list[sp.Expr]:
+    """The terms of e^z K_order(z), powers for half an odd number (DLMF 10.49.12)."""
+    n = order - sp.Rational(1, 2)
+    if not n.is_integer:
+        return [sp.exp(z) * sp.besselk(order, z)]
+    lead = sp.sqrt(sp.pi / (2 * z))
+    weights = (sp.factorial(n + j) / (sp.factorial(j) * sp.factorial(n - j)) for j in range(int(n) + 1))
+    return [lead * weight / (2 * z) ** j for j, weight in enumerate(weights)]
 
 
 def hyperbola(task: Task, solve: Solve) -> Boltzmann | None:  # noqa: ARG001 - every rule has the same signature
@@ -22,18 +32,16 @@ def hyperbola(task: Task, solve: Solve) -> Boltzmann | None:  # noqa: ARG001 - e
     square = sp.expand(sp.expand(varying**2, force=True))
     if not square.is_polynomial(r) or sp.Poly(square, r).degree() != 2 or sp.diff(square, r).subs(r, 0) != 0:
         return None
-    a, e = square.subs(r, 0), sp.simplify(sp.diff(square, r, 2) / 2)
+    a, e = square.subs(r, 0), sp.factor_terms(sp.diff(square, r, 2) / 2)
     if not (a.is_positive and e.is_positive):
         return None
-    n = sp.simplify(1 + r * sp.diff(weight, r) / weight)
-    surface = sp.simplify(weight / r ** (n - 1))
+    surface, n = measure_of(weight, r)
     rest = sp.sqrt(sp.factor(a))
     z = BETA * rest
     nu = (n + 1) / 2
-    bessel = sp.expand_func(sp.besselk(nu, z)) if nu.is_integer is False else sp.besselk(nu, z)
-    moment = z / n * sp.gamma(nu + sp.Rational(1, 2)) / sp.sqrt(sp.pi) * (2 / z) ** nu * bessel
-    integral = surface * (sp.factor(a) / e) ** (n / 2) * moment * sp.exp(z)
-    if nu.is_integer is False:
-        integral = sp.expand(sp.simplify(integral))
+    moment = z / n * sp.gamma(nu + sp.Rational(1, 2)) / sp.sqrt(sp.pi) * (2 / z) ** nu
+    size = surface * (sp.factor(a) / e) ** (n / 2) * moment
+    # Term by term, so that powers of a + ... cancel before anything is expanded.
+    integral = sp.Add(*(size * term for term in _scaled_k(nu, z)))
     step = f"{task.axes[0].symbol}: sqrt(a + e r^2), r = sqrt(a/e) sinh(t), Bessel K of order {nu}"
     return Boltzmann(constant + rest, integral, (step,))

@@ -6,6 +6,7 @@ from dataclasses import replace
 
 import sympy as sp
 
+from eoscore.symbolic.algebra import monomial, vanishes
 from eoscore.symbolic.integrals.rule import BETA, Boltzmann, Solve, Task
 
 __all__ = ["layers"]
@@ -17,15 +18,17 @@ def layers(task: Task, solve: Solve) -> Boltzmann | None:
     if len(task.axes) != 2 or len(radii) != 1 or task.walls:
         return None
     (other,) = (axis for axis in task.axes if not axis.radius)
-    stand_in = sp.Symbol(f"{other.symbol}_", positive=True)
-    inner = solve(replace(task, function=task.function.subs(other.symbol, stand_in), axes=tuple(radii)))
+    stand_in = sp.Symbol(f"{other.symbol}'", positive=True)
+    inner = solve(
+        replace(task, function=task.function.subs(other.symbol, stand_in), axes=tuple(radii), patient=False)
+    )
     if inner is None or not other.whole:
         return None
     floor, layer = inner.minimum, inner.integral
-    if sp.simplify(task.function.subs(other.symbol, -other.symbol) - task.function) != 0:
+    if not vanishes(task.function.subs(other.symbol, -other.symbol) - task.function):
         return None
     least = floor.subs(stand_in, 0)
-    rise = sp.expand(sp.simplify(floor - least))
+    rise = sp.expand(floor - least)
     if not rise.is_polynomial(stand_in) or not all(c.is_positive for c in sp.Poly(rise, stand_in).coeffs()):
         return None
     moments = [_moment(term, rise, stand_in) for term in sp.Add.make_args(sp.expand(layer))]
@@ -37,11 +40,9 @@ def layers(task: Task, solve: Solve) -> Boltzmann | None:
 
 def _moment(term: sp.Expr, rise: sp.Expr, z: sp.Symbol) -> sp.Expr | None:
     """Twice int_0^oo term e^{-beta rise} dz: Euler's integral for powers of z, SymPy's integrator otherwise."""
-    size, power = term.as_independent(z, as_Add=False)
-    slope, shape = rise.as_independent(z, as_Add=False)
-    n = sp.simplify(z * sp.diff(power, z) / power)
-    s = sp.simplify(z * sp.diff(shape, z) / shape)
-    if not (n.is_number and s.is_number):
+    factor, law = monomial(term, z), monomial(rise, z)
+    if factor is None or law is None:
         found = 2 * sp.integrate(term * sp.exp(-BETA * rise), (z, 0, sp.oo))
         return None if found.has(sp.Integral) else found
+    (size, n), (slope, s) = factor, law
     return 2 * size * sp.gamma((n + 1) / s) / (s * (BETA * slope) ** ((n + 1) / s))

@@ -6,6 +6,7 @@ from dataclasses import replace
 
 import sympy as sp
 
+from eoscore.symbolic.algebra import monomial
 from eoscore.symbolic.integrals.rule import BETA, Boltzmann, Solve, Task, symbols_of
 
 __all__ = ["power_of_sum"]
@@ -20,12 +21,13 @@ def power_of_sum(task: Task, solve: Solve) -> Boltzmann | None:
         or not inner.exp.is_positive
     ):
         return None
-    base = solve(replace(task, function=sp.expand(inner.base)))
+    base = solve(replace(task, function=sp.expand(inner.base), patient=False))
     if base is None or base.minimum != 0 or not factor.is_positive:
         return None
-    k = sp.simplify(-BETA * sp.diff(base.integral, BETA) / base.integral)
-    if BETA in k.free_symbols:
+    law = monomial(base.integral, BETA)
+    if law is None:
         return None
-    size = sp.simplify(base.integral * BETA**k) / sp.gamma(k + 1)
+    k = -law[1]
+    size = law[0] / sp.gamma(k + 1)
     integral = size * sp.gamma(k / inner.exp + 1) * (BETA * factor) ** (-k / inner.exp)
     return replace(base, integral=integral, steps=(*base.steps, f"raised to the power {inner.exp}"))

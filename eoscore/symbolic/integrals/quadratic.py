@@ -24,7 +24,7 @@ def quadratic(task: Task, solve: Solve) -> Boltzmann | None:  # noqa: ARG001 - e
     slope = sp.Matrix([sp.diff(task.function, symbol).subs(at_zero) for symbol in symbols])
     least = task.function.subs(at_zero) - (slope.T * hessian.LUsolve(slope))[0] / 2
     integral = (2 * sp.pi / BETA) ** sp.Rational(len(symbols), 2) / sp.sqrt(determinant)
-    conditions = () if determinant.is_positive else (sp.Gt(determinant, 0),)
+    conditions = () if determinant.is_positive else (sp.Gt(sp.fraction(determinant)[0], 0),)
     names = ", ".join(map(str, symbols))
     step = f"quadratic in {names}: the Gaussian integral (2 pi/beta)^({len(symbols)}/2)/sqrt(det), det = {determinant}"
-    return Boltzmann(sp.simplify(least), integral, (step,), conditions)
+    return Boltzmann(least, integral, (step,), conditions)

@@ -13,7 +13,8 @@ if TYPE_CHECKING:
 
 __all__ = ["BETA", "Boltzmann", "Rule", "Solve", "Task", "symbols_of"]
 
-BETA = sp.Symbol("beta_", positive=True)  # 1/(k_B T), in 1/J
+# 1/(k_B T), in 1/J. The prime of this and other names made here is a sign that no name of a file can have.
+BETA = sp.Symbol("beta'", positive=True)
 
 
 @dataclass(frozen=True)
@@ -24,6 +25,7 @@ class Task:
     axes: tuple[Axis, ...]
     walls: tuple[sp.Expr, ...] = ()
     values: tuple[tuple[sp.Symbol, float], ...] = ()
+    patient: bool = True  # whether SymPy's own integrator may be tried, which can take seconds to say no
 
 
 @dataclass(frozen=True)
