@@ -44,11 +44,18 @@ def spill_of(state: State) -> str:
     """A warning where a place with an escape energy would let atoms out; empty where hardly any would go.
 
     The share is that of the classical gas with the state's own mean energy: the part of its Gamma distribution of
-    energies that lies above the escape.
+    energies that lies above the escape. Where no state below the escape energy has that entropy, more must go.
     """
     top, solution = state.held.top, state.solution
     known = solution.known
-    if top == inf or not known.any():
+    if top == inf:
+        return ""
+    if not known.any() and state.held.model.bosons:
+        return (
+            f"so many atoms with so much entropy do not fit below the escape energy, {top / K_B:.3g} K: they spill "
+            "while the trap changes, until the rest fits"
+        )
+    if not known.any():
         return ""
     kT = solution.kT[known]
     ratio = top / kT
