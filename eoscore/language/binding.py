@@ -75,10 +75,11 @@ class Binding:
         if isinstance(place.node, nodes.States):
             return self._states()
         e_max = self._positive(own["E_max"]) if "E_max" in own else None
+        levels = place.levels.name if place.levels else None
         if "V" in own:
-            return TrapFacts(place.name, self._field(own["V"]), e_max)
+            return TrapFacts(place.name, self._field(own["V"]), e_max, levels)
         size = dimension_of(self._pair, self._checker) or 3
-        return VolumeFacts(place.name, self._positive(own["volume"]), size, e_max)
+        return VolumeFacts(place.name, self._positive(own["volume"]), size, e_max, levels)
 
     def symbolic(self) -> Symbolic:
         """The same in SymPy, by a walk of its own over the nodes; imports SymPy."""

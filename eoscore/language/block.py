@@ -75,6 +75,7 @@ class Place:
     node: nodes.Trap | nodes.States | None
     definitions: tuple[nodes.Definition, ...] = ()
     anchor: nodes.Anchor | None = None
+    levels: nodes.Ident | None = None
 
     @property
     def name(self) -> str:
@@ -234,4 +235,5 @@ def place_block(node: nodes.Trap | nodes.States, settings: Settings, faults: Fau
     written = [entry for entry in node.entries if isinstance(entry, nodes.Definition)]
     definitions = settings.applied(without_doubles(written, faults), node.name.name)
     anchor = single(_of(node, nodes.Anchor), "anchor", faults) if isinstance(node, nodes.States) else None
-    return Place(node, tuple(definitions), anchor)
+    words = [entry.kind for entry in node.entries if isinstance(entry, nodes.Levels)]
+    return Place(node, tuple(definitions), anchor, single(words, "levels", faults))

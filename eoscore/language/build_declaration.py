@@ -24,6 +24,7 @@ _LINES: dict[type[nodes.Node], str] = {
     nodes.Statistics: "statistics",
     nodes.Treatment: "treatment",
     nodes.DispersionChoice: "dispersion",
+    nodes.Levels: "levels",
     nodes.Anchor: "anchor",
 }
 
@@ -106,6 +107,10 @@ class BuildDeclaration(BuildExpression):
     def settings(self, found: Found) -> Part:
         """`{ parameter = a ... }`."""
         return Part("settings", tuple(found[1:-1]), self.span(found))
+
+    def levels(self, found: Found) -> nodes.Levels:
+        """`levels exact`."""
+        return nodes.Levels(self.ident(found[1]), span=self.span(found))
 
     def anchor(self, found: Found) -> nodes.Anchor:
         """`anchor N_c = a at T = b`."""

@@ -35,11 +35,15 @@ class GasFacts:
 
 @dataclass(frozen=True)
 class TrapFacts:
-    """A potential, and the energy (J, from the bottom) above which states are cut, if any."""
+    """A potential, and the energy (J, from the bottom) above which states are cut, if any.
+
+    `levels` is "exact" where the true levels are counted, None for the semiclassical count.
+    """
 
     name: str
     field: Field
     e_max: float | None
+    levels: str | None = None
 
 
 @dataclass(frozen=True)
@@ -50,6 +54,7 @@ class VolumeFacts:
     volume: float
     dimension: int
     e_max: float | None
+    levels: str | None = None
 
 
 @dataclass(frozen=True)

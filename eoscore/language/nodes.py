@@ -151,6 +151,13 @@ class DispersionChoice(Node):
 
 
 @dataclass(frozen=True)
+class Levels(Node):
+    """`levels exact`: how the states of a trap are counted; the word is checked later."""
+
+    kind: Ident
+
+
+@dataclass(frozen=True)
 class Anchor(Node):
     """`anchor N_c = ... at T = ...` in a states block."""
 
@@ -171,7 +178,7 @@ class Trap(Node):
     """A trap block; `V(...)`, `volume` and `E_max` are definitions among its entries."""
 
     name: Ident
-    entries: tuple[Definition, ...]
+    entries: tuple[Definition | Levels, ...]
 
 
 @dataclass(frozen=True)

@@ -6,6 +6,7 @@ from typing import TYPE_CHECKING, Final
 
 from eoscore.language import nodes
 from eoscore.language.demand import must_be, must_be_positive
+from eoscore.language.faults import listed
 from eoscore.language.kind import Kind, Wild, dimension
 
 if TYPE_CHECKING:
@@ -17,6 +18,7 @@ __all__ = ["COORDINATES", "check_place", "dimension_of"]
 
 # The coordinates a potential may have, and the dimension each choice stands for.
 COORDINATES: Final = {("x",): 1, ("x", "y"): 2, ("rho",): 2, ("x", "y", "z"): 3, ("rho", "z"): 3, ("r",): 3}
+LEVELS: Final = ("exact",)
 VOLUMES: Final = ("m3", "m2", "m")
 
 
@@ -97,6 +99,9 @@ def _density(named: Named, checker: Checker) -> None:
 def _trap(place: Place, checker: Checker) -> None:
     if place.node is None:
         return
+    if place.levels is not None and place.levels.name not in LEVELS:
+        hint = listed(place.levels.name, LEVELS, what="the words after `levels`")
+        checker.faults.add(place.levels.span, f"`{place.levels.name}` is no way to count levels", hint)
     both = place.has("V") and place.has("volume")
     if both or not (place.has("V") or place.has("volume")):
         names = [definition.name.name for definition in place.definitions]

@@ -15,5 +15,6 @@ LINE_WORDS: Final = {
     "statistics": "gas",
     "treatment": "gas",
     "dispersion": "gas",
+    "levels": "trap",
     "anchor": "states",
 }

@@ -78,6 +78,8 @@ def _line(node: nodes.Node) -> str:
         case nodes.DispersionChoice():
             lines = "".join(f"{_INDENT * 2}{write(parameter)}\n" for parameter in node.parameters)
             return f"dispersion {node.name.name}" + (f" {{\n{lines}{_INDENT}}}" if lines else "")
+        case nodes.Levels():
+            return f"levels {node.kind.name}"
         case nodes.Anchor():
             return f"anchor N_c = {write(node.number)} at T = {write(node.temperature)}"
         case nodes.Use():

@@ -18,13 +18,15 @@ class Place(ABC):
     """A place that may hold a gas. Energies count from its bottom; all numbers are SI.
 
     name: as in the file. dimension: of space; 0 for a density of states. top: energies above it are not counted, J:
-    the escape energy or E_max, whichever is lower; inf where everything is held.
+    the escape energy or E_max, whichever is lower; inf where everything is held. levels: "exact" where the true levels
+    are to be counted.
     Facts that a place does not have raise NoAnswerError with the reason.
     """
 
     name: str
     dimension: int
     top: float = inf
+    levels: str | None = None
 
     @property
     @abstractmethod

@@ -28,9 +28,13 @@ def place_of(
         case None:
             return None
         case TrapFacts():
-            return TrapPlace(facts.name, facts.field, facts.e_max, mass)
+            place: Place = TrapPlace(facts.name, facts.field, facts.e_max, mass)
+            place.levels = facts.levels
+            return place
         case VolumeFacts():
-            return VolumePlace(facts.name, facts.volume, facts.dimension, facts.e_max)
+            place = VolumePlace(facts.name, facts.volume, facts.dimension, facts.e_max)
+            place.levels = facts.levels
+            return place
         case UniformFacts():
             return UniformPlace(dimension or 3, facts.name)
         case StatesFacts():

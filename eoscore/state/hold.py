@@ -30,6 +30,8 @@ def hold(gas: Gas, place: Place | None) -> HeldGas:
     """
     if isinstance(place, StatesPlace):
         return _of_states(gas, place)
+    if place is not None and place.levels == "exact":
+        return _on_exact_levels(gas, place)
     dimension = 0 if place is None else place.dimension
     if place is None and not gas.quanta:
         raise NoAnswerError(f"{gas.name} moves freely: say in which place it is held")
@@ -59,6 +61,19 @@ def _of_states(gas: Gas, place: StatesPlace) -> HeldGas:
         raise NoAnswerError(f"{gas.name} holds levels of its own, and {place.name} gives all states at once")
     model = Model(lambda: ensemble_of(gas, place.measure.cut(place.top)), None, None, gas.degeneracy)
     return HeldGas(gas, place, model, 0, place.measure, top=place.top)
+
+
+def _on_exact_levels(gas: Gas, place: Place) -> HeldGas:
+    """The true levels of the whole place; mu counts from the lowest. NoAnswerError where they are not to be had."""
+    from eoscore.state.exact import exact_levels
+
+    if gas.treatment == "hartree_fock":
+        raise NoAnswerError("`levels exact` counts the levels of an ideal gas: take out `treatment hartree_fock`")
+    model = Model(lambda: exact_levels(gas, place), None, None, gas.degeneracy)
+    why = "with `levels exact` the gas is no local one: its density is not counted; take that line out for it"
+    momentum = gas.momentum_measure(place.dimension)
+    volume = place.volume if isinstance(place, VolumePlace) else None
+    return HeldGas(gas, place, model, place.dimension, momentum, volume=volume, why_not_local=why)
 
 
 def _counted(gas: Gas, measure: Measure) -> Ensemble:

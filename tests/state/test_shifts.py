@@ -4,6 +4,7 @@ import numpy as np
 import pytest
 
 from eoscore.constants import HBAR
+from eoscore.state.shifts import beyond_mean_field
 
 from .places import MASS, box, harmonic, held, power, uniform
 
@@ -46,7 +47,10 @@ def test_beyond_mean_field_in_a_box():
     for place, given in ((box(1e-12), {"N": 1e7}), (uniform(), {"n": 1e19})):
         shift = held(place, a_s=A_S).find(["shift_int"], given)["shift_int"]
         assert shift.value == pytest.approx(1.32 * A_S * 1e19 ** (1 / 3), rel=1e-12, abs=0)
-        assert shift.error == pytest.approx(0.02 * A_S * 1e19 ** (1 / 3), rel=1e-12, abs=0)
+        x = A_S * 1e19 ** (1 / 3)
+        second = (19.7518415457 * np.log(x) + 75.7) * x**2  # Arnold, Moore, Tomasik, PRA 65, 013606 (2002)
+        assert shift.error == pytest.approx(0.02 * x + abs(second), rel=1e-9, abs=0)
+        assert f"{second:.1e}" in shift.route
 
 
 class Round(type(harmonic())):
@@ -62,12 +66,18 @@ def test_finite_number_in_a_harmonic_trap():
     assert shift.value == pytest.approx(-0.727503602287948 * np.array([1e-1, 1e-2]), rel=1e-11, abs=0)
 
 
+def test_two_orders_in_a_box():
+    """1 + 1.32 x + (19.7518 ln x + 75.7) x^2 at x = 1e-3 (Arnold, Moore, Tomasik, PRA 65, 013606, 2002)."""
+    assert 1 + sum(beyond_mean_field(np.array(1e-3))) == pytest.approx(1.0012592594, abs=1e-9)
+
+
 WORDS = [
     (held(harmonic()), "shift_int", "no scattering length"),
     (held(harmonic(d=2), a_s=A_S), "shift_int", "three dimensions"),
     (held(box()), "shift_size", "flat"),
     (held(harmonic(), "fermi", a_s=A_S), "shift_int", "do not condense"),
     (held(Round(power(12).measure)), "shift_size", "no first order"),
+    (held(box()), "shift_size", "a volume has no shape"),
 ]
 
 

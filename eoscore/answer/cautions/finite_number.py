@@ -19,7 +19,7 @@ _HARMONIC = -0.727503602287948
 
 def finite_number(scene: Scene) -> Iterator[Caution]:
     """Caution where the first-order shift of T_c by the finite number is above one percent."""
-    if scene.binding.gas.statistics != "bose":
+    if scene.binding.gas.statistics != "bose" or getattr(scene.binding.place, "levels", None) == "exact":
         return
     shift = _shift(scene)
     if shift is not None and abs(shift) > _WORTH_SAYING:

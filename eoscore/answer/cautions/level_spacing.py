@@ -17,7 +17,8 @@ _FEW = 10.0  # levels within kT; common practice, no source
 
 def level_spacing(scene: Scene) -> Iterator[Caution]:
     """Caution where kT is less than ten times the spacing of the stiffest direction."""
-    if scene.temperature is None or not scene.frequencies:
+    exact = getattr(scene.binding.place, "levels", None) == "exact"
+    if exact or scene.temperature is None or not scene.frequencies:
         return
     stiffest = scene.frequencies[-1]
     levels = K_B * scene.temperature / (H * stiffest)

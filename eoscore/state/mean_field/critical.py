@@ -11,9 +11,9 @@ from eoscore.constants import K_B
 from eoscore.errors import NoAnswerError
 from eoscore.state import saturation, shifts
 from eoscore.state.critical import saturated_kT
-from eoscore.state.mean_field.matter import is_flat
 from eoscore.state.reading import Reason
 from eoscore.state.root import rising_root
+from eoscore.state.shifts import is_flat
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray

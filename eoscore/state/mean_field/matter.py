@@ -12,11 +12,12 @@ from eoscore.state.mean_field.box import BoxFilling
 from eoscore.state.mean_field.cloud import Setting
 from eoscore.state.mean_field.filling import Filling, collapse_number
 from eoscore.state.mean_field.fluid import ORDER
+from eoscore.state.shifts import is_flat
 
 if TYPE_CHECKING:
     from eoscore.state.held import HeldGas
 
-__all__ = ["filling_of", "is_flat"]
+__all__ = ["filling_of"]
 
 
 def filling_of(held: HeldGas) -> Filling:
@@ -36,12 +37,6 @@ def filling_of(held: HeldGas) -> Filling:
     if held.position is None:
         raise NoAnswerError("treatment hartree_fock needs a place with a potential or a volume")
     return Filling(Setting(held.position, held.top, coupling, states), _largest(held, mass, gas.a_s))
-
-
-def is_flat(held: HeldGas) -> bool:
-    """Whether the density is the same everywhere: a volume, the unbounded place, or a flat floor between walls."""
-    powers = held.position.powers() if held.position is not None else None
-    return held.position is None or (powers is not None and len(powers) == 1 and powers[0][1] == 0)
 
 
 def _fitting(held: HeldGas) -> None:

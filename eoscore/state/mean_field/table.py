@@ -10,10 +10,10 @@ import numpy as np
 from eoscore.constants import K_B
 from eoscore.errors import NoAnswerError
 from eoscore.state.mean_field import critical, local
-from eoscore.state.mean_field.matter import is_flat
 from eoscore.state.mean_field.radii import radii
 from eoscore.state.mean_field.state import ROUTE
 from eoscore.state.reading import Reading, Reason
+from eoscore.state.shifts import is_flat
 
 if TYPE_CHECKING:
     from collections.abc import Callable

@@ -1,0 +1,99 @@
+"""Exact sums over the true levels of a place."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from eoscore.gas.multiples import multiples_of
+from eoscore.state.ensemble import EPS, Ensemble
+from eoscore.state.exact.direction import Sums as OfLevels
+from eoscore.state.sums import Sums
+
+if TYPE_CHECKING:
+    from numpy.typing import NDArray
+
+    from eoscore.state.exact.direction import Direction
+    from eoscore.state.reading import FloatArray
+
+__all__ = ["ExactLevels"]
+
+
+class ExactLevels(Ensemble):
+    """Bosons or classical particles on the levels of independent directions; mu and U count from the lowest level.
+
+    For bosons the sums leave the lowest level out: it holds the condensate, mu = its energy at saturation.
+    """
+
+    route = "exact sums over the levels of the place"
+
+    def __init__(self, directions: tuple[Direction, ...], statistics: str, degeneracy: float) -> None:
+        self.directions, self.statistics, self.degeneracy = directions, statistics, degeneracy
+
+    @property
+    def lowest(self) -> float:
+        """The energy of the lowest level, J from the bottom of V."""
+        return sum(direction.lowest for direction in self.directions)
+
+    @property
+    def gap(self) -> float:
+        """From the lowest level to the next, J."""
+        return min(direction.gap for direction in self.directions)
+
+    @property
+    def error(self) -> float:
+        """See `Ensemble.error`."""
+        return sum(direction.error for direction in self.directions) + 4000 * EPS
+
+    @property
+    def condenses(self) -> bool:
+        """See `Ensemble.condenses`: the sum over discrete levels always ends."""
+        return self.statistics == "bose"
+
+    def all_sums(self, alpha: FloatArray, kT: FloatArray) -> Sums:
+        """See `Ensemble.all_sums`."""
+        columns = [self._point(a, t) for a, t in zip(alpha.tolist(), kT.tolist(), strict=True)]
+        return Sums(*np.array(columns).T)
+
+    def _point(self, alpha: float, kT: float) -> tuple[float, ...]:
+        y, n, x, b0, x1, x2 = total = np.zeros(6)
+        for rule in multiples_of(self.statistics, alpha + self.gap / kT):
+            with np.errstate(under="ignore"):
+                weight = rule.weight * np.exp(-rule.at * alpha)
+            z0, z1, z2 = self.partition(rule.at / kT, kT)
+            z1, z2 = z1 / kT, z2 / kT**2
+            for row, (power, z) in enumerate(((-1, z0), (0, z0), (0, z1), (1, z0), (1, z1), (1, z2))):
+                total[row] += float(np.real((weight * rule.at**power * z).sum()))
+        y, n, x, b0, x1, x2 = (self.degeneracy * total).tolist()
+        b1, b2 = x1 + alpha * b0, x2 + 2 * alpha * x1 + alpha**2 * b0
+        return n, kT * x, y + x + alpha * n, y, b0, b1, b2
+
+    def partition(self, beta: NDArray[np.inexact], kT: float) -> OfLevels:
+        """The product over the directions, without the lowest level where bosons are counted."""
+        parts = [direction.sums(beta, kT) for direction in self.directions]
+        excited, mean, variance = 0.0 * beta, 0.0 * beta, 0.0 * beta
+        for z0, z1, z2 in parts:
+            excited = excited + np.log1p(z0)
+            first = z1 / (1 + z0)
+            mean, variance = mean + first, variance + z2 / (1 + z0) - first**2
+        excited = np.expm1(excited)
+        whole = excited + 1
+        without = excited if self.statistics == "bose" else whole
+        return OfLevels(without, whole * mean, whole * (mean**2 + variance))
+
+    def below(self, number: FloatArray) -> FloatArray:
+        """See `Ensemble.below`: where the classical partition function is as large, climbing from the first level."""
+        kT, z, guesses = 0.2 * self.gap, 0.0, []
+        for wanted in np.sort(number).tolist():
+            while z < wanted:
+                kT *= 1.3
+                z = float(np.real(self.partition(np.array([1 / kT]), kT).z0[0]))
+            guesses.append(kT)
+        return np.asarray(np.interp(number, np.sort(number), np.array(guesses)))
+
+    def boltzmann(self, kT: FloatArray) -> tuple[FloatArray, FloatArray]:
+        """See `Ensemble.boltzmann`."""
+        sums = [self.partition(np.array([1 / t]), t) for t in kT.tolist()]
+        z = np.array([float(s.z0[0]) for s in sums])
+        return self.degeneracy * z, np.array([float(s.z1[0]) for s in sums]) / kT / z

@@ -1,0 +1,50 @@
+"""How far the levels of a place move T_c, counted one by one where there is no first order."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+import numpy as np
+
+from eoscore.errors import NoAnswerError
+from eoscore.place import TrapPlace
+from eoscore.state.critical import saturated_kT
+
+if TYPE_CHECKING:
+    from eoscore.state.exact import ExactLevels
+    from eoscore.state.held import HeldGas
+    from eoscore.state.reading import FloatArray
+
+__all__ = ["against_levels"]
+
+
+def against_levels(
+    held: HeldGas, number: FloatArray, kT: FloatArray, why: str
+) -> tuple[FloatArray, FloatArray]:
+    """T_c of the exact levels (N_ex = N at mu = E_0) over that of the continuum, less 1, and its error.
+
+    `why` there is no first order; it is told, with NoAnswerError, where the levels cannot be had either.
+    """
+    levels = _levels(held, why)
+    some = np.isfinite(kT)
+    ratio = np.full(kT.shape, np.nan)
+    ratio[some] = saturated_kT(levels, "N", number[some]) / kT[some] - 1
+    return ratio, np.full(kT.shape, 2 * (levels.error + held.model.whole.error) + 1e-12)
+
+
+def _levels(held: HeldGas, why: str) -> ExactLevels:
+    """Solved once for a held gas."""
+    if not isinstance(held.place, TrapPlace):
+        raise NoAnswerError(
+            f"{why}; a volume has no shape: give walls, V(x, y, z) = 0 J where x > 0 um, x < ..."
+        )
+    kept = held._cache.get("levels")
+    if kept is None:
+        from eoscore.state.exact import exact_levels
+
+        try:
+            kept = exact_levels(held.gas, held.place)
+        except NoAnswerError as error:
+            raise NoAnswerError(f"{why}; {error.why}") from None
+        held._cache["levels"] = kept
+    return kept  # type: ignore[return-value]
