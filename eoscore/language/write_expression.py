@@ -42,10 +42,11 @@ def _listed(values: Iterable[nodes.Expr]) -> str:
 def _binary(node: nodes.Binary) -> str:
     left, right = node.left, node.right
     if node.operator == "^":
-        base = f"({write_number(left)})" if _has_unit(left) else write_expression(left, _ATOM)
+        in_unit = isinstance(left, nodes.Number) and _has_unit(left)
+        base = f"({write_expression(left)})" if in_unit else write_expression(left, _ATOM)
         return f"{base}^{write_expression(right, _SIGN)}"
     binding = _BINDING[node.operator]
-    sign = node.operator
+    sign: str = node.operator
     if sign in "+-" or (sign == "/" and _ends_in_unit(left)):  # `5 W/x` would take x for a unit
         sign = f" {sign} "
     return write_expression(left, binding) + sign + write_expression(right, binding + 1)

@@ -57,12 +57,18 @@ def _derived(
         derivation = Derivation(problem_of(binding, held), _counted(held, given))
     except (StopError, CutError) as stop:
         return str(stop)
+    except Exception as fault:  # noqa: BLE001 - SymPy's inner works may raise anything, and an answer is words
+        return _stopped(fault)
     for name in names:
         try:
             entries[name] = derivation.formula(name)
-        except (ValueError, NotImplementedError) as stop:
-            entries[name] = {"why": f"SymPy stopped: {stop}"}
+        except Exception as fault:  # noqa: BLE001 - as above
+            entries[name] = {"why": _stopped(fault)}
     return None
+
+
+def _stopped(fault: Exception) -> str:
+    return f"SymPy stopped: {str(fault) or type(fault).__name__}"
 
 
 def _counted(held: HeldGas, given: Mapping[str, float]) -> dict[str, float]:
