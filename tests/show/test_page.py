@@ -65,7 +65,9 @@ def test_the_same_caution_is_told_once():
 
 
 def test_formulas_show_text_and_value():
-    formulas = {"T_c": {"sympy": "...", "text": "T_c = hbar*omega*(N/zeta(3))**(1/3)/k_B", "value": 7e-7, "unit": "K"}}
+    formulas = {
+        "T_c": {"sympy": "...", "text": "T_c = hbar*omega*(N/zeta(3))**(1/3)/k_B", "value": 7e-7, "unit": "K"}
+    }
     text = page(DerivedAnswer(3, "derive T_c for a in b", "a", "b", {}, formulas))
     assert "T_c = hbar*omega" in text
     assert "700 nK" in text
