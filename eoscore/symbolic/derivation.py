@@ -10,7 +10,7 @@ import sympy as sp
 from eoscore.symbolic.algebra import log_slope
 from eoscore.symbolic.critical import explicit, heat_capacity_jump, number_at
 from eoscore.symbolic.evaluate import number, numerical_slope
-from eoscore.symbolic.expansion import expansions
+from eoscore.symbolic.expansion import cold_exponent, expansions
 from eoscore.symbolic.implicit import implicit
 from eoscore.symbolic.partition import ALPHA
 from eoscore.symbolic.quantities import ENERGY, K_B, NUMBER, QUANTITIES, TEMPERATURE, Model, critical_number
@@ -85,7 +85,11 @@ class Derivation:
         """Why the gas cannot condense, None where it can."""
         if self.problem.sign != 1:
             return "only bosons condense"
-        exponent = self.problem.model(condensed=True).number.diverges(self.problem.values)
+        partition = self.problem.model(condensed=True).number
+        exponent = partition.diverges(self.problem.values)
+        if partition.rest != 0:
+            exponent = cold_exponent(partition.rest)
+            exponent = exponent if exponent is not None and exponent <= 1 else None
         if exponent is None:
             return None
         return (
@@ -118,6 +122,9 @@ class Derivation:
             low *= 2
         while excess(high) > 0:
             high *= 2
+        if excess(low) < 0:
+            msg = "alpha = -mu/(k_B T) is below 1e-12, too small to be told from 0"
+            raise ValueError(msg)
         return float(brentq(excess, low, high, xtol=1e-15, rtol=1e-14))
 
     @property

@@ -29,16 +29,22 @@ def derive(
 
     given: N, T or n in SI units. Where SymPy stops, or time runs out, the entry says why, and T_c and N_c carry
     the numerical value. Each value is confirmed by the numerical engine: `numerical` and `difference`, relative.
+    Formulas are those of the ideal, infinite gas; `first_order` of T_c holds the first terms beyond it.
     """
+    from eoscore.symbolic.first_order import continuum, first_orders
+
     entries: dict[str, dict[str, Any]] = {}
-    names = tuple(names)
+    names, held = tuple(names), continuum(held)
     why = f"SymPy had not finished after {seconds:g} s"
     try:
         with deadline(seconds):
             why = _derived(binding, held, names, given, entries) or why
     except OutOfTimeError:
         pass
-    return {name: _confirmed(held, name, entries.get(name) or {"why": why}, given) for name in names}
+    found = {name: _confirmed(held, name, entries.get(name) or {"why": why}, given) for name in names}
+    if found.get("T_c", {}).get("closed") and (further := first_orders(held, given)):
+        found["T_c"]["first_order"] = further
+    return found
 
 
 def _derived(

@@ -9,29 +9,17 @@ import numpy as np
 import sympy as sp
 from scipy import special
 
+from eoscore.symbolic.scaled import ScaledI, ScaledK, scaled, scaled_i, scaled_k
 from eoscore.symbolic.series import alternating_sum, smooth_sum
 
 if TYPE_CHECKING:
     from collections.abc import Callable, Mapping, Sequence
 
-    from numpy.typing import NDArray
 
 __all__ = ["compiled", "number", "numerical_slope"]
 
-# Bessel functions without their exponential, so that large arguments neither overflow nor cancel.
-_SCALED_I, _SCALED_K = sp.Function("scaled_i"), sp.Function("scaled_k")
-
-# SciPy's Bessel functions refuse arguments above about 1e9, where one term of DLMF 10.40 is exact in double.
-_HUGE = 1e8
-
-
-def _scaled_i(order: NDArray[np.float64], x: NDArray[np.float64]) -> NDArray[np.float64]:
-    return np.where(x < _HUGE, special.ive(order, np.minimum(x, _HUGE)), 1 / np.sqrt(2 * np.pi * x))
-
-
-def _scaled_k(order: NDArray[np.float64], x: NDArray[np.float64]) -> NDArray[np.float64]:
-    return np.where(x < _HUGE, special.kve(order, np.minimum(x, _HUGE)), np.sqrt(np.pi / (2 * x)))
-
+# 1 - e^y, and prod 1/(1 - e_i) - 1, where the plain form would cancel.
+_FALL, _LESS_ONE = sp.Function("fall"), sp.Function("less_one")
 
 _PRECISE: dict[Any, Callable[..., Any]] = {
     sp.exp: mpmath.exp,
@@ -80,8 +68,10 @@ _DOUBLE: dict[Any, Callable[..., Any]] = {
     sp.erfc: special.erfc,
     sp.gamma: special.gamma,
     sp.zeta: special.zeta,
-    _SCALED_I: _scaled_i,
-    _SCALED_K: _scaled_k,
+    ScaledI: scaled_i,
+    ScaledK: scaled_k,
+    _FALL: lambda y: -np.expm1(y),
+    _LESS_ONE: lambda *e: np.expm1(-sum(np.log1p(-x) for x in e)),
     sp.besselj: special.jv,
     sp.Add: lambda *terms: sum(terms),
     sp.Mul: lambda *factors: np.prod(np.broadcast_arrays(*factors), axis=0),
@@ -105,6 +95,8 @@ def compiled(
         return lambda *_: constant
     if isinstance(expression, sp.Sum):
         return _sum(expression, symbols)
+    if table is _PRECISE and isinstance(expression, (ScaledI, ScaledK)):
+        return compiled(expression.plain(), symbols, table)
     function = table.get(expression.func)
     if function is None or not expression.args:
         msg = f"{expression} has no numerical counterpart here"
@@ -118,9 +110,7 @@ def _sum(expression: sp.Sum, symbols: Sequence[sp.Symbol]) -> Callable[..., Any]
     ((index, _, _),) = expression.limits
     alternates = expression.function.has(sp.S.NegativeOne ** (index + 1))
     body = expression.function.replace(sp.S.NegativeOne ** (index + 1), sp.Integer(1))
-    body = body.replace(sp.besselk, lambda n, x: _SCALED_K(n, x) * sp.exp(-x))
-    body = body.replace(sp.besseli, lambda n, x: _SCALED_I(n, x) * sp.exp(x))
-    term = compiled(sp.powsimp(sp.expand(body), combine="exp"), [*symbols, index], _DOUBLE)
+    term = compiled(_steady(body), [*symbols, index], _DOUBLE)
     total = alternating_sum if alternates else smooth_sum
 
     def added(*at: Any) -> float:
@@ -129,6 +119,26 @@ def _sum(expression: sp.Sum, symbols: Sequence[sp.Symbol]) -> Callable[..., Any]
             return total(lambda l: np.asarray(term(*fixed, l) + 0 * l))  # noqa: E741 - the sum's usual index
 
     return added
+
+
+def _steady(body: sp.Expr) -> sp.Expr:
+    """The same term without overflow and cancellation in double precision."""
+    body = body.replace(_is_excited, lambda e: _LESS_ONE(*(1 - f.base for f in sp.Mul.make_args(e + 1))))
+    body = body.replace(_is_fall, lambda e: _FALL((1 - e).exp))
+    return sp.powsimp(sp.expand_mul(scaled(body)), combine="exp")
+
+
+def _is_fall(expression: sp.Expr) -> bool:
+    """1 - exp(y)."""
+    return bool(expression.is_Add) and isinstance(1 - expression, sp.exp)
+
+
+def _is_excited(expression: sp.Expr) -> bool:
+    """prod 1/(1 - exp(y_i)) - 1: all levels but the lowest."""
+    if not (expression.is_Add and sp.S.NegativeOne in expression.args):
+        return False
+    factors = sp.Mul.make_args(expression + 1)
+    return all(isinstance(f, sp.Pow) and f.exp == -1 and _is_fall(f.base) for f in factors)
 
 
 def number(expression: sp.Expr, values: Mapping[sp.Symbol, float]) -> float:

@@ -11,11 +11,12 @@ from eoscore.symbolic.critical import explicit, number_of
 from eoscore.symbolic.integrals.rule import BETA
 from eoscore.symbolic.partition import Power, partition_of
 from eoscore.symbolic.quantities import K_B, TEMPERATURE
+from eoscore.symbolic.scaled import ScaledI, ScaledK, scaled
 
 if TYPE_CHECKING:
     from collections.abc import Mapping
 
-__all__ = ["Expansion", "expansions"]
+__all__ = ["Expansion", "cold_exponent", "expansions"]
 
 
 @dataclass(frozen=True)
@@ -58,6 +59,12 @@ def expansions(whole: sp.Expr) -> list[Expansion]:
     return found
 
 
+def cold_exponent(whole: sp.Expr) -> sp.Expr | None:
+    """a with Z1 ~ beta^-a for beta -> oo; None where it falls faster than any power."""
+    powers = _cold(whole)
+    return powers[0].exponent if powers else None
+
+
 def _expansion(limit: str, first: Power, second: Power) -> Expansion:
     """One Newton step from the leading power; the next power must itself have a converging sum (a > 1)."""
     leading = explicit(first)
@@ -69,9 +76,8 @@ def _expansion(limit: str, first: Power, second: Power) -> Expansion:
 
 def _hot(whole: sp.Expr) -> list[Power]:
     """Leading powers for beta -> 0, largest exponent first; Bessel K by DLMF 10.31.1, I by 10.25.2."""
-    near = whole.replace(sp.besselk, _small_k).replace(
-        sp.besseli, lambda n, x: (x / 2) ** n / sp.gamma(n + 1)
-    )
+    near = scaled(whole).replace(ScaledK, lambda n, _, x: sp.exp(x) * _small_k(n, x))
+    near = near.replace(ScaledI, lambda n, _, x: sp.exp(-x) * (x / 2) ** n / sp.gamma(n + 1))
     if near.has(sp.exp):
         near = sp.series(near, BETA, 0, 2).removeO()
     powers = partition_of(sp.expand(near), 1).powers
@@ -86,19 +92,27 @@ def _small_k(order: sp.Expr, x: sp.Expr) -> sp.Expr:
 
 def _cold(whole: sp.Expr) -> list[Power]:
     """Leading powers for beta -> oo, smallest exponent first (DLMF 10.40.1, 10.40.2)."""
-    far = whole.replace(sp.besselk, _large_k).replace(sp.besseli, _large_i)
+    far = scaled(whole).replace(ScaledK, lambda n, _, x: _large(n, x, 1) * sp.sqrt(sp.pi / (2 * x)))
+    far = far.replace(ScaledI, lambda n, _, x: _large(n, x, -1) / sp.sqrt(2 * sp.pi * x))
+    far = far.replace(_is_ladder, lambda _: sp.Integer(1))
     terms = [
         sp.powsimp(term, combine="exp")
         for term in sp.Add.make_args(sp.expand(sp.powsimp(far, combine="exp")))
     ]
     kept = [term for term in terms if not term.has(sp.exp)]
-    powers = partition_of(sp.Add(*kept), 1).powers
+    left = sp.Add(*kept)
+    powers = partition_of(left, 1).powers if left != 0 else ()
     return sorted(powers, key=lambda power: float(power.exponent))
 
 
-def _large_k(order: sp.Expr, x: sp.Expr) -> sp.Expr:
-    return sp.sqrt(sp.pi / (2 * x)) * sp.exp(-x) * (1 + (4 * order**2 - 1) / (8 * x))
+def _is_ladder(expression: sp.Expr) -> bool:
+    """1/(1 - exp(-beta ...)): at low temperature only the lowest level is left."""
+    if not (isinstance(expression, sp.Pow) and expression.exp.is_negative):
+        return False
+    fall = 1 - expression.base
+    return isinstance(fall, sp.exp) and bool(fall.exp.is_negative)
 
 
-def _large_i(order: sp.Expr, x: sp.Expr) -> sp.Expr:
-    return sp.exp(x) / sp.sqrt(2 * sp.pi * x) * (1 - (4 * order**2 - 1) / (8 * x))
+def _large(order: sp.Expr, x: sp.Expr, sign: int) -> sp.Expr:
+    """1 +- (4 n^2 - 1)/(8 x)."""
+    return 1 + sign * (4 * order**2 - 1) / (8 * x)

@@ -14,6 +14,7 @@ from eoscore.symbolic.integrals import Boltzmann, boltzmann
 from eoscore.symbolic.integrals.rule import BETA, Task
 from eoscore.symbolic.partition import partition_of
 from eoscore.symbolic.quantities import ENERGY, K_B, Model
+from eoscore.symbolic.scaled import scaled
 from eoscore.symbolic.signed import Signed
 
 if TYPE_CHECKING:
@@ -131,7 +132,7 @@ def _momenta(known: Signed, held: HeldGas) -> Boltzmann | None:
         )
     own = dispersion.symbolic_partition(BETA, d)
     if own is not None:
-        integral = _named(own, known, held).subs(sp.Symbol("h", positive=True), 2 * sp.pi * HBAR)
+        integral = scaled(_named(own, known, held)).subs(sp.Symbol("h", positive=True), 2 * sp.pi * HBAR)
         return Boltzmann(sp.Integer(0), integral, (f"momenta: the partition function of {dispersion.name}",))
     energy = _named(dispersion.symbolic_energy(), known, held)
     momenta = [s for s in energy.free_symbols if s.name in dispersion.momentum]

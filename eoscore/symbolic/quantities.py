@@ -41,6 +41,8 @@ class Model:
 def _hot(expression: sp.Expr) -> sp.Expr:
     """At beta = 1/(k_B T), the powers of beta gathered first."""
     heat = K_B * TEMPERATURE
+    if expression.has(sp.Sum):
+        return expression.subs(BETA, 1 / heat)
     gathered = sp.powsimp(sp.expand_mul(expression)) if expression.is_Mul else sp.powsimp(expression)
     powers = {power: heat**-power.exp for power in gathered.atoms(sp.Pow) if power.base == BETA}
     return gathered.xreplace(powers).subs(BETA, 1 / heat)

@@ -7,6 +7,8 @@ from typing import TYPE_CHECKING, Any
 
 import sympy as sp
 
+from eoscore.symbolic.scaled import written_out
+
 if TYPE_CHECKING:
     from collections.abc import Iterable
 
@@ -63,7 +65,7 @@ def gathered(expression: sp.Expr) -> sp.Expr:
     powers: dict[sp.Expr, list[sp.Expr]] = {}
     for factor in expression.args:
         base, exponent = factor.as_base_exp()
-        if exponent in (1, -1) or not _positive(base):
+        if exponent in (1, -1) or base == sp.E or not _positive(base):
             alone.append(gathered(factor))
             continue
         turned = exponent.could_extract_minus_sign()
@@ -88,7 +90,7 @@ def _positive(base: sp.Expr) -> bool:
 
 def forms(name: str, expression: sp.Expr) -> dict[str, Any]:
     """SymPy text, LaTeX, plain text and presentation MathML of `name = expression`."""
-    written = gathered(_renamed(expression))
+    written = gathered(_renamed(written_out(expression)))
     equation = sp.Eq(sp.Symbol(name), written, evaluate=False)
     return {
         "sympy": sp.sstr(written, full_prec=True),
@@ -100,7 +102,7 @@ def forms(name: str, expression: sp.Expr) -> dict[str, Any]:
 
 def plain(expression: sp.Expr) -> str:
     """One line in the file's own notation: `^` for powers."""
-    return re.sub(r"\*\*", "^", sp.sstr(_renamed(expression)))
+    return re.sub(r"\*\*", "^", sp.sstr(_renamed(written_out(expression))))
 
 
 def missing_words(missing: Iterable[sp.Symbol]) -> str | None:

@@ -5,6 +5,7 @@ from __future__ import annotations
 import sympy as sp
 
 from eoscore.symbolic.integrals.rule import BETA, Boltzmann, Solve, Task
+from eoscore.symbolic.scaled import ScaledI
 
 __all__ = ["band"]
 
@@ -25,7 +26,7 @@ def band(task: Task, solve: Solve) -> Boltzmann | None:  # noqa: ARG001 - every 
     amplitude = sp.Abs(match[size])
     if not periods.is_integer:
         return None
-    integral = (axis.high - axis.low) * sp.besseli(0, BETA * amplitude) * sp.exp(-BETA * amplitude)
+    integral = (axis.high - axis.low) * ScaledI(0, 0, BETA * amplitude)
     return Boltzmann(
         constant - amplitude,
         integral,

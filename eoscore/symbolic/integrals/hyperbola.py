@@ -6,6 +6,7 @@ import sympy as sp
 
 from eoscore.symbolic.integrals.power import half, measure_of
 from eoscore.symbolic.integrals.rule import BETA, Boltzmann, Solve, Task
+from eoscore.symbolic.scaled import ScaledK
 
 __all__ = ["hyperbola"]
 
@@ -14,7 +15,7 @@ def _scaled_k(order: sp.Expr, z: sp.Expr) -> list[sp.Expr]:
     """The terms of e^z K_order(z), powers for half an odd number (DLMF 10.49.12)."""
     n = order - sp.Rational(1, 2)
     if not n.is_integer:
-        return [sp.exp(z) * sp.besselk(order, z)]
+        return [ScaledK(order, 0, z)]
     lead = sp.sqrt(sp.pi / (2 * z))
     weights = (sp.factorial(n + j) / (sp.factorial(j) * sp.factorial(n - j)) for j in range(int(n) + 1))
     return [lead * weight / (2 * z) ** j for j, weight in enumerate(weights)]
