@@ -45,6 +45,8 @@ def _lines(name: str, formula: Mapping[str, Any]) -> Iterator[str]:
         yield f"      small = {small} = {expansion['small_value']:.3g}; {expansion['range']}"
     if "jump" in formula:
         yield f"    heat capacity jump at T_c: {formula['jump']['text']}"
+    for term in formula.get("first_order", {}).values():
+        yield f"    beyond the ideal, infinite gas, relative: {term['text']} = {term['value']:.4g}"
     if slopes := formula.get("sensitivities"):
         yield "    d ln T_c / d ln: " + ", ".join(
             f"{symbol} {_slope(slope)}" for symbol, slope in slopes.items()

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, field
+from functools import cached_property
 from math import ceil, log
 from typing import TYPE_CHECKING, NamedTuple, Protocol
 
@@ -111,6 +112,15 @@ class Known:
         """See `Direction`."""
         return float(self.energies[1])
 
+    @cached_property
+    def spacing(self) -> float:
+        """Of the smooth levels at the last known one, J."""
+        return (
+            0.0
+            if self.states is None
+            else 1 / float(self.states.density(self.lowest + self.energies[-1:])[0])
+        )
+
     def sums(self, beta: NDArray[np.inexact], kT: float) -> Sums:
         """See `Direction`."""
         e, w = self.energies[1:], self._weights()
@@ -164,8 +174,7 @@ class Known:
         """-g'/12 of the Euler-Maclaurin sum, g = e^(-b E(n)), with the derivatives by b that z1 and z2 want."""
         if self.states is None:
             return Sums(z0, z1, z2)
-        step = 1 / (12 * float(self.states.density(np.array([self.lowest + last]))[0]))
-        fading = np.exp(-beta * last) * step
+        fading = np.exp(-beta * last) * (self.spacing / 12)
         return Sums(
             z0 + beta * fading,
             z1 + fading * (beta * last - 1),

@@ -70,10 +70,9 @@ def _of_part(field: Field, mass: float) -> tuple[Direction, ...]:
         return (levels_on_line(field, mass),)
     if field.coordinates == ("r",):
         return (radial_levels(field, mass),)
-    raise NoAnswerError(
-        f"`levels exact` solves harmonic traps, independent directions and V(r); {', '.join(field.coordinates)} depend "
-        "on each other here"
-    )
+    joined = len(field.coordinates) > 1
+    which = f"{', '.join(field.coordinates)} depend on each other here" if joined else "an anharmonic V(rho) is none of these"
+    raise NoAnswerError(f"exact levels are known of harmonic traps, independent directions and V(r); {which}")
 
 
 def _harmonic(field: Field) -> bool:
