@@ -71,7 +71,11 @@ def _of_part(field: Field, mass: float) -> tuple[Direction, ...]:
     if field.coordinates == ("r",):
         return (radial_levels(field, mass),)
     joined = len(field.coordinates) > 1
-    which = f"{', '.join(field.coordinates)} depend on each other here" if joined else "an anharmonic V(rho) is none of these"
+    which = (
+        f"{', '.join(field.coordinates)} depend on each other here"
+        if joined
+        else "an anharmonic V(rho) is none of these"
+    )
     raise NoAnswerError(f"exact levels are known of harmonic traps, independent directions and V(r); {which}")
 
 
