@@ -11,8 +11,9 @@ from eoscore.answer.grid import Grid, Stop
 from eoscore.answer.origin import Origins
 from eoscore.answer.unit import unit_of_dimension
 from eoscore.errors import NoAnswerError
-from eoscore.language.quantities import QUANTITIES
-from eoscore.state.reading import Reason, reading_of
+from eoscore.language.quantities import AT_POSITIONS, QUANTITIES
+from eoscore.state.positioned import read_at
+from eoscore.state.reading import Reason, reading_of, spread_over
 from eoscore.state.scale import with_scale
 from eoscore.state.table import unit_in
 from eoscore.state.treatment import state_of
@@ -36,7 +37,8 @@ __all__ = ["Chain", "Part"]
 class Part:
     """What one stop of the grid gave: readings over the condition axes, and what they were read from.
 
-    `held` is None where nothing could be held; the readings then say why.
+    `held` is None where nothing could be held; the readings then say why. `positions` are those of the question, by
+    coordinate in m.
     """
 
     stop: Stop
@@ -45,6 +47,7 @@ class Part:
     given: Mapping[str, NDArray[np.float64]]
     readings: Mapping[str, Reading]
     spill: tuple[str, ...] = ()
+    positions: Mapping[str, NDArray[np.float64]] = field(default_factory=dict)
 
 
 @dataclass
@@ -75,7 +78,9 @@ class Chain:
         question = self.question
         conditions = self.program.conditions(question, literals)
         values = conditions.values | dict(stop.values)
-        given = self.grid.arrays(conditions.given)
+        arrays = self.grid.arrays(conditions.given)
+        positions = {name: arrays.pop(name) for name in question.coordinates if name in arrays}
+        given: Mapping[str, NDArray[np.float64]] = arrays
         binding = self.program.bind(question.gas, question.place, values, literals)
         physical = tuple(name for name in self.names if name in QUANTITIES)
         named = self._named(binding)
@@ -86,10 +91,18 @@ class Chain:
                 given = {name: state.reading(name).value for name in ("N", "S")}
             else:
                 state = state_of(held, given)
-            readings = {name: with_scale(state, name, state.reading(name)) for name in physical}
-            return Part(stop, binding, held, given, readings | named, state.spill)
+            readings = {name: self._reading(state, name, positions) for name in physical}
+            return Part(stop, binding, held, given, readings | named, state.spill, positions)
         except NoAnswerError as fault:
-            return Part(stop, binding, None, given, self._without(physical, fault.why) | named)
+            return Part(stop, binding, None, given, self._without(physical, fault.why) | named, (), positions)
+
+    def _reading(self, state: State, name: str, positions: Mapping[str, NDArray[np.float64]]) -> Reading:
+        """One quantity of a state; where positions are given, it is spread over them."""
+        if name in AT_POSITIONS:
+            return read_at(state, name, positions)
+        reading = with_scale(state, name, state.reading(name))
+        shape = tuple(axis.points for axis in self.grid.conditions)
+        return spread_over(reading, state.shape, shape) if positions else reading
 
     def _held(self, binding: Binding, place: str | None, stop: Stop) -> HeldGas:
         like = None if place is None else self._origins.of(place, stop.values)

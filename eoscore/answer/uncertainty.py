@@ -13,7 +13,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from eoscore.answer.assembly import values_of
-from eoscore.language.quantities import QUANTITIES
+from eoscore.language.quantities import AT_POSITIONS, QUANTITIES
 
 if TYPE_CHECKING:
     from collections.abc import Mapping, Sequence
@@ -92,6 +92,9 @@ def _bears(name: str, parts: Sequence[Part], moved: Sequence[Part]) -> bool:
         if (part.binding.gas, part.binding.place) != (other.binding.gas, other.binding.place):
             return True
         if any(not np.array_equal(part.given[c], other.given[c]) for c in _needed(name, part)):
+            return True
+        places = part.positions if name in AT_POSITIONS else ()
+        if any(not np.array_equal(part.positions[c], other.positions[c]) for c in places):
             return True
     return False
 

@@ -36,6 +36,7 @@ def check_ask(question: Question, pairs: Sequence[Pair], roles: Roles, checker: 
                 "`uniform` is unbounded: no gas can be brought into it or out of it",
                 "use a volume",
             )
+    _positions(question, checker)
     written = _written(question, roles)
     _quantities(question, pairs[0], written, checker)
     _conditions(question, pairs[-1] if len(pairs) > 1 else pairs[0], written, checker)
@@ -56,6 +57,20 @@ def _written(question: Question, roles: Roles) -> list[nodes.Ident]:
     names = [condition.name for condition in question.node.conditions]
     names += [axis.name for axis in question.node.over] if isinstance(question.node, nodes.Find) else []
     return [name for name in names if roles.of(name.name) == "condition"]
+
+
+def _positions(question: Question, checker: Checker) -> None:
+    """A column runs along the one coordinate that is left free."""
+    names = [condition.name.name for condition in question.node.conditions]
+    names += [axis.name.name for axis in question.node.over] if isinstance(question.node, nodes.Find) else []
+    free = [name for name in question.coordinates if name not in names]
+    for asked in question.quantities:
+        if asked.name == "n_column" and question.coordinates and len(free) != 1:
+            came = f"{', '.join(free)} are" if free else "none is"
+            message = f"`n_column` runs along the one coordinate that is not given; {came} left here"
+            checker.faults.add(
+                asked.span, message, "give all coordinates but one, such as x = 0 um, y = 0 um"
+            )
 
 
 def _mass(question: Question, pair: Pair, checker: Checker) -> None:

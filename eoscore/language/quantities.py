@@ -30,7 +30,7 @@ QUANTITIES: Final[dict[str, Need]] = {
     "eta": "temperature",
     **dict.fromkeys(("depth", "freq", "r_min", "V_min"), "nothing"),
     **dict.fromkeys(("shift_size", "shift_int"), "number"),
-    # **AT_POSITIONS,
+    **AT_POSITIONS,
 }
 
 # The thermodynamic conditions and their units; those of densities are one of three, and that of `n` chooses the

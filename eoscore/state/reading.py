@@ -15,7 +15,7 @@ if TYPE_CHECKING:
 
     from numpy.typing import ArrayLike
 
-__all__ = ["FloatArray", "Reading", "Reason", "reading_of"]
+__all__ = ["FloatArray", "Reading", "Reason", "reading_of", "spread_over"]
 
 FloatArray = NDArray[np.float64]
 
@@ -91,3 +91,21 @@ def reading_of(
         value[reason.where] = np.nan
         error[reason.where] = np.nan
     return Reading(value, error, unit, route, kept)
+
+
+def spread_over(reading: Reading, points: tuple[int, ...], shape: tuple[int, ...]) -> Reading:
+    """A reading at `points` repeated over a larger shape that they broadcast to."""
+    own = reading.value.shape[len(points) :]
+    aligned = (1,) * (len(shape) - len(points)) + points
+
+    def spread(array: FloatArray) -> FloatArray:
+        return np.broadcast_to(array.reshape(aligned + own), shape + own)
+
+    return Reading(
+        spread(reading.value),
+        spread(reading.error),
+        reading.unit,
+        reading.route,
+        tuple(Reason(each.words, np.broadcast_to(each.where, shape)) for each in reading.reasons),
+        None if reading.scale is None else spread(reading.scale),
+    )

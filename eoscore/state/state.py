@@ -144,6 +144,15 @@ class State:
 
         return profile(self, positions)
 
+    def at(self, name: str, **positions: ArrayLike) -> float | FloatArray:
+        """V_at, n_at, pressure_at or n_column at positions in m, by coordinate, which broadcast with the states.
+
+        Coordinates not given are those of the bottom; n_column is integrated along the one that is not given.
+        """
+        from eoscore.state.positioned import read_at
+
+        return read_at(self, name, positions).number()
+
     @property
     def reasons(self) -> list[Reason]:
         """Why points have no state."""

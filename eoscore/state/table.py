@@ -22,6 +22,17 @@ class Quantity(NamedTuple):
     unit: str
 
 
+def _at(name: str) -> Callable[[State, str], Reading]:
+    """A quantity at positions, none of which is given."""
+
+    def read(state: State, unit: str) -> Reading:  # noqa: ARG001  the unit is that of every reading of this name
+        from eoscore.state.positioned import read_at
+
+        return read_at(state, name, {})
+
+    return read
+
+
 QUANTITIES: dict[str, Quantity] = {
     "T_c": Quantity(saturation.critical_temperature, "K"),
     "N_c": Quantity(saturation.critical_number, "1"),
@@ -54,10 +65,16 @@ QUANTITIES: dict[str, Quantity] = {
     "n_0_peak": Quantity(beyond.condensate_peak, "m^-d"),
     "R_TF": Quantity(beyond.radii, "m"),
     "rate_coll": Quantity(collisions.rate, "1/s"),
+    "V_at": Quantity(_at("V_at"), "J"),
+    "n_at": Quantity(_at("n_at"), "m^-d"),
+    "pressure_at": Quantity(_at("pressure_at"), "J/m^d"),
+    "n_column": Quantity(_at("n_column"), "m^-(d-1)"),
 }
 
 
 def unit_in(name: str, dimension: int) -> str:
     """The unit of a quantity in a place of some dimension."""
     unit = QUANTITIES[name].unit
+    if "(d-1)" in unit:
+        return "1" if dimension == 1 else unit.replace("(d-1)", str(dimension - 1))
     return unit.replace("m^d", "m" if dimension == 1 else f"m^{dimension}").replace("-d", f"-{dimension}")

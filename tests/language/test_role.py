@@ -58,3 +58,33 @@ def test_conditions_are_refused_in_words(place, conditions, words):
 def test_any_two_conditions_give_the_number_that_T_c_needs():
     (question,) = program(f"{GAS}{BOX}find T_c for sr in box with T = 60 nK, f_0 = 0.5").questions
     assert set(question.given) == {"T", "f_0"}
+
+
+BOWL = "trap cart { y0 = 1 um\n V(x, y, z) = m/2*(2*pi*100 Hz)^2*(x^2 + (y - y0)^2 + z^2) }\n"
+
+
+def test_coordinates_are_given_where_something_is_asked_at_positions():
+    text = f"{GAS}{BOWL}find n_at for sr in cart with N = 1, T = 1 uK, y = 2 um over x = even(-1 um, 1 um, 3)"
+    (question,) = program(text).questions
+    assert question.coordinates == ("x", "y", "z")
+    assert question.given["y"].value == near(2e-6)
+    assert question.over[0].thermodynamic
+
+
+@pytest.mark.parametrize(
+    ("question", "words"),
+    [
+        ("find n_at for sr in cart with N = 1, T = 1 K, x = 1 s", "the coordinate `x` must be m"),
+        ("find mu for sr in cart with N = 1, T = 1 K, x = 1 m", "`x` is neither a condition nor a name"),
+        ("find n_at for sr in cart with N = 1, T = 1 K, r = 1 m", "`r` is neither a condition nor a name"),
+        ("find n_at for sr in cart with N = 1, x = 1 m", "only N is given"),
+        ("find n_column for sr in cart with N = 1, T = 1 K, x = 1 m", "y, z are left here"),
+        (
+            "find n_column for sr in cart with N = 1, T = 1 K, x = 1 m, y = 0 over z = [1 m]",
+            "none is left here",
+        ),
+    ],
+)
+def test_positions_are_refused_in_words(question, words):
+    with pytest.raises(TarnError, match=words):
+        program(f"{GAS}{BOWL}{question}")

@@ -102,6 +102,18 @@ QUANTITIES: Final[dict[str, tuple[str, str, str]]] = {
         "8*pi*a_s^2*sqrt(16*k*T/(pi*m)) * integral n^2/integral n; 0 for one-component fermions",
         f"{_LUITEN}; {_DALFOVO}",
     ),
+    "V_at": ("potential at a position, counted from the bottom of the trap", "V(r) - V_min", _LANDAU),
+    "n_at": (
+        "density of the non-condensed gas at a position; coordinates not given are those of the bottom",
+        "n(mu - V(r), T), in the local picture",
+        _PITAEVSKII,
+    ),
+    "pressure_at": ("pressure at a position", "P(mu - V(r), T), in the local picture", _HUANG),
+    "n_column": (
+        "column density: n_at integrated along the one coordinate that is not given",
+        "integral of n(mu - V(r), T) along the line; through the centre to both sides for r and rho",
+        _DALFOVO,
+    ),
     "U_int": ("energy of interaction, in the `treatment` that the gas names", "part of U", _DALFOVO),
     "E_release": (
         "release energy: what an expansion measures once the trap is switched off",
