@@ -26,7 +26,10 @@ _TOGETHER: Final = (
     ({"CIRCUMFLEX"}, ""),
     ({"LESSTHAN", "AT_MOST", "MORETHAN", "AT_LEAST"}, "a comparison"),
     ({"GAS", "TRAP", "STATES", "USE", "FIND", "DERIVE", "NAME", "$END"}, "the next entry"),
-    ({"ISOTOPE", "STATISTICS", "TREATMENT", "DISPERSION", "LEVELS", "ANCHOR", "NAME"}, "the next line of the block"),
+    (
+        {"ISOTOPE", "STATISTICS", "TREATMENT", "DISPERSION", "LEVELS", "ANCHOR", "NAME"},
+        "the next line of the block",
+    ),
 )
 
 

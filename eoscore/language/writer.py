@@ -71,15 +71,11 @@ def _line(node: nodes.Node) -> str:
             return write_unit(node)
         case nodes.Isotope():
             return f"isotope {node.symbol}-{node.mass_number}"
-        case nodes.Statistics():
-            return f"statistics {node.kind.name}"
-        case nodes.Treatment():
-            return f"treatment {node.kind.name}"
+        case nodes.Statistics() | nodes.Treatment() | nodes.Levels():
+            return f"{type(node).__name__.lower()} {node.kind.name}"
         case nodes.DispersionChoice():
             lines = "".join(f"{_INDENT * 2}{write(parameter)}\n" for parameter in node.parameters)
             return f"dispersion {node.name.name}" + (f" {{\n{lines}{_INDENT}}}" if lines else "")
-        case nodes.Levels():
-            return f"levels {node.kind.name}"
         case nodes.Anchor():
             return f"anchor N_c = {write(node.number)} at T = {write(node.temperature)}"
         case nodes.Use():
