@@ -91,6 +91,7 @@ def _finding(finding: Finding, axes: int) -> dict[str, Any]:
 
 def _plain(array: NDArray[np.float64], axes: int) -> Any:
     """Nested lists of doubles as deep as the grid, a list more for `freq`; None where there is no number."""
+    array = np.asarray(array)  # a single number may come as a scalar
     finite = np.isfinite(array)
     if finite.all():
         return array.tolist()

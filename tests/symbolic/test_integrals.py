@@ -90,13 +90,13 @@ def test_a_field_whose_bias_grows_along_its_axis_gives_two_powers():
 
 def test_a_tilt_steeper_than_the_cone_is_a_condition():
     done = boltzmann(Task(a * sp.sqrt(x**2 + y**2 + 4 * z**2) + b * z, axes_of((x, y, z))))
-    assert done.conditions == (b**2 / (4 * a**2) < 1,)
+    assert done.conditions == (b < 2 * a,)
 
 
 def test_a_quasi_homogeneous_prefactor_without_closed_form_is_a_number_with_its_integral():
     function = x**4 + x**2 * y**2 + y**4
     done = boltzmann(Task(function, axes_of((x, y))))
-    ((_, value, words),) = done.constants
+    ((_, value, words, _),) = done.constants
     area = quad(lambda t: 0.5 / np.sqrt(1 - (np.cos(t) * np.sin(t)) ** 2), 0, 2 * np.pi)[0]
     assert value == pytest.approx(area, rel=1e-12)
     assert words.startswith("volume in m^2 where")

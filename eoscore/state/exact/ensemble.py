@@ -84,6 +84,8 @@ class ExactLevels(Ensemble):
 
     def below(self, number: FloatArray) -> FloatArray:
         """See `Ensemble.below`: where the classical partition function is as large, climbing from the first level."""
+        if number.size == 0:
+            return number
         kT, z, guesses = 0.2 * self.gap, 0.0, []
         for wanted in np.sort(number).tolist():
             while z < wanted:
