@@ -68,7 +68,9 @@ def _on_exact_levels(gas: Gas, place: Place) -> HeldGas:
     from eoscore.state.exact import exact_levels
 
     if gas.treatment == "hartree_fock":
-        raise NoAnswerError("`levels exact` counts the levels of an ideal gas: take out `treatment hartree_fock`")
+        raise NoAnswerError(
+            "`levels exact` counts the levels of an ideal gas: take out `treatment hartree_fock`"
+        )
     model = Model(lambda: exact_levels(gas, place), None, None, gas.degeneracy)
     why = "with `levels exact` the gas is no local one: its density is not counted; take that line out for it"
     momentum = gas.momentum_measure(place.dimension)
