@@ -99,7 +99,7 @@ class Derivation:
 
     def _values(self, symbols: set[sp.Symbol]) -> dict[sp.Symbol, float]:
         """SI values of the symbols that occur, by name; alpha is solved for where N and T are given."""
-        known = {**self.problem.values, **{str(s): v for s, v, _ in self.problem.constants}, **self.given}
+        known = {**self.problem.values, **{str(s): v for s, v, *_ in self.problem.constants}, **self.given}
         found = {s: float(known[s.name]) for s in symbols if s.name in known}
         if ALPHA in symbols and {"N", "T"} <= set(self.given):
             found[ALPHA] = self._alpha
@@ -148,7 +148,7 @@ class Derivation:
             plain(self.problem.number.subs(self._beta)) if len(str(self.problem.number)) < 200 else "as above"
         )
         words = [*self.problem.steps, f"Z1(beta) at beta = 1/(k_B*T): {whole}"]
-        words.extend(f"{s} = {v:.12g}: {text}" for s, v, text in self.problem.constants)
+        words.extend(f"{s} = {v:.12g}: {text}" for s, v, text, _ in self.problem.constants)
         words = [word.replace("**", "^") for word in words]
         return [*words, "N_ex = sum over l of exp(-l*alpha) Z1(l*beta), and alpha = 0 at T_c"]
 
@@ -193,7 +193,9 @@ class Derivation:
         exponents = {s for power in expression.atoms(sp.Pow) for s in power.exp.free_symbols}
         values = self._values(expression.free_symbols)
         slopes: dict[str, str | float] = {}
-        for symbol in sorted(expression.free_symbols - {K_B}, key=str):
+        # What a number without closed form depends on, and that number itself, would show half of the slope.
+        inside = {s for name, *_, hidden in self.problem.constants for s in (name, *hidden)}
+        for symbol in sorted(expression.free_symbols - {K_B} - inside, key=str):
             if symbol not in exponents:
                 slopes[written_name(symbol.name)] = plain(log_slope(expression, symbol))
             elif len(values) == len(expression.free_symbols):

@@ -35,12 +35,12 @@ def derive(
 
     entries: dict[str, dict[str, Any]] = {}
     names, held = tuple(names), continuum(held)
-    why = f"SymPy had not finished after {seconds:g} s"
+    why = "SymPy gave no formula"
     try:
         with deadline(seconds):
             why = _derived(binding, held, names, given, entries) or why
-    except OutOfTimeError:
-        pass
+    except OutOfTimeError as over:
+        why = f"SymPy had not finished {str(over) or 'its work'} after {seconds:g} s"
     found = {name: _confirmed(held, name, entries.get(name) or {"why": why}, given) for name in names}
     if found.get("T_c", {}).get("closed") and (further := first_orders(held, given)):
         found["T_c"]["first_order"] = further
@@ -90,26 +90,25 @@ def _confirmed(held: HeldGas, name: str, entry: dict[str, Any], given: Mapping[s
     """Put the numerical engine's value beside the formula's, or in its stead where there is no formula."""
     from eoscore.symbolic.derivation import UNITS
 
-    numerical = None
-    if name not in ("rho", "g"):
-        try:
-            reading = held.find([name], given)[name]
-            numerical = None if reading.why else float(reading.value)
-        except (NoAnswerError, TypeError, ValueError):
-            numerical = None
+    numerical, reason = _numerical(held, name, given)
     if "sympy" not in entry:
-        return {
-            "sympy": None,
-            "latex": None,
-            "text": None,
-            "closed": False,
-            "where": {},
-            "value": numerical,
-        } | {
-            "unit": UNITS[name],
-            **entry,
-        }
+        empty = dict.fromkeys(("sympy", "latex", "text")) | {"closed": False, "where": {}, "value": numerical}
+        why = entry["why"] if reason in (None, entry["why"]) else f"{entry['why']}; the numbers: {reason}"
+        return {**empty, "unit": UNITS[name], **entry, "why": why}
     if numerical is not None and entry["value"] is not None:
         scale = max(abs(numerical), abs(entry["value"])) or 1.0
         entry |= {"numerical": numerical, "difference": abs(entry["value"] - numerical) / scale}
     return entry
+
+
+def _numerical(held: HeldGas, name: str, given: Mapping[str, float]) -> tuple[float | None, str | None]:
+    """The numerical engine's value, or why it has none; neither for what it does not know or was not asked."""
+    if name in ("rho", "g"):
+        return None, None
+    try:
+        reading = held.find([name], given)[name]
+        return (None, str(reading.why)) if reading.why else (float(reading.value), None)
+    except NoAnswerError as fault:
+        return None, fault.why if set(given) >= {"N"} or "n" in given else None
+    except (TypeError, ValueError):
+        return None, None

@@ -15,8 +15,10 @@ from eoscore.symbolic.series import alternating_sum, smooth_sum
 if TYPE_CHECKING:
     from collections.abc import Callable, Mapping, Sequence
 
+    from numpy.typing import NDArray
 
-__all__ = ["compiled", "number", "numerical_slope"]
+
+__all__ = ["compiled", "in_double", "number", "numerical_slope"]
 
 # 1 - e^y, and prod 1/(1 - e_i) - 1, where the plain form would cancel.
 _FALL, _LESS_ONE = sp.Function("fall"), sp.Function("less_one")
@@ -139,6 +141,12 @@ def _is_excited(expression: sp.Expr) -> bool:
         return False
     factors = sp.Mul.make_args(expression + 1)
     return all(isinstance(f, sp.Pow) and f.exp == -1 and _is_fall(f.base) for f in factors)
+
+
+def in_double(expression: sp.Expr, symbols: Sequence[sp.Symbol]) -> Callable[..., NDArray[np.float64]]:
+    """A function of arrays, one for each symbol, in double precision."""
+    function: Callable[..., NDArray[np.float64]] = compiled(expression, symbols, _DOUBLE)
+    return function
 
 
 def number(expression: sp.Expr, values: Mapping[sp.Symbol, float]) -> float:

@@ -11,6 +11,7 @@ import numpy as np
 import sympy as sp
 
 from eoscore.constants import HBAR, K_B, H
+from eoscore.errors import NoAnswerError
 from eoscore.state import hold
 from eoscore.symbolic.writing import forms
 
@@ -42,13 +43,21 @@ def first_orders(held: HeldGas, given: Mapping[str, float]) -> dict[str, dict[st
     that the shape of the trap alone decides, times a_s/lambda_T.
     """
     counts = {name: given[name] for name in ("N", "n") if name in given}
-    found = held.find(["T_c", "shift_size", "shift_int"], counts) if counts else {}
     terms = held.model.whole.measure.powers() if hasattr(held.model.whole, "measure") else None
-    if not found or found["T_c"].why or terms is None or len(terms) != 1:
+    if not counts or terms is None or len(terms) != 1:
         return {}
-    a, T_c = terms[0][1], float(found["T_c"].value)
+    a = terms[0][1]
+    names = ["T_c", "shift_int", *(["shift_size"] if a > 2 and _rises(held) else [])]
+    found = held.find(names, counts)
+    if found["T_c"].why:
+        return {}
+    T_c = float(found["T_c"].value)
     entries = {}
-    if found["shift_size"].why is None and found["shift_size"].route.startswith("first order"):
+    if (
+        "shift_size" in found
+        and found["shift_size"].why is None
+        and found["shift_size"].route.startswith("first order")
+    ):
         order = sp.nsimplify(a, rational=True).limit_denominator(1000)
         formula = -sp.zeta(order - 1) / (order * sp.zeta(order)) * ENERGY / (BOLTZMANN * TEMPERATURE)
         values = {"E_0": float(np.sum(held.frequencies())) * pi * HBAR, "k_B": K_B, "T_c": T_c}
@@ -62,6 +71,14 @@ def first_orders(held: HeldGas, given: Mapping[str, float]) -> dict[str, dict[st
         values = {"a_s": a_s, "m": m, "h": H, "k_B": K_B, "T_c": T_c}
         entries["shift_int"] = _entry("shift_int", formula, values, value)
     return entries
+
+
+def _rises(held: HeldGas) -> bool:
+    """Whether the bottom is quadratic in every direction: elsewhere the levels would be summed, which takes long."""
+    try:
+        return bool(np.all(held.frequencies() > 0))
+    except NoAnswerError:
+        return False
 
 
 def _entry(name: str, formula: sp.Expr, values: dict[str, float], value: float) -> dict[str, Any]:

@@ -11,7 +11,7 @@ import sympy as sp
 from eoscore.language.facts import StatesFacts, TrapFacts, VolumeFacts
 from eoscore.symbolic.axes import axes_of
 from eoscore.symbolic.integrals import Boltzmann, boltzmann
-from eoscore.symbolic.integrals.rule import BETA, Task
+from eoscore.symbolic.integrals.rule import BETA, Constant, Task
 from eoscore.symbolic.partition import partition_of
 from eoscore.symbolic.quantities import ENERGY, K_B, Model
 from eoscore.symbolic.scaled import scaled
@@ -46,7 +46,7 @@ class Problem:
     values: Mapping[str, float]
     steps: tuple[str, ...] = ()
     conditions: tuple[sp.Expr, ...] = ()
-    constants: tuple[tuple[sp.Symbol, float, str], ...] = ()
+    constants: tuple[Constant, ...] = ()
 
     def model(self, *, condensed: bool) -> Model:
         """The sums of one side of the transition."""

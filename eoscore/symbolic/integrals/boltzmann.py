@@ -19,7 +19,7 @@ from eoscore.symbolic.integrals.power import power
 from eoscore.symbolic.integrals.power_of_sum import power_of_sum
 from eoscore.symbolic.integrals.product import product
 from eoscore.symbolic.integrals.quadratic import quadratic
-from eoscore.symbolic.integrals.rule import Boltzmann, Rule, Task, symbols_of
+from eoscore.symbolic.integrals.rule import Boltzmann, Rule, Solve, Task, integral_in_words, symbols_of
 
 __all__ = ["Boltzmann", "StopError", "boltzmann"]
 
@@ -44,27 +44,34 @@ class StopError(Exception):
 
     def __init__(self, task: Task) -> None:
         self.task = task
-        names = " ".join(f"d{axis.symbol}" for axis in task.axes)
-        super().__init__(f"no closed form was found for the integral of exp(-beta*({task.function})) {names}")
+        super().__init__(f"no closed form was found for {integral_in_words(task)}")
 
 
 def boltzmann(task: Task) -> Boltzmann:
     """The Boltzmann integral of a task, by the first rule that can.
 
-    Raises `StopError` where none can.
+    Raises `StopError` where none can; it names the innermost integral that was in the way.
     """
     axes, walls = with_walls(task.axes, task.walls)
-    done = _solve(replace(task, axes=axes, walls=walls))
+    stuck: list[Task] = []
+
+    def solve(part: Task) -> Boltzmann | None:
+        done = _by_rules(part, solve)
+        if done is None and part.patient:
+            stuck.append(part)
+        return done
+
+    done = solve(replace(task, axes=axes, walls=walls))
     if done is None:
-        raise StopError(task)
+        raise StopError(min(stuck, key=lambda part: len(part.axes)))
     return done
 
 
-def _solve(task: Task) -> Boltzmann | None:
+def _by_rules(task: Task, solve: Solve) -> Boltzmann | None:
     constant, varying = sp.expand(task.function).as_independent(*symbols_of(task), as_Add=True)
     inner = replace(task, function=varying)
     for rule in RULES:
-        done = rule(inner, _solve)
+        done = rule(inner, solve)
         if done is not None:
             return replace(done, minimum=done.minimum + constant)
     return None

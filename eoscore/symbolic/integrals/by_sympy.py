@@ -4,8 +4,9 @@ from __future__ import annotations
 
 import sympy as sp
 
+from eoscore.symbolic.deadline import OutOfTimeError
 from eoscore.symbolic.integrals.power import half
-from eoscore.symbolic.integrals.rule import BETA, Boltzmann, Solve, Task
+from eoscore.symbolic.integrals.rule import BETA, Boltzmann, Solve, Task, integral_in_words
 
 __all__ = ["by_sympy"]
 
@@ -21,7 +22,10 @@ def by_sympy(task: Task, solve: Solve) -> Boltzmann | None:  # noqa: ARG001 - ev
     least = sp.limit(function, r, 0, "+")
     if not least.is_finite or not sp.diff(function, r).is_positive:
         return None
-    integral = sp.integrate(weight * sp.exp(-BETA * sp.expand(function - least)), (r, 0, sp.oo))
+    try:
+        integral = sp.integrate(weight * sp.exp(-BETA * sp.expand(function - least)), (r, 0, sp.oo))
+    except OutOfTimeError:
+        raise OutOfTimeError(integral_in_words(task)) from None
     if integral.has(sp.Integral, sp.Piecewise, sp.nan, sp.oo):
         return None
     return Boltzmann(least, integral, (f"{task.axes[0].symbol}: integrated by SymPy",))

@@ -11,10 +11,13 @@ import sympy as sp
 if TYPE_CHECKING:
     from eoscore.symbolic.axes import Axis
 
-__all__ = ["BETA", "Boltzmann", "Rule", "Solve", "Task", "symbols_of"]
+__all__ = ["BETA", "Boltzmann", "Constant", "Rule", "Solve", "Task", "integral_in_words", "symbols_of"]
 
 # 1/(k_B T), in 1/J. The prime of this and other names made here is a sign that no name of a file can have.
 BETA = sp.Symbol("beta'", positive=True)
+
+
+Constant = tuple[sp.Symbol, float, str, frozenset[sp.Symbol]]
 
 
 @dataclass(frozen=True)
@@ -33,14 +36,14 @@ class Boltzmann:
     """A done integral: the least value of F, and the integral of e^{-beta (F - minimum)} in `BETA`.
 
     `conditions` must hold for it to converge; `constants` names pure numbers that have no closed form:
-    (symbol, value, the integral in words).
+    (symbol, value, the integral in words, the symbols it depends on).
     """
 
     minimum: sp.Expr
     integral: sp.Expr
     steps: tuple[str, ...] = ()
     conditions: tuple[sp.Expr, ...] = ()
-    constants: tuple[tuple[sp.Symbol, float, str], ...] = ()
+    constants: tuple[Constant, ...] = ()
 
 
 Solve = Callable[["Task"], "Boltzmann | None"]
@@ -56,3 +59,11 @@ class Rule(Protocol):
 def symbols_of(task: Task) -> set[sp.Symbol]:
     """The integration symbols of a task."""
     return {axis.symbol for axis in task.axes}
+
+
+def integral_in_words(task: Task) -> str:
+    """Its integrand and its directions, as a reader of an answer sees them."""
+    names = " ".join(f"d{axis.symbol}".replace("'", "") for axis in task.axes)
+    inside = ", ".join(f"{wall} > 0" for wall in task.walls)
+    text = f"the integral of exp(-beta*({task.function})) {names}" + (f" where {inside}" if inside else "")
+    return text.replace("**", "^").replace("'", "")
