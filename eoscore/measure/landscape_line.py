@@ -9,6 +9,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from eoscore.formula import call, variable
+from eoscore.formula.interval import bounds
 from eoscore.measure.landscape_pieces import FAR, monotone_pieces, positive_intervals
 from eoscore.measure.landscape_record import Escape, Kind, Landscape, Minimum, multiplicity
 
@@ -17,12 +18,15 @@ if TYPE_CHECKING:
 
     from eoscore.formula import Formula
     from eoscore.formula.field import Field
+    from eoscore.measure.landscape_pieces import Pieces
 
     Array = NDArray[np.float64]
 
 __all__ = ["RADIAL", "survey_line"]
 
 RADIAL = frozenset({"rho", "r", "p"})
+MOST_MINIMA = 1000  # told of; a measure counts all
+PARTS = 1000  # of a stretch that is bounded
 
 
 @dataclass(frozen=True)
@@ -58,13 +62,14 @@ def survey_line(field: Field) -> Landscape:
     bottom = _lowest(wells)
     turns = pieces.points[1:-1]
     escape = _escape(f, name, bottom, turns, mirrored=name in RADIAL)
-    minima = [
-        _minimum(field.formula, name, well, turns) for well in _joined(f, name, bottom, wells, turns, escape)
-    ]
+    joined = _joined(f, name, bottom, wells, turns, escape)[:MOST_MINIMA]
+    minima = _minima(field.formula, name, joined, turns)
     why = ""
     if escape and escape.energy - bottom.value <= 1e-13 * abs(bottom.value):
         why = f"V stays at its least value without end along {name}: this potential holds nothing"
-    return Landscape(field.coordinates, minima[0], tuple(minima), escape, why)
+    return Landscape(
+        field.coordinates, minima[0], minima, escape, why or _doubt(f, name, pieces, bottom, escape)
+    )
 
 
 def _nothing(name: str, stretches: list[tuple[float, float]], signs: Array) -> str:
@@ -76,6 +81,26 @@ def _nothing(name: str, stretches: list[tuple[float, float]], signs: Array) -> s
     if np.all(signs >= 0) or np.all(signs <= 0):
         return f"V falls along {'-' if np.any(signs > 0) else '+'}{name} without end: this potential holds nothing"
     return f"V has no local minimum along {name}: this potential holds nothing"
+
+
+def _doubt(f: Formula, name: str, pieces: Pieces, bottom: _Well, escape: Escape | None) -> str:
+    """Why wells that were not looked at may hold the bottom or the escape; nothing where they cannot."""
+    a, b = bottom.stretch
+    gaps = pieces.gaps[(pieces.gaps[:, 1] > a) & (pieces.gaps[:, 0] < b)]
+    if not gaps.size:
+        return ""
+    cuts = np.clip(np.geomspace(gaps[:, 0], gaps[:, 1], PARTS + 1, axis=1), a, b)  # no gap is about 0
+    least, most = bounds(f, {name: (cuts[:, :-1], cuts[:, 1:])})
+    slack = 1e-13 * (max(abs(bottom.value), abs(escape.energy)) if escape else abs(bottom.value))
+    deeper = np.any(~(least >= bottom.value - slack))
+    higher = escape is not None and np.any(~(most <= escape.energy + slack))
+    if not deeper and not higher:
+        return ""
+    first, what = float(np.min(np.abs(gaps))), "a deeper one" if deeper else "a higher pass"
+    return (
+        f"V has more wells along {name} than the {pieces.points.size // 2} that are looked at, up to {name} = "
+        f"{first:.3g} m, and {what} may lie beyond: put walls (`where`) about those that matter"
+    )
 
 
 def _wells(f: Formula, name: str, ends: tuple[float, float], points: Array, signs: Array) -> list[_Well]:
@@ -153,44 +178,53 @@ def _joined(
 ) -> list[_Well]:
     """The bottom, then the wells that join it below the escape, lowest first."""
     ceiling = escape.energy if escape else math.inf
-    high = turns[f.evaluate({name: turns}) >= ceiling]
+    heights = f.evaluate({name: turns})
+    high = turns[heights >= ceiling - 1e-14 * abs(ceiling - bottom.value)] if escape else turns[:0]
     low_end = max([bottom.stretch[0], *high[high < bottom.place].tolist()])
     high_end = min([bottom.stretch[1], *high[high > bottom.place].tolist()])
     others = [w for w in wells if w is not bottom and low_end <= w.place <= high_end and w.value < ceiling]
     return [bottom, *sorted(others, key=lambda well: well.value)]
 
 
-def _minimum(f: Formula, name: str, well: _Well, turns: Array) -> Minimum:
-    slope, x = f.derivative(name), well.place
-    bend = float(slope.derivative(name).evaluate({name: x}))
-    kind: Kind = _kind(slope, name, well, turns, bend)
+def _minima(f: Formula, name: str, wells: list[_Well], turns: Array) -> tuple[Minimum, ...]:
+    slope, x = f.derivative(name), np.array([well.place for well in wells])
+    bends = np.broadcast_to(slope.derivative(name).evaluate({name: x}), x.shape).tolist()
+    kinds = _kinds(slope, name, wells, turns, bends)
+    return tuple(_minimum(name, *row) for row in zip(wells, bends, kinds, strict=True))
+
+
+def _minimum(name: str, well: _Well, bend: float, kind: Kind) -> Minimum:
     curvatures: tuple[float, ...] | None = None
     count = multiplicity(name)
     if kind == "flat":
         curvatures = (0.0,) * count
     elif kind == "quadratic":
-        off_axis = name in RADIAL and x > 0
+        off_axis = name in RADIAL and well.place > 0
         curvatures = (0.0,) * (count - 1) + (bend,) if off_axis else (bend,) * count
         kind = {2: "ring", 3: "sphere"}.get(count, kind) if off_axis else kind  # type: ignore[assignment]
-    return Minimum((x,), well.value, kind, np.array([[bend]]), curvatures)
+    return Minimum((well.place,), well.value, kind, np.array([[bend]]), curvatures)
 
 
-def _kind(slope: Formula, name: str, well: _Well, turns: Array, bend: float) -> Kind:
-    """How V rises from a minimum, by the growth of its slope on both sides."""
+def _kinds(slope: Formula, name: str, wells: list[_Well], turns: Array, bends: list[float]) -> list[Kind]:
+    """How V rises from minima, by the growth of its slope on both sides."""
+    x = np.array([well.place for well in wells])
+    near = np.min(np.abs(turns[turns != 0]), initial=1.0)
+    step = 1e-7 * np.where(x != 0, np.abs(x), near)
+    offsets = np.array([[-2.0], [-1.0], [1.0], [2.0]]) * step
+    left2, left, right, right2 = np.broadcast_to(slope.evaluate({name: x + offsets}), offsets.shape)
+    folded = (np.abs(x) < 1e-30) & (name in RADIAL)
+    left, left2 = np.where(folded, -right, left), np.where(folded, -right2, left2)
+    with np.errstate(all="ignore"):
+        growth = np.log2(np.array([left2, right2]) / np.array([left, right]))
+    even = np.abs(left + right) < 0.02 * np.abs(right)
+    quadratic = even & np.all(np.abs(growth - 1) < 0.02, axis=0) & (np.array(bends) > 0)
+    cone = np.all(np.abs(growth) < 0.02, axis=0)
+    return [_kind(*row) for row in zip(wells, quadratic.tolist(), cone.tolist(), strict=True)]
+
+
+def _kind(well: _Well, quadratic: bool, cone: bool) -> Kind:
     if well.high - well.low > max(1e-20, 1e-6 * abs(well.place)):
         return "flat"
     if well.walled:
         return "wall"
-    x = well.place
-    near = min([abs(t) for t in turns.tolist() if t] or [1.0])
-    step = 1e-7 * (abs(x) or min(near, 1.0))
-    offsets = np.array([-2.0, -1.0, 1.0, 2.0]) * step
-    left2, left, right, right2 = slope.evaluate({name: x + offsets}).tolist()
-    if name in RADIAL and abs(x) < 1e-30:
-        left, left2 = -right, -right2
-    with np.errstate(all="ignore"):
-        growth = np.log2(np.array([left2, right2]) / np.array([left, right]))
-    even = abs(left + right) < 0.02 * abs(right)
-    if even and np.all(np.abs(growth - 1) < 0.02) and bend > 0:
-        return "quadratic"
-    return "cone" if np.all(np.abs(growth) < 0.02) else "other"
+    return "quadratic" if quadratic else "cone" if cone else "other"

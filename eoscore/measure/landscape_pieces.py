@@ -6,7 +6,8 @@ derivative proves a single root in them or they are points. So no well is steppe
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
+from functools import lru_cache
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -34,12 +35,17 @@ _KINKS = frozenset({"abs", "sign", "min", "max", "choose", "atan2"})
 
 @dataclass(frozen=True)
 class Pieces:
-    """Points in ascending order and the sign of the slope between neighbours (0: level)."""
+    """Points in ascending order and the sign of the slope between neighbours (0: level).
+
+    gaps (n, 2): stretches, at most one on each side of 0, with more pieces than are followed; these count as level.
+    """
 
     points: Array
     signs: Array
+    gaps: Array = field(default_factory=lambda: np.empty((0, 2)))
 
 
+@lru_cache(maxsize=32)
 def monotone_pieces(f: Formula, name: str, ends: tuple[float, float] = (-np.inf, np.inf)) -> Pieces:
     """The pieces of f between -1e24 and 1e24; what lies beyond `ends` by a decade is left out.
 
@@ -51,6 +57,7 @@ def monotone_pieces(f: Formula, name: str, ends: tuple[float, float] = (-np.inf,
     within = (edges[1:] > ends[0]) & (edges[:-1] < ends[1])
     low, high = edges[:-1][within], edges[1:][within]
     done: list[tuple[Array, Array, Array]] = []
+    left: list[Array] = []
     for _ in range(140):
         if not low.size:
             break
@@ -65,11 +72,18 @@ def monotone_pieces(f: Formula, name: str, ends: tuple[float, float] = (-np.inf,
         done.append((low[finished], high[finished], np.where(points, 0.0, sign)[finished]))
         low, high = _halved(low[~finished], high[~finished])
         if low.size > MOST_CELLS:
-            near = np.sort(
-                np.argsort(np.minimum(np.abs(low), np.abs(high)), kind="stable")[: MOST_CELLS // 2]
-            )
+            order = np.argsort(np.minimum(np.abs(low), np.abs(high)), kind="stable")
+            near, far = np.sort(order[: MOST_CELLS // 2]), order[MOST_CELLS // 2 :]
+            left.append(np.stack([low[far], high[far]], axis=1))
             low, high = low[near], high[near]
-    return _joined(done)
+    return _joined(done, _merged(left))
+
+
+def _merged(cells: list[Array]) -> Array:
+    """On each side of 0 the stretch that holds all these cells, none of which is near 0."""
+    ends = np.concatenate([np.empty((0, 2)), *cells])
+    sides = [ends[ends[:, 1] <= 0], ends[ends[:, 0] >= 0]]
+    return np.array([(side[:, 0].min(), side[:, 1].max()) for side in sides if side.size]).reshape(-1, 2)
 
 
 def _folds(node: Node) -> bool:
@@ -141,19 +155,24 @@ def _rooted(
 def _roots(f: Formula, name: str, low: Array, high: Array) -> Array:
     """The root of f in each bracket, by Newton's method kept inside it; anything where there is none."""
     slope = f.derivative(name)
-    x, start = (low + high) / 2, np.sign(f.evaluate({name: low}))
+    found, start = (low + high) / 2, np.sign(f.evaluate({name: low}))
+    active, before = np.arange(found.size), np.full(found.shape, np.inf)
     for _ in range(120):
+        x = found[active]
         value, rise = evaluate_many([f, slope], {name: x})
-        left = np.sign(value) == start
+        left = np.sign(value) == start[active]
         low, high = np.where(left, x, low), np.where(left, high, x)
         with np.errstate(all="ignore"):
             new = x - value / rise
         new = np.where((new >= low) & (new <= high), new, (low + high) / 2)
-        moved = np.abs(new - x) > 2e-16 * np.abs(new)
-        x = new
-        if not moved.any():
+        found[active] = new
+        step = np.abs(new - x)
+        rounding = (step >= before) & (step <= 1e-14 * np.abs(new))  # it wanders in the noise of f
+        moving = (step > 2e-16 * np.abs(new)) & ~rounding
+        active, low, high, before = active[moving], low[moving], high[moving], step[moving]
+        if not active.size:
             break
-    return x
+    return found
 
 
 def _halved(low: Array, high: Array) -> tuple[Array, Array]:
@@ -168,7 +187,7 @@ def _halved(low: Array, high: Array) -> tuple[Array, Array]:
     return np.concatenate([low, middle]), np.concatenate([middle, high])
 
 
-def _joined(done: list[tuple[Array, Array, Array]]) -> Pieces:
+def _joined(done: list[tuple[Array, Array, Array]], gaps: Array) -> Pieces:
     """Cells in order, neighbours of one sign joined; gaps (cells given up) count as level."""
     low, high, sign = (np.concatenate(column) for column in zip(*done, strict=True))
     order = np.lexsort((high, low))
@@ -185,7 +204,7 @@ def _joined(done: list[tuple[Array, Array, Array]]) -> Pieces:
         else:
             signs.append(s)
             points.append(b)
-    return Pieces(np.array(points), np.array(signs))
+    return Pieces(np.array(points), np.array(signs), gaps)
 
 
 def positive_intervals(walls: tuple[Formula, ...], name: str) -> list[tuple[float, float]]:

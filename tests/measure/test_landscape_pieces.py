@@ -48,3 +48,14 @@ def test_stretches_between_walls(walls, stretches):
     assert len(found) == len(stretches)
     for one, wanted in zip(found, stretches, strict=True):
         assert one == pytest.approx(wanted, rel=1e-14, abs=1e-30)
+
+
+def test_too_many_pieces_leave_gaps_far_out():
+    """sin^2 in a wide envelope turns 60,000 times; what is followed is whole, and the rest is said."""
+    found = monotone_pieces((x / 100) ** 2 + call("sin", np.pi * x) ** 2, "x")
+    (left, near), (right, far) = found.gaps
+    inner = found.points[np.abs(found.points) < right]
+    assert left == -far
+    assert near == -right
+    assert 1000 < right < 15_708 < far  # the last turn is where 2 x / 100^2 = pi
+    assert inner.size == pytest.approx(4 * right, abs=4)
