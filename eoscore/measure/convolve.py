@@ -10,10 +10,12 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from eoscore.errors import NoAnswerError
+from eoscore.measure.crowded import Crowd
 from eoscore.measure.powers import Powers
 from eoscore.measure.rules import graded, legendre
 from eoscore.measure.sampled import Sampled
 from eoscore.measure.smeared import smeared
+from eoscore.measure.smeared_crowd import SmearedCrowd
 
 if TYPE_CHECKING:
     from collections.abc import Callable, Iterator
@@ -44,11 +46,17 @@ def convolve(a: Measure, b: Measure) -> Measure:
         if factor is not None:
             return other.scaled(factor).cut(top)
     for one, other in ((a, b), (b, a)):
+        if isinstance(one, SmearedCrowd) and other.powers():
+            return convolve(convolve(other, one.other), one.crowd).cut(top)
+    for one, other in ((a, b), (b, a)):
         _refuse_infinite(one, other.exponent, top)
     terms_a, terms_b = a.powers(), b.powers()
     if terms_a and terms_b:
         terms = [(c1 * c2 * _joined(k1, k2), k1 + k2) for c1, k1 in terms_a for c2, k2 in terms_b]
         return Powers(terms, top, error=error, route=route)
+    for one, other in ((a, b), (b, a)):
+        if isinstance(one, Crowd):
+            return SmearedCrowd(one, other, top)
     feet = [m.foot for m in (a, b) if isinstance(m, Sampled)]
     return Sampled(
         _function(a, b),

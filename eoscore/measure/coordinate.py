@@ -11,7 +11,7 @@ if TYPE_CHECKING:
     from eoscore.formula.field import Field
     from eoscore.measure.base import FloatArray
 
-__all__ = ["content", "dimension", "inside", "least", "weight"]
+__all__ = ["between", "content", "dimension", "inside", "least", "weight"]
 
 RADIAL = {"rho": (pi, 2), "r": (4 * pi / 3, 3)}  # volume factor and power of the disc and the ball
 
@@ -25,6 +25,17 @@ def content(name: str, x: FloatArray) -> FloatArray:
     """Length, area or volume up to x: x, pi rho^2, 4/3 pi r^3."""
     factor, power = RADIAL.get(name, (1.0, 1))
     return np.asarray(factor * x**power)
+
+
+def between(name: str, start: FloatArray, end: FloatArray) -> FloatArray:
+    """Length, area or volume between two values of a coordinate, without a difference of nearly equal numbers."""
+    step = np.abs(end - start)
+    if name not in RADIAL:
+        return step
+    factor, power = RADIAL[name]
+    if power == 2:
+        return np.asarray(factor * step * (start + end))
+    return np.asarray(factor * step * (start**2 + start * end + end**2))
 
 
 def weight(name: str, x: FloatArray) -> FloatArray:

@@ -7,10 +7,12 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from eoscore.errors import NoAnswerError
 from eoscore.measure.bottom import beginning
-from eoscore.measure.coordinate import RADIAL
+from eoscore.measure.coordinate import RADIAL, between
+from eoscore.measure.crowd import crowd
 from eoscore.measure.powers import Powers
-from eoscore.measure.profile import profile
+from eoscore.measure.profile import held_line
 from eoscore.measure.sampled import Sampled
 
 if TYPE_CHECKING:
@@ -18,11 +20,17 @@ if TYPE_CHECKING:
     from eoscore.measure.base import FloatArray, Measure
     from eoscore.measure.branch import Branch
     from eoscore.measure.landscape_record import Landscape
+    from eoscore.measure.profile import HeldLine
 
 __all__ = ["line"]
 
 ERROR = 2e-13  # of a root, and so of Omega
 STEPS = 1200  # of the search for the scale
+MOST_BREAKS, FAR_TOO_MANY = 1, 100  # that are taken as ends of panels by choice, and at most
+TOO_MANY = (
+    "V has more than {1} wells along {0}, of a shape for which eoscore measures fewer only (it knows how V rises "
+    "between smooth minima and maxima): put walls (`where`) about those that matter"
+)
 DEEPEST = 1e-14  # of the first break or the top: where the pure power is looked for
 
 
@@ -33,15 +41,26 @@ def line(field: Field, landscape: Landscape) -> Measure | None:
     """
     if len(field.coordinates) != 1:
         return None
-    (name,) = field.coordinates
-    found = profile(field, landscape)
+    found = held_line(field, landscape)
+    if found.gaps.size or len(found.breaks) > MOST_BREAKS:
+        many = crowd(found, landscape)
+        if many is not None:
+            return many
+        if found.gaps.size or len(found.breaks) > FAR_TOO_MANY:
+            raise NoAnswerError(TOO_MANY.format(found.name, len(found.x) // 2))
+    return _resolved(found, landscape)
+
+
+def _resolved(found: HeldLine, landscape: Landscape) -> Measure:
+    """With every break at the end of a panel."""
+    name, branches = found.name, found.branches()
 
     def omega(v: FloatArray) -> FloatArray:
-        return np.asarray(sum(_swept(name, branch, branch.reach(v)) for branch in found.branches))
+        return np.asarray(sum(_swept(name, branch, branch.reach(v)) for branch in branches))
 
     first = min((*found.breaks, landscape.depth))
-    lowest = min(found.branches, key=lambda branch: branch.base)
-    noise = max(branch.noise for branch in found.branches)
+    lowest = min(branches, key=lambda branch: branch.base)
+    noise = max(branch.noise for branch in branches)
     rises = lowest.rises
     start = max(DEEPEST * first if first < inf else rises[0], noise)
     v = np.geomspace(start, min(first / 2, rises[-1] / 2), STEPS)
@@ -64,11 +83,8 @@ def line(field: Field, landscape: Landscape) -> Measure | None:
 
 
 def _swept(name: str, branch: Branch, u: FloatArray) -> FloatArray:
-    """Length, area or volume between the start of a branch and u."""
+    """Length, area or volume between the start of a branch and u; u itself, which has all its digits, for x."""
     if name not in RADIAL:
         return u
-    factor, power = RADIAL[name]
-    start, end = branch.start, branch.start + branch.sign * u
-    if power == 2:
-        return np.asarray(factor * u * (start + end))
-    return np.asarray(factor * u * (start**2 + start * end + end**2))
+    start = np.asarray(branch.start)
+    return between(name, start, start + branch.sign * u)

@@ -20,20 +20,40 @@ if TYPE_CHECKING:
     from eoscore.measure.base import FloatArray
     from eoscore.measure.landscape_record import Landscape
 
-__all__ = ["Profile", "profile"]
+__all__ = ["HeldLine", "held_line"]
 
 ROUNDING = 4e-15  # of V: wells whose bottoms differ by less are equally deep
 
 
 @dataclass(frozen=True)
-class Profile:
-    """Monotone stretches, and the energies (J from the bottom) at which a turning point or a wall is reached."""
+class HeldLine:
+    """The part of a line that is connected to the bottom at the escape energy.
 
-    branches: tuple[Branch, ...]
+    x (n,): where V turns, and the ends. rise (n,): V there, J from the bottom. gaps (m, 2): stretches on which
+    there are too many turns to know. breaks: energies (J from the bottom) at which a turning point or a wall is
+    reached.
+    """
+
+    name: str
+    formula: Formula
+    x: FloatArray
+    rise: FloatArray
+    gaps: FloatArray
     breaks: tuple[float, ...]
 
+    def branches(self) -> tuple[Branch, ...]:
+        """The monotone stretches between the turning points."""
+        return tuple(
+            Branch(self.name, self.formula, a, 1, b - a, up)
+            if up <= down
+            else Branch(self.name, self.formula, b, -1, b - a, down)
+            for (a, b), (up, down) in zip(
+                pairwise(self.x.tolist()), pairwise(self.rise.tolist()), strict=True
+            )
+        )
 
-def profile(field: Field, landscape: Landscape) -> Profile:
+
+def held_line(field: Field, landscape: Landscape) -> HeldLine:
     """The stretches of a field of one coordinate that are connected to the bottom at the escape energy."""
     (name,) = field.coordinates
     radial = multiplicity(name) > 1
@@ -45,19 +65,15 @@ def profile(field: Field, landscape: Landscape) -> Profile:
     place, v_min = bottom.position[0], bottom.value
     ends = next(ends for ends in positive_intervals(walls, name) if ends[0] <= place <= ends[1])
     ends = (max(ends[0], 0.0), ends[1]) if radial else ends
-    turning = _turning(monotone_pieces(f, name, ends))
+    pieces = monotone_pieces(f, name, ends)
+    turning = _turning(pieces)
     x = np.array([ends[0], *turning[(turning > ends[0]) & (turning < ends[1])], ends[1]])
     rise = _rise(f, name, x, v_min)
     held = _connected(x, rise, place, landscape.depth)
     x, rise = x[held], rise[held]
-    branches = tuple(
-        Branch(name, field.formula, a, 1, b - a, up)
-        if up <= down
-        else Branch(name, field.formula, b, -1, b - a, down)
-        for (a, b), (up, down) in zip(pairwise(x.tolist()), pairwise(rise.tolist()), strict=True)
-    )
     breaks = tuple(sorted({float(v) for v in rise[np.isfinite(x)] if 0 < v < landscape.depth}))
-    return Profile(branches, breaks)
+    gaps = np.clip(pieces.gaps, max(x[0], -FAR), min(x[-1], FAR))
+    return HeldLine(name, field.formula, x, rise, gaps[gaps[:, 0] < gaps[:, 1]], breaks)
 
 
 def _turning(pieces: Pieces) -> FloatArray:

@@ -11,6 +11,7 @@ from eoscore.measure.about import about
 from eoscore.measure.cells import cells
 from eoscore.measure.composed import composed
 from eoscore.measure.convolve import convolve
+from eoscore.measure.crowded import Crowd
 from eoscore.measure.flat import flat
 from eoscore.measure.homogeneous import homogeneous
 from eoscore.measure.landscape import survey
@@ -44,8 +45,8 @@ def measure_of(field: Field, landscape: Landscape | None = None, ceiling: float 
 
 
 def _cost(measure: Measure) -> int:
-    """Powers first: what combines exactly is combined before anything is sampled."""
-    return 0 if measure.powers() else 1
+    """Powers first: what combines exactly is combined before anything is sampled; the roughest last."""
+    return 0 if measure.powers() else 2 if isinstance(measure, Crowd) else 1
 
 
 def _of_one(field: Field, landscape: Landscape | None, ceiling: float) -> Measure:

@@ -37,6 +37,8 @@ class Sampled(Measure):
     share of energy that its panel takes (a panel as narrow as 4e-9 at a break hardly counts).
     """
 
+    noise = NOISE  # of the function, which a kind that knows its own may lower
+
     def __init__(
         self,
         function: Callable[[FloatArray], FloatArray],
@@ -182,7 +184,7 @@ class Sampled(Measure):
             or panel.stop - panel.start <= FINEST[panel.kind]
         ):
             return True
-        return tail > STALLED * before and (tail < NOISE or panel.stop - panel.start <= SHORT)
+        return tail > STALLED * before and (tail < self.noise or panel.stop - panel.start <= SHORT)
 
     def _sample(self, panels: list[Panel]) -> tuple[FloatArray, list[float]]:
         """Series of Omega / (v/scale)^exponent on panels, and their last coefficients beside its least value."""

@@ -10,10 +10,12 @@ from eoscore.measure.powers import Powers
 from eoscore.measure.rules import legendre
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
     from eoscore.measure.base import FloatArray, Foot
     from eoscore.measure.sampled import Sampled
 
-__all__ = ["smeared"]
+__all__ = ["footed", "smeared"]
 
 CLEAR = 8.0  # feet above the bottom: below, the sampled measure is taken as its pure power
 BLOCK = 64  # energies taken at once
@@ -29,7 +31,7 @@ def smeared(a: Sampled, b: Powers, energies: FloatArray) -> FloatArray:
     panels, nodes = a.whole_panels(float(energies.max()))
     blocks = [energies[i : i + BLOCK] for i in range(0, energies.size, BLOCK)]
     whole = np.concatenate([_block(a, b, e, nodes.v, nodes.w, panels) for e in blocks])
-    whole += _foot(nodes.foot, b, energies)
+    whole += footed(nodes.foot, b.volume, energies)
     return np.where(energies < CLEAR * a.foot, _pure(a, b, energies), whole)
 
 
@@ -52,14 +54,14 @@ def _block(
     return np.asarray(total)
 
 
-def _foot(foot: Foot, b: Powers, energies: FloatArray) -> FloatArray:
+def footed(foot: Foot, volume: Callable[[FloatArray], FloatArray], energies: FloatArray) -> FloatArray:
     """The share of the foot, whose power is the weight of a Gauss rule."""
     from scipy.special import roots_jacobi
 
     if foot.exponent == 0:
-        return foot.volume * b.volume(energies)
+        return foot.volume * volume(energies)
     x, w = roots_jacobi(12, 0.0, foot.exponent - 1)
-    inner = b.volume(energies[:, None] - foot.edge * (1 + x) / 2)
+    inner = volume(energies[:, None] - foot.edge * (1 + x) / 2)
     return np.asarray(foot.volume * (inner @ w) / w.sum())
 
 
