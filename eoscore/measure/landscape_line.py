@@ -27,6 +27,7 @@ __all__ = ["RADIAL", "survey_line"]
 RADIAL = frozenset({"rho", "r", "p"})
 MOST_MINIMA = 1000  # told of; a measure counts all
 PARTS = 1000  # of a stretch that is bounded
+FAINT = 1e-80  # J: steep powers near their bottom fall below the range of doubles, whose rounding is no well
 
 
 @dataclass(frozen=True)
@@ -91,7 +92,7 @@ def _doubt(f: Formula, name: str, pieces: Pieces, bottom: _Well, escape: Escape 
         return ""
     cuts = np.clip(np.geomspace(gaps[:, 0], gaps[:, 1], PARTS + 1, axis=1), a, b)  # no gap is about 0
     least, most = bounds(f, {name: (cuts[:, :-1], cuts[:, 1:])})
-    slack = 1e-13 * (max(abs(bottom.value), abs(escape.energy)) if escape else abs(bottom.value))
+    slack = FAINT + 1e-13 * (max(abs(bottom.value), abs(escape.energy)) if escape else abs(bottom.value))
     deeper = np.any(~(least >= bottom.value - slack))
     higher = escape is not None and np.any(~(most <= escape.energy + slack))
     if not deeper and not higher:
