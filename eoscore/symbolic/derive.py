@@ -93,7 +93,8 @@ def _confirmed(held: HeldGas, name: str, entry: dict[str, Any], given: Mapping[s
     numerical, reason = _numerical(held, name, given)
     if "sympy" not in entry:
         empty = dict.fromkeys(("sympy", "latex", "text")) | {"closed": False, "where": {}, "value": numerical}
-        why = entry["why"] if reason in (None, entry["why"]) else f"{entry['why']}; the numbers: {reason}"
+        told = reason is None or reason == entry["why"] or "condens" in entry["why"]
+        why = entry["why"] if told else f"{entry['why']}; the numbers: {reason}"
         return {**empty, "unit": UNITS[name], **entry, "why": why}
     if numerical is not None and entry["value"] is not None:
         scale = max(abs(numerical), abs(entry["value"])) or 1.0
