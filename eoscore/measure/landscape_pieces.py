@@ -29,6 +29,7 @@ __all__ = ["Pieces", "monotone_pieces", "positive_intervals"]
 FAR = 1e24
 DECADES = 10.0 ** np.arange(-36, 25)
 MOST_CELLS = 40_000
+SAMPLES = 24
 LEVEL = 1e-14  # a slope that changes V by less than this share of its range so far is level
 _KINKS = frozenset({"abs", "sign", "min", "max", "choose", "atan2"})
 
@@ -37,7 +38,7 @@ _KINKS = frozenset({"abs", "sign", "min", "max", "choose", "atan2"})
 class Pieces:
     """Points in ascending order and the sign of the slope between neighbours (0: level).
 
-    gaps (n, 2): stretches, at most one on each side of 0, with more pieces than are followed; these count as level.
+    gaps (n, 2): stretches, at most one on each side of 0, that hold more pieces than are followed: level cells.
     """
 
     points: Array
@@ -49,7 +50,7 @@ class Pieces:
 def monotone_pieces(f: Formula, name: str, ends: tuple[float, float] = (-np.inf, np.inf)) -> Pieces:
     """The pieces of f between -1e24 and 1e24; what lies beyond `ends` by a decade is left out.
 
-    Where a function has more than some ten thousand pieces, those farthest from 0 are taken as level.
+    Where more than some ten thousand cells are unproved, the points of those farthest from 0 tell the slope.
     """
     slope = f.derivative(name)
     smooth = not any(node.op in _KINKS and not _folds(node) for node in ordered([f]))
@@ -74,9 +75,29 @@ def monotone_pieces(f: Formula, name: str, ends: tuple[float, float] = (-np.inf,
         if low.size > MOST_CELLS:
             order = np.argsort(np.minimum(np.abs(low), np.abs(high)), kind="stable")
             near, far = np.sort(order[: MOST_CELLS // 2]), order[MOST_CELLS // 2 :]
-            left.append(np.stack([low[far], high[far]], axis=1))
+            sign, seen = _seen(f, name, low[far], high[far])
+            done.append((low[far][seen], high[far][seen], sign[seen]))
+            left.append(np.stack([low[far], high[far]], axis=1)[~seen])
             low, high = low[near], high[near]
     return _joined(done, _merged(left))
+
+
+def _seen(f: Formula, name: str, low: Array, high: Array) -> tuple[Array, NDArray[np.bool_]]:
+    """The sign of the slope over cells where f changes one way, and which cells these are.
+
+    Values all over a cell tell, where no bound proves it (q^2/(1 + q^2) far out); but nothing beyond the first
+    cell in which f goes both ways.
+    """
+    share = (np.arange(SAMPLES) + 0.5) / SAMPLES
+    values = f.evaluate({name: low + (high - low) * share[:, None]})
+    with np.errstate(invalid="ignore"):
+        rise, noise = np.diff(values, axis=0), 1e-15 * np.abs(values[1:])
+    rises, falls = np.any(rise > noise, axis=0), np.any(rise < -noise, axis=0)
+    clear = ~(rises & falls) & np.all(np.isfinite(values), axis=0)
+    distance = np.minimum(np.abs(low), np.abs(high))
+    for side in (low >= 0, high <= 0):
+        clear &= ~side | (distance < np.min(distance[side & ~clear], initial=np.inf))
+    return rises * 1.0 - falls * 1.0, clear
 
 
 def _merged(cells: list[Array]) -> Array:

@@ -6,6 +6,8 @@ from functools import reduce
 from math import inf
 from typing import TYPE_CHECKING
 
+import numpy as np
+
 from eoscore.errors import NoAnswerError
 from eoscore.measure.about import about
 from eoscore.measure.cells import cells
@@ -35,6 +37,11 @@ def measure_of(field: Field, landscape: Landscape | None = None, ceiling: float 
     coordinates are taken apart and convolved. Raises NoAnswerError where nothing is held, or where the volume
     is infinite.
     """
+    with np.errstate(all="ignore"):  # routes look far outside and at poles; what they find is checked
+        return _of_parts(field, landscape, ceiling)
+
+
+def _of_parts(field: Field, landscape: Landscape | None, ceiling: float) -> Measure:
     parts = independent_parts(field)
     if len(parts) > 1 and (whole := quadratic(field)) is None:
         measures = [measure_of(part, ceiling=ceiling) for part in parts]

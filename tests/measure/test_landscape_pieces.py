@@ -59,3 +59,13 @@ def test_too_many_pieces_leave_gaps_far_out():
     assert near == -right
     assert 1000 < right < 15_708 < far  # the last turn is where 2 x / 100^2 = pi
     assert inner.size == pytest.approx(4 * right, abs=4)
+
+
+@pytest.mark.parametrize("u", [1.0, 1e-27, 1e-6])
+def test_a_rise_that_no_bound_proves_is_seen(u):
+    """q^2/(1 + q^2): far out the two terms of its slope cancel, so that intervals tell nothing; yet it is one well."""
+    q = x / u
+    found = monotone_pieces(q**2 / (1 + q**2), "x")
+    assert found.gaps.size == 0
+    assert found.signs[np.searchsorted(found.points, [-10 * u, 10 * u]) - 1].tolist() == [-1.0, 1.0]
+    assert found.points[np.abs(found.points) < 1e4 * u].tolist() == [0.0]
