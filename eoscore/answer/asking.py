@@ -12,6 +12,7 @@ from eoscore.answer.chain import Chain
 from eoscore.answer.holding import HeldGases
 from eoscore.answer.looking import cautions_at, inaccurate, thinned
 from eoscore.answer.record import Caution, FoundAnswer, Piece
+from eoscore.answer.sampling import with_intervals
 from eoscore.answer.uncertainty import with_uncertainty
 from eoscore.answer.unit import unit_of_dimension
 from eoscore.answer.wording import given_of, words_of
@@ -28,26 +29,35 @@ __all__ = ["answer_from", "answer_to", "cautions_over", "piece_of"]
 
 
 def answer_to(
-    program: Program, question: Question, accuracy: float = 1e-6, held: HeldGases | None = None
+    program: Program,
+    question: Question,
+    accuracy: float = 1e-6,
+    held: HeldGases | None = None,
+    samples: int = 0,
 ) -> Answer:
-    """The answer to one question; where there is no number, words. `held` shares held gases among questions."""
+    """The answer to one question; where there is no number, words.
+
+    `held` shares held gases among questions; `samples` draws of the uncertain literals give sampled intervals.
+    """
     held = held or HeldGases()
     if question.verb == "derive":
         from eoscore.answer.deriving import derived
 
         return derived(program, question, held)
     if question.over:
-        piece = piece_of(program, question, held)
+        piece = piece_of(program, question, held, samples=samples)
         return answer_from(question, piece, cautions_over(program, question, held), accuracy)
     chain = Chain(program, question, held)
     parts = chain.parts()
-    return answer_from(question, _piece(chain, parts), cautions_at(parts), accuracy)
+    return answer_from(question, _piece(chain, parts, samples), cautions_at(parts), accuracy)
 
 
-def piece_of(program: Program, question: Question, held: HeldGases, whole: Question | None = None) -> Piece:
+def piece_of(
+    program: Program, question: Question, held: HeldGases, whole: Question | None = None, samples: int = 0
+) -> Piece:
     """What is found over a grid, or over the chunk `question` of the grid of `whole`."""
     chain = Chain(program, question, held, whole)
-    return _piece(chain, chain.parts())
+    return _piece(chain, chain.parts(), samples)
 
 
 def cautions_over(program: Program, question: Question, held: HeldGases) -> tuple[Caution, ...]:
@@ -77,9 +87,10 @@ def answer_from(
     )
 
 
-def _piece(chain: Chain, parts: Sequence[Part]) -> Piece:
+def _piece(chain: Chain, parts: Sequence[Part], samples: int) -> Piece:
     findings = {name: assembled(chain.grid, [part.readings[name] for part in parts]) for name in chain.names}
     findings = with_uncertainty(chain, parts, _with_leak(findings, parts))
+    findings = with_intervals(chain, findings, samples)
     spills = (Caution("spill", f"{words}.") for part in parts for words in part.spill)
     return Piece(findings, (*bending(chain, findings), *spills))
 

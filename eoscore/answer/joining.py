@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from eoscore.answer.record import Finding, Piece, Points, Reason
+from eoscore.answer.record import Finding, Interval, Piece, Points, Reason
 
 if TYPE_CHECKING:
     from collections.abc import Iterator, Mapping, Sequence
@@ -53,6 +53,7 @@ def _whole(shape: tuple[int, ...], parts: Sequence[_Part]) -> Finding:
         },
         note=next((finding.note for finding in findings if finding.note), None),
         scale=_placed(target, parts, [_or_value(f.scale, f) for f in findings]) if scaled else None,
+        interval=_interval(target, parts),
     )
 
 
@@ -70,6 +71,24 @@ def _placed(
 def _or_none(array: NDArray[np.float64] | None, finding: Finding) -> NDArray[np.float64]:
     """What a literal adds where it does not bear on a chunk: nothing, where there is a value."""
     return np.where(np.isfinite(finding.value), 0.0, np.nan) if array is None else array
+
+
+def _interval(target: tuple[int, ...], parts: Sequence[_Part]) -> Interval | None:
+    """The intervals side by side; where no literal bears on a chunk, every sample gives its value."""
+    first = next((finding.interval for _, finding in parts if finding.interval is not None), None)
+    if first is None:
+        return None
+    told = [
+        finding.interval
+        or Interval(
+            finding.value, finding.value, np.isfinite(finding.value) * 1.0, first.samples, first.coverage
+        )
+        for _, finding in parts
+    ]
+    low, high, answered = (
+        _placed(target, parts, [getattr(each, part) for each in told]) for part in ("low", "high", "answered")
+    )
+    return Interval(low, high, answered, first.samples, first.coverage)
 
 
 def _or_value(scale: NDArray[np.float64] | None, finding: Finding) -> NDArray[np.float64]:

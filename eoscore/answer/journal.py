@@ -149,5 +149,5 @@ def key_of(recipe: Recipe, program: Program) -> str:
         for point in entry_points(group="eoscore.dispersions")
     )
     versions = (__version__, np.__version__, scipy.__version__)
-    asked = [versions, plugins, recipe.text.hex(), sorted(used.items()), recipe.settings]
+    asked = [versions, plugins, recipe.text.hex(), sorted(used.items()), recipe.settings, recipe.samples]
     return hashlib.sha256(json.dumps(asked).encode()).hexdigest()

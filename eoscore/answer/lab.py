@@ -25,8 +25,10 @@ if TYPE_CHECKING:
 __all__ = ["Lab", "LabGas", "LabPlace", "load", "loads"]
 
 
-def load(path: str | PathLike[str], *, settings: Sequence[str] = ()) -> Lab:
+def load(path: str | PathLike[str], *, settings: Sequence[str] = (), samples: int = 0) -> Lab:
     """Read a Tarn file; `settings` such as `"P=2 W"` override its parameters.
+
+    With `samples` draws of the uncertain numbers, answers carry a sampled `interval` beside their `sigma`.
 
     Raises
     ------
@@ -36,13 +38,18 @@ def load(path: str | PathLike[str], *, settings: Sequence[str] = ()) -> Lab:
         Where the file cannot be read.
     """
     path = Path(path)
-    return loads(path.read_bytes(), name=str(path), folder=path.parent, settings=settings)
+    return loads(path.read_bytes(), name=str(path), folder=path.parent, settings=settings, samples=samples)
 
 
 def loads(
-    text: str | bytes, *, name: str = "<text>", folder: Path | None = None, settings: Sequence[str] = ()
+    text: str | bytes,
+    *,
+    name: str = "<text>",
+    folder: Path | None = None,
+    settings: Sequence[str] = (),
+    samples: int = 0,
 ) -> Lab:
-    """Read a Tarn text; `folder` is where `use "path.tarn"` looks.
+    """Read a Tarn text; `folder` is where `use "path.tarn"` looks, and `samples` is as for `load`.
 
     Raises
     ------
@@ -50,7 +57,7 @@ def loads(
         Where the text or a setting is at fault, with all complaints in one.
     """
     content = text.encode() if isinstance(text, str) else text
-    return Lab(Recipe(content, name, folder, tuple(settings)))
+    return Lab(Recipe(content, name, folder, tuple(settings), samples))
 
 
 class UnknownNameError(EoscoreError, KeyError):

@@ -11,7 +11,7 @@ from typing import TYPE_CHECKING, Any
 
 import numpy as np
 
-from eoscore.answer.record import Caution, Finding, Piece, Points, Reason
+from eoscore.answer.record import Caution, Finding, Interval, Piece, Points, Reason
 
 if TYPE_CHECKING:
     from collections.abc import Mapping
@@ -70,6 +70,7 @@ def _packed(finding: Finding, numbers: _Numbers) -> dict[str, Any]:
         "budget": {label: numbers.put(share) for label, share in finding.budget.items()},
         "note": finding.note,
         "scale": None if finding.scale is None else numbers.put(finding.scale),
+        "interval": None if (told := finding.interval) is None else _interval(told, numbers),
     }
 
 
@@ -85,4 +86,15 @@ def _unpacked(told: Mapping[str, Any], numbers: _Numbers) -> Finding:
         budget={label: numbers.take(share) for label, share in told["budget"].items()},
         note=told["note"],
         scale=None if told["scale"] is None else numbers.take(told["scale"]),
+        interval=None if (ends := told["interval"]) is None else _taken(ends, numbers),
     )
+
+
+def _interval(interval: Interval, numbers: _Numbers) -> list[Any]:
+    arrays = (interval.low, interval.high, interval.answered)
+    return [*(numbers.put(array) for array in arrays), interval.samples, interval.coverage]
+
+
+def _taken(told: list[Any], numbers: _Numbers) -> Interval:
+    low, high, answered = (numbers.take(each) for each in told[:3])
+    return Interval(low, high, answered, *told[3:])

@@ -15,12 +15,16 @@ __all__ = ["Recipe"]
 
 @dataclass(frozen=True)
 class Recipe:
-    """A Tarn text, its name in complaints, the folder in which `use "path"` looks, and the settings."""
+    """A Tarn text, its name in complaints, the folder in which `use "path"` looks, and the settings.
+
+    `samples`: draws of the uncertain literals for sampled intervals.
+    """
 
     text: bytes
     name: str
     folder: Path | None
     settings: tuple[str, ...]
+    samples: int = 0
 
     def program(self) -> Program:
         """The text read and checked, with the dispersions that are installed.

@@ -22,6 +22,7 @@ __all__ = [
     "Finding",
     "FoundAnswer",
     "Given",
+    "Interval",
     "Points",
     "Reason",
     "Report",
@@ -79,6 +80,20 @@ class Caution:
 
 
 @dataclass(frozen=True)
+class Interval:
+    """The middle of a sample: `coverage` of the answers lie between `low` and `high`, arrays like the value's.
+
+    `answered` is the share of the `samples` that have an answer; low and high are nan where they are too few.
+    """
+
+    low: NDArray[np.float64]
+    high: NDArray[np.float64]
+    answered: NDArray[np.float64]
+    samples: int
+    coverage: float
+
+
+@dataclass(frozen=True)
 class Finding:
     """One quantity of a `find`: SI numbers shaped like the grid; `freq` and `r_min` have a last axis of their own.
 
@@ -86,7 +101,7 @@ class Finding:
     `sigma` one standard deviation carried from the input (None where no input had one), `budget` the share of
     the variance of each uncertain literal, named as in the file. `note` says more in words: for the depth, where
     and which way the trap leaks. `scale` is what the error is judged by where it is larger than the value: 1 for
-    f_0, N for N_0, kT for mu.
+    f_0, N for N_0, kT for mu. `interval` is that of a sample, where one was asked for.
     """
 
     value: NDArray[np.float64]
@@ -98,6 +113,7 @@ class Finding:
     budget: Mapping[str, NDArray[np.float64]] = field(default_factory=dict)
     note: str | None = None
     scale: NDArray[np.float64] | None = None
+    interval: Interval | None = None
 
     @property
     def why(self) -> str | None:

@@ -75,7 +75,7 @@ class Run:
         """The answer to the question with this index; `accuracy` is the relative error wanted."""
         question = self.program.questions[index]
         if index not in self.chunks:
-            answer = asking.answer_to(self.program, question, accuracy, self.held)
+            answer = asking.answer_to(self.program, question, accuracy, self.held, self.recipe.samples)
             self._tell(1)
             return answer
         cautions = self._answer_grid(index)
@@ -96,7 +96,10 @@ class Run:
         question = self.program.questions[index]
         cautions = asking.cautions_over(self.program, question, self.held)  # first, as in every worker
         for chunk in waiting:
-            self._keep(chunk, asking.piece_of(self.program, chunk.of(question), self.held, question))
+            piece = asking.piece_of(
+                self.program, chunk.of(question), self.held, question, self.recipe.samples
+            )
+            self._keep(chunk, piece)
         return cautions
 
     def _waiting(self, index: int) -> list[Chunk]:

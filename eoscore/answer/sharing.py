@@ -66,4 +66,4 @@ def _piece(recipe: Recipe, chunk: Chunk) -> Piece:
     _cautions(recipe, chunk.question)
     program, held = _known(recipe)
     question = program.questions[chunk.question]
-    return piece_of(program, chunk.of(question), held, question)
+    return piece_of(program, chunk.of(question), held, question, recipe.samples)

@@ -38,8 +38,8 @@ class Text:
             return cls("<stdin>", _content(file), Path.cwd())
         return cls(file, _content(file), Path(file).parent)
 
-    def lab(self, settings: tuple[str, ...] = ()) -> Lab:
-        """The text read and checked, with its settings.
+    def lab(self, settings: tuple[str, ...] = (), samples: int = 0) -> Lab:
+        """The text read and checked, with its settings, and the draws for sampled intervals.
 
         Raises
         ------
@@ -48,7 +48,7 @@ class Text:
         """
         from eoscore.answer.lab import loads
 
-        return loads(self.content, name=self.name, folder=self.folder, settings=settings)
+        return loads(self.content, name=self.name, folder=self.folder, settings=settings, samples=samples)
 
 
 def _content(file: str) -> bytes:

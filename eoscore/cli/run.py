@@ -55,6 +55,13 @@ def asking(function: _F) -> _F:
                 show_default=True,
                 help="Relative error wanted of every number.",
             ),
+            click.option(
+                "--sample",
+                type=click.IntRange(0, 10**6),
+                default=0,
+                metavar="K",
+                help="Give intervals from K draws of the uncertain numbers, beside first derivatives.",
+            ),
             grid_options,
         )
     ):
@@ -79,6 +86,7 @@ class Asked:
     as_json: bool
     out: Path | None
     accuracy: float
+    sample: int
     workers: int
     cluster: str | None
     plot: Path | None
@@ -126,7 +134,7 @@ def _report(text: Text, asked: Asked, kept: Kept) -> Report:
     answers: list[Answer] = []
     complaints: list[Complaint] = []
     try:
-        lab = text.lab(asked.settings)
+        lab = text.lab(asked.settings, asked.sample)
     except TarnError as fault:
         return Report(text.name, complaints=fault.complaints)
     with grid_run(lab, asked, kept) as run:

@@ -84,6 +84,14 @@ def _finding(finding: Finding, axes: int) -> dict[str, Any]:
     }
     if finding.note:
         record["note"] = finding.note
+    if (interval := finding.interval) is not None:
+        record["interval"] = {
+            "low": _plain(interval.low, axes),
+            "high": _plain(interval.high, axes),
+            "coverage": interval.coverage,
+            "samples": interval.samples,
+            "answered": _plain(interval.answered, axes),
+        }
     if finding.budget:
         record["budget"] = {name: _plain(share, axes) for name, share in finding.budget.items()}
     return record
