@@ -29,7 +29,9 @@ def against_levels(
     some = np.isfinite(kT)
     ratio = np.full(kT.shape, np.nan)
     ratio[some] = saturated_kT(levels, "N", number[some]) / kT[some] - 1
-    return ratio, np.full(kT.shape, 2 * (levels.error + held.model.whole.error) + 1e-12)
+    error = np.full(kT.shape, np.nan)
+    error[some] = levels.error_at(kT[some]) + held.model.whole.error_at(kT[some]) + 1e-12
+    return ratio, error
 
 
 def _levels(held: HeldGas, why: str) -> ExactLevels:

@@ -1,26 +1,24 @@
-"""The levels of one direction, all of them: some known one by one, the rest as their smooth density."""
+"""The levels of one direction, or of all directions together: exact sums over all of them."""
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
-from functools import cached_property
-from math import ceil, log
+from abc import ABC, abstractmethod
+from dataclasses import dataclass
 from typing import TYPE_CHECKING, NamedTuple, Protocol
 
 import numpy as np
-
-from eoscore.measure.rules import legendre
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
 
     from eoscore.state.reading import FloatArray
 
-__all__ = ["Direction", "Known", "Oscillator", "Sums"]
+__all__ = ["REACH", "Atoms", "Direction", "OnAtoms", "Oscillator", "Sums"]
 
 CHUNK = 400_000  # numbers made at a time
-REACH = 45.0  # kT: e^-45 is dropped
-RATIO = 1.5  # of the panels above the last known level
+REACH = 42.0  # kT: e^-42 is dropped
+ENOUGH = 3e-7  # relative error of a partition function that asks for no more known levels
+SPARE = 1.25  # further, so that a search for a temperature does not begin again at each step
 
 
 class Sums(NamedTuple):
@@ -31,21 +29,15 @@ class Sums(NamedTuple):
     z2: NDArray[np.inexact]
 
 
-class Counted(Protocol):
-    """The smooth number of levels below an energy, J from the bottom of V."""
+class Atoms(NamedTuple):
+    """Energies (J from the lowest level) and weights that stand for all levels but the lowest."""
 
-    @property
-    def breaks(self) -> tuple[float, ...]:
-        """Energies where it is not smooth."""
-        ...
-
-    def density(self, v: FloatArray, /) -> FloatArray:
-        """Levels per J at energies of one axis."""
-        ...
+    e: FloatArray
+    w: FloatArray
 
 
 class Direction(Protocol):
-    """lowest: energy of the lowest level, J from the bottom of V. gap: to the next. error: relative, of all sums."""
+    """lowest: energy of the lowest level, J from the bottom of V. gap: to the next."""
 
     @property
     def lowest(self) -> float:
@@ -57,9 +49,12 @@ class Direction(Protocol):
         """J to the next level."""
         ...
 
-    @property
-    def error(self) -> float:
-        """Bound of the relative error of the sums."""
+    def error_at(self, kT: float) -> float:
+        """Bound of the relative error of the sums at kT, J."""
+        ...
+
+    def below(self, energy: float) -> float:
+        """How many levels lie below an energy, J from the lowest; roughly."""
         ...
 
     def sums(self, beta: NDArray[np.inexact], kT: float) -> Sums:
@@ -72,7 +67,6 @@ class Oscillator:
     """n hbar omega: `quantum` in J."""
 
     quantum: float
-    error: float = 1e-15
 
     @property
     def lowest(self) -> float:
@@ -84,6 +78,14 @@ class Oscillator:
         """See `Direction`."""
         return self.quantum
 
+    def error_at(self, kT: float) -> float:  # noqa: ARG002 - none of it comes from the temperature
+        """See `Direction`."""
+        return 1e-15
+
+    def below(self, energy: float) -> float:
+        """See `Direction`."""
+        return energy / self.quantum
+
     def sums(self, beta: NDArray[np.inexact], kT: float) -> Sums:  # noqa: ARG002
         """See `Direction`."""
         q = self.quantum
@@ -93,98 +95,70 @@ class Oscillator:
         )
 
 
-@dataclass(frozen=True)
-class Known:
-    """energies: J from the lowest, ascending.
+class OnAtoms(ABC):
+    """A spectrum some of whose levels are known one by one, and the rest as a smooth density, up to some energy.
 
-    Above the last one follows the smooth part: `states`, the phase-space volume over h^d below an energy from the
-    bottom of V, whose slope is the density of levels (Euler-Maclaurin, DLMF 2.10.1); None where there are no more.
+    levels: how many are known of each row. `_known`: the relative error of these. `lowest` and `gap` as in `Direction`.
     """
 
-    energies: FloatArray
     lowest: float
-    states: Counted | None
-    error: float
-    kept: list[tuple[FloatArray, FloatArray]] = field(default_factory=list, compare=False, repr=False)
+    gap: float
+    levels: int
+    _known: float = 1e-10
 
-    @property
-    def gap(self) -> float:
+    def __init__(self) -> None:
+        self._kept: dict[bool, tuple[float, Atoms]] = {}
+
+    @abstractmethod
+    def below(self, energy: float) -> float:
         """See `Direction`."""
-        return float(self.energies[1])
 
-    @cached_property
-    def spacing(self) -> float:
-        """Of the smooth levels at the last known one, J."""
-        return (
-            0.0
-            if self.states is None
-            else 1 / float(self.states.density(self.lowest + self.energies[-1:])[0])
+    @abstractmethod
+    def made(self, top: float, levels: int) -> Atoms:
+        """The spectrum up to `top` (J from the lowest level) from so many of the known levels."""
+
+    @abstractmethod
+    def refined(self) -> bool:
+        """Come to know more levels; whether it did."""
+
+    def atoms(self, kT: float) -> Atoms:
+        """As far as `REACH` kT at least, and of enough known levels."""
+        fine = self._as_far(kT, coarse=False)
+        while self._apart(kT) > ENOUGH and self.refined():
+            self._kept.clear()
+            fine = self._as_far(kT, coarse=False)
+        return fine
+
+    def error_at(self, kT: float) -> float:
+        """See `Direction`: what two thirds of the known levels give differently."""
+        self.atoms(kT)
+        return self._known + self._apart(kT)
+
+    def _as_far(self, kT: float, *, coarse: bool) -> Atoms:
+        upto, atoms = self._kept.get(coarse, (0.0, None))
+        if atoms is None or upto < REACH * kT:
+            upto = SPARE * REACH * kT
+            atoms = self.made(upto, self.levels * 2 // 3 if coarse else self.levels)
+            self._kept[coarse] = upto, atoms
+        return atoms
+
+    def _apart(self, kT: float) -> float:
+        whole, other = (
+            1 + float(np.exp(-e / kT) @ w) for e, w in (self._as_far(kT, coarse=c) for c in (False, True))
         )
+        return abs(other / whole - 1)
 
     def sums(self, beta: NDArray[np.inexact], kT: float) -> Sums:
         """See `Direction`."""
-        e, w = self.energies[1:], self._weights()
-        last = float(e[-1])
-        if self.states is not None and last < REACH * kT:
-            more, dn = self._beyond(last, kT)
-            e, w = np.concatenate([e, more]), np.concatenate([w, dn])
+        e, w = self.atoms(kT)
+        rows = np.stack([w, w * e, w * e * e], axis=1)
         flat = np.ravel(beta)
         size = max(CHUNK // e.size, 1)
-        parts = [_summed(flat[i : i + size], e, w) for i in range(0, flat.size, size)]
-        z0, z1, z2 = (np.concatenate([part[k] for part in parts]).reshape(np.shape(beta)) for k in range(3))
-        if self.states is not None:
-            z0, z1, z2 = self._corner(beta, last, z0, z1, z2)
-        return Sums(z0, z1, z2)
-
-    def _weights(self) -> FloatArray:
-        w = np.ones(self.energies.size - 1)
-        if self.states is not None:
-            w[-1] *= 0.5  # the first half of the step belongs to the sum, the other to the integral
-        return w
-
-    def _beyond(self, last: float, kT: float) -> tuple[FloatArray, FloatArray]:
-        """Energies from the lowest level and numbers of levels there, as far as 45 kT; kept, in stretches."""
-        while not self.kept or self.kept[-1][0][-1] < REACH * kT:
-            start = self.kept[-1][0][-1] if self.kept else last
-            self.kept.append(self._stretch(last, float(start), max(REACH * kT, start * RATIO**4)))
-        return np.concatenate([e for e, _ in self.kept]), np.concatenate([w for _, w in self.kept])
-
-    def _stretch(self, last: float, start: float, reach: float) -> tuple[FloatArray, FloatArray]:
-        if self.states is None:
-            return np.array([reach]), np.zeros(1)
-        first, stop = round(log(start / last) / log(RATIO)), ceil(log(reach / last) / log(RATIO))
-        edges = last * RATIO ** np.arange(first, stop + 1.0)
-        inner = [b - self.lowest for b in self.states.breaks if edges[0] < b - self.lowest < edges[-1]]
-        edges = np.sort(np.concatenate([edges, inner]))
-        x, w = legendre(16)
-        width = np.diff(edges)
-        e = (edges[:-1, None] + width[:, None] * x).ravel()
-        dn = (width[:, None] * w).ravel() * self.states.density(self.lowest + e)
-        # an atom without weight at the end of the stretch tells where the next one begins
-        return np.append(e, edges[-1]), np.append(dn, 0.0)
-
-    def _corner(
-        self,
-        beta: NDArray[np.inexact],
-        last: float,
-        z0: NDArray[np.inexact],
-        z1: NDArray[np.inexact],
-        z2: NDArray[np.inexact],
-    ) -> Sums:
-        """-g'/12 of the Euler-Maclaurin sum, g = e^(-b E(n)), with the derivatives by b that z1 and z2 want."""
-        if self.states is None:
-            return Sums(z0, z1, z2)
-        fading = np.exp(-beta * last) * (self.spacing / 12)
-        return Sums(
-            z0 + beta * fading,
-            z1 + fading * (beta * last - 1),
-            z2 + fading * last * (beta * last - 2),
-        )
+        parts = [_summed(flat[i : i + size], e, rows) for i in range(0, flat.size, size)]
+        whole = np.concatenate(parts)
+        return Sums(*(whole[:, k].reshape(np.shape(beta)) for k in range(3)))
 
 
-def _summed(
-    beta: NDArray[np.inexact], e: FloatArray, w: FloatArray
-) -> tuple[NDArray[np.inexact], NDArray[np.inexact], NDArray[np.inexact]]:
+def _summed(beta: NDArray[np.inexact], e: FloatArray, rows: FloatArray) -> NDArray[np.inexact]:
     with np.errstate(under="ignore"):
-        fading = np.exp(-beta[:, None] * e)
-    return fading @ w, fading @ (w * e), fading @ (w * e * e)
+        return np.asarray(np.exp(-beta[:, None] * e) @ rows)

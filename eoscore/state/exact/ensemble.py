@@ -2,19 +2,21 @@
 
 from __future__ import annotations
 
+from math import prod
 from typing import TYPE_CHECKING
 
 import numpy as np
 
 from eoscore.gas.multiples import multiples_of
 from eoscore.state.ensemble import EPS, Ensemble
+from eoscore.state.exact.direction import OnAtoms
 from eoscore.state.exact.direction import Sums as OfLevels
 from eoscore.state.sums import Sums
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
 
-    from eoscore.state.exact.direction import Direction
+    from eoscore.state.exact.direction import Atoms, Direction
     from eoscore.state.reading import FloatArray
 
 __all__ = ["ExactLevels"]
@@ -30,6 +32,7 @@ class ExactLevels(Ensemble):
 
     def __init__(self, directions: tuple[Direction, ...], statistics: str, degeneracy: float) -> None:
         self.directions, self.statistics, self.degeneracy = directions, statistics, degeneracy
+        self._asked = self.gap
 
     @property
     def lowest(self) -> float:
@@ -43,8 +46,13 @@ class ExactLevels(Ensemble):
 
     @property
     def error(self) -> float:
-        """See `Ensemble.error`."""
-        return sum(direction.error for direction in self.directions) + 4000 * EPS
+        """See `Ensemble.error`: at the temperature asked last."""
+        return float(self.error_at(np.array([self._asked]))[0])
+
+    def error_at(self, kT: FloatArray) -> FloatArray:
+        """See `Ensemble.error_at`."""
+        each = [sum(d.error_at(t) for d in self.directions) + 4000 * EPS for t in kT.tolist()]
+        return np.asarray(each, dtype=float)
 
     @property
     def condenses(self) -> bool:
@@ -57,7 +65,11 @@ class ExactLevels(Ensemble):
         return Sums(*np.array(columns).T)
 
     def _point(self, alpha: float, kT: float) -> tuple[float, ...]:
-        y, n, x, b0, x1, x2 = total = np.zeros(6)
+        self._asked = kT
+        only = self.directions[0]
+        if self.statistics == "bose" and len(self.directions) == 1 and isinstance(only, OnAtoms):
+            return self._occupied(only.atoms(kT), alpha, kT)
+        total = np.zeros(6)
         for rule in multiples_of(self.statistics, alpha + self.gap / kT):
             with np.errstate(under="ignore"):
                 weight = rule.weight * np.exp(-rule.at * alpha)
@@ -65,6 +77,19 @@ class ExactLevels(Ensemble):
             z1, z2 = z1 / kT, z2 / kT**2
             for row, (power, z) in enumerate(((-1, z0), (0, z0), (0, z1), (1, z0), (1, z1), (1, z2))):
                 total[row] += float(np.real((weight * rule.at**power * z).sum()))
+        return self._ordered(total, alpha, kT)
+
+    def _occupied(self, atoms: Atoms, alpha: float, kT: float) -> tuple[float, ...]:
+        """The sums of `_point`, level by level: n = 1/(e^x - 1), its slope n (1 + n)."""
+        e = atoms.e / kT
+        with np.errstate(over="ignore", under="ignore"):
+            n = 1 / np.expm1(e + alpha)
+            y = np.log1p(n)
+        b = n * (1 + n)
+        total = np.array([y, n, e * n, b, e * b, e * e * b]) @ atoms.w
+        return self._ordered(total, alpha, kT)
+
+    def _ordered(self, total: FloatArray, alpha: float, kT: float) -> tuple[float, ...]:
         y, n, x, b0, x1, x2 = (self.degeneracy * total).tolist()
         b1, b2 = x1 + alpha * b0, x2 + 2 * alpha * x1 + alpha**2 * b0
         return n, kT * x, y + x + alpha * n, y, b0, b1, b2
@@ -83,16 +108,14 @@ class ExactLevels(Ensemble):
         return OfLevels(without, whole * mean, whole * (mean**2 + variance))
 
     def below(self, number: FloatArray) -> FloatArray:
-        """See `Ensemble.below`: where the classical partition function is as large, climbing from the first level."""
-        if number.size == 0:
-            return number
-        kT, z, guesses = 0.2 * self.gap, 0.0, []
+        """See `Ensemble.below`: climbing from below the first level."""
+        kT, held, guesses = 0.2 * self.gap, 0.0, []
         for wanted in np.sort(number).tolist():
-            while z < wanted:
+            while held < wanted:
                 kT *= 1.3
-                z = float(np.real(self.partition(np.array([1 / kT]), kT).z0[0]))
+                held = prod(1 + direction.below(kT) for direction in self.directions) - 1
             guesses.append(kT)
-        return np.asarray(np.interp(number, np.sort(number), np.array(guesses)))
+        return np.asarray(np.interp(number, np.sort(number), np.array(guesses))) if guesses else number
 
     def boltzmann(self, kT: FloatArray) -> tuple[FloatArray, FloatArray]:
         """See `Ensemble.boltzmann`."""

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from functools import lru_cache
+from functools import cached_property, lru_cache
 from math import inf
 from typing import TYPE_CHECKING
 
@@ -15,23 +15,120 @@ from eoscore.formula import variable
 from eoscore.formula.field import Field
 from eoscore.measure import Powers, convolve, measure_of
 from eoscore.measure.landscape import survey
-from eoscore.state.exact.direction import Known
-from eoscore.state.exact.spectral import eigenvalues
+from eoscore.state.exact.direction import Atoms, OnAtoms
+from eoscore.state.exact.spectral import converged
+from eoscore.state.exact.tail import ladder
 
 if TYPE_CHECKING:
-    from collections.abc import Callable
-
     from eoscore.measure import Measure
     from eoscore.state.reading import FloatArray
 
-__all__ = ["levels_on_line", "phase_space"]
+__all__ = ["Line", "levels_on_line", "phase_space"]
 
-LEVELS = 160  # found one by one
-FEW = 20  # found on a grid of their own, since the rounding of a matrix grows as the fourth power of its size
-DECAY = 22.0  # e-foldings of the wave beyond the turning points of the highest of them
-POINTS = 2.1  # per level, and some more for the forbidden region
-MORE = 1.25  # points of the second grid, whose difference tells the error
+LEVELS = 40  # found one by one
+MOST = 160  # where these do not do
+FEW = 14  # found on a grid of their own, since the rounding of a matrix grows as the fourth power of its size
+DECAY = 14.0  # e-foldings of the wave beyond the turning points of the highest of them
+BLOCK = 500  # steps at a time
 GOOD = 1e-5  # relative error of a level that is too much
+
+
+class Line(OnAtoms):
+    """All levels of a field of the coordinate x, J from its bottom; NoAnswerError where they do not converge."""
+
+    def __init__(self, field: Field, mass: float) -> None:
+        super().__init__()
+        landscape = survey(field)
+        if not landscape.holds or landscape.bottom is None or landscape.depth < inf:
+            raise NoAnswerError(
+                "`levels exact` wants a trap that holds at every energy: a leaky one has no true levels"
+            )
+        self.field, self.mass, self.bottom = field, mass, landscape.bottom.value
+        self.center, self.states = landscape.bottom.position[0], phase_space(field, mass)
+        self.levels = LEVELS
+        self.energies = np.concatenate([self._solved(FEW + 2)[:FEW], self._solved(LEVELS)[FEW:]])
+        self.lowest = float(self.energies[0])
+        self.gap = float(self.energies[1]) - self.lowest
+
+    def below(self, energy: float) -> float:
+        """See `Direction`."""
+        return float(self.states.volume(energy + self.lowest))
+
+    def made(self, top: float, levels: int) -> Atoms:
+        """See `OnAtoms`."""
+        known = self.energies[None, :levels]
+        walls = self._at_walls[None, :]
+        e, w = ladder(known, self._count, np.zeros(1), top + self.lowest, self.states.breaks, walls)
+        return Atoms(e[0, 1:] - self.lowest, w[0, 1:])
+
+    def refined(self) -> bool:
+        """See `OnAtoms`."""
+        if self.levels >= MOST:
+            return False
+        self.levels *= 2
+        self.energies = np.concatenate([self.energies, self._solved(self.levels)[self.energies.size :]])
+        return True
+
+    def _count(self, e: FloatArray) -> FloatArray:
+        return np.asarray(self.states.volume(e.ravel())).reshape(e.shape)
+
+    def _potential(self, x: FloatArray) -> FloatArray:
+        values = np.broadcast_to(self.field.formula.evaluate({"x": x}), x.shape) - self.bottom
+        return np.asarray(values, dtype=float)
+
+    def _inside(self, x: float) -> bool:
+        return all(float(np.ravel(wall.evaluate({"x": np.array([x])}))[0]) > 0 for wall in self.field.walls)
+
+    def _solved(self, count: int) -> FloatArray:
+        """The lowest levels, J from the bottom."""
+        top = _energy_of(self.states, count + 1)
+        low, high = (np.array([self._end(sign, top)]) for sign in (-1.0, 1.0))
+        energies, error = converged(self._potential, low, high, HBAR**2 / (2 * self.mass), count)
+        if not error < GOOD:
+            raise NoAnswerError(
+                f"the levels of a direction have not converged (relative difference {error:.1e} of two grids): the "
+                "potential is too rough for the spectral method; round off its kinks and jumps"
+            )
+        self._known = max(self._known, error)
+        return np.asarray(energies[0])
+
+    def _end(self, sign: float, top: float) -> float:
+        """Where a wave of energy `top` has died out in one direction, or the wall before."""
+        density = float(self.states.density(np.array([top]))[0])
+        step = H * density / math.sqrt(2 * self.mass / top) / 400  # a small part of the width of the orbit
+        decayed = 0.0
+        for start in range(0, 200_000, BLOCK):
+            distance = step * np.arange(start, start + BLOCK + 1.0)
+            excess = np.maximum(self._potential(self.center + sign * distance[1:]) - top, 0.0)
+            sums = decayed + np.cumsum(step * np.sqrt(2 * self.mass * excess)) / HBAR
+            stop = distance[1 + np.searchsorted(sums, DECAY)] if sums[-1] > DECAY else distance[-1]
+            if not self._inside(self.center + sign * stop):
+                return self._wall(sign, float(distance[0]), float(stop))
+            if sums[-1] > DECAY:
+                return self.center + sign * float(stop)
+            decayed = float(sums[-1])
+        raise NoAnswerError("no end was found of a direction: its potential rises too slowly")
+
+    def _wall(self, sign: float, low: float, high: float) -> float:
+        """Between two distances of which the second is beyond it."""
+        for _ in range(200):
+            middle = (low + high) / 2
+            if middle in (low, high):
+                break
+            low, high = (middle, high) if self._inside(self.center + sign * middle) else (low, middle)
+        return self.center + sign * high
+
+    @cached_property
+    def _at_walls(self) -> FloatArray:
+        """V at the walls, J; as far as a thousand times the width of the known levels."""
+        far = (
+            1e3
+            * H
+            * float(self.states.density(self.energies[-1:])[0])
+            / math.sqrt(2 * self.mass / self.energies[-1])
+        )
+        walls = [self._wall(s, 0.0, far) for s in (-1.0, 1.0) if not self._inside(self.center + s * far)]
+        return self._potential(np.array(walls)) if walls else np.empty(0)
 
 
 def phase_space(field: Field, mass: float) -> Measure:
@@ -43,7 +140,7 @@ def phase_space(field: Field, mass: float) -> Measure:
     return convolve(momenta, measure_of(field))
 
 
-def levels_on_line(field: Field, mass: float) -> Known:
+def levels_on_line(field: Field, mass: float) -> Line:
     """All levels of a field of one coordinate, J from its bottom; NoAnswerError where they do not converge."""
     name = field.coordinates[0]
     as_x = {name: variable("x")}
@@ -51,58 +148,7 @@ def levels_on_line(field: Field, mass: float) -> Known:
     return _levels(Field(("x",), field.formula.substitute(as_x), walls), mass)
 
 
-@lru_cache(maxsize=32)
-def _levels(field: Field, mass: float) -> Known:
-    landscape = survey(field)
-    if not landscape.holds or landscape.bottom is None or landscape.depth < inf:
-        raise NoAnswerError(
-            "`levels exact` wants a trap that holds at every energy: a leaky one has no true levels"
-        )
-    states = phase_space(field, mass)
-    name = field.coordinates[0]
-    bottom, center = landscape.bottom.value, landscape.bottom.position[0]
-
-    def potential(x: FloatArray) -> FloatArray:
-        values = np.broadcast_to(field.formula.evaluate({name: x}), x.shape) - bottom
-        return np.asarray(values, dtype=float)
-
-    def inside(x: float) -> bool:
-        return all(float(np.ravel(wall.evaluate({name: np.array([x])}))[0]) > 0 for wall in field.walls)
-
-    def stage(count: int) -> tuple[FloatArray, float]:
-        top = _energy_of(states, count + 2)
-        density = float(states.density(np.array([top]))[0])
-        low, high = (_end(potential, inside, center, sign, top, mass, density) for sign in (-1.0, 1.0))
-        return _solved(potential, (low, high), mass, count)
-
-    (few, close), (many, far) = stage(FEW + 2), stage(LEVELS)
-    energies = np.concatenate([few[:FEW], many[FEW:]])
-    lowest = float(energies[0])
-    return Known(energies - lowest, lowest, states, close + far + 1e-13 + _mismatch(energies, states))
-
-
-def _solved(
-    potential: Callable[[FloatArray], FloatArray], ends: tuple[float, float], mass: float, count: int
-) -> tuple[FloatArray, float]:
-    """The lowest levels between two ends by two grids, and how far these are apart."""
-    points = int(POINTS * count) + 60
-    first, second = (
-        eigenvalues(potential, *ends, HBAR**2 / (2 * mass), count, n) for n in (points, int(MORE * points))
-    )
-    error = float(np.max(np.abs(first - second) / (np.gradient(second) + second)))
-    if error > GOOD:
-        raise NoAnswerError(
-            f"the levels of a direction have not converged (relative difference {error:.1e} of two grids): the "
-            "potential is too rough for the spectral method; round off its kinks and jumps"
-        )
-    return second, error
-
-
-def _mismatch(energies: FloatArray, states: Measure) -> float:
-    """How much of a level n(E) = N(E) + constant still wins or loses between the half and the end of the known ones."""
-    half = energies.size // 2
-    numbers = states.volume(energies) - np.arange(energies.size)
-    return float(abs(numbers[-1] - numbers[half])) / energies.size
+_levels = lru_cache(maxsize=32)(Line)
 
 
 def _energy_of(states: Measure, number: float) -> float:
@@ -112,36 +158,3 @@ def _energy_of(states: Measure, number: float) -> float:
         middle = (low + high) / 2
         low, high = (middle, high) if float(states.volume(np.exp(middle))) < number else (low, middle)
     return float(np.exp(high))
-
-
-def _end(
-    potential: Callable[[FloatArray], FloatArray],
-    inside: Callable[[float], bool],
-    center: float,
-    sign: float,
-    top: float,
-    mass: float,
-    density: float,
-) -> float:
-    """Where a wave of energy `top` has died out in one direction, or the wall before."""
-    step = H * density / math.sqrt(2 * mass / top) / 400  # a small part of the width of the orbit
-    distance, decayed = 0.0, 0.0
-    for _ in range(200_000):
-        following = distance + step
-        if not inside(center + sign * following):
-            return _wall(inside, center, sign, distance, following)
-        excess = float(potential(np.array([center + sign * following]))[0]) - top
-        decayed += step * math.sqrt(2 * mass * max(excess, 0.0)) / HBAR
-        distance = following
-        if decayed > DECAY:
-            return center + sign * distance
-    raise NoAnswerError("no end was found of a direction: its potential rises too slowly")
-
-
-def _wall(inside: Callable[[float], bool], center: float, sign: float, low: float, high: float) -> float:
-    for _ in range(200):
-        middle = (low + high) / 2
-        if middle in (low, high):
-            break
-        low, high = (middle, high) if inside(center + sign * middle) else (low, middle)
-    return center + sign * high

@@ -1,4 +1,4 @@
-"""Classical radial motion in one well: turning points, action, period. Their quantum numbers count levels smoothly."""
+"""Classical radial motion in wells: turning points and action, which count levels smoothly."""
 
 from __future__ import annotations
 
@@ -9,64 +9,109 @@ import numpy as np
 
 from eoscore.constants import HBAR
 from eoscore.measure.rules import legendre
+from eoscore.state.root import rising_root
 
 if TYPE_CHECKING:
     from collections.abc import Callable
 
+    from numpy.typing import NDArray
+
     from eoscore.state.reading import FloatArray
 
-__all__ = ["Orbit"]
+__all__ = ["Orbits", "Well"]
 
-NODES = 96
-BISECTIONS = 52
+NODES = 64
 
 
-class Orbit:
-    """Energies E (J) in a well V(r), r in m, that falls up to `center` and rises beyond it, up to a wall if finite.
-
-    The wave of each level vanishes at the turning points, and at a wall: N(E) = 1/(pi hbar) int p dr.
-    """
-
-    breaks: tuple[float, ...] = ()
+class Well:
+    """V(r) with its slope, J from the bottom at r in m, and a wall (m; inf where there is none)."""
 
     def __init__(
-        self, potential: Callable[[FloatArray], FloatArray], mass: float, center: float, wall: float
+        self,
+        potential: Callable[[FloatArray], FloatArray],
+        slope: Callable[[FloatArray], FloatArray],
+        mass: float,
+        wall: float,
     ) -> None:
-        self.potential, self.mass, self.center, self.wall = potential, mass, center, wall
+        self.potential, self.slope, self.mass, self.wall = potential, slope, mass, wall
 
-    def turning(self, energy: FloatArray) -> tuple[FloatArray, FloatArray]:
-        """The inner and the outer turning point; 0 and the wall where there is none."""
-        inner = self._root(energy, np.zeros_like(energy), np.full_like(energy, self.center))
-        far = np.full_like(energy, 2 * self.center if self.wall == np.inf else self.wall)
-        while self.wall == np.inf and np.any(self.potential(far) < energy):
-            far = far * 1.5
-        return inner, self._root(energy, far, np.full_like(energy, self.center))
+    def turned(self, r: FloatArray, squared: FloatArray) -> FloatArray:
+        """V + hbar^2 squared/(2 m r^2)."""
+        with np.errstate(divide="ignore", over="ignore", invalid="ignore"):
+            return np.asarray(self.potential(r) + HBAR**2 * squared / (2 * self.mass) / r**2)
 
-    def _root(self, energy: FloatArray, outside: FloatArray, inside: FloatArray) -> FloatArray:
-        for _ in range(BISECTIONS):
-            middle = (outside + inside) / 2
-            above = self.potential(middle) > energy
-            outside, inside = np.where(above, middle, outside), np.where(above, inside, middle)
-        return inside
 
-    def _rule(self, energy: FloatArray) -> tuple[FloatArray, FloatArray, FloatArray]:
-        """r, dr and p of nodes between the turning points, as r = a + (b - a) (3 s^2 - 2 s^3): both roots smooth."""
+class Orbits:
+    """Orbits of angular momenta hbar sqrt(squared), (rows,), about `center`, (rows,), where each well is least.
+
+    N(E) = 1/(pi hbar) int p dr between the turning points, or up to the wall.
+    """
+
+    def __init__(self, well: Well, squared: FloatArray, center: FloatArray) -> None:
+        self.well, self.squared, self.center = well, squared, center
+        self.floor = well.turned(center, squared)
+
+    def take(self, rows: slice) -> Orbits:
+        """Some of the rows."""
+        return Orbits(self.well, self.squared[rows], self.center[rows])
+
+    def count(self, energy: FloatArray) -> FloatArray:
+        """N(E) of (rows, any) energies, J."""
+        squared = np.broadcast_to(self.squared[:, None], energy.shape)
         inner, outer = self.turning(energy)
         s, w = legendre(NODES)
-        width = (outer - inner)[:, None]
-        r = inner[:, None] + width * s**2 * (3 - 2 * s)
-        dr = width * 6 * s * (1 - s) * w
-        p = np.sqrt(np.maximum(2 * self.mass * (energy[:, None] - self.potential(r)), 0.0))
-        return r, dr, p
+        width = (outer - inner)[..., None]
+        r = inner[..., None] + width * s**2 * (3 - 2 * s)  # both roots of p become smooth
+        left = energy[..., None] - self.well.turned(r, squared[..., None])
+        p = np.sqrt(2 * self.well.mass * np.maximum(left, 0.0))
+        return np.asarray((p * (6 * s * (1 - s) * w)).sum(axis=-1) * (outer - inner) / (pi * HBAR))
 
-    def volume(self, energy: FloatArray) -> FloatArray:
-        """N(E)."""
-        _, dr, p = self._rule(np.atleast_1d(np.asarray(energy, dtype=float)))
-        return np.asarray((p * dr).sum(axis=1) / (pi * HBAR))
+    def volume(self, energy: float) -> float:
+        """2/(3 pi hbar^3) int r^2 p^3 dr of the first row at one energy, J: states of all angular momenta, roughly."""
+        inner, outer = (float(r[0, 0]) for r in self.turning(np.array([[energy]])))
+        s, w = legendre(NODES)
+        r = inner + (outer - inner) * s
+        left = np.maximum(energy - self.well.potential(r), 0.0)
+        p = np.sqrt(2 * self.well.mass * left) / HBAR
+        return float((outer - inner) * (w * r**2 * p**3).sum() * 2 / (3 * pi))
 
-    def density(self, energy: FloatArray) -> FloatArray:
-        """dN/dE in 1/J: the period over 2 pi hbar."""
-        _, dr, p = self._rule(np.atleast_1d(np.asarray(energy, dtype=float)))
-        with np.errstate(divide="ignore", invalid="ignore"):
-            slow = np.where(p > 0, dr / p, 0.0)
-        return np.asarray(self.mass * slow.sum(axis=1) / (pi * HBAR))
+    def turning(self, energy: FloatArray) -> tuple[FloatArray, FloatArray]:
+        """The inner and the outer turning point, m; the wall where it comes first."""
+        center = np.broadcast_to(self.center[:, None], energy.shape)
+        squared = np.broadcast_to(self.squared[:, None], energy.shape)
+        least = HBAR * np.sqrt(squared / (2 * self.well.mass * energy))  # V itself is not below 0
+        inner = self._root(energy, squared, np.minimum(least, center), center, least, -1.0)
+        far = self._far(float(energy.max()))
+        outer = self._root(energy, squared, center, np.full_like(center, far), center * 1.5, 1.0)
+        return inner, outer
+
+    def _far(self, energy: float) -> float:
+        """A radius beyond the outer turning point."""
+        if self.well.wall < np.inf:
+            return self.well.wall
+        far = 2 * float(self.center.max())
+        while float(self.well.potential(np.array([far]))[0]) < energy:
+            far *= 1.5
+        return far
+
+    def _root(
+        self,
+        energy: FloatArray,
+        squared: FloatArray,
+        low: FloatArray,
+        high: FloatArray,
+        start: FloatArray,
+        sign: float,
+    ) -> FloatArray:
+        """r between low and high at which the well is as high as the energy, on a side where it rises with sign r."""
+        goal, turn = energy.ravel(), squared.ravel()
+
+        def work(x: FloatArray, which: NDArray[np.intp]) -> tuple[FloatArray, FloatArray]:
+            r = np.exp(sign * x)
+            push = HBAR**2 * turn[which] / self.well.mass / r**2
+            rise = self.well.potential(r) + push / 2 - goal[which]
+            return rise, np.maximum(sign * (self.well.slope(r) * r - push), 0.0)
+
+        ends = (np.log(low).ravel() * sign, np.log(high).ravel() * sign)
+        x = rising_root(work, np.minimum(*ends), np.maximum(*ends), np.log(start).ravel() * sign)
+        return np.asarray(np.exp(sign * x).reshape(energy.shape))

@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-from functools import lru_cache
-from itertools import count
 from math import inf
 from typing import TYPE_CHECKING, NamedTuple
 
@@ -12,37 +10,37 @@ import numpy as np
 from eoscore.constants import HBAR
 from eoscore.errors import NoAnswerError
 from eoscore.measure.landscape import survey
-from eoscore.state.exact.direction import REACH, Known, Sums
-from eoscore.state.exact.orbit import Orbit
-from eoscore.state.exact.spectral import eigenvalues
+from eoscore.measure.rules import legendre
+from eoscore.state.exact.direction import Atoms, OnAtoms
+from eoscore.state.exact.integers import joined
+from eoscore.state.exact.orbit import Orbits, Well
+from eoscore.state.exact.spectral import converged
+from eoscore.state.exact.tail import ladder
 
 if TYPE_CHECKING:
-    from collections.abc import Iterator
-
-    from numpy.typing import NDArray
-
     from eoscore.formula.field import Field
     from eoscore.state.reading import FloatArray
 
 __all__ = ["Radial", "radial_levels"]
 
-LEVELS = 50  # found one by one for each angular momentum
-POINTS, MORE = 170, 1.2
-DECAY = 22.0  # e-foldings of the wave beyond its turning points
-ALL = 24  # angular momenta below are taken one by one, above in panels of some nodes
-NODES, RATIO = 8, 1.5
+LEVELS = 16  # found one by one for each angular momentum
+MOST = 64  # where these do not do
+DECAY = 10.0  # e-foldings of the wave beyond its turning points
+ALL = 25  # angular momenta below are taken one by one; above, as an integral on panels that double
+NODES = 8
 GOOD = 1e-5
+PANELS = 20
 
 
-class Part(NamedTuple):
-    """The levels of one angular momentum: all of them, from the lowest of the place; weight: of the interpolation."""
+class Shells(NamedTuple):
+    """Some angular momenta l: their weights in a sum over all (2 l + 1)-fold levels; the levels, J from the bottom."""
 
-    levels: Known
-    offset: float
-    weight: float
+    weight: FloatArray
+    orbits: Orbits
+    energies: FloatArray
 
 
-class Radial:
+class Radial(OnAtoms):
     """Levels of angular momentum l, each (2 l + 1)-fold; solved as far as a temperature asks for them."""
 
     def __init__(self, field: Field, mass: float) -> None:
@@ -51,108 +49,109 @@ class Radial:
             raise NoAnswerError(
                 "`levels exact` wants a trap that holds at every energy: a leaky one has no true levels"
             )
-        self.field, self.mass, self.bottom = field, mass, landscape.bottom.value
-        self.wall = self._wall(landscape.bottom.position[0])
-        self._solved = lru_cache(maxsize=4096)(self._solve)
-        self.ground = self._solved(0)
-        self.lowest = self.ground.lowest
-        self.gap = min(self.ground.gap, self._solved(1).lowest - self.lowest)
-        self._worst = self.ground.error
+        super().__init__()
+        bottom, slope = landscape.bottom.value, field.formula.derivative("r")
 
-    @property
-    def error(self) -> float:
-        """See `Direction`: of the levels, and of the interpolation between angular momenta."""
-        return self._worst + 1e-8
+        def potential(r: FloatArray) -> FloatArray:
+            return np.asarray(np.broadcast_to(field.formula.evaluate({"r": r}), np.shape(r)) - bottom)
 
-    def sums(self, beta: NDArray[np.inexact], kT: float) -> Sums:
-        """See `Direction`."""
-        total = list(self.ground.sums(beta, kT))
-        for part in self._parts(kT):
-            z0, z1, z2 = part.levels.sums(beta, kT)
-            fading = part.weight * np.exp(-beta * part.offset)
-            whole, e = 1 + z0, part.offset
-            total[0] = total[0] + fading * whole
-            total[1] = total[1] + fading * (z1 + e * whole)
-            total[2] = total[2] + fading * (z2 + 2 * e * z1 + e * e * whole)
-        return Sums(*total)
+        def rise(r: FloatArray) -> FloatArray:
+            return np.asarray(np.broadcast_to(slope.evaluate({"r": r}), np.shape(r)))
 
-    def _parts(self, kT: float) -> Iterator[Part]:
-        """l = 1, 2, ... one by one, then panels, as far as their lowest level is within 45 kT."""
-        end = REACH * kT
-        for angular, weight in _angular():
-            levels = self._solved(angular)
-            offset = levels.lowest - self.lowest
-            if offset > end:
-                return
-            self._worst = max(self._worst, levels.error)
-            yield Part(levels, offset, weight)
+        self.well = Well(potential, rise, mass, _wall(field, landscape.bottom.position[0]))
+        self.levels = LEVELS
+        self.shells = [self._shell(0)]
+        first = self.shells[0].energies
+        self.lowest = float(first[0, 0])
+        self.gap = float(min(first[0, 1], first[1, 0])) - self.lowest
 
-    def _potential(self, r: FloatArray, squared: float) -> FloatArray:
-        """V + hbar^2 squared/(2 m r^2), J from the bottom."""
-        with np.errstate(divide="ignore", over="ignore"):
-            own = np.broadcast_to(self.field.formula.evaluate({"r": r}), np.shape(r)) - self.bottom
-            return np.asarray(own + HBAR**2 * squared / (2 * self.mass) / np.asarray(r) ** 2)
+    def below(self, energy: float) -> float:
+        """See `Direction`: the phase space 2/(3 pi hbar^3) int (r p)^2 p dr."""
+        return self.shells[0].orbits.take(slice(0, 1)).volume(energy + self.lowest)
 
-    def _solve(self, angular: int) -> Known:
-        squared = angular * (angular + 1.0)
+    def refined(self) -> bool:
+        """See `OnAtoms`."""
+        if self.levels >= MOST:
+            return False
+        self.levels *= 2
+        self.shells = [self._shell(panel) for panel in range(len(self.shells))]
+        return True
+
+    def made(self, top: float, levels: int) -> Atoms:
+        """See `OnAtoms`."""
+        while self.shells[-1].energies[-1, 0] - self.lowest < top:
+            if len(self.shells) > PANELS:
+                raise NoAnswerError(
+                    f"angular momenta beyond {ALL * 2**PANELS:.0e} count at this temperature, and sums over levels end "
+                    "there; lower T or N, or take the trap as a continuum"
+                )
+            self.shells.append(self._shell(len(self.shells)))
+        parts = [self._part(shells, levels, top + self.lowest) for shells in self.shells]
+        e, w = (np.concatenate([part[k] for part in parts]) for k in range(2))
+        return Atoms(e[1:] - self.lowest, w[1:])  # the first one is the lowest level
+
+    def _part(self, shells: Shells, levels: int, top: float) -> tuple[FloatArray, FloatArray]:
+        orbits, walls = shells.orbits, None
+        if self.well.wall < inf:
+            at_wall = np.full_like(orbits.squared, self.well.wall)
+            walls = np.maximum(self.well.turned(at_wall, orbits.squared), orbits.floor)[:, None]
+        e, w = ladder(shells.energies[:, :levels], orbits.count, orbits.floor, top, walls=walls)
+        return e.ravel(), (w * shells.weight[:, None]).ravel()
+
+    def _shell(self, panel: int) -> Shells:
+        """The first angular momenta, or those of a panel of the integral over l + 1/2."""
+        if panel == 0:
+            return self._solved(np.arange(ALL + 0.0), (2 * np.arange(ALL) + 1.0) * joined(ALL))
+        start = (ALL - 0.5) * 2.0 ** (panel - 1)
+        x, w = legendre(NODES)
+        return self._solved(start * (1 + x) - 0.5, start * w * 2 * start * (1 + x))
+
+    def _solved(self, angular: FloatArray, weight: FloatArray) -> Shells:
+        squared = angular * (angular + 1)
         # Langer: the half beside l makes the smooth count right near r = 0 (Phys. Rev. 51, 669 (1937))
-        orbit = Orbit(
-            lambda r: self._potential(r, squared + 0.25), self.mass, self._center(squared + 0.25), self.wall
-        )
-        top = _energy(orbit, LEVELS + 2.0)
-        low, high = self._ends(orbit, top)
-        kinetic = HBAR**2 / (2 * self.mass)
-        first, second = (
-            eigenvalues(lambda r: self._potential(r, squared), low, high, kinetic, LEVELS, points)
-            for points in (POINTS, int(MORE * POINTS))
-        )
-        error = float(np.max(np.abs(first - second) / (np.gradient(second) + second)))
-        if error > GOOD:
-            raise NoAnswerError(
-                f"the levels of angular momentum {angular} have not converged (relative difference {error:.1e} of two "
-                "grids): the potential is too rough for the spectral method; round off its kinks and jumps"
-            )
-        numbers = orbit.volume(second[[LEVELS // 2, -1]]) - np.array([LEVELS // 2, LEVELS - 1])
-        drift = float(abs(numbers[1] - numbers[0])) / LEVELS**2
-        return Known(second - second[0], float(second[0]), orbit, error + drift)
+        orbits = Orbits(self.well, squared + 0.25, self._centers(squared + 0.25))
+        low, high = self._ends(orbits, _energies(orbits, float(self.levels)))
 
-    def _center(self, squared: float) -> float:
-        """Where the effective potential is least, to a part in a thousand: the turning points need no more."""
-        far = self.wall
+        def turned(r: FloatArray) -> FloatArray:
+            return self.well.turned(r, squared[:, None]) - orbits.floor[:, None]
+
+        energies, error = converged(turned, low, high, HBAR**2 / (2 * self.well.mass), self.levels)
+        if not error < GOOD:
+            raise NoAnswerError(
+                f"the levels of angular momentum {angular[0]:.0f} have not converged (relative difference {error:.1e} "
+                "of two grids): the potential is too rough for the spectral method; round off its kinks and jumps"
+            )
+        self._known = max(self._known, error)
+        return Shells(weight, orbits, energies + orbits.floor[:, None])
+
+    def _centers(self, squared: FloatArray) -> FloatArray:
+        """Where each effective potential is least, to a part in a thousand: the turning points need no more."""
+        well, far = self.well, self.well.wall
         if far == inf:
-            far = (HBAR**2 / (2 * self.mass * 1e-30)) ** 0.5 * 1e-3
-            while (
-                float(self._potential(np.array([far]), 0.0)[0]) * far**2
-                < 1e3 * HBAR**2 * (squared + 10) / self.mass
-            ):
+            far = (HBAR**2 / (2 * well.mass * 1e-30)) ** 0.5 * 1e-3
+            most = 1e3 * HBAR**2 * (float(squared.max()) + 10) / well.mass
+            while float(well.potential(np.array([far]))[0]) * far**2 < most:
                 far *= 1.3
         r = far * np.geomspace(1e-5, 1, 12_000)[:-1]
-        return float(r[np.argmin(self._potential(r, squared))])
+        own = well.potential(r)
+        return np.array([r[np.argmin(own + HBAR**2 * x / (2 * well.mass) / r**2)] for x in squared])
 
-    def _wall(self, start: float) -> float:
-        if not self.field.walls:
-            return inf
+    def _ends(self, orbits: Orbits, top: FloatArray) -> tuple[FloatArray, FloatArray]:
+        """Where waves of energy `top` have died out on both sides, or 0 and the wall."""
+        inner, outer = orbits.turning(top[:, None])
+        low = self._died(orbits, top, inner * np.linspace(1, 0, 400)[:-1])
+        if self.well.wall < inf:
+            return np.nan_to_num(low, nan=0.0), np.full_like(low, self.well.wall)
+        high = self._died(orbits, top, outer * np.geomspace(1, 30, 4000))
+        return np.nan_to_num(low, nan=0.0), np.where(np.isnan(high), 30 * outer[:, 0], high)
 
-        def inside(r: float) -> bool:
-            point = {"r": np.array([r])}
-            return all(float(np.ravel(wall.evaluate(point))[0]) > 0 for wall in self.field.walls)
-
-        low, high = max(start, 1e-12), max(start, 1e-12)
-        while inside(high):
-            low, high = high, 2 * high
-            if high > 1e6:
-                return inf
-        for _ in range(200):
-            middle = (low + high) / 2
-            low, high = (middle, high) if inside(middle) else (low, middle)
-        return high
-
-    def _ends(self, orbit: Orbit, top: float) -> tuple[float, float]:
-        """Where a wave of energy `top` has died out on both sides, or 0 and the wall."""
-        inner, outer = (float(r[0]) for r in orbit.turning(np.array([top])))
-        low = _died(orbit, top, np.linspace(inner, 0.0, 2000)[:-1])
-        high = self.wall if self.wall < inf else _died(orbit, top, outer * np.geomspace(1, 30, 20_000))
-        return (low or 0.0), (high or outer * 30)
+    def _died(self, orbits: Orbits, top: FloatArray, r: FloatArray) -> FloatArray:
+        """The first of the radii (rows, any) beyond which the wave has died out; nan where it has on none."""
+        excess = np.maximum(self.well.turned(r, orbits.squared[:, None]) - top[:, None], 0.0)
+        step = np.sqrt(2 * self.well.mass * excess[:, 1:]) * np.abs(np.diff(r, axis=1))
+        beyond = np.cumsum(step, axis=1) > DECAY * HBAR
+        first = r[np.arange(top.size), 1 + np.argmax(beyond, axis=1)]
+        return np.where(beyond.any(axis=1), first, np.nan)
 
 
 def radial_levels(field: Field, mass: float) -> Radial:
@@ -160,37 +159,33 @@ def radial_levels(field: Field, mass: float) -> Radial:
     return Radial(field, mass)
 
 
-def _died(orbit: Orbit, top: float, r: FloatArray) -> float | None:
-    excess = np.maximum(orbit.potential(r) - top, 0.0)
-    decay = np.cumsum(np.sqrt(2 * orbit.mass * excess[1:]) * np.abs(np.diff(r))) / HBAR
-    beyond = np.flatnonzero(decay > DECAY)
-    return float(r[1 + beyond[0]]) if beyond.size else None
+def _wall(field: Field, start: float) -> float:
+    if not field.walls:
+        return inf
+
+    def inside(r: float) -> bool:
+        point = {"r": np.array([r])}
+        return all(float(np.ravel(wall.evaluate(point))[0]) > 0 for wall in field.walls)
+
+    low, high = max(start, 1e-12), max(start, 1e-12)
+    while inside(high):
+        low, high = high, 2 * high
+        if high > 1e6:
+            return inf
+    for _ in range(200):
+        middle = (low + high) / 2
+        low, high = (middle, high) if inside(middle) else (low, middle)
+    return high
 
 
-def _energy(orbit: Orbit, number: float) -> float:
-    """The energy below which so many levels lie, to a few percent and not below it."""
-    low = float(orbit.potential(np.array([orbit.center]))[0])
-    row = np.asarray(1.5 ** np.arange(12), dtype=np.float64)
-    step = HBAR**2 / (orbit.mass * orbit.center**2) * row
+def _energies(orbits: Orbits, number: float) -> FloatArray:
+    """The energy of each row below which so many levels lie, to a percent and not below it."""
+    row = 1.2 ** np.arange(48.0)
+    step = HBAR**2 / (orbits.well.mass * orbits.center**2)[:, None] * row
     while True:
-        counted = orbit.volume(low + step)
-        if counted[-1] >= number:
-            return low + 1.02 * float(np.exp(np.interp(np.log(number), np.log(counted), np.log(step))))
-        step = step[-1] * row
-
-
-def _angular() -> Iterator[tuple[int, float]]:
-    """Angular momenta with weights: the sum of (2 l + 1) f(l) over all l > 0, f a polynomial on each panel."""
-    for angular in range(1, ALL):
-        yield angular, 2.0 * angular + 1
-    start = ALL
-    for _ in count():
-        stop = int(start * RATIO)
-        place = (1 - np.cos(np.pi * (np.arange(NODES) + 0.5) / NODES)) / 2
-        nodes = np.unique(np.rint(start + place * (stop - 1 - start)).astype(int))
-        every = np.arange(start, stop)
-        for node in nodes.tolist():
-            others = nodes[nodes != node]
-            share = np.prod((every[:, None] - others) / (node - others), axis=1)
-            yield node, float(((2 * every + 1) * share).sum())
-        start = stop
+        counted = orbits.count(orbits.floor[:, None] + step)
+        if np.all(counted[:, -1] >= number):
+            break
+        step = step * row[-1]
+    logs = [np.interp(np.log(number), np.log(n), np.log(s)) for n, s in zip(counted, step, strict=True)]
+    return np.asarray(orbits.floor + 1.005 * np.exp(np.array(logs)))

@@ -22,8 +22,15 @@ class Ring:
     """gap n^2, n = 0, +-1, +-2, ...: gap = (2 pi hbar/L)^2/2m in J."""
 
     gap: float
-    error: float = 1e-14
     lowest: float = 0.0
+
+    def error_at(self, kT: float) -> float:  # noqa: ARG002 - none of it comes from the temperature
+        """See `Direction`."""
+        return 1e-14
+
+    def below(self, energy: float) -> float:
+        """See `Direction`."""
+        return float(2 * np.sqrt(energy / self.gap))
 
     def sums(self, beta: NDArray[np.inexact], kT: float) -> Sums:  # noqa: ARG002
         """See `Direction`: one by one where few count, else by Poisson's sum (DLMF 20.7.32)."""
