@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from contextlib import contextmanager
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 import click
 
@@ -15,7 +15,7 @@ if TYPE_CHECKING:
 
 __all__ = ["ClusterError", "cluster_at", "is_of_cluster"]
 
-_PATIENCE = 20.0  # seconds in which a scheduler answers
+_PATIENCE = 5.0  # seconds in which a scheduler answers
 
 
 class ClusterError(EoscoreError, RuntimeError):
@@ -46,13 +46,39 @@ def cluster_at(address: str | None) -> Iterator[Executor | None]:
         from distributed import Client
     except ImportError:
         raise MissingExtraError("dask.distributed", "cluster") from None
-    try:
-        client = Client(address, timeout=_PATIENCE, set_as_default=False)
-    except (OSError, ValueError, TypeError) as fault:
-        message = f"no scheduler answers at {address!r} ({fault})."
-        raise click.BadParameter(message, param_hint="--cluster") from None
-    with client:
+    about = _scheduler_at(address)
+    with Client(address, timeout=_PATIENCE, set_as_default=False) as client:
+        if not about["workers"]:
+            click.echo(f"eoscore: the scheduler at {address} has no workers yet; waiting for one", err=True)
         yield client.get_executor()
+
+
+def _scheduler_at(address: str) -> dict[str, Any]:
+    """What the scheduler tells about itself: a client would go on knocking at a wrong address for long."""
+    import asyncio
+
+    from distributed.core import rpc
+    from distributed.security import Security
+
+    async def ask() -> dict[str, Any]:
+        how = Security().get_connection_args("client")
+        async with rpc(address, timeout=_PATIENCE, connection_args=how) as scheduler:
+            about: dict[str, Any] = await scheduler.identity()
+            return about
+
+    try:
+        return asyncio.run(asyncio.wait_for(ask(), _PATIENCE))
+    except TimeoutError:
+        reason = f"waited for {_PATIENCE:g} s"
+    except MemoryError:  # dask takes the first bytes of any answer for a length
+        reason = "what answers there is no scheduler"
+    except Exception as fault:  # noqa: BLE001  whoever listens there may answer with anything
+        reason = str(fault) or type(fault).__name__
+    message = (
+        f"no scheduler answers at {address!r} ({reason}); `dask scheduler` starts one and tells its address, such "
+        "as tcp://10.0.0.7:8786."
+    )
+    raise click.BadParameter(message, param_hint="--cluster")
 
 
 def is_of_cluster(fault: Exception) -> bool:
