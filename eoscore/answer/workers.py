@@ -7,11 +7,14 @@ import os
 import signal
 import threading
 from concurrent.futures import ProcessPoolExecutor
+from contextlib import contextmanager
+from multiprocessing import resource_tracker
 from typing import TYPE_CHECKING, Self
 
 from eoscore.errors import EoscoreError
 
 if TYPE_CHECKING:
+    from collections.abc import Iterator
     from types import TracebackType
 
 __all__ = ["Crew", "WorkersLostError"]
@@ -48,6 +51,9 @@ class Crew:
         if self._executor is None:
             context = multiprocessing.get_context("spawn")
             self._executor = ProcessPoolExecutor(self.count, context, _begin)
+            with _interrupts_held_back():
+                for _ in range(self.count):  # each starts one
+                    self._executor.submit(os.getpid)
         return self._executor
 
     def replace(self, *, useful: bool) -> None:
@@ -79,6 +85,20 @@ class Crew:
         if kind is None and self._executor is not None:
             self._executor.shutdown()
         self._leave()
+
+
+@contextmanager
+def _interrupts_held_back() -> Iterator[None]:
+    """Processes that are started here leave Ctrl-C to this one from their first moment; it comes through afterwards."""
+    if not hasattr(signal, "pthread_sigmask"):  # not on Windows
+        yield
+        return
+    resource_tracker.ensure_running()  # it would let them through again when it starts
+    before = signal.pthread_sigmask(signal.SIG_BLOCK, {signal.SIGINT})
+    try:
+        yield
+    finally:
+        signal.pthread_sigmask(signal.SIG_SETMASK, before)
 
 
 def _begin() -> None:

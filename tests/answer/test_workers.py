@@ -50,6 +50,14 @@ def test_a_worker_that_is_killed_is_replaced(whole):
     same(whole, answer)
 
 
+def test_a_worker_leaves_ctrl_c_to_its_parent_from_its_first_moment():
+    with Crew(2) as crew:
+        executor, children = crew.executor, multiprocessing.active_children()
+        for child in children:
+            os.kill(child.pid, signal.SIGINT)
+        assert executor.submit(os.getpid).result(timeout=60) in {child.pid for child in children}
+
+
 def test_workers_that_always_die_are_told():
     crew = Crew(2)
     crew.replace(useful=True)
