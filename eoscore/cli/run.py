@@ -137,6 +137,10 @@ def _report(text: Text, asked: Asked, kept: Kept) -> Report:
         lab = text.lab(asked.settings, asked.sample)
     except TarnError as fault:
         return Report(text.name, complaints=fault.complaints)
+    if asked.plot is not None:
+        from eoscore.show.plotting import require_drawable
+
+        require_drawable(text.name, lab.program.questions)
     with grid_run(lab, asked, kept) as run:
         for index, question in enumerate(lab.program.questions):
             try:

@@ -14,11 +14,13 @@ from eoscore.show.dataset import MissingExtraError
 from eoscore.show.saving import appearing
 
 if TYPE_CHECKING:
+    from collections.abc import Iterable
     from pathlib import Path
 
     from eoscore.answer.record import FoundAnswer, Report
+    from eoscore.language.question import Question
 
-__all__ = ["NothingToDrawError", "draw", "undrawable"]
+__all__ = ["NothingToDrawError", "draw", "require_drawable", "undrawable"]
 
 FORMATS = (".png", ".svg", ".pdf")
 
@@ -45,6 +47,18 @@ def undrawable(target: Path) -> str | None:
     if not os.access(target if target.exists() else target.parent, os.W_OK):
         return f"{target} may not be written"
     return None
+
+
+def require_drawable(file: str, questions: Iterable[Question]) -> None:
+    """Look at the questions of a file before anything is computed.
+
+    Raises
+    ------
+    NothingToDrawError
+        Where none can be drawn.
+    """
+    if not any(question.verb == "find" and 1 <= len(question.over) <= 2 for question in questions):
+        raise NothingToDrawError(file)
 
 
 def draw(report: Report, target: Path) -> tuple[Path, ...]:

@@ -77,10 +77,10 @@ def interrupted(folder, monkeypatch, capsys):
     return capsys.readouterr().err
 
 
-@pytest.mark.parametrize("seed", range(4))
-def test_a_run_that_is_killed_goes_on_to_the_same_bits(folder, reference, seed):
+@pytest.mark.parametrize(("seed", "workers"), [(0, ()), (3, ("--workers", "2"))])
+def test_a_run_that_is_killed_goes_on_to_the_same_bits(folder, reference, seed, workers):
+    """With processes of its own; `test_killed_runs.py` kills more often, and cheaply."""
     whole, seconds = reference
-    workers = ("--workers", "2") if seed == 3 else ()
     killed(folder, np.random.default_rng(seed).uniform(0.3, 1.1) * seconds, *workers)
     assert finish(folder)[0] == whole
 
@@ -110,3 +110,13 @@ def test_a_full_disk_is_told_and_room_lets_the_run_go_on(folder, reference):
 def test_chunks_of_another_question_are_not_used(folder):
     (folder / "scan.tarn").write_text(TEXT.replace("450)", "20)"))
     assert "they are not used" in finish(folder)[1]
+
+
+def test_what_cannot_be_drawn_is_told_before_anything_is_computed(folder, capsys, monkeypatch):
+    (folder / "scan.tarn").write_text(TEXT.replace("over N", "over f = [90 Hz, 100 Hz], N"))
+    monkeypatch.chdir(folder)
+    monkeypatch.setattr(sys, "argv", ["eoscore", *COMMAND[3:], "scan.nc", "--plot", "scan.png"])
+    with pytest.raises(SystemExit, match="1"):
+        main()
+    assert "nothing to draw" in capsys.readouterr().err
+    assert [path.name for path in folder.iterdir()] == ["scan.tarn"]
