@@ -9,7 +9,7 @@ import sympy as sp
 from eoscore.symbolic.critical import number_of, root
 from eoscore.symbolic.evaluate import number
 from eoscore.symbolic.quantities import K_B, NUMBER, TEMPERATURE
-from eoscore.symbolic.writing import forms, missing_words, plain, where, written_name
+from eoscore.symbolic.writing import forms, missing_words, root_forms, where, written_name
 
 if TYPE_CHECKING:
     from collections.abc import Callable, Mapping, Sequence
@@ -34,9 +34,9 @@ def implicit(
     values = {**values, number_symbol: values[NUMBER]} if NUMBER in values else dict(values)
     used = (count.free_symbols | {number_symbol}) - {TEMPERATURE}
     known = {s: v for s, v in values.items() if s in used}
-    equation = forms("T_c", count - number_symbol)
+    equation = root_forms("T_c", count, number_symbol)
     entry = {**equation, "closed": False, "equation": equation["sympy"], "where": where(known.items())}
-    entry |= {"text": f"T_c solves {plain(count)} = {number_symbol}", "value": None, "unit": "K"}
+    entry |= {"value": None, "unit": "K"}
     entry["why"] = missing_words(used - set(known))
     here: dict[sp.Symbol, float] | None = None
     if entry["why"] is None:

@@ -7,12 +7,13 @@ from typing import TYPE_CHECKING, Any
 
 import sympy as sp
 
+from eoscore.symbolic.presentation import presentation
 from eoscore.symbolic.scaled import written_out
 
 if TYPE_CHECKING:
     from collections.abc import Iterable
 
-__all__ = ["forms", "gathered", "missing_words", "plain", "tidy", "where", "written_name"]
+__all__ = ["forms", "gathered", "missing_words", "plain", "root_forms", "tidy", "where", "written_name"]
 
 # Words of SymPy that a formula may hold, or that its reader puts in: no symbol of a file may shadow them.
 _WORDS = frozenset(
@@ -93,11 +94,24 @@ def forms(name: str, expression: sp.Expr) -> dict[str, Any]:
     written = gathered(_renamed(written_out(expression)))
     equation = sp.Eq(sp.Symbol(name), written, evaluate=False)
     return {
+        **_forms(equation),
         "sympy": sp.sstr(written, full_prec=True),
-        "latex": sp.latex(equation),
         "text": f"{name} = {plain(written)}",
-        "mathml": sp.mathml(equation, printer="presentation").replace("<mi>hbar</mi>", "<mi>&#x210F;</mi>"),
     }
+
+
+def root_forms(name: str, count: sp.Expr, total: sp.Symbol) -> dict[str, Any]:
+    """The same of the equation count = total that `name` solves; its SymPy text is zero at the root."""
+    written = gathered(_renamed(written_out(count)))
+    return {
+        **_forms(sp.Eq(written, _renamed(total), evaluate=False)),
+        "sympy": sp.sstr(gathered(_renamed(written_out(count - total))), full_prec=True),
+        "text": f"{name} solves {plain(count)} = {plain(total)}",
+    }
+
+
+def _forms(equation: sp.Eq) -> dict[str, Any]:
+    return {"latex": sp.latex(equation).replace("DeltaC", r"\Delta C"), "mathml": presentation(equation)}
 
 
 def plain(expression: sp.Expr) -> str:

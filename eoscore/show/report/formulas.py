@@ -2,11 +2,11 @@
 
 from __future__ import annotations
 
-from html.entities import html5
 from typing import TYPE_CHECKING, Any
 
-from eoscore.show.prefix import quantity
-from eoscore.show.report.markup import Markup, element, listed, together
+from eoscore.show.prefix import quantity, written
+from eoscore.show.report.markup import Markup, element, table, together
+from eoscore.show.report.raised import raised
 
 if TYPE_CHECKING:
     from collections.abc import Iterator, Mapping
@@ -41,16 +41,23 @@ def _formula(name: str, formula: Mapping[str, Any]) -> Iterator[Markup]:
     if "side" in formula:
         yield element("p", f"for {formula['side']}")
     if value is not None:
-        yield element("p", element("code", name), " = ", element("b", quantity(value, unit)))
+        yield element("p", element("code", name), " = ", element("b", raised(quantity(value, unit))))
+    if where := formula.get("where"):
+        shown = ", ".join(f"{symbol} = {written(number)}" for symbol, number in where.items())
+        yield element("p", f"where, in SI units, {shown}", class_="text")
     if "scale" in formula:
         yield together(element("p", "with"), _math(formula["scale"]))
     for expansion in formula.get("expansions", ()):
         yield from _expansion(expansion, unit)
     if "jump" in formula:
         yield together(element("p", "Heat capacity jump at T_c:"), _math(formula["jump"]))
+    for term in formula.get("first_order", {}).values():
+        words = f"Beyond the ideal, infinite gas, relative: {term['value']:.4g}, by"
+        yield together(element("p", words), _math(term))
     if slopes := formula.get("sensitivities"):
-        shown = (f"d ln T_c / d ln {symbol} = {_slope(slope)}" for symbol, slope in slopes.items())
-        yield element("details", element("summary", "Sensitivities"), listed(shown))
+        rows = ((element("code", symbol), _slope(slope)) for symbol, slope in slopes.items())
+        yield element("p", "Sensitivities: by how many per cent T_c moves when a symbol moves by one")
+        yield table(f"Sensitivities of {name}", ("symbol", "d ln T_c / d ln symbol"), rows)
 
 
 def _expansion(expansion: Mapping[str, Any], unit: str) -> Iterator[Markup]:
@@ -67,16 +74,8 @@ def _math(formula: Mapping[str, Any]) -> Markup:
     """The formula as a block of MathML; it scrolls by itself where it is too wide."""
     if "mathml" not in formula:
         return element("p", element("code", formula["text"]))
-    inner = Markup(_letters(formula["mathml"]))
-    block = element("math", inner, display="block", alttext=formula["text"])
-    return element("div", block, class_="wide", tabindex="0", role="region", aria_label=formula["text"])
-
-
-def _letters(mathml: str) -> str:
-    """Named letters as themselves, so that the page is well-formed XML too."""
-    for name in ("InvisibleTimes;", "pi;", "ApplyFunction;", "int;", "Sum;", "infin;", "dd;"):
-        mathml = mathml.replace(f"&{name}", html5[name])
-    return mathml
+    block = element("math", Markup(formula["mathml"]), displaystyle="true", alttext=formula["text"])
+    return element("div", block, class_="wide", tabindex="0", role="group", aria_label=formula["text"])
 
 
 def _slope(slope: str | float) -> str:
