@@ -20,7 +20,7 @@ if TYPE_CHECKING:
 
     from eoscore.answer.record import Finding, FoundAnswer
 
-__all__ = ["figure_of", "write_figure"]
+__all__ = ["as_map", "figure_of", "write_figure"]
 
 _FAMILY = 6  # values of one name that are drawn as lines of their own rather than as a map
 _LOOK: Any = {
@@ -49,22 +49,31 @@ def write_figure(answer: FoundAnswer, path: Path, kind: str) -> None:
         figure_of(answer).savefig(path, format=kind, metadata=undated.get(kind))
 
 
-def figure_of(answer: FoundAnswer) -> Figure:
-    """The figure of a question over one or two names; points without an answer stay blank, with the reason below."""
+def figure_of(answer: FoundAnswer, *, bare: bool = False) -> Figure:
+    """The figure of a question over one or two names; points without an answer stay blank, with the reason below.
+
+    A `bare` figure has neither the question above nor the words below, which then stand beside it.
+    """
     names = list(answer.found)
-    as_map = len(answer.over) == 2 and min(values.size for values in answer.over.values()) > _FAMILY
+    mapped = as_map(answer)
     with rc_context(_LOOK):
-        figure = Figure(figsize=(5.2, 0.9 + 2.5 * len(names)), layout="constrained")
+        figure = Figure(figsize=(5.2, (0.5 if bare else 0.9) + 2.5 * len(names)), layout="constrained")
         panels = figure.subplots(len(names), 1, squeeze=False, sharex=True)[:, 0]
         for axes, name in zip(panels, names, strict=True):
-            _draw(axes, answer, name, as_map=as_map)
+            _draw(axes, answer, name, as_map=mapped)
         for axes in panels[:-1]:
             axes.set_xlabel("")
-        figure.suptitle(fill(answer.question, 84), fontsize=8.5, color="0.1")
-        if notes := _notes(answer, as_map=as_map):
+        if not bare:
+            figure.suptitle(fill(answer.question, 84), fontsize=8.5, color="0.1")
+        if not bare and (notes := _notes(answer, as_map=mapped)):
             figure.supxlabel(notes, fontsize=7.5, color="0.3", x=0.02, ha="left")
         figure.draw_without_rendering()  # with the look in force: texts are laid out now
     return figure
+
+
+def as_map(answer: FoundAnswer) -> bool:
+    """Whether a grid is drawn as a map: over two names of many values each."""
+    return len(answer.over) == 2 and min(values.size for values in answer.over.values()) > _FAMILY
 
 
 def _draw(axes: Axes, answer: FoundAnswer, name: str, *, as_map: bool) -> None:

@@ -6,6 +6,8 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from eoscore.show.factors import mark_factors
+
 if TYPE_CHECKING:
     from collections.abc import Iterator, Sequence
 
@@ -43,6 +45,9 @@ def draw_lines(axes: Axes, over: Sequence[Scale], value: Scale, sigma: NDArray[n
     axes.set_axisbelow(True)
     axes.spines[["top", "right"]].set_visible(False)
     axes.margins(x=0.02)
+    for axis, scale in ((axes.xaxis, x), (axes.yaxis, value)):
+        if scale.logarithmic:
+            mark_factors(axis)
     if many:
         axes.legend(frameon=False, fontsize=7.5, handlelength=3.2)
 

@@ -8,6 +8,8 @@ import numpy as np
 from matplotlib.colors import LogNorm, Normalize
 from matplotlib.ticker import Locator, LogLocator, MaxNLocator
 
+from eoscore.show.factors import mark_factors
+
 if TYPE_CHECKING:
     from collections.abc import Sequence
 
@@ -35,6 +37,9 @@ def draw_map(axes: Axes, over: Sequence[Scale], value: Scale) -> None:
     axes.set_yscale("log" if up.logarithmic else "linear")
     axes.set_xlabel(along.label)
     axes.set_ylabel(up.label)
+    for axis, scale in ((axes.xaxis, along), (axes.yaxis, up)):
+        if scale.logarithmic:
+            mark_factors(axis)
     levels = _levels(table, logarithmic=value.logarithmic)
     if levels.size:
         _contours(axes, along, up, table, levels)

@@ -58,7 +58,8 @@ class Scale:
     def text(self, value: float) -> str:
         """A number of this scale with its unit, such as `N = 1e5` or `P = 0.6 W`."""
         if self.unit.startswith("10^") or self.unit == "1":
-            return f"{self.name} = {written(value * self.factor)}"
+            rest = self.unit.partition(" ")[2]
+            return f"{self.name} = {written(value * self.factor)} {rest}".rstrip()
         return f"{self.name} = {written(value)} {self.unit}"
 
 

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from importlib.resources import files
+from pathlib import PurePath
 from typing import TYPE_CHECKING
 
 from eoscore.show.report.answers import answer_sections, hardware_cautions
@@ -35,6 +36,11 @@ class Input:
     accuracy: float = 1e-6
 
     @property
+    def file(self) -> str:
+        """The name without its folder, which tells whoever gets the page about a disk they do not have."""
+        return PurePath(self.name).name
+
+    @property
     def text(self) -> str:
         """The characters of the text."""
         return self.content.decode("utf-8-sig", "replace")
@@ -43,13 +49,13 @@ class Input:
     def title(self) -> str:
         """The comment that opens the text, else the name of the file."""
         first = self.text.split("\n", 1)[0].strip()
-        return first.lstrip("# ") if first.startswith("#") and first.strip("# ") else self.name
+        return first.lstrip("# ") if first.startswith("#") and first.strip("# ") else self.file
 
 
 def report_page(source: Input, lab: Lab, report: Report) -> str:
     """The page as HTML; it holds its style and its pictures, and asks the network for nothing."""
     gallery = Gallery()
-    about = list(subjects(lab))
+    about = list(subjects(lab, report.answers))
     sections = [
         ("answers", "Answers", together(*answer_sections(report, gallery))),
         ("traps", "The trap and the cloud", _pictures(about, gallery, trap_pictures)),
@@ -59,7 +65,7 @@ def report_page(source: Input, lab: Lab, report: Report) -> str:
     ]
     shown = [(name, title, body) for name, title, body in sections if body]
     main = element("main", hardware_cautions(report), *(_section(*each) for each in shown), id="main")
-    top = element("header", element("h1", source.title), element("p", source.name), _contents(shown))
+    top = element("header", element("h1", source.title), element("p", source.file), _contents(shown))
     skip = element("a", "Skip to the answers", href="#answers", class_="skip")
     body = element("body", skip, top, main)
     return f'<!DOCTYPE html>\n<html lang="en">{_head(source)}{body}</html>\n'
@@ -109,4 +115,4 @@ def _lines(report: Report) -> dict[int, int]:
 
 
 def _provenance(source: Input) -> Markup:
-    return provenance(source.name, source.content, source.settings, source.accuracy)
+    return provenance(source.file, source.content, source.settings, source.accuracy)

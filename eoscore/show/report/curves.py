@@ -8,9 +8,11 @@ import numpy as np
 
 from eoscore.constants import K_B
 from eoscore.errors import EoscoreError
+from eoscore.show.factors import mark_factors
 from eoscore.show.prefix import quantity, written
 from eoscore.show.report.axis import temperature
 from eoscore.show.report.picture import BLUE, INK, ORANGE
+from eoscore.show.report.raised import raised
 
 if TYPE_CHECKING:
     from collections.abc import Iterator
@@ -25,6 +27,7 @@ if TYPE_CHECKING:
 __all__ = ["curve_pictures"]
 
 _POINTS = 81
+_SIDE = 1e-9  # how close to T_c, relative, its two sides are looked at
 
 
 def curve_pictures(subject: Subject, gallery: Gallery) -> Iterator[Markup]:
@@ -41,7 +44,7 @@ def curve_pictures(subject: Subject, gallery: Gallery) -> Iterator[Markup]:
     if subject.number is None:
         return
     number = np.asarray(subject.given[subject.number])
-    around = np.linspace(0.04, 1.8, _POINTS) * middle
+    around = _around(middle, subject.critical)
     for name, unit in (("f_0", "1"), ("C_N", "k_B per particle")):
         values = _read(subject, name, T=around, **{subject.number: number})
         if values is not None and np.any(values > 0.0):
@@ -58,8 +61,15 @@ def curve_pictures(subject: Subject, gallery: Gallery) -> Iterator[Markup]:
             yield gallery.draw(title, words, _Curve(subject, around, values / scale, name, unit))
 
 
+def _around(middle: float, critical: float | None) -> NDArray[np.float64]:
+    """Temperatures in K about one; both sides of T_c among them, for what jumps there."""
+    even = np.linspace(0.04, 1.8, _POINTS) * middle
+    sides = np.array([]) if critical is None else critical * np.array([1.0 - _SIDE, 1.0 + _SIDE])
+    return np.sort(np.concatenate([even[np.abs(even / middle - 1.0) > _SIDE], sides]))
+
+
 def _of(subject: Subject) -> str:
-    return f" m^-{subject.held.dimension}" if subject.number == "n" and subject.held else ""
+    return raised(f" m^-{subject.held.dimension}") if subject.number == "n" and subject.held else ""
 
 
 def _marks(subject: Subject) -> str:
@@ -108,6 +118,7 @@ class _Critical:
         if self.subject.number is not None and self.subject.temperature is not None:
             at = (self.subject.temperature / step, self.subject.given[self.subject.number])
             axes.plot(*at, "o", color=ORANGE, markeredgecolor=INK, markersize=8)
+        mark_factors(axes.xaxis)
         axes.set_xlabel(label)
         axes.set_ylabel(self.label)
 

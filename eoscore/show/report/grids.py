@@ -6,8 +6,9 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from eoscore.show.figure import figure_of
+from eoscore.show.figure import as_map, figure_of
 from eoscore.show.prefix import quantity
+from eoscore.show.report.raised import raised
 
 if TYPE_CHECKING:
     from collections.abc import Iterator
@@ -23,7 +24,7 @@ def grid_picture(answer: FoundAnswer, gallery: Gallery) -> Markup:
     """Every quantity over the names of the grid; the words tell the range of each."""
     over = " and ".join(answer.over)
     title = f"{', '.join(answer.found)} over {over}"
-    return gallery.show(figure_of(answer), title, " ".join(_words(answer)))
+    return gallery.show(figure_of(answer, bare=True), title, raised(" ".join(_words(answer))))
 
 
 def _words(answer: FoundAnswer) -> Iterator[str]:
@@ -32,7 +33,7 @@ def _words(answer: FoundAnswer) -> Iterator[str]:
         yield f"{name} runs from {quantity(float(values[0]), unit)} to {quantity(float(values[-1]), unit)}."
     for name, finding in answer.found.items():
         yield _range(name, finding)
-    if any(finding.sigma is not None for finding in answer.found.values()):
+    if not as_map(answer) and any(finding.sigma is not None for finding in answer.found.values()):
         yield "Bands: one standard deviation carried from the input."
 
 
@@ -41,4 +42,6 @@ def _range(name: str, finding: Finding) -> str:
     if not known.size:
         return f"{name} has no value."
     low, high = (quantity(float(edge), finding.unit) for edge in (known.min(), known.max()))
+    if low == high:
+        return f"{name} is {low} throughout."
     return f"{name} lies between {low} and {high}."

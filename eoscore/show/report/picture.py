@@ -17,15 +17,24 @@ if TYPE_CHECKING:
 
     from matplotlib.axes import Axes
 
-__all__ = ["BLUE", "INK", "ORANGE", "Gallery"]
+__all__ = ["BLUE", "INK", "ORANGE", "SHAPE", "WALL", "Gallery", "second_scale"]
 
 # Okabe and Ito's colours, told apart by colour-blind readers; dashes and marks tell them apart in grey.
 INK, BLUE, ORANGE = "#111111", "#0072B2", "#D55E00"
+WALL: dict[str, Any] = {"facecolor": "none", "edgecolor": "#888888", "hatch": "////", "linewidth": 0.0}
 _SIZE = (4.2, 3.1)  # inches; scaled with the page
+# The same for every picture: to find margins for each costs as much as to draw it.
+_MARGINS = {"left": 0.18, "right": 0.97, "bottom": 0.165, "top": 0.96}
+_BESIDE = 0.85  # the right one, where a second scale stands there
+SHAPE = (
+    _SIZE[0] * (_MARGINS["right"] - _MARGINS["left"]) / (_SIZE[1] * (_MARGINS["top"] - _MARGINS["bottom"]))
+)
 _LOOK: dict[Any, Any] = {
     "font.family": "sans-serif",
     "font.size": 10.0,
     "axes.spines.top": False,
+    "axes.spines.right": False,
+    "hatch.color": "#888888",
     "axes.edgecolor": "#444444",
     "axes.labelcolor": INK,
     "text.color": INK,
@@ -46,7 +55,8 @@ class Gallery:
     def draw(self, title: str, words: str, paint: Callable[[Axes], None]) -> Markup:
         """One panel that `paint` fills; `words` tell in the caption what is to be seen."""
         with rc_context(_LOOK):
-            figure = Figure(figsize=_SIZE, layout="constrained")
+            figure = Figure(figsize=_SIZE)
+            figure.subplots_adjust(**_MARGINS)
             paint(figure.subplots())
             return self.show(figure, title, words)
 
@@ -56,6 +66,16 @@ class Gallery:
         figure.savefig(stream, format="svg", transparent=True, metadata={"Date": None, "Creator": None})
         svg = _inline(stream.getvalue(), f"p{next(self._number)}", title)
         return element("figure", Markup(svg), element("figcaption", element("b", title), ". ", words))
+
+
+def second_scale(axes: Axes) -> Axes:
+    """Axes with a scale on the right, painted behind the given ones."""
+    axes.figure.subplots_adjust(right=_BESIDE)
+    beside = axes.twinx()
+    beside.spines["right"].set_visible(True)
+    axes.set_zorder(beside.get_zorder() + 1)
+    axes.patch.set_visible(False)
+    return beside
 
 
 def _inline(text: str, name: str, title: str) -> str:

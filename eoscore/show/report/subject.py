@@ -3,17 +3,20 @@
 from __future__ import annotations
 
 from dataclasses import dataclass, field
+from functools import cached_property
 from typing import TYPE_CHECKING
 
 import numpy as np
 
+from eoscore.answer.record import FoundAnswer
 from eoscore.errors import EoscoreError, NoAnswerError
 from eoscore.place import TrapPlace
 
 if TYPE_CHECKING:
-    from collections.abc import Iterator
+    from collections.abc import Iterator, Mapping, Sequence
 
     from eoscore.answer.lab import Lab
+    from eoscore.answer.record import Answer
     from eoscore.language.question import Question
     from eoscore.state import HeldGas, State
 
@@ -22,7 +25,10 @@ __all__ = ["Subject", "subjects"]
 
 @dataclass
 class Subject:
-    """A gas held in a place, or the reason why it is not; SI numbers of the first questions that give them."""
+    """A gas held in a place, or the reason why it is not; SI numbers of the first questions that give them.
+
+    A gas that is brought there from elsewhere has the temperature that was found.
+    """
 
     gas: str
     place: str | None
@@ -56,16 +62,17 @@ class Subject:
             return None
         return float(value) if value.ndim == 0 and np.isfinite(value) else None
 
-    @property
+    @cached_property
     def critical(self) -> float | None:
         """T_c in K of the number that is given."""
         return None if self.number is None else self.read("T_c", **{self.number: self.given[self.number]})
 
-    @property
+    @cached_property
     def temperature(self) -> float | None:
         """The temperature in play in K: the one given, else T_c."""
         return self.given.get("T") or self.critical
 
+    @cached_property
     def state(self) -> State | None:
         """The state whose cloud is drawn: of the number at the temperature in play."""
         if self.held is None or self.number is None or self.temperature is None:
@@ -76,30 +83,38 @@ class Subject:
             return None
 
 
-def subjects(lab: Lab) -> Iterator[Subject]:
-    """Every pair of a gas and a place that a question asks about, in their order."""
-    groups: dict[tuple[str, str | None], list[Question]] = {}
-    for question in lab.program.questions:
-        groups.setdefault((question.gas, question.place), []).append(question)
-    for (gas, place), questions in groups.items():
-        yield _subject(lab, gas, place, questions)
+def subjects(lab: Lab, answers: Sequence[Answer]) -> Iterator[Subject]:
+    """Every pair of a gas and a place that a question asks about, in their order; `answers` are those of the lab."""
+    groups: dict[tuple[str, str | None], list[tuple[Question, Answer]]] = {}
+    for question, answer in zip(lab.program.questions, answers, strict=True):
+        groups.setdefault((question.gas, question.place), []).append((question, answer))
+    for (gas, place), asked in groups.items():
+        yield _subject(lab, gas, place, asked)
 
 
-def _subject(lab: Lab, gas: str, place: str | None, questions: list[Question]) -> Subject:
-    first = questions[0]
+def _subject(lab: Lab, gas: str, place: str | None, asked: list[tuple[Question, Answer]]) -> Subject:
+    first = asked[0][0]
     binding = lab.program.bind(gas, place, lab.program.conditions(first).values)
     try:
         held = lab.held.of(binding, first.dimension)
     except NoAnswerError as fault:
         return Subject(gas, place, None, fault.why)
     given: dict[str, float] = {}
-    for question in questions:
-        if question.origins:
-            continue
+    for question, answer in asked:
         told = dict(lab.program.conditions(question).given)
+        if question.origins:
+            told = _arrived(told, answer)
         for axis in question.over:
             if axis.thermodynamic:
                 told.setdefault(axis.name, float(axis.values[axis.points // 2]))
         for name, value in told.items():
             given.setdefault(name, value)
     return Subject(gas, place, held, given=given)
+
+
+def _arrived(given: Mapping[str, float], answer: Answer) -> dict[str, float]:
+    """The number, which a slow transfer keeps, and the temperature where it was found; nothing on a grid."""
+    found = answer.found.get("T") if isinstance(answer, FoundAnswer) and not answer.over else None
+    if found is None or "N" not in given or not np.isfinite(found.value).all():
+        return {}
+    return {"N": given["N"], "T": float(found.value)}

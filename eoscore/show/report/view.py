@@ -23,6 +23,7 @@ _STEPS = np.geomspace(1e-9, 1.0, 400)  # m: from the size of a molecule to that 
 _HOT = 60.0  # in a trap that is deeper in kT the cloud is shown closely as well
 _DEEPEST = 3000.0  # a trap that is deeper in kT is shown as far as the cloud reaches only
 _REACH = 7.0  # kT up to which a cloud is shown
+_BELOW = 0.999  # of the escape energy: the points of a picture may miss the ridge by so much
 _RADIAL = ("rho", "r")
 
 
@@ -41,6 +42,28 @@ class View:
     def at_bottom(self) -> dict[str, float]:
         """The bottom by coordinate."""
         return dict(zip(self.trap.field.coordinates, self.trap.r_min, strict=True))
+
+    def inside(self) -> dict[str, float]:
+        """The bottom by coordinate, moved off a wall on which it lies by next to nothing."""
+        bottom = self.at_bottom()
+        if all(float(wall.evaluate(bottom)) > 0 for wall in self.trap.field.walls):
+            return bottom
+        middle = {name: sum(ends) / 2 for name, ends in zip(bottom, self.ranges, strict=True)}
+        return {name: x + 1e-10 * (middle[name] - x) for name, x in bottom.items()}
+
+    def holds(self, values: NDArray[np.float64], at: tuple[int, ...]) -> NDArray[np.bool_]:
+        """Where a cut or a map of V - V_min in J belongs to the trap, `at` being the place of the bottom in it.
+
+        Stretches below the escape energy that run off the picture without the bottom lie beyond a pass.
+        """
+        if self.trap.top == inf:
+            return np.isfinite(values)
+        from scipy.ndimage import label
+
+        names, _ = label(values < _BELOW * self.trap.top)
+        ends = [np.take(names, (0, -1), axis=axis).ravel() for axis in range(names.ndim)]
+        outside = np.setdiff1d(np.concatenate(ends), [names[at]])
+        return np.asarray((names > 0) & ~np.isin(names, outside))
 
     def shows(self, position: tuple[float, ...]) -> bool:
         """Whether a point lies within the ranges."""
@@ -92,6 +115,10 @@ def _energies(trap: TrapPlace, positions: Mapping[str, ArrayLike]) -> NDArray[np
     given = {name: np.asarray(x, dtype=float) for name, x in positions.items()}
     shape = np.broadcast_shapes(*(x.shape for x in given.values()))
     values = np.broadcast_to(np.asarray(trap.field.formula.evaluate(given)) - trap.v_min, shape).copy()
+    bottom = dict(zip(trap.field.coordinates, trap.r_min, strict=True))
     for wall in trap.field.walls:
-        values[~(np.broadcast_to(np.asarray(wall.evaluate(given)), shape) > 0)] = np.nan
+        edge = min(
+            0.0, float(wall.evaluate(bottom))
+        )  # the bottom may lie on a wall, and belongs to the picture
+        values[~(np.broadcast_to(np.asarray(wall.evaluate(given)), shape) >= edge)] = np.nan
     return np.asarray(values)
