@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import re
 from hashlib import sha256
-from pathlib import Path
 from xml.etree import ElementTree as ET
 
 import pytest
@@ -127,65 +126,3 @@ def test_a_faulty_file_has_no_page(tmp_path):
     words = ["report", str(tmp_path / "a.tarn"), "--out", str(tmp_path / "a.html")]
     assert CliRunner().invoke(command, words, standalone_mode=False).return_value == 1
     assert not (tmp_path / "a.html").exists()
-
-
-# In a browser ------------------------------------------------------------------------------------------------
-
-CHROMIUM = Path("/usr/bin/chromium")
-FLAGS = [
-    "--headless",
-    "--no-sandbox",
-    "--disable-gpu",
-    "--disable-quic",
-    "--no-first-run",
-    "--disable-background-networking",
-    "--disable-component-update",
-    "--disable-sync",
-]
-
-
-@pytest.fixture(scope="module")
-def browser():
-    playwright = pytest.importorskip("playwright.sync_api", reason="playwright is not installed")
-    if not CHROMIUM.exists():
-        pytest.skip("there is no chromium at /usr/bin/chromium")
-    with playwright.sync_playwright() as driver:
-        browser = driver.chromium.launch(executable_path=str(CHROMIUM), args=FLAGS)
-        yield browser
-        browser.close()
-
-
-@pytest.mark.parametrize("scheme", ["light", "dark"])
-def test_the_page_opens_without_a_fault_and_passes_axe(browser, page, scheme):
-    heard = []
-    tab = browser.new_page(color_scheme=scheme)
-    tab.on("console", lambda message: heard.append(message.text))
-    tab.on("request", lambda request: heard.append(request.url))
-    tab.goto(page.as_uri())
-    assert heard == [page.as_uri()]
-    axe = pytest.importorskip("axe_playwright_python", reason="axe-core is not installed")
-    script = next(Path(axe.__file__).parent.rglob("axe.min.js"))
-    tab.evaluate(script.read_text())
-    assert [found["id"] for found in tab.evaluate("axe.run()")["violations"]] == []
-
-
-def test_a_narrow_page_at_double_size_does_not_scroll_sideways(browser, page):
-    tab = browser.new_page(viewport={"width": 640, "height": 800}, device_scale_factor=2)
-    tab.goto(page.as_uri())
-    assert tab.evaluate("document.documentElement.scrollWidth") <= 640
-
-
-def test_the_keyboard_reaches_every_link_and_fold(browser, page):
-    tab = browser.new_page()
-    tab.goto(page.as_uri())
-    wanted = tab.evaluate("document.querySelectorAll('a, summary, [tabindex=\"0\"]').length")
-    reached = set()
-    for _ in range(wanted + 2):
-        tab.keyboard.press("Tab")
-        script = (
-            "[...document.querySelectorAll('a, summary, [tabindex=\"0\"]')].indexOf(document.activeElement)"
-        )
-        reached.add(tab.evaluate(script))
-    assert len(reached - {-1}) >= wanted - tab.evaluate(
-        "document.querySelectorAll('details:not([open]) .wide').length"
-    )

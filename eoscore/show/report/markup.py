@@ -36,23 +36,26 @@ def listed(items: Iterable[str], **attributes: str) -> Markup:
     return element("ul", *points, **attributes) if points else Markup("")
 
 
+def _row(cells: list[str], width: int) -> Markup:
+    wide = {"colspan": str(width - len(cells) + 1)} if len(cells) < width else {}
+    head, *middle, last = cells
+    return element(
+        "tr",
+        element("th", head, scope="row"),
+        *(element("td", cell) for cell in middle),
+        element("td", last, **wide),
+    )
+
+
 def table(caption: str, heads: Iterable[str], rows: Iterable[Iterable[str]]) -> Markup:
     """A table with a caption for those who hear it; the first cell of a row is its head.
 
-    It scrolls by itself where it is too wide.
+    The last cell of a short row reaches to the end. The table scrolls by itself where it is too wide.
     """
-    head = element("tr", *(element("th", each, scope="col") for each in heads))
-    body = [
-        element(
-            "tr",
-            *(
-                element("th", cell, scope="row") if i == 0 else element("td", cell)
-                for i, cell in enumerate(row)
-            ),
-        )
-        for row in rows
-    ]
+    names = list(heads)
+    head = element("tr", *(element("th", each, scope="col") for each in names))
+    body = [_row(list(row), len(names)) for row in rows]
     whole = element(
         "table", element("caption", caption, class_="heard"), element("thead", head), element("tbody", *body)
     )
-    return element("div", whole, class_="wide", tabindex="0", role="region", aria_label=caption)
+    return element("div", whole, class_="wide", tabindex="0", role="group", aria_label=caption)

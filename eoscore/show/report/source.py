@@ -42,9 +42,7 @@ def source_listing(text: str, answers: Mapping[int, int]) -> Markup:
         lines.pop()
     rows = [_line(number, parts, answers.get(number)) for number, parts in enumerate(lines, 1)]
     listing = element("code", *rows)
-    return element(
-        "pre", listing, class_="wide source", tabindex="0", role="region", aria_label="Source text"
-    )
+    return element("pre", listing, class_="wide source", tabindex="0", role="group", aria_label="Source text")
 
 
 def _coloured(kind: _TokenType, part: str) -> str:
