@@ -122,15 +122,17 @@ class Finding:
 
     def worst(self) -> float:
         """The largest numerical error among the points that have a value, relative to it or to `scale`."""
-        known = np.isfinite(self.value)
-        value, error = np.abs(self.value[known]), self.error[known]
+        value, error = np.abs(self.value), self.error
+        scale = value if self.scale is None else np.fmax(value, self.scale)
+        known = np.isfinite(value)
+        if not known.all():
+            value, error, scale = value[known], error[known], scale[known]
         if not value.size or not error.any():
             return 0.0
-        scale = np.where(value > 0.0, value, value.max())
-        if self.scale is not None:
-            scale = np.fmax(scale, self.scale[known])
-        with np.errstate(divide="ignore"):
-            return float(np.max(error / scale, where=error > 0.0, initial=0.0))
+        if not scale.all():  # zero without a scale of its own is judged by the largest value
+            scale = np.where(scale > 0.0, scale, value.max())
+        with np.errstate(divide="ignore", invalid="ignore"):
+            return float(np.fmax.reduce((error / scale).reshape(-1), initial=0.0))
 
 
 @dataclass(frozen=True)
@@ -143,7 +145,7 @@ class Piece:
 
 @dataclass(frozen=True)
 class FoundAnswer:
-    """The answer to a `find`; `file` and `text` are where it was asked."""
+    """The answer to a `find`; `file` and `text` are where it was asked, `settings` what took the place of values."""
 
     line: int
     question: str
@@ -158,6 +160,7 @@ class FoundAnswer:
     verb: str = "find"
     file: str = "<text>"
     text: str = field(default="", repr=False)
+    settings: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True)

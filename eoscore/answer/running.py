@@ -7,13 +7,14 @@ last bit whoever answers them, and in whichever run.
 from __future__ import annotations
 
 from concurrent.futures import BrokenExecutor
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from typing import TYPE_CHECKING
 
 from eoscore.answer import asking
 from eoscore.answer.chunk import chunks_of
 from eoscore.answer.grid import Grid
 from eoscore.answer.joining import joined
+from eoscore.answer.record import FoundAnswer
 from eoscore.answer.sharing import shared
 
 if TYPE_CHECKING:
@@ -77,10 +78,15 @@ class Run:
         if index not in self.chunks:
             answer = asking.answer_to(self.program, question, accuracy, self.held, self.recipe.samples)
             self._tell(1)
-            return answer
+            return self._set(answer)
         cautions = self._answer_grid(index)
         pieces = {chunk: self._pieces.pop(chunk) for chunk in self.chunks[index]}
-        return asking.answer_from(question, joined(Grid(question.over).shape, pieces), cautions, accuracy)
+        piece = joined(Grid(question.over).shape, pieces)
+        return self._set(asking.answer_from(question, piece, cautions, accuracy))
+
+    def _set(self, answer: Answer) -> Answer:
+        """The answer with the settings that it was given under."""
+        return replace(answer, settings=self.recipe.settings) if isinstance(answer, FoundAnswer) else answer
 
     def _answer_grid(self, index: int) -> Sequence[Caution]:
         """Find the pieces of a grid that are missing, and its cautions."""

@@ -35,6 +35,8 @@ def dataset(answer: FoundAnswer) -> xarray.Dataset:
 
     Its attributes hold the file's name and text, the question and the version. Where a quantity has points without
     a value, `NAME_why` is 0 at points with one, else the number of the attribute `why_1`, `why_2`... with the words.
+    `NAME_error` is the absolute numerical error, `NAME_sigma` the standard deviation carried from the input, `NAME_low`
+    and `NAME_high` the ends of a sampled interval, with its attributes `coverage` and `samples`.
 
     Raises
     ------
@@ -61,7 +63,8 @@ def dataset(answer: FoundAnswer) -> xarray.Dataset:
         "text": answer.text,
     }
     given = {f"given_{name}": f"{value.value!r} {value.unit}" for name, value in answer.given.items()}
-    return xarray.Dataset(variables, coordinates, about | given)
+    settings = {f"set_{place}": setting for place, setting in enumerate(answer.settings, 1)}
+    return xarray.Dataset(variables, coordinates, about | given | settings)
 
 
 def write_netcdf(answer: FoundAnswer, path: Path) -> None:
@@ -91,6 +94,11 @@ def _variables(name: str, finding: Finding, axes: tuple[str, ...]) -> dict[str, 
     }
     if finding.sigma is not None:
         variables[f"{name}_sigma"] = (dims, finding.sigma, {"units": finding.unit})
+    if (interval := finding.interval) is not None:
+        sample = {"coverage": interval.coverage, "samples": interval.samples}
+        for end, values in (("low", interval.low), ("high", interval.high)):
+            variables[f"{name}_{end}"] = (dims, values, {"units": finding.unit} | sample)
+        variables[f"{name}_answered"] = (dims, interval.answered, {"units": "1"} | sample)
     if finding.reasons and axes:
         variables[f"{name}_why"] = (axes, *_reasons(finding, finding.value.shape[: len(axes)]))
     return variables

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from dataclasses import replace
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -16,7 +17,7 @@ if TYPE_CHECKING:
     from numpy.typing import NDArray
     from rich.table import Table
 
-    from eoscore.answer.record import FoundAnswer
+    from eoscore.answer.record import FoundAnswer, Interval
 
 __all__ = ["Column", "grid_columns", "grid_rows", "grid_table", "hidden_rows"]
 
@@ -24,12 +25,21 @@ _ROWS = 40  # more rows than this are cut in the middle
 
 
 class Column:
-    """One column of a grid in long form: a head, an SI unit and a number per point (nan for none)."""
+    """One column of a grid in long form: a head, an SI unit and a number per point (nan for none).
+
+    `sigma` is the standard deviation at every point, `interval` the sampled one, as flat as the values.
+    """
 
     def __init__(
-        self, name: str, unit: str, values: NDArray[np.float64], sigma: NDArray[np.float64] | None = None
+        self,
+        name: str,
+        unit: str,
+        values: NDArray[np.float64],
+        sigma: NDArray[np.float64] | None = None,
+        interval: Interval | None = None,
     ) -> None:
-        self.name, self.unit, self.values, self.sigma = name, unit, values, sigma
+        self.name, self.unit, self.values = name, unit, values
+        self.sigma, self.interval = sigma, interval
 
 
 def grid_columns(answer: FoundAnswer) -> Iterator[Column]:
@@ -44,7 +54,19 @@ def grid_columns(answer: FoundAnswer) -> Iterator[Column]:
         for entry in range(flat.shape[1]):
             label = name if finding.value.ndim == len(shape) else f"{name}_{entry + 1}"
             part = None if sigma is None else sigma[:, entry]
-            yield Column(label, finding.unit, flat[:, entry], part)
+            yield Column(
+                label, finding.unit, flat[:, entry], part, _flat(finding.interval, flat.shape, entry)
+            )
+
+
+def _flat(interval: Interval | None, shape: tuple[int, ...], entry: int) -> Interval | None:
+    """The sampled interval of one entry, a number per point."""
+    if interval is None:
+        return None
+    low, high, answered = (
+        each.reshape(shape)[:, entry] for each in (interval.low, interval.high, interval.answered)
+    )
+    return replace(interval, low=low, high=high, answered=answered)
 
 
 def grid_table(answer: FoundAnswer) -> Table:

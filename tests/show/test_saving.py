@@ -5,10 +5,12 @@ from __future__ import annotations
 import csv
 import json
 import math
+from dataclasses import replace
 
 import numpy as np
 import pytest
 
+from eoscore.answer.record import Interval
 from eoscore.show.dataset import dataset
 from eoscore.show.saving import appearing, save, unwritable
 
@@ -45,6 +47,22 @@ def test_csv_says_where_it_comes_from(tmp_path):
     assert head[0] == "# file: pancake.tarn, line 7"
     assert any("find T_c" in line for line in head)
     assert any("open" in line for line in head)
+
+
+def test_csv_and_netcdf_carry_what_was_sampled_and_set(tmp_path):
+    interval = Interval(*(np.array([x]) for x in (0.9e-7, 1.2e-7, 1.0)), samples=100, coverage=0.6827)
+    sampled = replace(finding([1e-7], sigma=[1e-8], error=1e-13), interval=interval)
+    told = answer({"T_c": sampled}, over={"P": [1]}, settings=("w = 3 um",))
+    (path,) = save(report(told), tmp_path / "scan.csv")
+    wanted = ("T_c (K)", "sigma T_c (K)", "low T_c (K)", "high T_c (K)", "answered T_c (1)")
+    assert [rows(path)[0][name] for name in wanted] == ["1e-07", "1e-08", "9e-08", "1.2e-07", "1.0"]
+    text = path.read_text()
+    assert "# T_c lies from low to high in 68.27% of 100 samples\n" in text
+    assert "# T_c has a relative numerical error of 1.0e-06 at most\n" in text
+    assert "# set from outside: w = 3 um\n" in text
+    data = dataset(told)
+    assert (data["T_c_low"].item(), data["T_c_high"].item()) == (0.9e-7, 1.2e-7)
+    assert (data["T_c_high"].attrs["samples"], data.attrs["set_1"]) == (100, "w = 3 um")
 
 
 def test_several_grids_give_several_files(tmp_path):
