@@ -17,7 +17,7 @@ __all__ = ["REACH", "Atoms", "Direction", "OnAtoms", "Oscillator", "Sums"]
 
 CHUNK = 400_000  # numbers made at a time
 REACH = 42.0  # kT: e^-42 is dropped
-ENOUGH = 3e-7  # relative error of a partition function that asks for no more known levels
+ENOUGH = 1e-6  # relative error of a partition function that asks for no more known levels
 SPARE = 1.25  # further, so that a search for a temperature does not begin again at each step
 
 
@@ -130,7 +130,7 @@ class OnAtoms(ABC):
         return fine
 
     def error_at(self, kT: float) -> float:
-        """See `Direction`: what two thirds of the known levels give differently."""
+        """See `Direction`: twice what fewer of the known levels give differently."""
         self.atoms(kT)
         return self._known + self._apart(kT)
 
@@ -138,7 +138,7 @@ class OnAtoms(ABC):
         upto, atoms = self._kept.get(coarse, (0.0, None))
         if atoms is None or upto < REACH * kT:
             upto = SPARE * REACH * kT
-            atoms = self.made(upto, self.levels * 2 // 3 if coarse else self.levels)
+            atoms = self.made(upto, self.levels * 13 // 16 if coarse else self.levels)
             self._kept[coarse] = upto, atoms
         return atoms
 
@@ -146,7 +146,7 @@ class OnAtoms(ABC):
         whole, other = (
             1 + float(np.exp(-e / kT) @ w) for e, w in (self._as_far(kT, coarse=c) for c in (False, True))
         )
-        return abs(other / whole - 1)
+        return 2 * abs(other / whole - 1)
 
     def sums(self, beta: NDArray[np.inexact], kT: float) -> Sums:
         """See `Direction`."""

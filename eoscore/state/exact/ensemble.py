@@ -61,6 +61,9 @@ class ExactLevels(Ensemble):
 
     def all_sums(self, alpha: FloatArray, kT: FloatArray) -> Sums:
         """See `Ensemble.all_sums`."""
+        for direction in self.directions:
+            if isinstance(direction, OnAtoms):
+                direction.atoms(float(kT.max()))  # so that it is not made again for each higher temperature
         columns = [self._point(a, t) for a, t in zip(alpha.tolist(), kT.tolist(), strict=True)]
         return Sums(*np.array(columns).T)
 

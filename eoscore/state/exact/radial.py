@@ -24,7 +24,7 @@ if TYPE_CHECKING:
 __all__ = ["Radial", "radial_levels"]
 
 LEVELS = 16  # found one by one for each angular momentum
-MOST = 64  # where these do not do
+MOST = 32  # where these do not do
 DECAY = 10.0  # e-foldings of the wave beyond its turning points
 ALL = 25  # angular momenta below are taken one by one; above, as an integral on panels that double
 NODES = 8
