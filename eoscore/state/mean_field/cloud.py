@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from functools import cached_property, lru_cache
 from math import inf
 from typing import TYPE_CHECKING
@@ -11,7 +11,7 @@ import numpy as np
 
 from eoscore.gas.truncated import bose_log_truncated, bose_truncated
 from eoscore.state.mean_field.fluid import FAR, ORDER, Fluid
-from eoscore.state.mean_field.panels import panels
+from eoscore.state.mean_field.panels import NODES, panels
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
@@ -55,11 +55,12 @@ class Setting:
 
 @dataclass(frozen=True)
 class Cloud:
-    """mu in J from the bottom; densities in m^-3."""
+    """mu in J from the bottom; densities in m^-3. order: of the rule on each panel of energies."""
 
     setting: Setting
     mu: float
     fluid: Fluid
+    order: int = field(default=NODES, kw_only=True)
 
     @property
     def edge(self) -> float:
@@ -73,7 +74,7 @@ class Cloud:
         """V in J and dOmega in m^3."""
         kT = self.fluid.kT
         sharp = min(self.fluid.G**2, 1.0) * kT * 0.5
-        return panels(self.setting.measure, self.edge, sharp, max(self.edge, 0.0) + REACH * kT)
+        return panels(self.setting.measure, self.edge, sharp, max(self.edge, 0.0) + REACH * kT, self.order)
 
     def split(self, v: FloatArray) -> tuple[FloatArray, NDArray[np.bool_]]:
         """y and whether there is a condensate, at energies V."""

@@ -11,6 +11,7 @@ from eoscore.constants import K_B
 from eoscore.errors import NoAnswerError
 from eoscore.state import saturation, shifts
 from eoscore.state.critical import saturated_kT
+from eoscore.state.mean_field.precision import ROUNDING, relative_error
 from eoscore.state.reading import Reason
 from eoscore.state.root import rising_root
 from eoscore.state.shifts import is_flat
@@ -24,7 +25,7 @@ if TYPE_CHECKING:
 __all__ = ["exponent", "number", "shift", "temperature"]
 
 ROUTE = "Hartree-Fock in local density"
-STEP = 1e-3
+STEP = 5e-4
 
 
 def temperature(state: MeanFieldState, unit: str) -> Reading:
@@ -44,24 +45,25 @@ def temperature(state: MeanFieldState, unit: str) -> Reading:
 
     value[sensible] = np.exp(rising_root(work, start - 3, start + 3, start)) / K_B
     none = Reason("N must be above zero", state.shaped(~sensible))
-    return state.read(value, state.relative * value, unit, ROUTE, [none])
+    return state.read(value, _precision(state, K_B * value) * value, unit, ROUTE, [none])
 
 
 def number(state: MeanFieldState, unit: str) -> Reading:
     """N_c: the most particles without a condensate."""
     if is_flat(state.held):
         return saturation.critical_number(state, unit)
-    return _told(state, _numbers(state, 0.0), unit, state.relative)
+    return _told(state, _numbers(state, 0.0), unit, _precision(state, state.kT[0]))
 
 
 def exponent(state: MeanFieldState, unit: str) -> Reading:
-    """d ln N_c/d ln T, by central differences."""
+    """d ln N_c/d ln T, by central differences over 0.05 % and 0.1 % of T; their difference is the error."""
     if is_flat(state.held):
         return saturation.exponent(state, unit)
     near, far = (
         np.log(_numbers(state, s) / _numbers(state, -s)) / log((1 + s) / (1 - s)) for s in (STEP, 2 * STEP)
     )
-    return _told(state, (4 * near - far) / 3, unit, 1e-5)
+    error = np.abs(near - far) + ROUNDING / STEP + 3 * _precision(state, state.kT[0])
+    return _told(state, (4 * near - far) / 3, unit, error)
 
 
 def _numbers(state: MeanFieldState, shifted: float) -> FloatArray:
@@ -70,7 +72,13 @@ def _numbers(state: MeanFieldState, shifted: float) -> FloatArray:
     return np.array([setting.at_onset(float(x)).number if x > 0 else np.nan for x in kT])
 
 
-def _told(state: MeanFieldState, value: FloatArray, unit: str, relative: float) -> Reading:
+def _precision(state: MeanFieldState, kT: FloatArray) -> FloatArray:
+    """Bound of the relative error of N at the onset."""
+    setting = state.filling.setting
+    return np.array([relative_error(setting.at_onset(float(x))) if x > 0 else np.nan for x in kT])
+
+
+def _told(state: MeanFieldState, value: FloatArray, unit: str, relative: FloatArray) -> Reading:
     none = Reason("T must be above zero", state.shaped(~(state.kT[0] > 0)))
     return state.read(value, relative * np.abs(value), unit, ROUTE, [none])
 

@@ -35,6 +35,7 @@ __all__ = ["Fluid", "Onset"]
 ORDER = 1.5  # of the density of an ideal gas of massive particles in three dimensions
 FAR = 45.0  # an upper end this far, in kT, is none
 POINTS = 48  # of the series of what is missing beyond the upper end
+CLOSE = 1e-9  # a relative step of Newton's method this short leaves an error of its square
 SMALL = 2e-3  # of G, below which the jump is where its limit G -> 0 has it, to a relative G
 # That limit: y = pi G^2 r^2 with a condensate and pi G^2 q^2 without, w = 2 G F_s(0) + pi G^2 (r^2 - 4 r). With
 # F_s(y) = F_s(0) - 2 sqrt(pi y) both w agree where (r - 2)^2 + (q + 2)^2 = 8, and both pressures where
@@ -115,16 +116,20 @@ class Fluid:
         )
         if self.G < SMALL:
             return y
-        w = y.w
+        w = max(y.w, self.least)
+        both = np.array([w, 0.0])
         for _ in range(60):
-            point = np.array([w])
-            thermal, condensed = self.thermal(point, 0.0), self.condensed(point)
-            excess = self.pressure(condensed, condensed) - self.pressure(thermal, 0 * thermal)
-            rise = condensed / self.G + self.ideal(ORDER, condensed) - self.ideal(ORDER, thermal)
-            before, w = w, min(max(w - float((excess / rise)[0]), (w + self.least) / 2), (w + top) / 2)
+            if both[0] <= self.turn:
+                both[0] = w  # not on the stable side: from above again, else from the solution before
+            both = self._newton(both, np.full(2, w), np.array([1.0, -1.0]))
+            pressures = self.pressure(both, np.array([both[0], 0.0]))
+            densities = self.ideal(ORDER, both)
+            rise = both[0] / self.G + densities[0] - densities[1]
+            step = float((pressures[0] - pressures[1]) / rise)
+            before, w = w, min(max(w - step, (w + self.least) / 2), (w + top) / 2)
             if abs(w - before) <= 1e-12 * scale:
                 break
-        return Onset(w, float(thermal[0]), float(condensed[0]))
+        return Onset(w, float(both[1]), float(both[0]))
 
     @cached_property
     def least(self) -> float:
@@ -140,7 +145,7 @@ class Fluid:
     def slope(self, y: FloatArray, inside: NDArray[np.bool_]) -> FloatArray:
         """d(n/A)/dw, with a condensate where `inside`."""
         half = self.ideal(ORDER - 1, y)
-        with np.errstate(divide="ignore", invalid="ignore"):
+        with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
             thermal = 1 / (1 / half + 2 * self.G)
             condensed = (1 / self.G - half) / (1 - 2 * self.G * half) if self.G else thermal
         return np.where(inside, condensed, thermal)
@@ -152,40 +157,39 @@ class Fluid:
 
     def condensed(self, w: FloatArray) -> FloatArray:
         """y = g n_0/kT where there is a condensate: Newton's method from above on a convex function."""
-        return self._newton(w.copy(), w, 1.0)
+        return self._newton(w.copy(), w, np.ones_like(w))
 
     def thermal(self, w: FloatArray, least: float) -> FloatArray:
         """y where there is none, at or above `least`: from below where convex (repulsion), else from above."""
-        start = np.maximum(-w, least) if self.G >= 0 else np.maximum(-w, self.turn)
-        return self._newton(start, w, -1.0)
+        return self._newton(self._thermal_start(w, least), w, -np.ones_like(w))
 
-    def _newton(self, y: FloatArray, w: FloatArray, sign: float) -> FloatArray:
-        """Solve sign y + 2 G F_s(y) = w."""
+    def _thermal_start(self, w: FloatArray, least: float) -> FloatArray:
+        return np.maximum(-w, least if self.G >= 0 else self.turn)
+
+    def _newton(self, y: FloatArray, w: FloatArray, sign: FloatArray) -> FloatArray:
+        """Solve sign y + 2 G F_s(y) = w, sign = 1 with a condensate and -1 without."""
         tiny = max(pi * self.G**2, 1e-290) * 1e-3
         y = np.maximum(y, tiny)
         open_ = np.arange(y.size)
         for _ in range(80):
-            now, goal = y[open_], w[open_]
+            now, goal, s = y[open_], w[open_], sign[open_]
             field = 2 * self.G * self.ideal(ORDER, now)
-            value = sign * now + field - goal
-            slope = sign - 2 * self.G * self.ideal(ORDER - 1, now)
+            value = s * now + field - goal
+            slope = s - 2 * self.G * self.ideal(ORDER - 1, now)
             with np.errstate(divide="ignore", invalid="ignore"):
-                step = np.where(slope * sign > 0, value / slope, 0.0)
+                step = np.where(slope * s > 0, value / slope, 0.0)
             y[open_] = following = np.maximum(now - step, tiny)
             rounding = 4 * EPS * (now + np.abs(field) + np.abs(goal))
-            open_ = open_[(np.abs(following - now) > 1e-15 * now) & (np.abs(value) > rounding)]
+            open_ = open_[(np.abs(following - now) > CLOSE * now) & (np.abs(value) > rounding)]
             if not open_.size:
                 break
         return y
 
     def split(self, w: FloatArray) -> tuple[FloatArray, NDArray[np.bool_]]:
         """y at every w, and where there is a condensate; nan where an attractive gas is not stable."""
-        y = np.empty_like(w)
         if self.G <= 0:
-            inside = np.zeros(w.shape, dtype=bool)
-            y[:] = self.thermal(np.minimum(w, self.highest), self.turn) if self.G else -w
-            return y, inside
+            y = self.thermal(np.minimum(w, self.highest), self.turn) if self.G else -w
+            return y, np.zeros(w.shape, dtype=bool)
         inside = w > self.onset.w
-        y[inside] = self.condensed(w[inside])
-        y[~inside] = self.thermal(w[~inside], self.onset.thermal)
-        return y, inside
+        start = np.where(inside, w, self._thermal_start(w, self.onset.thermal))
+        return self._newton(start, w, np.where(inside, 1.0, -1.0)), inside

@@ -13,7 +13,7 @@ if TYPE_CHECKING:
     from eoscore.measure import Measure
     from eoscore.state.reading import FloatArray
 
-__all__ = ["panels"]
+__all__ = ["NODES", "panels"]
 
 RATIO = 4.0  # of neighbouring panels: a singular point at the end of the row costs 3^-32 with 16 nodes
 NODES = 16
@@ -21,10 +21,13 @@ FINEST = 2.0**-46  # of the energies in play: below, the bottom counts as one
 AT_BREAK = 2.0**-30  # of a stretch beside a break of the measure
 
 
-def panels(measure: Measure, edge: float, sharp: float, end: float) -> tuple[FloatArray, FloatArray]:
+def panels(
+    measure: Measure, edge: float, sharp: float, end: float, order: int = NODES
+) -> tuple[FloatArray, FloatArray]:
     """Energies v (J) and weights dOmega up to `end`, panels shrinking towards 0, the breaks of the measure and `edge`.
 
-    At the edge (none where it is not above 0) functions change over energies of the order of `sharp`.
+    Each panel has `order` nodes. At the edge (none where it is not above 0) functions change over energies of the
+    order of `sharp`.
     """
     end = min(end, measure.top)
     first = FINEST * min(end, edge if edge > 0 else end)
@@ -34,7 +37,7 @@ def panels(measure: Measure, edge: float, sharp: float, end: float) -> tuple[Flo
         marks[edge] = min(sharp, edge / 2)
     edges = np.concatenate([_row(a, b, marks[a], marks[b]) for a, b in pairwise(sorted(marks))])
     edges = np.unique(edges)
-    x, w = legendre(NODES)
+    x, w = legendre(order)
     width = np.diff(edges)
     v = (edges[:-1, None] + width[:, None] * x).ravel()
     dv = (width[:, None] * w).ravel()

@@ -12,6 +12,7 @@ from eoscore.errors import NoAnswerError
 from eoscore.state.mean_field import local
 from eoscore.state.mean_field.matter import filling_of
 from eoscore.state.mean_field.positions import energies_at
+from eoscore.state.mean_field.precision import relative_error
 from eoscore.state.profile import Profile
 from eoscore.state.solution import Solution
 from eoscore.state.state import State
@@ -28,7 +29,6 @@ __all__ = ["MeanFieldState"]
 
 ROUTE = "Hartree-Fock in local density, Thomas-Fermi condensate"
 WAYS = (("N", "T"), ("mu", "T"), ("N", "S"), ("N", "U"))
-RELATIVE = 1e-9  # of every integral: the panels are good to 1e-12, N and the phases are met to 1e-11
 
 
 class MeanFieldState(State):
@@ -83,18 +83,17 @@ class MeanFieldState(State):
         """A number of every point, nan where there is no state."""
         return np.array([np.nan if fill is None else read(fill) for fill in self.fills])
 
-    @property
-    def relative(self) -> float:
-        """Bound of the relative error of integrals over the place."""
-        measure = self.filling.setting.measure
-        return RELATIVE + 2 * measure.error
+    @cached_property
+    def relative(self) -> FloatArray:
+        """Bound of the relative error of N, U and S, of every point; nan where there is no state."""
+        return self.each(lambda fill: relative_error(fill.cloud))
 
     @cached_property
     def kT(self) -> tuple[FloatArray, FloatArray]:
         """See `State.kT`."""
         if "T" in self.given:
             return K_B * self.given["T"], np.full(self.given["T"].shape, 1e-15)
-        return self.solution.kT, np.full(self.solution.kT.shape, 1e-9)
+        return self.solution.kT, 3 * self.relative
 
     @cached_property
     def number(self) -> tuple[FloatArray, FloatArray]:

@@ -10,6 +10,7 @@ import numpy as np
 from eoscore.constants import K_B
 from eoscore.errors import NoAnswerError
 from eoscore.state.mean_field import critical, local
+from eoscore.state.mean_field.precision import ROUNDING
 from eoscore.state.mean_field.radii import radii
 from eoscore.state.mean_field.state import ROUTE
 from eoscore.state.reading import Reading, Reason
@@ -24,11 +25,12 @@ if TYPE_CHECKING:
 
 __all__ = ["READ"]
 
-STEP = 2e-3  # in ln T, of the heat capacity
+STEP = 5e-4  # in ln T, of the heat capacity
 
 
 def _read(state: MeanFieldState, value: FloatArray, unit: str, error: FloatArray | None = None) -> Reading:
-    error = state.relative * np.abs(value) if error is None else error
+    # at fixed N a wrong N shows in mu, and by that in everything: U and S go with N^2 at the most
+    error = 3 * state.relative * np.abs(value) if error is None else error
     return state.read(value, error, unit, ROUTE)
 
 
@@ -59,22 +61,22 @@ def _energy(fill: Filled) -> float:
 def _potential(state: MeanFieldState, unit: str) -> Reading:
     """mu from the bottom of V."""
     value = state.each(lambda fill: fill.cloud.mu)
-    return _read(state, value, unit, state.relative * (np.abs(value) + state.kT[0]))
+    return _read(state, value, unit, 3 * state.relative * (np.abs(value) + state.kT[0]))
 
 
 def _fraction(state: MeanFieldState, unit: str) -> Reading:
     value = state.each(lambda fill: fill.condensate) / state.number[0]
-    return _read(state, value, unit, np.where(value > 0, state.relative, 0.0))
+    return _read(state, value, unit, np.where(value > 0, 3 * state.relative, 0.0))
 
 
 def _condensate(state: MeanFieldState, unit: str) -> Reading:
     _not_uniform(state, "condensate number")
     value = state.each(lambda fill: fill.condensate)
-    return _read(state, value, unit, np.where(value > 0, state.relative * state.number[0], 0.0))
+    return _read(state, value, unit, np.where(value > 0, 3 * state.relative * state.number[0], 0.0))
 
 
 def _heat_capacity(state: MeanFieldState, unit: str) -> Reading:
-    """dU/dT at fixed N by central differences over 0.2 % and 0.4 % of T; their difference is the error."""
+    """dU/dT at fixed N by central differences over 0.05 % and 0.1 % of T; their difference is the error."""
     _not_uniform(state, "heat capacity")
     filling, number, kT = state.filling, state.number[0], state.kT[0]
 
@@ -87,7 +89,10 @@ def _heat_capacity(state: MeanFieldState, unit: str) -> Reading:
     points = list(zip(state.fills, number, kT, strict=True))
     near, far = (np.array([slope(*p, step) for p in points]) for step in (STEP, 2 * STEP))
     value = (4 * near - far) / 3
-    return _read(state, value, unit, np.abs(near - far) + 1e-6 * np.abs(value))
+    # the error of the place is the same on both sides, that of the sums is not
+    return _read(
+        state, value, unit, np.abs(near - far) + (3 * state.relative + ROUNDING / STEP) * np.abs(value)
+    )
 
 
 def _radii(state: MeanFieldState, unit: str) -> Reading:
@@ -98,7 +103,8 @@ def _radii(state: MeanFieldState, unit: str) -> Reading:
     words = "there is no Thomas-Fermi condensate in this state"
     none = Reason(words, state.shaped(np.isnan(edges) & state.solution.known))
     reasons = tuple(reason for reason in (*state.reasons, none) if np.any(reason.where))
-    return Reading(value, state.relative * np.abs(value) + 1e-12 * np.abs(value), unit, ROUTE, reasons)
+    relative = np.reshape(3 * state.relative + 1e-12, (*state.shape, 1))
+    return Reading(value, relative * np.abs(value), unit, ROUTE, reasons)
 
 
 def _collisions(state: MeanFieldState, unit: str) -> Reading:
