@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections import OrderedDict
-from dataclasses import fields
+from dataclasses import fields, replace
 from typing import TYPE_CHECKING, Any, TypeVar
 
 from eoscore.errors import NoAnswerError
@@ -38,7 +38,7 @@ class HeldGases:
     """
 
     def __init__(self) -> None:
-        self._gases, self._places, self._held = _Kept(), _Kept(), _Kept()
+        self._gases, self._places, self._counted, self._held = _Kept(), _Kept(), _Kept(), _Kept()
 
     def of(self, binding: Binding, dimension: int | None = None, like: Binding | None = None) -> HeldGas:
         """The gas of a binding held in its place; `dimension` is that of a `uniform` place.
@@ -58,7 +58,12 @@ class HeldGases:
 
     def _hold(self, binding: Binding, dimension: int | None, origin: PlaceFacts | None) -> HeldGas:
         gas: Gas = self._gases.of(_facts(binding.gas), lambda: gas_of(binding.gas))
-        return hold(gas, self._place(binding.place, gas.mass, dimension, origin))
+        # What is counted does not know of a_s: gases that differ by it alone share their states.
+        counted = (dimension, binding.place, origin, *_facts(replace(binding.gas, a_s=None)))
+        held: HeldGas = self._counted.of(
+            counted, lambda: hold(gas, self._place(binding.place, gas.mass, dimension, origin))
+        )
+        return held if held.gas is gas else replace(held, gas=gas)
 
     def _place(
         self, facts: PlaceFacts | None, mass: float | None, dimension: int | None, origin: PlaceFacts | None

@@ -27,12 +27,15 @@ _STATES = (
 
 
 def thinned(question: Question) -> tuple[Question, ...]:
-    """The question at the first and at the last stop of its grid, with some of the states there."""
-    grid = Grid(question.over)
-    count = max(2, round(_STATES ** (1 / max(1, len(grid.conditions)))))
+    """The question at the first and at the last stop of its grid, with some of the states there, at one position."""
+    grid, positions = Grid(question.over), question.coordinates
+    states = [axis for axis in grid.conditions if axis.name not in positions]
+    count = max(2, round(_STATES ** (1 / max(1, len(states)))))
+    counts = {axis.name: 1 if axis.name in positions else count for axis in question.over}
     ends = (0, -1) if any(axis.points > 1 for axis in grid.parameters) else (0,)
     return tuple(
-        replace(question, over=tuple(_some(axis, count, end) for axis in question.over)) for end in ends
+        replace(question, over=tuple(_some(axis, counts[axis.name], end) for axis in question.over))
+        for end in ends
     )
 
 

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from functools import cached_property
 from math import inf
 from typing import TYPE_CHECKING
@@ -12,8 +12,9 @@ import numpy as np
 from eoscore.constants import K_B
 
 if TYPE_CHECKING:
-    from collections.abc import Callable
+    from collections.abc import Callable, Hashable
 
+    from eoscore.state.column import Line
     from eoscore.state.ensemble import Ensemble
     from eoscore.state.reading import FloatArray
     from eoscore.state.sums import Sums
@@ -28,13 +29,14 @@ class Model:
     """`count` makes `whole`, the ensemble that N counts (per volume in a uniform gas); `local` is that at the bottom.
 
     `free` is the local ensemble without the cut of the place, spin states counted: it sets lambda_T. Both are None
-    where every direction is held as levels.
+    where every direction is held as levels. `lines` keeps the lines along which columns were counted.
     """
 
     count: Callable[[], Ensemble]
     local: Ensemble | None
     free: Ensemble | None
     degeneracy: float
+    lines: dict[Hashable, Line | None] = field(default_factory=dict, compare=False)
 
     @cached_property
     def whole(self) -> Ensemble:

@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from eoscore.errors import NoAnswerError
-from eoscore.state.column import line_of
+from eoscore.state.column import lines_of
 from eoscore.state.ensemble import EPS
 from eoscore.state.local import local_at
 from eoscore.state.positions import at_bottom, height_at, held_height, trap_of
@@ -116,13 +116,12 @@ def _column(
     alpha, kT, dalpha, dlog = (each.reshape(shape) for each in _spread(state, shape))
     value, error = np.zeros(shape), np.zeros(shape)
     routes: dict[str, None] = {}
-    marks = np.broadcast_to(np.arange(int(np.prod(across))).reshape(across), shape)
-    for index, point in enumerate(np.ndindex(across)):
-        line = line_of(state.held, trap, free[0], {each: float(x[point]) for each, x in spread.items()})
-        here = (marks == index) & np.isfinite(kT)
-        if line is None or not here.any():
+    for line in lines_of(state.held, trap, free[0], spread):
+        height = np.broadcast_to(line.height, shape)
+        here = np.isfinite(height) & np.isfinite(kT)
+        if not here.any():
             continue
-        depth = line.height / kT[here]
+        depth = height[here] / kT[here]
         sums = line.ensemble.sums(alpha[here] + depth, kT[here])
         by_alpha, by_log = sums.slopes("N", alpha[here] + depth, kT[here])
         by_log = by_log + _lean(by_alpha, depth)  # by_alpha is below 0

@@ -20,7 +20,7 @@ if TYPE_CHECKING:
     from eoscore.state.held import HeldGas
     from eoscore.state.reading import FloatArray
 
-__all__ = ["at_bottom", "height_at", "held_height", "line_along", "trap_of"]
+__all__ = ["at_bottom", "height_at", "height_in", "held_height", "line_along", "trap_of"]
 
 RADII = ("r", "rho")  # on the other side of the centre where they are negative
 
@@ -42,12 +42,16 @@ def at_bottom(trap: TrapPlace, positions: Mapping[str, ArrayLike]) -> dict[str, 
 
 def height_at(trap: TrapPlace, positions: Mapping[str, FloatArray]) -> FloatArray:
     """V from the bottom in J where every coordinate is given; inf behind walls. Arrays broadcast."""
-    field = trap.field
-    given = {name: np.abs(x) if name in RADII else x for name, x in positions.items()}
+    return height_in(trap.field, positions) - trap.v_min
+
+
+def height_in(field: Field, positions: Mapping[str, ArrayLike], *, walled: bool = True) -> FloatArray:
+    """V of a field in J where each of its coordinates is given; inf behind walls. Arrays broadcast."""
+    given = {name: np.abs(x) if name in RADII else np.asarray(x) for name, x in positions.items()}
     shape = np.broadcast_shapes(*(x.shape for x in given.values()))
-    v = np.broadcast_to(np.asarray(field.formula.evaluate(given)) - trap.v_min, shape)
+    v = np.broadcast_to(np.asarray(field.formula.evaluate(given)), shape)
     inside = np.ones(shape, dtype=bool)
-    for wall in field.walls:
+    for wall in field.walls if walled else ():
         inside &= np.broadcast_to(np.asarray(wall.evaluate(given)) > 0, shape)
     return np.where(inside, v, np.inf)
 

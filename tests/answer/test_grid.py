@@ -60,3 +60,12 @@ def test_quantities_with_entries_keep_them_last(over):
     grid = Grid(tuple(axis(name, 2 + (name == "N"), thermodynamic=name == "N") for name in over))
     whole = grid.assemble([np.full((1, 3), stop.values["P"]) for stop in grid.stops()], (3,))
     assert whole.shape == (*grid.shape, 3)
+
+
+def test_gases_that_differ_by_a_s_alone_share_their_states():
+    text = "gas a { m = 84 u\na_s = 100(1) a0 }\ntrap b { V(x) = 1e-20 N/m*x^2 }\nfind freq for a in b\n"
+    program, held = eoscore.loads(text).program, HeldGases()
+    (literal,) = program.literals
+    one, other = (held.of(program.bind("a", "b", {}, {literal.index: a_s})) for a_s in (5e-9, 6e-9))
+    assert (one.gas.a_s, other.gas.a_s) == (5e-9, 6e-9)
+    assert one.model is other.model

@@ -48,6 +48,13 @@ def test_the_column_at_the_centre_at_T_c(lab, place):
     assert state.at("n_at") == near(state.lambda_T**-3 * zeta(1.5))
 
 
+def test_lines_that_are_alike_are_counted_once(lab):
+    held = lab["probe"].held_in(lab["bowl"])
+    held.model.lines.clear()
+    held.state(N=1e5, T=300e-9).at("n_column", x=np.linspace(-1e-5, 1e-5, 50)[:, None], y=[0.0, 1e-6])
+    assert len(held.model.lines) == 1
+
+
 @pytest.mark.parametrize("T", [250e-9, 400e-9])
 def test_columns_beside_the_centre(lab, T):
     """lambda^-2 (kT/hbar w) g_2(z e^{-V/kT}), for arrays of states and of positions together."""
