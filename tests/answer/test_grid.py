@@ -7,7 +7,9 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
+import eoscore
 from eoscore.answer.grid import Grid
+from eoscore.answer.holding import HeldGases
 from eoscore.language.dimension import ONE
 from eoscore.language.question import Axis
 
