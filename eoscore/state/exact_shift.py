@@ -36,6 +36,8 @@ def against_levels(
 
 def _levels(held: HeldGas, why: str) -> ExactLevels:
     """Solved once for a held gas."""
+    if held.uniform:
+        raise NoAnswerError("a uniform gas has no end, and so no finite number that would move its T_c")
     if not isinstance(held.place, TrapPlace):
         raise NoAnswerError(
             f"{why}; a volume has no shape: give walls, V(x, y, z) = 0 J where x > 0 um, x < ..."

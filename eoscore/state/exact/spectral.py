@@ -27,6 +27,7 @@ EVEN = (
 )
 WANTED = 1e-9  # relative difference of two grids that is good enough not to try the next pair
 ROUGH = 1e-6  # an error below that another grid does not make much smaller is one of rounding
+PATIENCE = 100  # points after which a smooth potential converges fast
 
 
 def eigenvalues(
@@ -63,10 +64,10 @@ def converged(
             continue
         first, second = (eigenvalues(potential, low, high, kinetic, count, points) for points in pair)
         error = float(np.max(np.abs(first - second) / (np.gradient(second, axis=1) + np.abs(second))))
-        rounding = error > least / 4 and least < ROUGH
+        stuck = error > least / 4 and (least < ROUGH or pair[0] > PATIENCE)
         if error < least:
             best, least = second, error
-        if error < WANTED or rounding:
+        if error < WANTED or stuck:
             break
     return best, least
 

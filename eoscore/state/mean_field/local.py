@@ -32,7 +32,7 @@ def thermal_peak(fill: Filled) -> float:
 
 
 def condensate_peak(fill: Filled) -> float:
-    """The density of the condensate at the bottom, m^-3."""
+    """The density of the condensate at the bottom, m^-3; of one in the Thomas-Fermi limit."""
     return float(fill.cloud.parts(np.zeros(1))[0][0])
 
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from math import pi
 from typing import TYPE_CHECKING
 
@@ -25,6 +26,13 @@ if TYPE_CHECKING:
 
 __all__ = ["READ"]
 
+ATTRACTED = (
+    "a_s is negative: a condensate without repulsion has no Thomas-Fermi limit, and its energy and density are not "
+    "told here; N_0, f_0 and what the thermal part has are"
+)
+IDEAL = (
+    "a_s is 0: an ideal condensate has the size of the lowest level, which a semiclassical gas does not know"
+)
 STEP = 5e-4  # in ln T, of the heat capacity
 
 
@@ -36,6 +44,27 @@ def _read(state: MeanFieldState, value: FloatArray, unit: str, error: FloatArray
 
 def _of(read: Callable[[Filled], float]) -> Callable[[MeanFieldState, str], Reading]:
     return lambda state, unit: _read(state, state.each(read), unit)
+
+
+def _shapeless(
+    read: Callable[[MeanFieldState, str], Reading], *, ideal: bool
+) -> Callable[[MeanFieldState, str], Reading]:
+    """No number where a condensate stands beside the cloud: it has no Thomas-Fermi limit without repulsion.
+
+    `ideal`: nor where there is no interaction at all.
+    """
+
+    def reading(state: MeanFieldState, unit: str) -> Reading:
+        found = read(state, unit)
+        attracted = state.filling.setting.coupling < 0
+        where = state.shaped(state.each(lambda fill: fill.beside) > 0)
+        if not (attracted or ideal) or not np.any(where):
+            return found
+        none = Reason(ATTRACTED if attracted else IDEAL, where)
+        value, error = (np.where(where, np.nan, x) for x in (found.value, found.error))
+        return replace(found, value=value, error=error, reasons=(*found.reasons, none))
+
+    return reading
 
 
 def _not_uniform(state: MeanFieldState, word: str) -> None:
@@ -139,17 +168,19 @@ READ: dict[str, Callable[[MeanFieldState, str], Reading]] = {
     "mu": _potential,
     "fugacity": _of(lambda fill: float(np.exp(fill.cloud.mu / fill.cloud.fluid.kT))),
     "S": _extensive("entropy", lambda fill: K_B * fill.cloud.entropy),
-    "U": _extensive("energy", _energy),
-    "U_int": _extensive("energy", lambda fill: fill.cloud.interaction),
-    "E_release": _extensive("energy", lambda fill: fill.cloud.kinetic + fill.cloud.interaction),
+    "U": _shapeless(_extensive("energy", _energy), ideal=False),
+    "U_int": _shapeless(_extensive("energy", lambda fill: fill.cloud.interaction), ideal=False),
+    "E_release": _shapeless(
+        _extensive("energy", lambda fill: fill.cloud.kinetic + fill.cloud.interaction), ideal=False
+    ),
     "N_0": _condensate,
     "f_0": _fraction,
     "n_peak": _of(local.thermal_peak),
-    "n_0_peak": _of(local.condensate_peak),
+    "n_0_peak": _shapeless(_of(local.condensate_peak), ideal=True),
     "PSD": lambda state, unit: _read(state, state.each(local.phase_space_density), unit),
     "pressure": _of(local.pressure),
-    "kappa_T": _of(local.compressibility),
+    "kappa_T": _shapeless(_of(local.compressibility), ideal=True),
     "R_TF": _radii,
-    "C_N": _heat_capacity,
+    "C_N": _shapeless(_heat_capacity, ideal=False),
     "rate_coll": _collisions,
 }

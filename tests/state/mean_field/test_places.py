@@ -114,6 +114,23 @@ def test_attraction():
     assert f"{most:.4g}" in words
 
 
+@pytest.mark.parametrize("name", ["U", "U_int", "E_release", "n_0_peak", "C_N", "kappa_T"])
+def test_a_condensate_without_repulsion_has_no_shape(name):
+    trap = held(HARMONIC, "a_s = -100 a0")
+    given = {"N": trap.N_c(T=1e-7) + np.array([-10.0, 50.0]), "T": 1e-7}
+    reading = trap.find([name], given)[name]
+    assert "no Thomas-Fermi limit" in reading.why
+    assert np.isfinite(reading.value[0])
+    assert list(reading.missing) == [False, True]
+
+
+def test_an_ideal_condensate_has_no_peak():
+    found = held(HARMONIC, "a_s = 0 a0").find(["n_0_peak", "kappa_T", "U_int"], {"N": 1e5, "T": 1e-7})
+    assert "size of the lowest level" in found["n_0_peak"].why
+    assert found["kappa_T"].why
+    assert found["U_int"].value == 0
+
+
 def test_attraction_draws_the_gas_together():
     trap, ideal = held(HARMONIC, "a_s = -100 a0"), held(HARMONIC, "a_s = 0 a0")
     assert trap.state(N=1e5, T=3e-7).n_peak > ideal.state(N=1e5, T=3e-7).n_peak
