@@ -100,6 +100,28 @@ def test_many_particles_are_the_continuum():
     assert abs(left[1]) < abs(left[0]) / 2.5
 
 
+@pytest.mark.parametrize(
+    ("place", "power"),
+    [
+        ("V(r) = 2e-31 J*(r/(1 um))^4", -4 / 9),
+        ("V(r) = 1e-24 J/m*r", -2 / 9),
+    ],
+)
+def test_the_shift_falls_with_the_right_power(place, power):
+    """The lowest level over kT_c: r^p gives N^(-2p/(3(p + 2))) (Salasnich, Int. J. Mod. Phys. B 16, 2185 (2002))."""
+    N = np.array([1e9, 1e12])
+    shift = held(place, "").find(["shift_size"], {"N": N})["shift_size"].value
+    assert np.log(shift[1] / shift[0]) / np.log(N[1] / N[0]) == pytest.approx(power, rel=0.03)
+
+
+def test_walls_take_a_layer_away():
+    """States miss a layer as thick as lambda_T at walls: shift N^(1/3) is a straight line in ln N, by long waves."""
+    N = np.array([1e9, 1e12, 1e15])
+    shift = held("V(r) = 0 J where r < 10 um", "").find(["shift_size"], {"N": N})["shift_size"].value
+    first, second = np.diff(shift * N ** (1 / 3))
+    assert second == pytest.approx(first, rel=0.01)
+
+
 def test_one_dimension():
     """N_ex of 1D at hbar w/kT = 0.01: sum_l 1/(e^(0.01 l) - 1) = 518.4885156445064 (mpmath)."""
     trap = held("V(x) = m/2*(2*pi*100 Hz)^2*x^2")
