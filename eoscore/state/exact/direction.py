@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from abc import ABC, abstractmethod
 from dataclasses import dataclass
+from math import floor, log2
 from typing import TYPE_CHECKING, NamedTuple, Protocol
 
 import numpy as np
@@ -13,10 +14,11 @@ if TYPE_CHECKING:
 
     from eoscore.state.reading import FloatArray
 
-__all__ = ["REACH", "Atoms", "Direction", "OnAtoms", "Oscillator", "Sums"]
+__all__ = ["END", "REACH", "Atoms", "Direction", "OnAtoms", "Oscillator", "Sums"]
 
 CHUNK = 400_000  # numbers made at a time
 REACH = 42.0  # kT: e^-42 is dropped
+END = 700.0  # numbers below e^-700 cost a hundred times as much
 ENOUGH = 1e-6  # relative error of a partition function that asks for no more known levels
 SPARE = 1.25  # further, so that a search for a temperature does not begin again at each step
 
@@ -108,6 +110,7 @@ class OnAtoms(ABC):
 
     def __init__(self) -> None:
         self._kept: dict[bool, tuple[float, Atoms]] = {}
+        self._good: set[int] = set()  # octaves of kT at which enough levels are known
 
     @abstractmethod
     def below(self, energy: float) -> float:
@@ -123,11 +126,12 @@ class OnAtoms(ABC):
 
     def atoms(self, kT: float) -> Atoms:
         """As far as `REACH` kT at least, and of enough known levels."""
-        fine = self._as_far(kT, coarse=False)
-        while self._apart(kT) > ENOUGH and self.refined():
-            self._kept.clear()
-            fine = self._as_far(kT, coarse=False)
-        return fine
+        octave = floor(log2(kT))
+        if octave not in self._good:
+            while self._apart(kT) > ENOUGH and self.refined():
+                self._kept.clear()
+            self._good.add(octave)
+        return self._as_far(kT, coarse=False)
 
     def error_at(self, kT: float) -> float:
         """See `Direction`: twice what fewer of the known levels give differently."""
@@ -144,14 +148,15 @@ class OnAtoms(ABC):
 
     def _apart(self, kT: float) -> float:
         whole, other = (
-            1 + float(np.exp(-e / kT) @ w) for e, w in (self._as_far(kT, coarse=c) for c in (False, True))
+            1 + float((np.exp(-np.minimum(e / kT, END)) * w).sum())  # a library's product would start threads
+            for e, w in (self._as_far(kT, coarse=c) for c in (False, True))
         )
         return 2 * abs(other / whole - 1)
 
     def sums(self, beta: NDArray[np.inexact], kT: float) -> Sums:
         """See `Direction`."""
         e, w = self.atoms(kT)
-        rows = np.stack([w, w * e, w * e * e], axis=1)
+        rows = np.stack([w, w * e, w * e * e])
         flat = np.ravel(beta)
         size = max(CHUNK // e.size, 1)
         parts = [_summed(flat[i : i + size], e, rows) for i in range(0, flat.size, size)]
@@ -160,5 +165,9 @@ class OnAtoms(ABC):
 
 
 def _summed(beta: NDArray[np.inexact], e: FloatArray, rows: FloatArray) -> NDArray[np.inexact]:
+    x = beta[:, None] * e
+    if not np.iscomplexobj(x):
+        x = np.minimum(x, END)
     with np.errstate(under="ignore"):
-        return np.asarray(np.exp(-beta[:, None] * e) @ rows)
+        fading = np.exp(-x)
+    return np.stack([(fading * row).sum(axis=1) for row in rows], axis=1)

@@ -9,7 +9,7 @@ import numpy as np
 
 from eoscore.gas.multiples import multiples_of
 from eoscore.state.ensemble import EPS, Ensemble
-from eoscore.state.exact.direction import OnAtoms
+from eoscore.state.exact.direction import END, OnAtoms
 from eoscore.state.exact.direction import Sums as OfLevels
 from eoscore.state.sums import Sums
 
@@ -84,12 +84,11 @@ class ExactLevels(Ensemble):
 
     def _occupied(self, atoms: Atoms, alpha: float, kT: float) -> tuple[float, ...]:
         """The sums of `_point`, level by level: n = 1/(e^x - 1), its slope n (1 + n)."""
-        e = atoms.e / kT
-        with np.errstate(over="ignore", under="ignore"):
-            n = 1 / np.expm1(e + alpha)
-            y = np.log1p(n)
+        e = np.minimum(atoms.e / kT, END)
+        n = 1 / np.expm1(np.minimum(e + alpha, END))
+        y = np.log1p(n)
         b = n * (1 + n)
-        total = np.array([y, n, e * n, b, e * b, e * e * b]) @ atoms.w
+        total = (np.array([y, n, e * n, b, e * b, e * e * b]) * atoms.w).sum(axis=1)
         return self._ordered(total, alpha, kT)
 
     def _ordered(self, total: FloatArray, alpha: float, kT: float) -> tuple[float, ...]:
