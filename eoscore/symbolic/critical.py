@@ -16,6 +16,8 @@ if TYPE_CHECKING:
 
     from eoscore.symbolic.partition import Power
 
+_COLDEST, _HOTTEST = 1e-30, 1e40  # K
+
 __all__ = ["explicit", "heat_capacity_jump", "number_at", "number_of", "root"]
 
 
@@ -58,7 +60,7 @@ def number_of(
 def root(count: Callable[[float], float], number: float) -> float:
     """T in K with N_c(T) = number; N_c rises with T, so that a bracket is found by stepping in log T.
 
-    Raises ValueError where none is found between 1e-15 K and 1e15 K.
+    Raises ValueError where none is found between 1e-30 K and 1e40 K.
     """
     from scipy.optimize import brentq  # 0.3 s to import, and only an implicit T_c wants it
 
@@ -68,10 +70,13 @@ def root(count: Callable[[float], float], number: float) -> float:
 
     low, high = np.log(1e-7), np.log(1e-7)
     step = np.log(10.0)
-    while excess(low) > 0 and low > np.log(1e-15):
+    while excess(low) > 0 and low > np.log(_COLDEST):
         low -= step
-    while excess(high) < 0 and high < np.log(1e15):
+    while excess(high) < 0 and high < np.log(_HOTTEST):
         high += step
+    if excess(high) < 0 or excess(low) > 0:
+        msg = f"N_c(T) = N has no root between {_COLDEST:g} K and {_HOTTEST:g} K"
+        raise ValueError(msg)
     if not (np.isfinite(excess(low)) and excess(low) <= 0 <= excess(high)):
         low = high - step
     return float(np.exp(brentq(excess, low, high, xtol=1e-15, rtol=1e-14)))

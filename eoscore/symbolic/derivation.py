@@ -14,6 +14,7 @@ from eoscore.symbolic.expansion import cold_exponent, expansions
 from eoscore.symbolic.implicit import implicit
 from eoscore.symbolic.partition import ALPHA
 from eoscore.symbolic.quantities import ENERGY, K_B, NUMBER, QUANTITIES, TEMPERATURE, Model, critical_number
+from eoscore.symbolic.units import unit_of
 from eoscore.symbolic.writing import forms, missing_words, plain, tidy, where, written_name
 
 if TYPE_CHECKING:
@@ -21,19 +22,8 @@ if TYPE_CHECKING:
 
     from eoscore.symbolic.problem import Problem
 
-__all__ = ["UNITS", "Derivation"]
+__all__ = ["Derivation"]
 
-UNITS = {
-    "T_c": "K",
-    "N_c": "1",
-    "f_0": "1",
-    "U": "J",
-    "S": "J/K",
-    "C_N": "J/K",
-    "rho": "1/J",
-    "g": "1",
-    "DeltaC": "J/K",
-}
 _FREE = {"rho": {ENERGY, TEMPERATURE, ALPHA}, "g": {TEMPERATURE, ALPHA}}
 
 
@@ -149,7 +139,7 @@ class Derivation:
         )
         words = [*self.problem.steps, f"Z1(beta) at beta = 1/(k_B*T): {whole}"]
         words.extend(f"{s} = {v:.12g}: {text}" for s, v, text, _ in self.problem.constants)
-        words = [word.replace("**", "^") for word in words]
+        words = [word.replace("**", "^").replace("'", "") for word in words]
         return [*words, "N_ex = sum over l of exp(-l*alpha) Z1(l*beta), and alpha = 0 at T_c"]
 
     def _entry(self, name: str, expression: sp.Expr | None) -> dict[str, Any]:
@@ -175,7 +165,7 @@ class Derivation:
             "closed": not expression.has(sp.Sum),
             "where": where(values.items()),
         }
-        entry |= {"value": value, "unit": UNITS[name], "why": why}
+        entry |= {"value": value, "unit": unit_of(name, self.problem.per), "why": why}
         return entry
 
     def _critical_temperature(self) -> dict[str, Any]:

@@ -88,14 +88,15 @@ def _counted(held: HeldGas, given: Mapping[str, float]) -> dict[str, float]:
 
 def _confirmed(held: HeldGas, name: str, entry: dict[str, Any], given: Mapping[str, float]) -> dict[str, Any]:
     """Put the numerical engine's value beside the formula's, or in its stead where there is no formula."""
-    from eoscore.symbolic.derivation import UNITS
+    from eoscore.symbolic.units import unit_of
 
-    numerical, reason = _numerical(held, name, given)
+    per = held.dimension if held.uniform else 0
+    numerical, reason = _numerical(held, "n_c" if per and name == "N_c" else name, given)
     if "sympy" not in entry:
         empty = dict.fromkeys(("sympy", "latex", "text")) | {"closed": False, "where": {}, "value": numerical}
         told = reason is None or reason == entry["why"] or "condens" in entry["why"]
         why = entry["why"] if told else f"{entry['why']}; the numbers: {reason}"
-        return {**empty, "unit": UNITS[name], **entry, "why": why}
+        return {**empty, "unit": unit_of(name, per), **entry, "why": why}
     if numerical is not None and entry["value"] is not None:
         scale = max(abs(numerical), abs(entry["value"])) or 1.0
         entry |= {"numerical": numerical, "difference": abs(entry["value"] - numerical) / scale}

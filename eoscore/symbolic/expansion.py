@@ -7,16 +7,18 @@ from typing import TYPE_CHECKING
 
 import sympy as sp
 
+from eoscore.symbolic.band_limit import above_band
 from eoscore.symbolic.critical import explicit, number_of
-from eoscore.symbolic.integrals.rule import BETA
 from eoscore.symbolic.partition import Power, partition_of
 from eoscore.symbolic.quantities import K_B, TEMPERATURE
 from eoscore.symbolic.scaled import ScaledI, ScaledK, scaled
 
 if TYPE_CHECKING:
-    from collections.abc import Mapping
+    from collections.abc import Mapping, Sequence
 
-__all__ = ["Expansion", "cold_exponent", "expansions"]
+__all__ = ["Expansion", "cold_exponent", "expansions", "walked"]
+
+_ORDER = 5  # terms of an exponential: two of a product are wanted, of which the first may cancel
 
 
 @dataclass(frozen=True)
@@ -30,24 +32,29 @@ class Expansion:
 
     @staticmethod
     def reach(
-        count: sp.Expr, written: tuple[sp.Expr, sp.Expr], total: sp.Symbol, here: Mapping[sp.Symbol, float]
+        walk: Sequence[tuple[float, float]],
+        written: tuple[sp.Expr, sp.Expr],
+        total: sp.Symbol,
+        here: Mapping[sp.Symbol, float],
     ) -> float | None:
         """The largest `small` at which the two terms are within 1 % of the root; None where nowhere.
 
-        written: T_c and `small`. Found by walking T away from the root in `here` (K), with N = N_c(T) so that T
-        is the exact answer; all is compiled once.
+        walk: pairs of T in K and N_c(T), so that T is the exact answer for that N. written: T_c and `small`.
         """
-        at = number_of(count, here)
         whole, small = (number_of(part, here, total) for part in written)
         best = None
-        for step in range(-16, 17):
-            temperature = here[TEMPERATURE] * 10.0 ** (step / 4)
-            if (number := at(temperature)) <= 0:
-                continue
+        for temperature, number in walk:
             size = small(number)
             if abs(whole(number) / temperature - 1) < 0.01 and (best is None or size > best):
                 best = size
         return best
+
+
+def walked(count: sp.Expr, here: Mapping[sp.Symbol, float]) -> list[tuple[float, float]]:
+    """T in K and N_c(T), four decades to either side of the temperature in `here`."""
+    at = number_of(count, here)
+    steps = (here[TEMPERATURE] * 10.0 ** (step / 4) for step in range(-16, 17))
+    return [(temperature, number) for temperature in steps if (number := at(temperature)) > 0]
 
 
 def expansions(whole: sp.Expr) -> list[Expansion]:
@@ -56,6 +63,8 @@ def expansions(whole: sp.Expr) -> list[Expansion]:
     for limit, powers in (("high temperature", _hot(whole)), ("low temperature", _cold(whole))):
         if len(powers) >= 2 and (powers[0].exponent - 1).is_positive:
             found.append(_expansion(limit, *powers[:2]))
+    if (terms := above_band(whole)) is not None:
+        found.append(Expansion("high temperature, far above the band", *terms, sp.Abs(terms[1])))
     return found
 
 
@@ -78,10 +87,15 @@ def _hot(whole: sp.Expr) -> list[Power]:
     """Leading powers for beta -> 0, largest exponent first; Bessel K by DLMF 10.31.1, I by 10.25.2."""
     near = scaled(whole).replace(ScaledK, lambda n, _, x: sp.exp(x) * _small_k(n, x))
     near = near.replace(ScaledI, lambda n, _, x: sp.exp(-x) * (x / 2) ** n / sp.gamma(n + 1))
-    if near.has(sp.exp):
-        near = sp.series(near, BETA, 0, 2).removeO()
+    near = near.replace(_is_ladder, lambda f: _short_ladder(-(1 - f.base).exp))
+    near = near.replace(sp.exp, lambda y: sp.Add(*(y**k / sp.factorial(k) for k in range(_ORDER))))
     powers = partition_of(sp.expand(near), 1).powers
     return sorted(powers, key=lambda power: -float(power.exponent))
+
+
+def _short_ladder(y: sp.Expr) -> sp.Expr:
+    """1/(1 - e^-y), the first of Bernoulli's terms (DLMF 24.2.1)."""
+    return 1 / y + sp.Rational(1, 2) + y / 12
 
 
 def _small_k(order: sp.Expr, x: sp.Expr) -> sp.Expr:

@@ -8,6 +8,7 @@ import sympy as sp
 
 from eoscore.symbolic.critical import number_of, root
 from eoscore.symbolic.evaluate import number
+from eoscore.symbolic.expansion import walked
 from eoscore.symbolic.quantities import K_B, NUMBER, TEMPERATURE
 from eoscore.symbolic.writing import forms, missing_words, root_forms, where, written_name
 
@@ -43,7 +44,8 @@ def implicit(
         entry["value"] = temperature = root(number_of(count, known), known[number_symbol])
         here = {**known, TEMPERATURE: temperature}
         entry["sensitivities"] = _slopes(count, number_symbol, here)
-    several = [_written(expansion, count, number_symbol, here, tidied) for expansion in expanded]
+    walk = walked(count, here) if here and expanded else []
+    several = [_written(expansion, walk, number_symbol, here, tidied) for expansion in expanded]
     several.sort(key=lambda e: e["small_value"] or 0.0)
     return entry | ({"expansion": several[0], "expansions": several} if several else {})
 
@@ -59,7 +61,7 @@ def _slopes(count: sp.Expr, total: sp.Symbol, here: Mapping[sp.Symbol, float]) -
 
 def _written(
     expansion: Expansion,
-    count: sp.Expr,
+    walk: Sequence[tuple[float, float]],
     total: sp.Symbol,
     here: Mapping[sp.Symbol, float] | None,
     tidied: Callable[[sp.Expr], sp.Expr],
@@ -72,7 +74,7 @@ def _written(
     if here is None:
         return entry | {"small_value": None, "range": "small -> 0", "value": None}
     size = number(small, here)
-    reach = expansion.reach(count, (whole, small), total, here)
+    reach = expansion.reach(walk, (whole, small), total, here)
     good = f"within 1 % up to small = {reach:.2g}" if reach is not None else "not within 1 % near this N"
     # Two terms of a series say nothing where the next one is as large as they are.
     value = number(whole, here) if size < 1 else None

@@ -68,7 +68,8 @@ class _Printer(MathMLPresentationPrinter):  # type: ignore[misc] # SymPy is not 
 
 def _factors(expression: sp.Expr) -> tuple[sp.Rational, list[sp.Expr]]:
     """The rational coefficient and the other factors, nested products taken apart, sums and functions last."""
-    coefficient, rest = sp.Integer(1), []
+    rest: list[sp.Expr] = []
+    coefficient = sp.Integer(1)
     for factor in _flat(expression):
         if factor.is_Rational:
             coefficient *= factor

@@ -38,6 +38,7 @@ class Problem:
     """Z1 for the number and for the energy, as `Model` takes them, with the values of all symbols in SI.
 
     `steps` tells how Z1 came about, `conditions` must hold, `constants` names numbers without a closed form.
+    `per` is the dimension of the unbounded place, where everything is per volume; 0 elsewhere.
     """
 
     number: sp.Expr
@@ -47,6 +48,7 @@ class Problem:
     steps: tuple[str, ...] = ()
     conditions: tuple[sp.Expr, ...] = ()
     constants: tuple[Constant, ...] = ()
+    per: int = 0
 
     def model(self, *, condensed: bool) -> Model:
         """The sums of one side of the transition."""
@@ -96,6 +98,7 @@ def _assembled(known: Signed, held: HeldGas, parts: list[Boltzmann]) -> Problem:
         tuple(steps),
         tuple(condition for part in parts for condition in part.conditions),
         tuple(constant for part in parts for constant in part.constants),
+        held.dimension if held.uniform else 0,
     )
 
 

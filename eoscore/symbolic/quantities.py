@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING
 import sympy as sp
 
 from eoscore.symbolic.integrals.rule import BETA
+from eoscore.symbolic.inverse import density_of_states
 from eoscore.symbolic.partition import ALPHA, Partition
 
 if TYPE_CHECKING:
@@ -80,7 +81,7 @@ def _heat_capacity(model: Model) -> sp.Expr:
 def _density_of_states(model: Model) -> sp.Expr | None:
     """rho(E) = sum of size E^{a-1}/Gamma(a), the inverse Laplace transform of Z1 (DLMF 5.9.1)."""
     if model.number.rest != 0:
-        return None
+        return density_of_states(model.number.rest, ENERGY)
     return sp.Add(*(p.size * ENERGY ** (p.exponent - 1) / sp.gamma(p.exponent) for p in model.number.powers))
 
 

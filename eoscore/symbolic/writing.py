@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import re
 from typing import TYPE_CHECKING, Any
 
 import sympy as sp
@@ -102,11 +101,12 @@ def forms(name: str, expression: sp.Expr) -> dict[str, Any]:
 
 def root_forms(name: str, count: sp.Expr, total: sp.Symbol) -> dict[str, Any]:
     """The same of the equation count = total that `name` solves; its SymPy text is zero at the root."""
-    written = gathered(_renamed(written_out(count)))
+    plainly = _renamed(written_out(count))
+    written, total = gathered(plainly), _renamed(total)
     return {
-        **_forms(sp.Eq(written, _renamed(total), evaluate=False)),
-        "sympy": sp.sstr(gathered(_renamed(written_out(count - total))), full_prec=True),
-        "text": f"{name} solves {plain(count)} = {plain(total)}",
+        **_forms(sp.Eq(written, total, evaluate=False)),
+        "sympy": sp.sstr(sp.Add(-total, *sp.Add.make_args(written), evaluate=False), full_prec=True),
+        "text": f"{name} solves {_inline(plainly)} = {total}",
     }
 
 
@@ -116,7 +116,11 @@ def _forms(equation: sp.Eq) -> dict[str, Any]:
 
 def plain(expression: sp.Expr) -> str:
     """One line in the file's own notation: `^` for powers."""
-    return re.sub(r"\*\*", "^", sp.sstr(_renamed(written_out(expression))))
+    return _inline(_renamed(written_out(expression)))
+
+
+def _inline(expression: sp.Expr) -> str:
+    return str(sp.sstr(expression)).replace("**", "^")
 
 
 def missing_words(missing: Iterable[sp.Symbol]) -> str | None:

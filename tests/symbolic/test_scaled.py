@@ -1,5 +1,7 @@
 """Scaled Bessel functions and their derivatives against mpmath at 60 digits."""
 
+from functools import cache
+
 import mpmath
 import numpy as np
 import pytest
@@ -10,6 +12,7 @@ from eoscore.symbolic.scaled import ScaledI, ScaledK, scaled, scaled_i, scaled_k
 CASES = {"I": (scaled_i, mpmath.besseli, -1), "K": (scaled_k, mpmath.besselk, 1)}
 
 
+@cache
 def exact(bessel, sign, n, k, x):
     """By the recurrences (DLMF 10.29.1), whose differences 60 digits survive; the sign is that of the exponential."""
     if k == 0:

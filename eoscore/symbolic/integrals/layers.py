@@ -31,16 +31,18 @@ def layers(task: Task, solve: Solve) -> Boltzmann | None:
     rise = sp.expand(floor - least)
     if not rise.is_polynomial(stand_in) or not all(c.is_positive for c in sp.Poly(rise, stand_in).coeffs()):
         return None
-    moments = [_moment(term, rise, stand_in) for term in sp.Add.make_args(sp.expand(layer))]
+    moments = [_moment(term, rise, stand_in, task) for term in sp.Add.make_args(sp.expand(layer))]
     if None in moments:
         return None
     step = f"then {other.symbol}, along the floor {floor.subs(stand_in, other.symbol)}"
     return replace(inner, minimum=least, integral=sp.Add(*moments), steps=(*inner.steps, step))
 
 
-def _moment(term: sp.Expr, rise: sp.Expr, z: sp.Symbol) -> sp.Expr | None:
+def _moment(term: sp.Expr, rise: sp.Expr, z: sp.Symbol, task: Task) -> sp.Expr | None:
     """Twice int_0^oo term e^{-beta rise} dz: Euler's integral for powers of z, SymPy's integrator otherwise."""
     factor, law = monomial(term, z), monomial(rise, z)
+    if (factor is None or law is None) and not task.patient:
+        return None
     if factor is None or law is None:
         found = 2 * sp.integrate(term * sp.exp(-BETA * rise), (z, 0, sp.oo))
         return None if found.has(sp.Integral) else found
