@@ -2,59 +2,77 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from math import pi, sqrt
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Literal
 
 import numpy as np
 
 from eoscore.formula import evaluate_many, gradient, variable
 from eoscore.formula.field import Field
-from eoscore.measure.directions import LADDER, Shape, directions
-from eoscore.measure.rays import Declined, Rays
+from eoscore.measure.patches import Patches
+from eoscore.measure.rays import Declined, Line, Rays
 
 if TYPE_CHECKING:
+    from collections.abc import Callable, Sequence
+
+    from eoscore.formula import Formula
     from eoscore.measure.base import FloatArray
     from eoscore.measure.landscape_record import Minimum
+    from eoscore.measure.region import Region
 
 __all__ = ["Angular"]
 
-WANTED = 1e-11  # relative difference between two rules at which the finer one is taken
-ENOUGH = 1e-9  # and of the two finest ones
+Shape = Literal["cube", "circle", "about axis"]  # `about axis`: (rho, z) directions, rho >= 0
+
 ON_AXIS = 1e-9  # of the width of a well: a bottom this close to the axis lies on it
 ASIDE = 1e-10  # m beside the tip of a cone
-HOPELESS = 1e-3  # and above which still finer ones are not tried
-LEAST = 1e-13  # error of the finest rule: that of the roots
+ROOTS = 1e-13  # error of the roots
+BEGIN = 1e-3  # of the guessed reach: where a walk begins
+MOST = {1: 12_000, 2: 30_000}  # rays, for one or two parameters of direction
+FAR = 4.0  # times the reach of the form at the bottom: arms beyond it ask for stretched lines
+SEEN = 6000  # points of the region that are looked at from the bottom
+SIGHT = 24  # points on the way there
+FAINT = 1e-13  # share of a well that does not count
+PROBES = 60  # points that tell whether V is even
+EVEN = 1e-13  # relative difference of even values
+FEW = 2  # by which the number of rays is divided for a try
+DEGREES = {"quadratic": 2, "ring": 2, "cone": 1}
 
 
 class Angular:
     """Omega(v) = det int dn int_0^q(n, v) r^(d-1) dr in coordinates whitened by the Hessian at the bottom.
 
-    Star-shaped regions about a quadratic bottom or the tip of a cone; all else is declined.
-    end: the greatest energy (J) that will be asked. power: of q in the integral, which is the dimension, and
+    end: the greatest energy (J) that will be asked. region: what joins the wells below it. share: of this well
+    at points (d, ...), where there are others. power: of q in the integral, which is the dimension, and
     the number of coordinates for a ring. exponent: of Omega ~ v^exponent. limit: of Omega / v^exponent for
-    v -> 0, exact, of a quadratic bottom. error: relative, the greatest so far.
+    v -> 0, exact, of a quadratic bottom.
     """
 
-    def __init__(self, field: Field, bottom: Minimum, end: float) -> None:
-        if bottom.kind not in ("quadratic", "ring", "cone"):
+    def __init__(
+        self,
+        field: Field,
+        bottom: Minimum,
+        end: float,
+        region: Region,
+        share: Callable[[FloatArray], FloatArray] | None = None,
+        *,
+        few: bool = False,
+    ) -> None:
+        if bottom.kind not in DEGREES:
             raise Declined
-        self.degree = 1 if bottom.kind == "cone" else 2
+        self.degree = DEGREES[bottom.kind]
         self.frame = _cone_frame(field, bottom) if self.degree == 1 else _well_frame(bottom)
         self.start, self.v_min, self.end = np.array(bottom.position), bottom.value, end
-        self.error = LEAST
         turning = field.coordinates == ("rho", "z")
-        if (
-            turning
-            and self.degree == 2
-            and abs(bottom.position[0]) <= ON_AXIS * sqrt(end) * np.abs(self.frame[0]).max()
-        ):
+        if turning and self.degree == 2 and abs(bottom.position[0]) <= self._slack():
             self.frame = np.diag(1 / np.sqrt(np.diag(np.asarray(bottom.hessian))))
         wide = float(np.abs(self.frame[0]).max())
-        self.ring = float(self.start[0]) if turning and self.start[0] > ON_AXIS * sqrt(end) * wide else 0.0
+        self.ring = float(self.start[0]) if turning and self.start[0] > self._slack() else 0.0
         about_axis = turning and not self.ring
         walls = (*field.walls, variable("rho")) if self.ring else field.walls
         self.field = Field(field.coordinates, field.formula, walls)
-        self.shape: Shape = "about axis" if about_axis else "sphere" if len(self.frame) == 3 else "circle"
+        self.shape: Shape = "about axis" if about_axis else "cube" if len(self.frame) == 3 else "circle"
         self.power = 3 if about_axis else len(self.frame)
         self.det = float(abs(np.linalg.det(self.frame))) * (
             2 * pi if self.ring else wide if about_axis else 1.0
@@ -64,40 +82,114 @@ class Angular:
         area = 2 * pi if self.shape == "circle" else 4 * pi
         self.limit = area * self.det * 2 ** (self.power / 2) / self.power * (self.ring or 1.0)
         self.exponent = self.power / self.degree
-        self._rung = 0
-        self._walked: dict[int, tuple[Rays, FloatArray]] = {}
+        self.share = share
+        self.line = self._line(region)
+        mirrors = self._mirrors()
+        self.det *= 2 ** len(mirrors)
+        most = MOST[2 if self.shape == "cube" else 1] // (FEW if few else 1)
+        self.patches = Patches(self._rays, _first(self.shape, mirrors), most)
 
-    def __call__(self, v: FloatArray) -> FloatArray:
-        """Omega at energies (n,), 0 < v <= end. Raises Declined."""
-        coarse = self._by_rung(self._rung, v)
-        for rung in range(self._rung + 1, len(LADDER)):
-            fine = self._by_rung(rung, v)
-            miss = float(np.max(np.abs(fine - coarse) / fine))
-            if miss <= (WANTED if rung < len(LADDER) - 1 else ENOUGH):
-                self._rung = rung - 1
-                self.error = max(self.error, miss)
-                return fine
-            if miss > HOPELESS and rung >= 3:
-                break
-            coarse = fine
-        raise Declined
+    def with_error(self, v: FloatArray) -> tuple[FloatArray, FloatArray]:
+        """Omega at energies (n,), 0 < v <= end, and its relative error."""
+        total, error = self.patches.integral(v)
+        return total * self.det, np.maximum(error, ROOTS)
 
     def radius(self, v: float) -> float:
         """q at an energy in the form that V has at the bottom: q^2/2, or q for a cone."""
         return sqrt(2 * v) if self.degree == 2 else v
 
-    def _by_rung(self, rung: int, v: FloatArray) -> FloatArray:
-        """Omega at energies by one of the rules, whose rays are walked once."""
-        if rung not in self._walked:
-            unit, weight = directions(self.shape, LADDER[rung])
-            along = unit @ self.frame.T
-            rays = Rays(self.field, self.start, self.v_min, along, self.end, self.radius(self.end))
-            self._walked[rung] = rays, weight
-        rays, weight = self._walked[rung]
-        if self.ring:
-            square, cube = rays.swept(v, (2, 3))
-            return np.asarray(weight @ (self.ring * square / 2 + rays.along[:, :1] * cube / 3) * self.det)
-        return np.asarray(weight @ rays.swept(v, (self.power,))[0] * (self.det / self.power))
+    def _slack(self) -> float:
+        return ON_AXIS * sqrt(self.end) * float(np.abs(self.frame[0]).max())
+
+    def _line(self, region: Region) -> Line:
+        """Lines to all points of the region: straight ones, or ones that suit arms which reach far along the axes."""
+        back = np.linalg.inv(self.frame).T
+        box = (region.points(beyond=True) - self.start) @ back
+        low, high = box.min(axis=0), box.max(axis=0)
+        points = region.points(beyond=False)
+        points = points[:: max(1, len(points) // SEEN)]
+        if self.share is not None:
+            points = points[self.share(points.T) > FAINT]
+        points = (points - self.start) @ back
+        far = self.shape == "cube" and np.max(np.abs(points), initial=0.0) > FAR * self.radius(self.end)
+        for stretch in (self.radius(self.end), None) if far else (None,):
+            line = Line(
+                self.field, self.start, self.frame, self.v_min, low, high, stretch, clear=False, region=region
+            )
+            flat = points if stretch is None else stretch * np.arcsinh(points / stretch)
+            steps = (np.arange(SIGHT) + 0.5) / SIGHT
+            ways = line.points(np.broadcast_to(steps, (len(flat), SIGHT)), flat[:, None, :])
+            if np.all(region.chart.value(ways) <= region.ceiling):
+                return replace(line, clear=True)
+        return line
+
+    def _mirrors(self) -> set[int]:
+        """The axes of the frame along which V and the walls are even about the bottom."""
+        if self.share is not None or self.ring:
+            return set()
+        line, random = self.line, np.random.default_rng(7)
+        unit = random.uniform(-1, 1, (PROBES, len(self.start)))
+        reach = np.where(unit > 0, line.high, -line.low) * unit * random.uniform(0, 1, (PROBES, 1)) ** 2
+        formulas = (self.field.formula, *self.field.walls)
+        axes = [1] if self.shape == "about axis" else range(len(self.start))
+        return {i for i in axes if self._even(formulas, reach, i)}
+
+    def _even(self, formulas: Sequence[Formula], step: FloatArray, axis: int) -> bool:
+        """Whether formulas take the same values at steps (n, d) in the frame and at their mirror images."""
+        other = step.copy()
+        other[:, axis] *= -1
+        sides = [
+            evaluate_many(
+                formulas,
+                dict(zip(self.field.coordinates, (self.start + s @ self.frame.T).T, strict=True)),
+            )
+            for s in (step, other)
+        ]
+        return all(
+            np.allclose(
+                one, two, rtol=EVEN, atol=EVEN * float(np.max(np.abs(one), initial=0)), equal_nan=True
+            )
+            for one, two in zip(*sides, strict=True)
+        )
+
+    def _rays(self, side: FloatArray, point: FloatArray) -> Rays:
+        unit = _directions(self.shape, side, point)
+        one = np.ones(len(unit))
+        if self.shape == "about axis":
+            swept = (0 * one, 2 * pi * np.sin(point[:, 0]))
+        elif self.ring:
+            swept = (self.ring * one, unit @ self.frame[0])
+        else:
+            swept = (0 * one, one) if self.shape == "cube" else (one, 0 * one)
+        return Rays(self.line, unit, self.end, BEGIN * self.radius(self.end), swept, self.share)
+
+
+def _first(shape: Shape, mirrors: set[int]) -> list[tuple[int, tuple[float, ...], tuple[float, ...]]]:
+    """The boxes of parameters that make up all directions, but for mirror images."""
+    if shape == "cube":
+        low = [0.0 if axis in mirrors else -1.0 for axis in range(3)]
+        sides = [side for side in range(6) if side < 3 or side % 3 not in mirrors]
+        return [(side, (low[(side + 1) % 3], low[(side + 2) % 3]), (1.0, 1.0)) for side in sides]
+    if shape == "about axis":
+        halves = [(0.0, pi / 2)] if mirrors else [(0.0, pi / 2), (pi / 2, pi)]
+        return [(0, (low,), (high,)) for low, high in halves]
+    quarters = {(): (0, 1, 2, 3), (0,): (0, 3), (1,): (0, 1), (0, 1): (0,)}[tuple(sorted(mirrors))]
+    return [(0, (k * pi / 2,), ((k + 1) * pi / 2,)) for k in quarters]
+
+
+def _directions(shape: Shape, side: FloatArray, point: FloatArray) -> FloatArray:
+    """Directions (n, d): of unit length, or, on a cube, as far as its sides, with int dn q^2 = int du dv q^2."""
+    if shape == "circle":
+        return np.stack([np.cos(point[:, 0]), np.sin(point[:, 0])], axis=1)
+    if shape == "about axis":
+        return np.stack([np.sin(point[:, 0]), np.cos(point[:, 0])], axis=1)
+    axis, sign = side % 3, np.where(side < 3, 1.0, -1.0)
+    found = np.empty((len(point), 3))
+    rows = np.arange(len(point))
+    found[rows, axis] = sign
+    found[rows, (axis + 1) % 3] = point[:, 0]
+    found[rows, (axis + 2) % 3] = point[:, 1]
+    return found
 
 
 def _well_frame(bottom: Minimum) -> FloatArray:

@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from eoscore.errors import NoAnswerError
-from eoscore.measure.about import Wells
+from eoscore.measure.about import NEARING, OPEN, Wells, refuse_infinite
 from eoscore.measure.bottom import beginning
 from eoscore.measure.coordinate import dimension
 from eoscore.measure.critical import saddles
@@ -29,9 +29,8 @@ __all__ = ["cells"]
 DOUBT = 0.3  # of the difference between boxes and halved boxes, which is eight times the error of the latter
 RUNGS = (1.45, 2.0, 4.0)  # ratio of the levels for which boxes of their own are made: few, many, without end
 # Shares of the level up to which the wells may be taken along rays.
-STARTS = np.concatenate([[0.9, 0.8, 0.7, 0.6], 0.5 * 0.7 ** np.arange(60)])
-OPEN = 0.99  # of the depth: a ceiling below this keeps away from an escape at infinity
-GROWTH = 1.4  # power of 1/(depth - v) in Omega at which, with 3/2 from the momenta, states are without number
+STARTS = np.concatenate([[0.85, 0.6], 0.4 * 0.5 ** np.arange(40)])
+GOOD = 3e-6  # error at which they are
 FADING = 0.2  # of the joint: how far above it boxes are led to the value of the rays
 LOWEST = 2e-3  # of the level, where they may not: below it Omega is taken as a power
 
@@ -47,7 +46,7 @@ def cells(field: Field, landscape: Landscape, ceiling: float) -> Measure | None:
     top = min(landscape.depth, ceiling)
     boxed = _Boxed(field, landscape, top)
     if landscape.escape is not None and landscape.escape.position is None and top > OPEN * landscape.depth:
-        boxed.refuse_infinite()
+        refuse_infinite(*(boxed.under(float(share * boxed.level)) for share in NEARING))
     exponent, scale, foot = boxed.beginning()
     rises = tuple(minimum.value - landscape.bottom.value for minimum in landscape.minima[1:])
     return Sampled(
@@ -72,6 +71,7 @@ class _Boxed:
         self.field, self.v_min = field, bottom.value
         self.minima = landscape.minima
         self.errors: dict[int, float] = {}
+        self.low_error = 0.0  # of the rays
         self.level = top if top < inf else typical_level(field, bottom.value)
         self.slabs: dict[int, tuple[Slabs, Slabs]] = {}
         self.rays, self.joint = self._low(landscape)
@@ -80,12 +80,13 @@ class _Boxed:
     def _low(self, landscape: Landscape) -> tuple[Wells | None, float]:
         """The wells along rays, as high as that goes."""
         for share in STARTS:
+            end = float(share * self.level)
             try:
-                return Wells(self.field, landscape.minima, float(share * self.level)), float(
-                    share * self.level
-                )
+                wells = Wells(self.field, landscape.minima, end, few=True)
             except Declined:
-                continue
+                break
+            if np.all(wells.with_error(end * np.array([0.5, 1.0]))[1] <= GOOD):
+                return wells, end
         return None, 0.0
 
     def saddles(self) -> tuple[float, ...]:
@@ -93,22 +94,8 @@ class _Boxed:
         lines = held_lines(self.field, self.minima, self.level, SKETCH[len(self.field.coordinates)])
         return saddles(self.field, lines, self.v_min, self.level)
 
-    def refuse_infinite(self) -> None:
-        """Raise NoAnswerError where Omega grows like (depth - v)^-3/2 or faster towards an escape at infinity."""
-        shares = np.array([7 / 8, 31 / 32])
-        lower, upper = (self._under(float(share * self.level)) for share in shares)
-        if upper > lower * 4**GROWTH:
-            raise NoAnswerError(
-                "the number of states below the escape energy is infinite: towards it the region grows without "
-                "bound. Give the trap an E_max below the depth"
-            )
-
-    def _under(self, v: float) -> float:
-        """Omega at one energy, from regions of its own."""
-        try:
-            return float(Wells(self.field, self.minima, v)(np.array([v]))[0])
-        except Declined:
-            pass
+    def under(self, v: float) -> float:
+        """Omega at one energy, from boxes of its own."""
         boxes = held_boxes(self.field, self.minima, v)
         return float(Slabs(self.field, boxes, self.v_min).below(np.array([v]))[0])
 
@@ -131,12 +118,19 @@ class _Boxed:
         result = np.empty_like(v)
         low = v <= self.joint
         if low.any():
-            result[low] = self.rays(v[low])
+            result[low] = self._along(v[low])
         if not low.all():
             joint = np.array([self.joint])
-            miss = self.rays(joint) - self._boxes(joint * (1 + 1e-7))  # in the boxes that stand above it
+            miss = self._along(joint) - self._boxes(joint * (1 + 1e-7))  # in the boxes that stand above it
             result[~low] = self._boxes(v[~low]) + miss * np.exp(-(((v[~low] / self.joint - 1) / FADING) ** 2))
         return result
+
+    def _along(self, v: FloatArray) -> FloatArray:
+        if self.rays is None:
+            return np.zeros_like(v)
+        volume, error = self.rays.with_error(v)
+        self.low_error = max(self.low_error, float(np.max(error)))
+        return volume
 
     def _boxes(self, v: FloatArray) -> FloatArray:
         """Volume in boxes below energies, in any order, each in boxes that are made for its height."""
@@ -154,7 +148,7 @@ class _Boxed:
 
     def error_below(self, v: FloatArray) -> FloatArray:
         """Relative error up to energies, as far as it is known."""
-        low = self.rays.error if self.rays is not None else 0.0
+        low = self.low_error
         known = sorted(self.errors)
         worst = np.maximum.accumulate([low, *(self.errors[k] for k in known)])
         place = np.searchsorted(known, self._rungs(np.maximum(v, 1e-300)), side="right")

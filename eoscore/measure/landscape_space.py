@@ -13,6 +13,7 @@ from eoscore.measure.landscape_descent import descend, distinct
 from eoscore.measure.landscape_grid import Grid, Leak
 from eoscore.measure.landscape_record import Escape, Landscape, Minimum, sense
 from eoscore.measure.landscape_routes import lowest_way_out
+from eoscore.measure.landscape_valley import lowest_valley
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
@@ -40,6 +41,10 @@ def survey_space(field: Field) -> Landscape:
         return Landscape(field.coordinates, None, why=_nothing(chart, grid))
     bottom = minimum_at(chart, points[0], float(values[0]), float(scales[0]))
     leak = grid.leak(points[0])
+    least, far = 10.0 ** min(axis.least for axis in axes), 10.0 ** (max(axis.most for axis in axes) + 1)
+    valley = lowest_valley(chart, points[0], bottom.value, least, far)
+    if valley is not None and (leak is None or valley.energy < leak.energy - 1e-9 * abs(leak.energy - bottom.value)):
+        leak = valley
     escape, error = _escape(chart, grid, leak, points, bottom.value)
     ceiling = min([escape.energy if escape else np.inf, leak.energy if leak else np.inf])
     minima = _joined(chart, grid, (points, values, scales), bottom, ceiling)

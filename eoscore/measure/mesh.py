@@ -19,7 +19,7 @@ if TYPE_CHECKING:
     from eoscore.measure.base import FloatArray
     from eoscore.measure.landscape_record import Minimum
 
-__all__ = ["Boxes", "held_boxes", "held_lines", "typical_level"]
+__all__ = ["Boxes", "held_boxes", "held_grid", "held_lines", "typical_level"]
 
 SKETCH = {2: 160, 3: 40}  # points along each axis of the grid that finds the extent
 FINE = {2: 240, 3: 44}  # and of the grid whose boxes are kept
@@ -54,6 +54,15 @@ def held_boxes(field: Field, minima: Sequence[Minimum], ceiling: float) -> Boxes
     wells, v_min = [minimum.position for minimum in minima], minima[0].value
     lines = held_lines(field, minima, ceiling, FINE[chart.dimension])
     return _boxes(lines, *_held(chart, lines, wells, v_min, ceiling))
+
+
+def held_grid(
+    field: Field, minima: Sequence[Minimum], ceiling: float, count: int
+) -> tuple[list[FloatArray], NDArray[np.bool_]]:
+    """Points along each axis as `held_lines` gives them, and which points of their grid are held."""
+    lines = held_lines(field, minima, ceiling, count)
+    wells = [minimum.position for minimum in minima]
+    return lines, _held(Chart(field), lines, wells, minima[0].value, ceiling)[0]
 
 
 def held_lines(field: Field, minima: Sequence[Minimum], ceiling: float, count: int) -> list[FloatArray]:

@@ -1,123 +1,220 @@
-"""Rays from the bottom of a potential: the stretches of each on which V is below an energy."""
+"""Rays from a place in a potential, and the space that they sweep where V is below an energy."""
 
 from __future__ import annotations
 
+from dataclasses import dataclass
+from functools import cached_property
+from itertools import pairwise
 from typing import TYPE_CHECKING
 
 import numpy as np
 
-from eoscore.formula import evaluate_many, gradient
+from eoscore.formula import call, constant, evaluate_many, variable
 from eoscore.measure.coordinate import inside
+from eoscore.measure.rules import legendre
+from eoscore.measure.walk import Rows, walk
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
     from numpy.typing import NDArray
 
+    from eoscore.formula import Formula
     from eoscore.formula.field import Field
     from eoscore.measure.base import FloatArray
+    from eoscore.measure.region import Region
 
     Which = NDArray[np.intp]
 
-__all__ = ["Declined", "Rays"]
+__all__ = ["Declined", "Line", "Rays"]
 
-RATIO = 1.15  # of neighbouring points of a walk along a ray
-BEGIN = 1e-3  # of the guessed reach: where a walk begins
-STEPS = 260  # of a walk: RATIO^260 = 6e15
-PASS = 1e-9  # a ray whose summit is this close (relative) below the end energy runs over the pass itself
+SMALL, TERMS = 1.0, 8  # below: a series, whose next term is below rounding
+NEAR = 1e-5  # relative step of Newton's rule after which the next one is below rounding
+WHOLE = 1 - 1e-12  # a share that counts as all
+SHARES = 10  # Gauss points of the share of a well between two rows
 
 
 class Declined(Exception):  # noqa: N818 - no error: the route does not fit, another one is tried
     """The regions below an energy are not what a route is made for."""
 
 
-class Rays:
-    """Rays x = start + along q, q >= 0, each walked until V - V_min reaches `end`; `guess` is a q near there.
+@dataclass(frozen=True)
+class Line:
+    """V - V_min along x = start + frame (n q), q >= 0, or, stretched, along x = start + frame (s sinh(n q / s)).
 
-    Raises Declined where V turns down on a ray before, or a wall stands there.
+    low, high (d,): ends of the region in the frame. stretch: s, where arms reach far along the axes of the frame.
+    clear: every ray leaves the region once.
+    """
+
+    field: Field
+    start: FloatArray
+    frame: FloatArray
+    v_min: float
+    low: FloatArray
+    high: FloatArray
+    stretch: float | None
+    clear: bool
+    region: Region
+
+    @cached_property
+    def formulas(self) -> tuple[Formula, Formula]:
+        """V and dV/dq, of q and the parts n0, n1, ... of the direction in the frame."""
+        q, s = variable("q"), self.stretch
+        steps = [variable(f"n{i}") * q for i in range(len(self.start))]
+        if s is not None:
+            steps = [s * call("sinh", step / s) for step in steps]
+        along = {
+            name: sum((float(part) * step for part, step in zip(row, steps, strict=True)), constant(float(x)))
+            for name, x, row in zip(self.field.coordinates, self.start, self.frame, strict=True)
+        }
+        on_it = self.field.formula.substitute(along)
+        return on_it, on_it.derivative("q")
+
+    def rise(self, q: FloatArray, n: FloatArray) -> tuple[FloatArray, FloatArray]:
+        """V - V_min and dV/dq at q (rays,) in directions n (rays, d); inf where V is not defined."""
+        v, slope = evaluate_many(self.formulas, {"q": q, **{f"n{i}": part for i, part in enumerate(n.T)}})
+        v = np.broadcast_to(v, q.shape) - self.v_min
+        return np.where(np.isnan(v), np.inf, v), np.broadcast_to(slope, q.shape)
+
+    def columns(self, q: FloatArray, n: FloatArray) -> list[FloatArray]:
+        """The coordinates of points at q (...) in directions n (..., d), each of shape (...)."""
+        steps = [q * part for part in np.moveaxis(n, -1, 0)]
+        if self.stretch is not None:
+            steps = [self.stretch * np.sinh(step / self.stretch) for step in steps]
+        return [
+            np.asarray(x + sum(part * step for part, step in zip(row, steps, strict=True) if part))
+            for x, row in zip(self.start.tolist(), self.frame.tolist(), strict=True)
+        ]
+
+    def points(self, q: FloatArray, n: FloatArray) -> FloatArray:
+        """Points (..., d) at q (...) in directions n (..., d)."""
+        return np.stack(self.columns(q, n), axis=-1)
+
+    def worth(self, q: FloatArray, n: FloatArray) -> FloatArray:
+        """By how much space is stretched at q (...) in directions n (..., d)."""
+        if self.stretch is None:
+            return np.ones(q.shape)
+        return np.asarray(np.prod(np.cosh(n * q[..., None] / self.stretch), axis=-1))
+
+    def within(self, q: FloatArray, n: FloatArray) -> NDArray[np.bool_]:
+        """Whether points lie inside all walls."""
+        return inside(self.field, dict(zip(self.field.coordinates, self.columns(q, n), strict=True)))
+
+    def leaving(self, n: FloatArray) -> FloatArray:
+        """The q at which rays leave the box about the region."""
+        ends = np.where(n > 0, self.high, self.low)
+        if self.stretch is not None:
+            ends = self.stretch * np.arcsinh(ends / self.stretch)
+        with np.errstate(divide="ignore", invalid="ignore"):
+            q = ends / n
+        return np.asarray(np.min(np.where(np.isnan(q) | (q < 0), np.inf, q), axis=1))
+
+
+class Rays:
+    """Rays walked once, up to the energy `end`; square, cube (n,): the space swept is int (square q + cube q^2) dq.
+
+    along: directions in the frame of the line. share: of a well, at points (d, ...), by which that integrand is
+    multiplied; None where it is 1.
     """
 
     def __init__(
-        self, field: Field, start: FloatArray, v_min: float, along: FloatArray, end: float, guess: float
+        self,
+        line: Line,
+        along: FloatArray,
+        end: float,
+        begin: float,
+        swept: tuple[FloatArray, FloatArray],
+        share: Callable[[FloatArray], FloatArray] | None,
     ) -> None:
-        self.field, self.start, self.v_min, self.along = field, start, v_min, along
-        self.formulas = (field.formula, *gradient(field.formula, field.coordinates))
-        rows = self._walk(end, guess)
-        self.q, self.v, self.d = (np.array(column) for column in zip(*rows, strict=True))
+        self.line, self.along, self.share = line, along, share
+        self._square, self._cube = swept
+        self.rows: Rows = walk(line, along, end, begin, share)
+        self._whole = np.empty((0, 0), dtype=bool)
+        self._before = None if share is None else self._cumulated()
 
-    def swept(self, v: FloatArray, powers: tuple[int, ...]) -> list[FloatArray]:
-        """For each power k, int k q^(k-1) dq up to where V - V_min = v on each ray: (rays, n)."""
-        below = self.v[:, :, None] < v
-        step, ray, column = np.nonzero(below[:-1] & ~below[1:])
-        q = self._roots(step, ray, v[column])
-        shape, flat = (len(self.along), v.size), ray * v.size + column
-        end = np.where(below[-1], self.q[-1][:, None], 0.0)
-        return [end**k + np.bincount(flat, q**k, shape[0] * shape[1]).reshape(shape) for k in powers]
+    def swept(self, v: FloatArray, which: Which) -> FloatArray:
+        """What rays `which` sweep where V - V_min is below ascending energies (n,): (rays, n)."""
+        height = self.rows.v[:, which]
+        low, high = np.minimum(height[:-1], height[1:]), np.maximum(height[:-1], height[1:])
+        step, ray = np.nonzero((high >= v[0]) & (low < v[-1]))
+        first = np.searchsorted(v, low[step, ray], side="right")
+        count = np.searchsorted(v, high[step, ray], side="right") - first
+        column = np.arange(count.sum()) - np.repeat(np.cumsum(count) - count - first, count)
+        step, ray = np.repeat(step, count), np.repeat(ray, count)
+        place = self._roots(step, which[ray], v[column])
+        sense = np.where(height[step, ray] < height[step + 1, ray], 1.0, -1.0)
+        parts = sense * self._content(place, step, which[ray])
+        total = np.bincount(ray * v.size + column, parts, which.size * v.size).reshape(which.size, v.size)
+        last = np.full(which.size, len(height) - 2)
+        whole = self._content(self.rows.q[-1, which], last, which)
+        return np.asarray(total + np.where(height[-1][:, None] < v, whole[:, None], 0.0))
 
-    def rise(self, q: FloatArray, which: Which) -> tuple[FloatArray, FloatArray]:
-        """V - V_min and dV/dq at q (n,) on rays `which` (n,)."""
-        along = self.along[which].T
-        x = dict(zip(self.field.coordinates, self.start[:, None] + along * q, strict=True))
-        values = [np.broadcast_to(value, q.shape) for value in evaluate_many(self.formulas, x)]
-        slope = sum(n * g for n, g in zip(along, values[1:], strict=True))
-        return values[0] - self.v_min, np.asarray(slope)
+    def _content(self, q: FloatArray, step: Which, which: Which) -> FloatArray:
+        """Swept from 0 to q, which lies between rows step and step + 1."""
+        if self._before is None:
+            return self._plain(q, which)
+        start, result = self.rows.q[step, which], self._before[step, which]
+        whole = self._whole[step, which]
+        mine = which[whole]
+        result[whole] += self._plain(q[whole], mine) - self._plain(start[whole], mine)
+        result[~whole] += self._weighed(start[~whole], q[~whole], which[~whole])
+        return result
+
+    def _plain(self, q: FloatArray, which: Which) -> FloatArray:
+        """Swept from 0 to q without any share."""
+        if self.line.stretch is not None:
+            return stretched(q, self.along[which] / self.line.stretch)
+        return np.asarray(q**2 * (self._square[which] / 2 + self._cube[which] * q / 3))
+
+    def _weighed(self, start: FloatArray, end: FloatArray, which: Which) -> FloatArray:
+        """The integral between two places on each ray, with the share and the stretching of space."""
+        if self.share is None or not start.size:
+            return np.zeros_like(end)
+        t, w = legendre(SHARES)
+        q = start[:, None] + (end - start)[:, None] * t
+        n = self.along[which][:, None, :]
+        value = q * (self._square[which][:, None] + self._cube[which][:, None] * q) * self.line.worth(q, n)
+        value = value * self.share(np.array(self.line.columns(q, n)))
+        return np.asarray(value @ w * (end - start))
+
+    def _cumulated(self) -> FloatArray:
+        """The integral up to each row, and so (rows, rays); most stretches lie wholly in the share."""
+        q, rays = self.rows.q, np.arange(len(self.along))
+        if self.share is None:
+            return np.zeros_like(q)
+        share = self.share(np.array(self.line.columns(q, self.along)))
+        self._whole = np.minimum(share[:-1], share[1:]) > WHOLE
+        total = np.zeros_like(q)
+        for k, (start, end) in enumerate(pairwise(q)):
+            part = np.zeros_like(end)
+            whole = self._whole[k] & (end > start)
+            part[whole] = self._plain(end[whole], rays[whole]) - self._plain(start[whole], rays[whole])
+            mixed = np.flatnonzero(~self._whole[k] & (end > start))
+            part[mixed] = self._weighed(start[mixed], end[mixed], mixed)
+            total[k + 1] = total[k] + part
+        return total
 
     def _roots(self, step: Which, ray: Which, wanted: FloatArray) -> FloatArray:
-        """q at which V - V_min is as wanted, between points step and step + 1 of rays: Newton in brackets."""
-        lo, hi = self.q[step, ray], self.q[step + 1, ray]
-        v0, v1 = self.v[step, ray], self.v[step + 1, ray]
-        sense = np.sign(v1 - v0)
-        q = _inverse(wanted, lo, hi, v0, v1, self.d[step, ray], self.d[step + 1, ray])
+        """q at which V - V_min is as wanted, between rows step and step + 1 of rays: Newton in brackets."""
+        rows = self.rows
+        lo, hi = rows.q[step, ray], rows.q[step + 1, ray]
+        v0, v1 = rows.v[step, ray], rows.v[step + 1, ray]
+        sense = np.where(v1 > v0, 1.0, -1.0)
+        q = _inverse(wanted, lo, hi, v0, v1, rows.d[step, ray], rows.d[step + 1, ray])
         left = np.arange(q.size)
-        for turn in range(40):
+        for _ in range(60):
             at = q[left]
-            v, slope = self.rise(at, ray[left])
+            v, slope = self.line.rise(at, self.along[ray[left]])
             miss = (v - wanted[left]) * sense[left]
             lo[left], hi[left] = np.where(miss < 0, at, lo[left]), np.where(miss > 0, at, hi[left])
             with np.errstate(all="ignore"):
                 new = at - miss * sense[left] / slope
             new = np.where((new >= lo[left]) & (new <= hi[left]), new, (lo[left] + hi[left]) / 2)
             q[left] = new
-            left = left[np.abs(new - at) > (1e-8 if turn < 8 else 1e-14) * new]
+            left = left[np.abs(new - at) > NEAR * new]
             if not left.size:
                 break
         return q
-
-    def _walk(self, end: float, guess: float) -> list[tuple[FloatArray, FloatArray, FloatArray]]:
-        """Rows q, V - V_min, dV/dq of all rays."""
-        rays = np.arange(len(self.along))
-        q = np.full(rays.size, guess * BEGIN)
-        v, d = self.rise(q, rays)
-        rows = [(0 * q, 0 * q, 0 * q), (q, v, d)]
-        active = rays[v < end]
-        for _ in range(STEPS):
-            if not active.size:
-                return rows
-            before = rows[-1][0]
-            q, v, d = (column.copy() for column in rows[-1])
-            q[active] *= RATIO
-            v[active], d[active] = self.rise(q[active], active)
-            down = active[d[active] < 0]
-            if down.size:
-                q[down] = self._summit(before[down], q[down], down)
-                v[down], d[down] = self.rise(q[down], down)
-                if np.any(v[down] < end * (1 - PASS)):
-                    raise Declined
-            if not self._inside(q[active], active).all():
-                raise Declined
-            rows.append((q, v, d))
-            active = active[(v[active] < end) & (d[active] > 0) & ~np.isin(active, down)]
-        raise Declined
-
-    def _inside(self, q: FloatArray, rays: Which) -> NDArray[np.bool_]:
-        x = self.start[:, None] + self.along[rays].T * q
-        return inside(self.field, dict(zip(self.field.coordinates, x, strict=True)))
-
-    def _summit(self, lo: FloatArray, hi: FloatArray, rays: Which) -> FloatArray:
-        """The last place before V turns down."""
-        for _ in range(50):
-            middle = (lo + hi) / 2
-            rises = self.rise(middle, rays)[1] > 0
-            lo, hi = np.where(rises, middle, lo), np.where(rises, hi, middle)
-        return lo
 
 
 def _inverse(
@@ -129,10 +226,37 @@ def _inverse(
     d0: FloatArray,
     d1: FloatArray,
 ) -> FloatArray:
-    """q(v) between two points by the cubic that has both values and slopes dq/dv, else by the straight line."""
+    """q(v) between two points, by the cubic in sqrt(v) that has both values and slopes, else by the straight line."""
     with np.errstate(all="ignore"):
-        rise, step = v1 - v0, hi - lo
-        t = (wanted - v0) / rise
+        root0, root1, wanted = (np.sqrt(np.maximum(height, 0.0)) for height in (v0, v1, wanted))
+        d0, d1 = d0 / (2 * root0), d1 / (2 * root1)
+        rise, step = root1 - root0, hi - lo
+        t = (wanted - root0) / rise
         cubic = lo + t * (rise / d0 * (1 - t) ** 2 - rise / d1 * t * (1 - t)) + step * t**2 * (3 - 2 * t)
         linear = np.clip(lo + step * t, lo, hi)
     return np.where((cubic >= lo) & (cubic <= hi), cubic, np.where(np.isnan(linear), (lo + hi) / 2, linear))
+
+
+def stretched(q: FloatArray, rate: FloatArray) -> FloatArray:
+    """int_0^q t^2 cosh(a t) cosh(b t) cosh(c t) dt for rates (n, 3), by the four cosh of a +- b +- c."""
+    total = np.zeros_like(q)
+    for one in (1, -1):
+        for other in (1, -1):
+            total += _moment(q, rate @ np.array([1.0, one, other]))
+    return total / 4
+
+
+def _moment(q: FloatArray, rate: FloatArray) -> FloatArray:
+    """int_0^q t^2 cosh(rate t) dt."""
+    u = np.abs(rate * q)
+    result = np.empty_like(u)
+    small = u < SMALL
+    square, series = u[small] ** 2, np.zeros(np.count_nonzero(small))
+    for k in range(TERMS, -1, -1):
+        series = series * square / ((2 * k + 1) * (2 * k + 2)) + 1 / (2 * k + 3)
+    result[small] = series
+    u = u[~small]
+    up = np.exp(u)
+    down = 1 / up
+    result[~small] = ((up - down) * (u * u + 2) / 2 - u * (up + down)) / u**3
+    return np.asarray(q**3 * result)

@@ -180,7 +180,7 @@ class Sampled(Measure):
     def _resolved(self, panel: Panel, tail: float, before: float) -> bool:
         """Whether a series is as good as it gets; `before` is the tail of the panel that was halved for it."""
         if (
-            tail <= max(SHARPEST, 0.3 * float(self._function_error(np.asarray(panel.last))))
+            tail <= max(SHARPEST, float(self._function_error(np.asarray(panel.last))))
             or panel.stop - panel.start <= FINEST[panel.kind]
         ):
             return True
