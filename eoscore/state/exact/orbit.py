@@ -66,14 +66,14 @@ class Orbits:
         p = np.sqrt(2 * self.well.mass * np.maximum(left, 0.0))
         return np.asarray((p * (6 * s * (1 - s) * w)).sum(axis=-1) * (outer - inner) / (pi * HBAR))
 
-    def volume(self, energy: float) -> float:
-        """2/(3 pi hbar^3) int r^2 p^3 dr of the first row at one energy, J: states of all angular momenta, roughly."""
+    def volume(self, energy: float, states: Callable[[FloatArray, FloatArray], FloatArray]) -> float:
+        """int states(r, p/hbar) dr of the first row at one energy, J: those of all angular momenta, roughly."""
         inner, outer = (float(r[0, 0]) for r in self.turning(np.array([[energy]])))
         s, w = legendre(NODES)
         r = inner + (outer - inner) * s
         left = np.maximum(energy - self.well.potential(r), 0.0)
         p = np.sqrt(2 * self.well.mass * left) / HBAR
-        return float((outer - inner) * (w * r**2 * p**3).sum() * 2 / (3 * pi))
+        return float((outer - inner) * (w * states(r, p)).sum())
 
     def turning(self, energy: FloatArray) -> tuple[FloatArray, FloatArray]:
         """The inner and the outer turning point, m; the wall where it comes first."""

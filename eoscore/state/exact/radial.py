@@ -1,4 +1,4 @@
-"""The levels of an isotropic V(r): one radial problem for each angular momentum."""
+"""The levels of V(r) in space or V(rho) in a plane: one radial problem for each angular momentum."""
 
 from __future__ import annotations
 
@@ -10,15 +10,15 @@ import numpy as np
 from eoscore.constants import HBAR
 from eoscore.errors import NoAnswerError
 from eoscore.measure.landscape import survey
-from eoscore.measure.rules import legendre
+from eoscore.state.exact.angular import ALL, Plane, Space
 from eoscore.state.exact.direction import Atoms, OnAtoms
-from eoscore.state.exact.integers import joined
 from eoscore.state.exact.orbit import Orbits, Well
 from eoscore.state.exact.spectral import converged
 from eoscore.state.exact.tail import ladder
 
 if TYPE_CHECKING:
     from eoscore.formula.field import Field
+    from eoscore.state.exact.angular import Momenta
     from eoscore.state.reading import FloatArray
 
 __all__ = ["Radial", "radial_levels"]
@@ -26,14 +26,12 @@ __all__ = ["Radial", "radial_levels"]
 LEVELS = 16  # found one by one for each angular momentum
 MOST = 32  # where these do not do
 DECAY = 10.0  # e-foldings of the wave beyond its turning points
-ALL = 25  # angular momenta below are taken one by one; above, as an integral on panels that double
-NODES = 8
 GOOD = 1e-5
 PANELS = 20
 
 
 class Shells(NamedTuple):
-    """Some angular momenta l: their weights in a sum over all (2 l + 1)-fold levels; the levels, J from the bottom."""
+    """Some angular momenta: their weights in a sum over all states, and their levels, J from the bottom."""
 
     weight: FloatArray
     orbits: Orbits
@@ -41,7 +39,7 @@ class Shells(NamedTuple):
 
 
 class Radial(OnAtoms):
-    """Levels of angular momentum l, each (2 l + 1)-fold; solved as far as a temperature asks for them."""
+    """Levels of V(r), or of V(rho) in its plane, for each angular momentum; solved as far as a temperature asks."""
 
     def __init__(self, field: Field, mass: float) -> None:
         landscape = survey(field)
@@ -50,13 +48,15 @@ class Radial(OnAtoms):
                 "`levels exact` wants a trap that holds at every energy: a leaky one has no true levels"
             )
         super().__init__()
-        bottom, slope = landscape.bottom.value, field.formula.derivative("r")
+        (name,) = field.coordinates
+        self.momenta: Momenta = Plane() if name == "rho" else Space()
+        bottom, slope = landscape.bottom.value, field.formula.derivative(name)
 
         def potential(r: FloatArray) -> FloatArray:
-            return np.asarray(np.broadcast_to(field.formula.evaluate({"r": r}), np.shape(r)) - bottom)
+            return np.asarray(np.broadcast_to(field.formula.evaluate({name: r}), np.shape(r)) - bottom)
 
         def rise(r: FloatArray) -> FloatArray:
-            return np.asarray(np.broadcast_to(slope.evaluate({"r": r}), np.shape(r)))
+            return np.asarray(np.broadcast_to(slope.evaluate({name: r}), np.shape(r)))
 
         self.well = Well(potential, rise, mass, _wall(field, landscape.bottom.position[0]))
         self.levels = LEVELS
@@ -66,8 +66,8 @@ class Radial(OnAtoms):
         self.gap = float(min(first[0, 1], first[1, 0])) - self.lowest
 
     def below(self, energy: float) -> float:
-        """See `Direction`: the phase space 2/(3 pi hbar^3) int (r p)^2 p dr."""
-        return self.shells[0].orbits.take(slice(0, 1)).volume(energy + self.lowest)
+        """See `Direction`."""
+        return self.shells[0].orbits.take(slice(0, 1)).volume(energy + self.lowest, self.momenta.states)
 
     def refined(self) -> bool:
         """See `OnAtoms`."""
@@ -99,23 +99,18 @@ class Radial(OnAtoms):
         return e.ravel(), (w * shells.weight[:, None]).ravel()
 
     def _shell(self, panel: int) -> Shells:
-        """The first angular momenta, or those of a panel of the integral over l + 1/2."""
-        if panel == 0:
-            return self._solved(np.arange(ALL + 0.0), (2 * np.arange(ALL) + 1.0) * joined(ALL))
-        start = (ALL - 0.5) * 2.0 ** (panel - 1)
-        x, w = legendre(NODES)
-        return self._solved(start * (1 + x) - 0.5, start * w * 2 * start * (1 + x))
-
-    def _solved(self, angular: FloatArray, weight: FloatArray) -> Shells:
-        squared = angular * (angular + 1)
-        # Langer: the half beside l makes the smooth count right near r = 0 (Phys. Rev. 51, 669 (1937))
-        orbits = Orbits(self.well, squared + 0.25, self._centers(squared + 0.25))
+        """The levels of the first angular momenta, or of those of a panel."""
+        angular, weight = self.momenta.panel(panel)
+        squared, smooth = self.momenta.squared(angular), self.momenta.smooth(angular)
+        orbits = Orbits(self.well, smooth, self._centers(smooth))
         low, high = self._ends(orbits, _energies(orbits, float(self.levels)))
 
         def turned(r: FloatArray) -> FloatArray:
             return self.well.turned(r, squared[:, None]) - orbits.floor[:, None]
 
-        energies, error = converged(turned, low, high, HBAR**2 / (2 * self.well.mass), self.levels)
+        energies, error = converged(
+            turned, low, high, HBAR**2 / (2 * self.well.mass), self.levels, planar=self.momenta.planar
+        )
         if not error < GOOD:
             raise NoAnswerError(
                 f"the levels of angular momentum {angular[0]:.0f} have not converged (relative difference {error:.1e} "
@@ -155,7 +150,7 @@ class Radial(OnAtoms):
 
 
 def radial_levels(field: Field, mass: float) -> Radial:
-    """All levels of V(r), J from its bottom. NoAnswerError where they do not converge."""
+    """All levels of V(r) or V(rho), J from its bottom. NoAnswerError where they do not converge."""
     return Radial(field, mass)
 
 
@@ -164,7 +159,7 @@ def _wall(field: Field, start: float) -> float:
         return inf
 
     def inside(r: float) -> bool:
-        point = {"r": np.array([r])}
+        point = {field.coordinates[0]: np.array([r])}
         return all(float(np.ravel(wall.evaluate(point))[0]) > 0 for wall in field.walls)
 
     low, high = max(start, 1e-12), max(start, 1e-12)
@@ -181,7 +176,9 @@ def _wall(field: Field, start: float) -> float:
 def _energies(orbits: Orbits, number: float) -> FloatArray:
     """The energy of each row below which so many levels lie, to a percent and not below it."""
     row = 1.2 ** np.arange(48.0)
-    step = HBAR**2 / (orbits.well.mass * orbits.center**2)[:, None] * row
+    step = (
+        HBAR**2 / (orbits.well.mass * float(orbits.center.max()) ** 2) * np.tile(row, (orbits.floor.size, 1))
+    )
     while True:
         counted = orbits.count(orbits.floor[:, None] + step)
         if np.all(counted[:, -1] >= number):

@@ -23,7 +23,7 @@ __all__ = ["converged", "eigenvalues"]
 # lose a hundred times what it gains on a busy machine: the smallest pair mostly does.
 GRIDS = ((54, 63), (80, 100), (130, 160), (220, 260), (380, 440))
 EVEN = (
-    0.94  # of the way from the spacing of Legendre points to even spacing: fewer points for each wave length
+    0.94  # of the way from the spacing of Legendre points to an even one: fewer points for each wave length
 )
 WANTED = 1e-9  # relative difference of two grids that is good enough not to try the next pair
 ROUGH = 1e-6  # an error below that another grid does not make much smaller is one of rounding
@@ -37,14 +37,23 @@ def eigenvalues(
     kinetic: float,
     count: int,
     points: int,
+    *,
+    planar: bool = False,
 ) -> FloatArray:
     """The lowest `count` levels (J) of -kinetic d^2/dx^2 + V between each low and high, kinetic = hbar^2/2m in J m^2.
 
     low, high: (problems,), m; `potential` takes and gives (problems, points), J. The levels: (problems, count).
+    planar: of -kinetic (d^2/dx^2 + (1/x) d/dx) + V, whose waves may have any value at low = 0.
     """
-    x, matrix = _lobatto(points)
     length = (high - low)[:, None]
-    hamilton = matrix * (kinetic * (2 / length[:, :, None]) ** 2)
+    if planar:
+        x, still, rising = _radau(points)
+        r = low[:, None] + length * (1 + x) / 2
+        hamilton = low[:, None, None] * still + length[:, :, None] / 2 * rising
+        hamilton *= kinetic * (2 / length[:, :, None]) ** 2 / np.sqrt(r[:, :, None] * r[:, None, :])
+    else:
+        x, matrix = _lobatto(points)
+        hamilton = matrix * (kinetic * (2 / length[:, :, None]) ** 2)
     diagonal = np.arange(points)
     hamilton[:, diagonal, diagonal] += potential(low[:, None] + length * (1 + x) / 2)
     return np.asarray(np.linalg.eigvalsh(hamilton)[:, :count])
@@ -56,13 +65,17 @@ def converged(
     high: FloatArray,
     kinetic: float,
     count: int,
+    *,
+    planar: bool = False,
 ) -> tuple[FloatArray, float]:
     """`eigenvalues` on the first pair of grids that agree, and how far these are apart, relative."""
     best, least = np.empty(0), np.inf
     for pair in GRIDS:
         if pair[0] < 2 * count and pair != GRIDS[-1]:
             continue
-        first, second = (eigenvalues(potential, low, high, kinetic, count, points) for points in pair)
+        first, second = (
+            eigenvalues(potential, low, high, kinetic, count, points, planar=planar) for points in pair
+        )
         error = float(np.max(np.abs(first - second) / (np.gradient(second, axis=1) + np.abs(second))))
         stuck = error > least / 4 and (least < ROUGH or pair[0] > PATIENCE)
         if error < least:
@@ -85,6 +98,35 @@ def _lobatto(points: int) -> tuple[FloatArray, FloatArray]:
     derivative = p[:, None] / (p * gap)
     np.fill_diagonal(derivative, 0.0)
     derivative[0, 0], derivative[-1, -1] = -n * (n + 1) / 4, n * (n + 1) / 4
-    stretch = EVEN / (np.sqrt(1 - (EVEN * x) ** 2) * np.arcsin(EVEN))
+    stretch = _stretch(x)
     scaled = derivative[:, 1:-1] / np.sqrt((w * stretch)[1:-1])
-    return np.arcsin(EVEN * inner) / np.arcsin(EVEN), scaled.T @ ((w / stretch)[:, None] * scaled)
+    return _even(inner), scaled.T @ ((w / stretch)[:, None] * scaled)
+
+
+@lru_cache(maxsize=8)
+def _radau(points: int) -> tuple[FloatArray, FloatArray, FloatArray]:
+    """Points of [-1, 1) by the rule of Radau that ends at 1, and what -d/dx (1, 1 + x) d/dx are between polynomials."""
+    n = points + 1
+    inner, _ = roots_jacobi(points, 1, 0)
+    x = np.append(inner, 1.0)
+    w = (1 + x) / (n * eval_legendre(points, x)) ** 2
+    gap = x[:, None] - x
+    np.fill_diagonal(gap, 1.0)
+    own = 1 / (2 * gap).prod(axis=1)
+    derivative = own / (own[:, None] * gap)
+    np.fill_diagonal(derivative, 0.0)
+    np.fill_diagonal(derivative, -derivative.sum(axis=1))
+    stretch, even = _stretch(x), _even(x)
+    scaled = derivative[:, :-1] / np.sqrt((w * stretch)[:-1])
+    still, rising = (scaled.T @ ((w / stretch * rise)[:, None] * scaled) for rise in (np.ones(n), 1 + even))
+    return even[:-1], still, rising
+
+
+def _even(x: FloatArray) -> FloatArray:
+    """Points moved towards an even spacing (D. Kosloff, H. Tal-Ezer, J. Comput. Phys. 104, 457 (1993), from memory)."""
+    return np.asarray(np.arcsin(EVEN * x) / np.arcsin(EVEN))
+
+
+def _stretch(x: FloatArray) -> FloatArray:
+    """The slope of that map."""
+    return np.asarray(EVEN / (np.sqrt(1 - (EVEN * x) ** 2) * np.arcsin(EVEN)))

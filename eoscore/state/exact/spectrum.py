@@ -29,7 +29,7 @@ __all__ = ["exact_levels"]
 def exact_levels(gas: Gas, place: Place) -> ExactLevels:
     """The levels of free particles of a mass in a place; NoAnswerError where they are not to be had.
 
-    Harmonic places in closed form, independent directions and isotropic V(r) by a spectral method; a `volume` is
+    Harmonic places in closed form, independent directions, V(rho) and V(r) by a spectral method; a `volume` is
     taken as a cube (square, line) with periodic ends.
     """
     mass = _mass(gas)
@@ -68,15 +68,12 @@ def _of_part(field: Field, mass: float) -> tuple[Direction, ...]:
         return tuple(Oscillator(HBAR * (bend / mass) ** 0.5) for bend in bottom.curvatures)
     if field.coordinates in (("x",), ("y",), ("z",)):
         return (levels_on_line(field, mass),)
-    if field.coordinates == ("r",):
+    if field.coordinates in (("r",), ("rho",)):
         return (radial_levels(field, mass),)
-    joined = len(field.coordinates) > 1
-    which = (
+    raise NoAnswerError(
+        "exact levels are known of harmonic traps, independent directions, V(r) and V(rho); "
         f"{', '.join(field.coordinates)} depend on each other here"
-        if joined
-        else "an anharmonic V(rho) is none of these"
     )
-    raise NoAnswerError(f"exact levels are known of harmonic traps, independent directions and V(r); {which}")
 
 
 def _harmonic(field: Field) -> bool:

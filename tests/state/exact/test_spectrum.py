@@ -4,9 +4,9 @@ from __future__ import annotations
 
 import numpy as np
 import pytest
-from scipy.constants import hbar, physical_constants
+from scipy.constants import hbar, k, physical_constants
 from scipy.linalg import eigh_tridiagonal
-from scipy.special import zeta
+from scipy.special import jn_zeros, zeta
 
 import eoscore
 from eoscore.errors import NoAnswerError
@@ -68,14 +68,36 @@ def test_joined_sums_of_powers():
 
 
 @pytest.mark.parametrize("kT", [0.2, 1, 5, 30, 1000])
-def test_sums_of_an_isotropic_oscillator(kT):
-    """Z = (1 - e^-x)^-3 from the radial levels alone, its mean energy 3/(e^x - 1) quanta."""
-    radial, beta = Radial(field("V(r) = m/2*(2*pi*100 Hz)^2*r^2"), MASS), np.array([1 / (kT * QUANTUM)])
-    z0, z1, _ = radial.sums(beta, kT * QUANTUM)
+@pytest.mark.parametrize(("name", "dimension"), [("r", 3), ("rho", 2)])
+def test_sums_of_an_isotropic_oscillator(kT, name, dimension):
+    """Z = (1 - e^-x)^-d from the radial levels alone, its mean energy d/(e^x - 1) quanta."""
+    radial = Radial(field(f"V({name}) = m/2*(2*pi*100 Hz)^2*{name}^2"), MASS)
+    z0, z1, _ = radial.sums(np.array([1 / (kT * QUANTUM)]), kT * QUANTUM)
     stated = radial.error_at(kT * QUANTUM)
     assert stated < (1e-6 if kT < 10 else 1e-8)
-    assert 1 + z0[0] == pytest.approx((-np.expm1(-1 / kT)) ** -3, rel=stated)
-    assert z1[0] / (1 + z0[0]) / QUANTUM == pytest.approx(3 / np.expm1(1 / kT), rel=10 * stated)
+    assert 1 + z0[0] == pytest.approx((-np.expm1(-1 / kT)) ** -dimension, rel=stated)
+    assert z1[0] / (1 + z0[0]) / QUANTUM == pytest.approx(dimension / np.expm1(1 / kT), rel=10 * stated)
+
+
+@pytest.mark.parametrize("m", [0, 1, 5, 24])
+def test_levels_of_a_hard_circle(m):
+    """Squares of the zeros of J_m (scipy)."""
+    energies = Radial(field("V(rho) = 0 J where rho < 1 um"), MASS).shells[0].energies[m] / UNIT
+    assert energies == pytest.approx(jn_zeros(m, 16) ** 2 / 2, rel=1e-9)
+
+
+def test_a_can_level_by_level():
+    """N_ex at mu = E_0 and kT = 40 hbar^2/(m R^2): zeros of J_m, sines along the axis, all summed."""
+    lab = eoscore.loads(
+        "gas g { m = 84 u }\ntrap t { V(rho, z) = 0 J where rho < 1 um, z > 0 um, z < 2 um\n levels exact }"
+    )
+    kT, zeros = 40.0, [jn_zeros(m, 40) for m in range(70)]
+    plane = np.concatenate([np.tile(z**2 / 2, 1 + (m > 0)) for m, z in enumerate(zeros)])
+    plane = plane[plane < 40 * kT]
+    levels = np.sort(np.add.outer(plane, (np.pi / 2 * np.arange(1, 40)) ** 2 / 2).ravel())
+    expected = np.sum(1 / np.expm1((levels[1:] - levels[0]) / kT))
+    trap = lab["g"].held_in(lab["t"])
+    assert trap.N_c(T=kT * UNIT / k) == pytest.approx(expected, rel=1e-6)
 
 
 @pytest.mark.parametrize("kT", [10.0, 300.0])
