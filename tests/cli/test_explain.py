@@ -3,12 +3,14 @@
 from __future__ import annotations
 
 import os
+import re
 import subprocess
 import sys
 
 from click.testing import CliRunner
 
 from eoscore.cli import command
+from eoscore.show.glossary import glossary
 
 
 def run(*words):
@@ -20,6 +22,16 @@ def test_a_name_is_told_with_formula_unit_and_source():
     assert shown.return_value == 0
     for word in ("freq: quantity", "formula:", "unit:    Hz", "source:"):
         assert word in shown.output
+
+
+def test_every_name_is_told():
+    """Quantities, functions, constants, units, words, dispersions, shelf functions and cautions, in one call."""
+    names = sorted(glossary())
+    shown = run(*names)
+    assert shown.return_value == 0
+    heads = re.findall(r"^(\S+): (?:[a-z].*)$", shown.output, re.MULTILINE)
+    assert set(names) <= set(heads)
+    assert len(names) > 150
 
 
 def test_an_unknown_name_is_answered_with_the_near_ones():
