@@ -21,6 +21,7 @@ if TYPE_CHECKING:
     from eoscore.gas import Gas
     from eoscore.measure import Measure
     from eoscore.place import Place
+    from eoscore.state.canonical import CondensateStatistics
     from eoscore.state.model import Model
     from eoscore.state.reading import FloatArray, Reading
 
@@ -83,6 +84,15 @@ class HeldGas:
     def n_c(self, T: ArrayLike) -> float | FloatArray:
         """Critical density at the bottom, in m^-d, at T in K."""
         return state_of(self, {"T": T}).reading("n_c").number()
+
+    def condensate_statistics(self, N: int, T: float) -> CondensateStatistics:
+        """Mean, variance and distribution of N_0 of exactly N ideal bosons at T (K), in a place with `levels exact`.
+
+        NoAnswerError without these, and for more than 20 000 particles.
+        """
+        from eoscore.state.canonical import condensate_statistics
+
+        return condensate_statistics(self, N, T)
 
     def brought_from(self, other: HeldGas | State, **given: ArrayLike) -> State:
         """The state after a slow change from another place, at the same N and entropy.

@@ -42,7 +42,7 @@ def test_one_dimension_in_closed_form(N, x):
     """P(M excited) ~ q^M prod_(j <= M) 1/(1 - q^j), q = e^-x: partitions into M parts (Euler)."""
     logs = np.concatenate([[0.0], np.cumsum(-x - np.log(-np.expm1(-x * np.arange(1.0, N + 1))))])
     expected = np.exp(logs - logs.max())[::-1]
-    found = condensate_statistics(harmonic("x"), N, QUANTUM / x)
+    found = harmonic("x").condensate_statistics(N, QUANTUM / x)
     assert found.probability == pytest.approx(expected / expected.sum(), rel=1e-9, abs=1e-13)
 
 

@@ -142,7 +142,12 @@ class Filling:
         def excess(fill: Filled) -> float:
             return (fill.cloud.kinetic + fill.cloud.potential + fill.cloud.interaction) / energy - 1
 
-        return self._at_value(number, excess, "U")
+        found = self._at_value(number, excess, "U")
+        if found.beside and self.setting.coupling < 0:
+            raise NoAnswerError(
+                "a_s is negative and this energy is that of a gas with a condensate, which is not known here; give T"
+            )
+        return found
 
     def _at_value(self, number: float, excess: Callable[[Filled], float], name: str) -> Filled:
         """The temperature is bracketed from that at which as many states lie below kT as there are particles."""
@@ -152,17 +157,26 @@ class Filling:
             *LOGARITHMS,
         )
         low = high = exp(guess)
-        while excess(self.holding(number, low)) > 0:
+
+        def here(kT: float) -> float:
+            try:
+                return excess(self.holding(number, kT))
+            except NoAnswerError:
+                if setting.coupling >= 0:
+                    raise
+                return -1.0  # fallen in: too cold
+
+        while here(low) > 0:
             low /= 2
             if low < COLD * exp(guess):
                 raise NoAnswerError(
                     f"no temperature gives so small a value of {name}: the condensate has more"
                 )
-        while excess(self.holding(number, high)) < 0:
+        while here(high) < 0:
             high *= 2
             if high > HOT * exp(guess):
                 raise NoAnswerError(f"no temperature gives so large a value of {name}")
-        kT = exp(brentq(lambda x: excess(self.holding(number, exp(x))), log(low), log(high), xtol=1e-13))
+        kT = exp(brentq(lambda x: here(exp(x)), log(low), log(high), xtol=1e-13))
         return self.holding(number, kT)
 
 

@@ -124,6 +124,21 @@ def test_a_condensate_without_repulsion_has_no_shape(name):
     assert list(reading.missing) == [False, True]
 
 
+@pytest.mark.parametrize("name", ["U", "S"])
+def test_attraction_just_above_T_c(name):
+    """The search passes temperatures at which the condensate falls in."""
+    trap = held(HARMONIC, "a_s = -100 a0")
+    T = 1.001 * trap.T_c(N=1e4)
+    value = getattr(trap.state(N=1e4, T=T), name)
+    assert pytest.approx(T, rel=1e-9, abs=0) == trap.state(**{"N": 1e4, name: value}).T
+
+
+def test_no_temperature_from_the_energy_of_an_attractive_condensate():
+    trap = held(HARMONIC, "a_s = -100 a0")
+    U = 0.9 * trap.state(N=1e4, T=trap.T_c(N=1e4)).U
+    assert "is not known here" in trap.find(["T"], {"N": 1e4, "U": U})["T"].why
+
+
 def test_an_ideal_condensate_has_no_peak():
     found = held(HARMONIC, "a_s = 0 a0").find(["n_0_peak", "kappa_T", "U_int"], {"N": 1e5, "T": 1e-7})
     assert "size of the lowest level" in found["n_0_peak"].why
