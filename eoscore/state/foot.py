@@ -56,4 +56,5 @@ def _small(k: float, a: FloatArray) -> FloatArray:
             total += (-1) ** n * SEAM**power * -log * exprel(power * log)
         value = lower + k * a ** (k - 1) * total
     limit = k / (k - 1) if k > 1 else np.inf
-    return np.where(a > 0, value, limit)
+    # Where a is so small that a power of it overflows, what it takes off the limit is below all digits.
+    return np.where((a > 0) & np.isfinite(value), value, limit)
