@@ -12,6 +12,7 @@ from eoscore.answer.lab import LabGas, LabPlace, loads
 from eoscore.answer.record import DerivedAnswer, FoundAnswer, Report
 from eoscore.errors import NoAnswerError, TarnError
 from eoscore.show.complaint import complaints_text
+from eoscore.show.notebook_names import install_completion
 from eoscore.show.report.answers import answer_sections
 from eoscore.show.report.markup import Markup, element, table
 
@@ -60,13 +61,14 @@ class Answers:
 
 
 def install(shell: Any) -> None:
-    """Register the displays and the magic with an IPython shell."""
+    """Register the displays, the magic and the completion of names with an IPython shell."""
 
     def tarn(line: str, cell: str) -> Answers | None:
         """Answer the questions of a cell of Tarn; `%%tarn NAME` also keeps its lab under NAME."""
         return _answered(shell, line.strip(), cell)
 
     shell.register_magic_function(tarn, magic_kind="cell")
+    install_completion(shell)
     formatters = shell.display_formatter.formatters
     shown: dict[type, Callable[[Any], str]] = {
         FoundAnswer: lambda answer: _html((answer,)),

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from io import StringIO
 from textwrap import fill
 from typing import IO, TYPE_CHECKING
 
@@ -15,11 +16,22 @@ _PLAIN_WIDTH = 110  # columns when the output is not a terminal
 
 
 def console_on(stream: IO[str]) -> Console:
-    """A rich console on a text stream that takes every text literally."""
+    """A rich console on a text stream that takes every text literally.
+
+    A text kept in memory is plain even in a notebook, where rich would draw beside it and the kernel asks for colour.
+    """
     from rich.console import Console
 
     width = None if stream.isatty() else _PLAIN_WIDTH
-    return Console(file=stream, width=width, highlight=False, emoji=False, markup=False)
+    return Console(
+        file=stream,
+        width=width,
+        highlight=False,
+        emoji=False,
+        markup=False,
+        force_jupyter=False,
+        force_terminal=False if isinstance(stream, StringIO) else None,
+    )
 
 
 def put(console: Console, table: Table) -> None:
