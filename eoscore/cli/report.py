@@ -2,13 +2,19 @@
 
 from __future__ import annotations
 
+import os
 from pathlib import Path
+from typing import TYPE_CHECKING
 
 import click
 
-from eoscore.cli.exits import ANSWERED, FAULTY
+from eoscore.cli.exits import ANSWERED, FAULTY, INACCURATE
 from eoscore.cli.reading import Text
+from eoscore.cli.run import complain_of_accuracy
 from eoscore.errors import TarnError
+
+if TYPE_CHECKING:
+    from eoscore.answer.record import Report
 
 __all__ = ["report"]
 
@@ -34,29 +40,53 @@ def report(file: str, out: Path, settings: tuple[str, ...], accuracy: float, wor
 
     The page asks the network for nothing and prints well. Pictures want the extra `plot`.
     """
-    if not out.parent.is_dir():
-        raise click.BadParameter(f"the folder {out.parent} does not exist.", param_hint="--out")
+    if reason := _unwritable(out, file):
+        raise click.BadParameter(reason, param_hint="--out")
     text = Text.of(file)
     try:
-        page = _page(text, settings, accuracy, workers)
+        answers, page = _page(text, settings, accuracy, workers)
     except TarnError as fault:
         from eoscore.show.complaint import complaints_text
 
         click.echo(complaints_text(fault.complaints), err=True)
         return FAULTY
-    out.write_text(page, encoding="utf-8")
+    _write(out, page)
     click.echo(f"wrote {out}")
-    return ANSWERED
+    return INACCURATE if complain_of_accuracy(answers, accuracy) else ANSWERED
 
 
-def _page(text: Text, settings: tuple[str, ...], accuracy: float, workers: int) -> str:
+def _unwritable(out: Path, file: str) -> str | None:
+    """Why no page can be written there, found before anything is computed; None where it can."""
+    if out.is_dir():
+        return f"{out} is a folder."
+    if not out.parent.is_dir():
+        return f"the folder {out.parent} does not exist."
+    if not os.access(out if out.exists() else out.parent, os.W_OK):
+        return f"{out} may not be written."
+    if file != "-" and out.exists() and Path(file).exists() and out.samefile(file):
+        return f"{out} is the file that the page is about; give the page another name."
+    return None
+
+
+def _write(out: Path, page: str) -> None:
+    """The page, whole or not at all; a pipe or a device is written to as it is."""
+    if out.exists() and not out.is_file():
+        out.write_text(page, encoding="utf-8")
+        return
+    from eoscore.show.saving import appearing
+
+    with appearing(out) as path:
+        path.write_text(page, encoding="utf-8")
+
+
+def _page(text: Text, settings: tuple[str, ...], accuracy: float, workers: int) -> tuple[Report, str]:
     _require_matplotlib()
     from eoscore.answer.record import Report
     from eoscore.show.report.build import Input, report_page
 
     lab = text.lab(settings)
     answers = Report(text.name, lab.answers(accuracy=accuracy, workers=workers))
-    return report_page(Input(text.name, text.content, settings, accuracy), lab, answers)
+    return answers, report_page(Input(text.name, text.content, settings, accuracy), lab, answers)
 
 
 def _require_matplotlib() -> None:

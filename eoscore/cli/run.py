@@ -22,7 +22,7 @@ if TYPE_CHECKING:
     from eoscore.answer.record import Answer, Report
     from eoscore.cli.keeping import Kept
 
-__all__ = ["Asked", "answer_text", "asking", "run"]
+__all__ = ["Asked", "answer_text", "asking", "complain_of_accuracy", "run"]
 
 _F = TypeVar("_F", bound="Callable[..., Any]")
 
@@ -109,7 +109,7 @@ def answer_text(text: Text, asked: Asked) -> int:
     _show(report, asked)
     if report.complaints:
         return FAULTY
-    return INACCURATE if _complain_of_accuracy(report, asked.accuracy) else ANSWERED
+    return INACCURATE if complain_of_accuracy(report, asked.accuracy) else ANSWERED
 
 
 def _save(report: Report, asked: Asked) -> None:
@@ -173,7 +173,7 @@ def _show(report: Report, asked: Asked) -> None:
         print_report(report, sys.stdout)
 
 
-def _complain_of_accuracy(report: Report, accuracy: float) -> bool:
+def complain_of_accuracy(report: Report, accuracy: float) -> bool:
     """Say on standard error which numbers missed the accuracy wanted; whether any did."""
     missed = False
     for answer in report.answers:

@@ -121,6 +121,53 @@ def test_the_same_input_gives_the_same_page(page, text):
     assert again.read_text(encoding="utf-8") == text
 
 
+def reported(*words):
+    return CliRunner().invoke(command, ["report", *map(str, words)], standalone_mode=False)
+
+
+@pytest.mark.parametrize(
+    ("out", "words"),
+    [
+        ("none/a.html", r"the folder .*none does not exist"),
+        (".", r"is a folder"),
+        ("a.tarn", r"a.tarn is the file that the page is about; give the page another name"),
+    ],
+)
+def test_where_no_page_can_be_written_is_told_before_anything_is_computed(tmp_path, out, words):
+    source = tmp_path / "a.tarn"
+    source.write_text("f = 2 khz")
+    shown = reported(source, "--out", tmp_path / out)
+    assert re.search(words, str(shown.exception))
+    assert source.read_text() == "f = 2 khz"
+
+
+def test_a_missing_file_is_told(tmp_path):
+    assert "cannot be read" in str(reported(tmp_path / "no.tarn", "--out", tmp_path / "a.html").exception)
+
+
+def test_without_matplotlib_the_extra_is_named(tmp_path, monkeypatch):
+    monkeypatch.setattr("importlib.util.find_spec", lambda name: None)
+    (tmp_path / "a.tarn").write_text("")
+    shown = reported(tmp_path / "a.tarn", "--out", tmp_path / "a.html")
+    assert "matplotlib" in str(shown.exception)
+    assert "pip install 'eoscore[plot]'" in str(shown.exception)
+
+
+def test_an_empty_file_has_a_page(tmp_path):
+    (tmp_path / "a.tarn").write_text("")
+    assert reported(tmp_path / "a.tarn", "--out", tmp_path / "a.html").return_value == 0
+    assert "SHA-256" in (tmp_path / "a.html").read_text()
+
+
+def test_a_number_short_of_the_accuracy_is_on_the_page_and_in_the_status(tmp_path):
+    """Exit status 3, as of `run`."""
+    text = "gas g { isotope Sr-84 }\ntrap t { V(r) = k_B*1 uK*((r/(9 um))^2 + (r/(9 um))^3) }\n"
+    (tmp_path / "a.tarn").write_text(text + "find T_c for g in t with N = 1e5\n")
+    shown = reported(tmp_path / "a.tarn", "--out", tmp_path / "a.html", "--accuracy", "1e-16")
+    assert shown.return_value == 3
+    assert "was not reached" in (tmp_path / "a.html").read_text()
+
+
 def test_a_faulty_file_has_no_page(tmp_path):
     (tmp_path / "a.tarn").write_text("f = 2 khz")
     words = ["report", str(tmp_path / "a.tarn"), "--out", str(tmp_path / "a.html")]
