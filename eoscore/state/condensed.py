@@ -58,7 +58,8 @@ def _refuse_fractions(f: FloatArray, solution: Solution) -> None:
     words = "every state above T_c has f_0 = 0: it fixes none; give a fraction between 0 and 1"
     solution.refuse(words, f == 0)
     solution.refuse(
-        f"f_0 came as {spread(f[(f < 0) | (f >= 1)])}; it lies between 0 and 1", (f < 0) | (f >= 1)
+        f"f_0 came as {spread(f[(f < 0) | (f >= 1)])}; it lies between 0 and 1, and reaches 1 at T = 0 alone",
+        (f < 0) | (f >= 1),
     )
 
 

@@ -106,7 +106,8 @@ def _refuse_rest(
     ]
     if first == "N" and second in ("S", "U") and model.bosons and model.whole.condenses:
         ends[0] = np.where(found, np.nan, 0.0)  # the bracket begins at T_c, the condensed states go down to 0
-    words = f"with this {first}, {second} runs from {spread(ends[0])} to {spread(ends[1])}"
+    low, high = spread(np.fmin(*ends), second), spread(np.fmax(*ends), second)
+    words = f"with this {first}, {second} runs from {low} to {high}"
     solution.refuse(f"no state has that {first} and that {second}: {words}", put(~found))
 
 

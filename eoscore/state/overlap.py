@@ -52,6 +52,8 @@ def over_place(
     """
     if held.position is None or not kT.size:
         return functions(np.zeros_like(kT), np.zeros_like(kT))
+    if not np.isfinite(kT).any():  # no state, no density
+        return functions(kT, kT)
     rule = held.position.nodes(45.0 * float(np.nanmax(kT)))
     low, mass = _in_foot(rule.foot)
     energies, weights = np.concatenate([low, rule.v]), np.concatenate([mass, rule.w])

@@ -69,19 +69,22 @@ def _check(model: Model, given: Mapping[str, FloatArray], solution: Solution) ->
     for name, x in given.items():
         solution.refuse(f"{name} came as a value that is not finite", ~np.isfinite(x))
         if name in POSITIVE:
-            solution.refuse(f"{name} came as {spread(x[x <= 0])}; it must be above zero", x <= 0)
+            solution.refuse(f"{name} came as {spread(x[x <= 0], name)}; it must be above zero", x <= 0)
         if name == "S" and model.whole.statistics != "classical":
-            solution.refuse("S must be above zero", x <= 0)
+            solution.refuse(f"S came as {spread(x[x <= 0], name)}; it must be above zero", x <= 0)
     if model.bosons:
         words = "bosons have mu at or below the lowest level, mu <= 0"
         if "mu" in given:
-            solution.refuse(f"mu came as {spread(given['mu'][given['mu'] > 0])} J; {words}", given["mu"] > 0)
+            solution.refuse(
+                f"mu came as {spread(given['mu'][given['mu'] > 0], 'mu')}; {words}", given["mu"] > 0
+            )
         if "fugacity" in given:
             solution.refuse(f"the fugacity came above 1; {words}", given["fugacity"] > 1)
         gap = 2 * model.whole.highest
         if "mu" in given and np.isfinite(gap):
             antiparticles = "with antiparticles mu must also stay above"
-            solution.refuse(f"mu came too low; {antiparticles} {-gap:.6g} J", given["mu"] < -gap)
+            low = given["mu"] < -gap
+            solution.refuse(f"mu came as {spread(given['mu'][low], 'mu')}; {antiparticles} {-gap:.6g} J", low)
     if "N" in given and np.isfinite(model.capacity):
         most = model.capacity
         solution.refuse(
@@ -111,13 +114,11 @@ def _at_temperature(model: Model, name: str, T: FloatArray, x: FloatArray, solut
     if model.bosons and model.whole.condenses:
         most = model.value(name, np.zeros_like(kT), kT)[0]
         beyond = x >= most * (1 - 2 * model.error_of(name, kT))
-        words = (
-            f"at this temperature {name} is at most {spread(most[beyond])}, which it has for any condensate"
-        )
+        words = f"at this temperature {name} is at most {spread(most[beyond], name)}, which it has for any condensate"
         solution.refuse(words, _put(some, beyond, solution))
     reached = model.value(name, alpha, kT)[0]
     wrong = ~(np.abs(reached - x) <= 1e-8 * np.abs(x))
-    words = f"at this temperature no state has that {name}; it reaches {spread(reached[wrong])}"
+    words = f"at this temperature no state has that {name}; it reaches {spread(reached[wrong], name)}"
     solution.refuse(words, _put(some, wrong, solution))
 
 

@@ -14,6 +14,8 @@ if TYPE_CHECKING:
 
 __all__ = ["Solution", "spread"]
 
+_UNITS = {"T": " K", "mu": " J", "U": " J", "S": " J/K"}
+
 
 @dataclass
 class Solution:
@@ -55,10 +57,11 @@ class Solution:
             self.condensed[where] = False
 
 
-def spread(values: FloatArray) -> str:
-    """A number, or the range of many, for a sentence."""
+def spread(values: FloatArray, name: str = "N") -> str:
+    """A number, or the range of many, for a sentence, with the unit of the condition of this name."""
     values = values[np.isfinite(values)]
     if not values.size:
         return "nothing"
     least, most = float(values.min()), float(values.max())
-    return f"{least:.6g}" if most - least <= 1e-6 * abs(least) else f"{least:.6g} to {most:.6g}"
+    unit = _UNITS.get(name, "")
+    return f"{least:.6g}{unit}" if most - least <= 1e-6 * abs(least) else f"{least:.6g} to {most:.6g}{unit}"

@@ -31,5 +31,5 @@ def test_limits_at_saturation(k):
 def test_close_to_saturation_nothing_overflows(k):
     """What is left out is of order a, or a^(k - 2)."""
     first, second = foot_means(k, np.array([1e-60, 1e-100, 1e-150, 1e-300]))
-    assert first == pytest.approx(np.full(4, k / (k - 1)), rel=1e-14, abs=0)
-    assert second == pytest.approx(np.full(4, k / (k - 2)), rel=1e-13, abs=0)
+    assert first == pytest.approx(np.full(4, k / (k - 1)), rel=2e-13, abs=0)
+    assert second == pytest.approx(np.full(4, k / (k - 2)), rel=2e-12, abs=0)

@@ -93,7 +93,7 @@ def test_arrays_broadcast():
 REFUSED = [
     ({"T": 1e-7, "mu": 1e-31}, "bosons have mu at or below the lowest level"),
     ({"N": 1e5, "mu": 1e-31}, "bosons have mu at or below the lowest level"),
-    ({"N": 1e5, "T": -1.0}, "T came as -1; it must be above zero"),
+    ({"N": 1e5, "T": -1.0}, "T came as -1 K; it must be above zero"),
     ({"N": 0.0, "T": 1e-7}, "N came as 0; it must be above zero"),
     ({"N": 1e5, "T": np.nan}, "not finite"),
     ({"N": 1e5, "f_0": 0.0}, "every state above T_c has f_0 = 0"),
@@ -106,7 +106,9 @@ REFUSED = [
     ({"T": 1e-7, "fugacity": 1.5}, "fugacity came above 1"),
     ({"mu": -1e-31, "fugacity": 1.0}, "any temperature below T_c"),
     ({"fugacity": 0.5, "PSD": 0.5}, "do not fix a state"),
-    ({"N": 1e5, "U": 1e300}, "no state has that N and that U"),
+    ({"N": 1e5, "U": 1e300}, "no state has that N and that U: with this N, U runs from 0 J to"),
+    ({"N": 1e5, "S": -1e-20}, "S came as -1e-20 J/K; it must be above zero"),
+    ({"N": 1e5, "f_0": 1.0}, "and reaches 1 at T = 0 alone"),
 ]
 
 
