@@ -3,12 +3,14 @@
 from __future__ import annotations
 
 from dataclasses import replace
+from itertools import islice
 from math import inf
 from typing import TYPE_CHECKING
 
 from eoscore.answer.assembly import assembled
 from eoscore.answer.bending import bending
 from eoscore.answer.chain import Chain
+from eoscore.answer.grid import Grid
 from eoscore.answer.holding import HeldGases
 from eoscore.answer.looking import cautions_at, inaccurate, thinned
 from eoscore.answer.record import Caution, FoundAnswer, Piece
@@ -24,6 +26,8 @@ if TYPE_CHECKING:
     from eoscore.answer.record import Answer, Finding
     from eoscore.language.program import Program
     from eoscore.language.question import Question
+
+_NEAR = 100  # stops from an end of a grid among which cautions look for one that holds
 
 __all__ = ["answer_from", "answer_to", "cautions_over", "piece_of"]
 
@@ -61,9 +65,19 @@ def piece_of(
 
 
 def cautions_over(program: Program, question: Question, held: HeldGases) -> tuple[Caution, ...]:
-    """The cautions of a grid: the first and the last stop speak for all, with some of their states."""
-    ends = thinned(question)
-    return cautions_at([part for end in ends for part in Chain(program, end, held, question).parts()])
+    """The cautions of a grid: the first and the last stop that hold speak for all, with some of their states."""
+    ways = (False, True) if Grid(question.over).parameters else (False,)
+    ends = (_first_held(program, question, held, backwards=way) for way in ways)
+    return cautions_at([part for end in ends for part in end])
+
+
+def _first_held(program: Program, question: Question, held: HeldGases, *, backwards: bool) -> list[Part]:
+    """The part of the first stop that holds; none where those near the end hold nothing."""
+    for stop in islice(thinned(question, backwards=backwards), _NEAR):
+        parts = Chain(program, stop, held, question).parts()
+        if any(part.held is not None for part in parts):
+            return parts
+    return []
 
 
 def answer_from(

@@ -13,7 +13,7 @@ from eoscore.answer.record import Caution
 from eoscore.answer.scene import Scene
 
 if TYPE_CHECKING:
-    from collections.abc import Iterable, Sequence
+    from collections.abc import Iterable, Iterator, Sequence
 
     from eoscore.answer.chain import Part
     from eoscore.answer.record import Finding
@@ -26,24 +26,23 @@ _STATES = (
 )
 
 
-def thinned(question: Question) -> tuple[Question, ...]:
-    """The question at the first and at the last stop of its grid, with some of the states there, at one position."""
+def thinned(question: Question, *, backwards: bool = False) -> Iterator[Question]:
+    """The question at stop after stop of its grid, with some of the states there, at one position."""
     grid, positions = Grid(question.over), question.coordinates
     states = [axis for axis in grid.conditions if axis.name not in positions]
     count = max(2, round(_STATES ** (1 / max(1, len(states)))))
     counts = {axis.name: 1 if axis.name in positions else count for axis in question.over}
-    ends = (0, -1) if any(axis.points > 1 for axis in grid.parameters) else (0,)
-    return tuple(
-        replace(question, over=tuple(_some(axis, counts[axis.name], end) for axis in question.over))
-        for end in ends
-    )
+    for index in np.ndindex(*(axis.points for axis in grid.parameters)):
+        stop = {axis.name: -1 - i if backwards else i for axis, i in zip(grid.parameters, index, strict=True)}
+        some = (_some(axis, counts[axis.name], stop.get(axis.name, 0)) for axis in question.over)
+        yield replace(question, over=tuple(some))
 
 
-def _some(axis: Axis, count: int, end: int) -> Axis:
+def _some(axis: Axis, count: int, stop: int) -> Axis:
     if axis.thermodynamic:
         which = np.unique(np.linspace(0, axis.points - 1, min(count, axis.points)).astype(int))
     else:
-        which = np.array([end])
+        which = np.array([stop])
     values = tuple(axis.values[which].tolist())
     return replace(axis, kind="list", ends=values, points=len(values))
 

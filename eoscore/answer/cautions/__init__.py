@@ -14,6 +14,7 @@ from eoscore.answer.cautions.finite_number import finite_number
 from eoscore.answer.cautions.hardware import hardware
 from eoscore.answer.cautions.interactions import interactions
 from eoscore.answer.cautions.level_spacing import level_spacing
+from eoscore.answer.cautions.local_picture import local_picture
 from eoscore.answer.cautions.shallow import shallow
 from eoscore.answer.cautions.zone import zone
 
@@ -27,6 +28,7 @@ __all__ = ["cautions_for"]
 
 _MATTERS: tuple[Callable[[Scene], Iterator[Caution]], ...] = (
     level_spacing,
+    local_picture,
     finite_number,
     interactions,
     collapse,

@@ -56,6 +56,11 @@ CAUTIONS: Final[dict[str, tuple[str, str, str]]] = {
         "h*f against k_B*T",
         "common practice",
     ),
+    "local_picture": (
+        "the place is uneven over a thermal wavelength, or a condensate is too small for the Thomas-Fermi limit",
+        "N_0*a_s/a_ho < 10",
+        "common practice",
+    ),
     "momentum_zone": (
         "the momenta in play reach the edge of the zone, or where the expansion of E(p) ends",
         "",
