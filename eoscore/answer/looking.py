@@ -49,7 +49,7 @@ def _some(axis: Axis, count: int, stop: int) -> Axis:
 
 def cautions_at(parts: Sequence[Part]) -> tuple[Caution, ...]:
     """The cautions of the first and of the last part."""
-    ends = [parts[place] for place in dict.fromkeys((0, len(parts) - 1))]
+    ends = [parts[place] for place in dict.fromkeys((0, len(parts) - 1))] if parts else []
     scenes = (Scene(p.binding, p.held, p.given, p.readings) for p in ends if p.held is not None)
     return tuple(caution for scene in scenes for caution in cautions_for(scene))
 

@@ -158,6 +158,11 @@ def test_a_grid_is_looked_at_where_its_first_and_its_last_trap_hold():
     )
 
 
+def test_a_grid_of_traps_that_hold_nothing_needs_none():
+    grid = "mu for a in b with N = 10, T = 50 nK over Q = [1 uK, 2 uK]"
+    assert not cautions("Q = 10 uK\n" + SAGGING.replace("U", "Q"), grid, "m = 86.909180529 u")
+
+
 def test_interactions_are_told_by_their_shift():
     # -1.3255 (a/a_ho) N^(1/6): a_ho = 1.097 um, a = 5.29 nm, N = 1e6: -6.4 %
     text = cautions(f"f = 100 Hz\n {ISOTROPIC}", "T_c for a in b with N = 1e6", "m = 84 u\n a_s = 100 a0")
