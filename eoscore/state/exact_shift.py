@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from eoscore.errors import NoAnswerError
-from eoscore.place import TrapPlace
+from eoscore.place import StatesPlace, TrapPlace
 from eoscore.state.critical import saturated_kT
 
 if TYPE_CHECKING:
@@ -38,6 +38,8 @@ def _levels(held: HeldGas, why: str) -> ExactLevels:
     """Solved once for a held gas."""
     if held.uniform:
         raise NoAnswerError("a uniform gas has no end, and so no finite number that would move its T_c")
+    if isinstance(held.place, StatesPlace):
+        raise NoAnswerError(f"{held.place.name} gives a continuous density of states, and no levels")
     if not isinstance(held.place, TrapPlace):
         raise NoAnswerError(
             f"{why}; a volume has no shape: give walls, V(x, y, z) = 0 J where x > 0 um, x < ..."

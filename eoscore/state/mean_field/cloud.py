@@ -8,7 +8,9 @@ from math import inf
 from typing import TYPE_CHECKING
 
 import numpy as np
+from scipy.optimize import brentq
 
+from eoscore.errors import NoAnswerError
 from eoscore.gas.truncated import bose_log_truncated, bose_truncated
 from eoscore.state.mean_field.fluid import FAR, ORDER, Fluid
 from eoscore.state.mean_field.panels import NODES, panels
@@ -19,8 +21,10 @@ if TYPE_CHECKING:
     from eoscore.measure import Measure
     from eoscore.state.reading import FloatArray
 
-__all__ = ["Cloud", "Setting"]
+__all__ = ["HOTTEST", "Cloud", "Setting"]
 
+NEAR_TOP = 1e-9
+HOTTEST = 50.0  # kT over the depth; a mean field has long filled the place
 REACH = 45.0  # kT above the edge of the condensate, or the bottom: e^-45 is dropped
 
 
@@ -43,14 +47,28 @@ class Setting:
 
     def at_onset(self, kT: float) -> Cloud:
         """The gas that is about to condense (repulsion, or none), or to fall in (attraction), at the bottom."""
-        mu = 0.0
-        for _ in range(40):  # with an escape energy its distance in kT enters, weakly
-            fluid = self.cloud(mu, kT).fluid
-            w = 0.0 if fluid.G == 0 else fluid.onset.w if fluid.G > 0 else fluid.highest
-            before, mu = mu, w * kT
-            if fluid.reach == inf or abs(mu - before) <= 1e-14 * kT:
+        if kT > HOTTEST * self.top * (1 + 1e-9):
+            raise NoAnswerError(
+                f"kT is more than {HOTTEST:.0f} times the depth: nothing of a gas with a mean field is held so hot"
+            )
+        mu, most = 0.0, self.top * (1 - NEAR_TOP)
+        for _ in range(20):  # with an escape energy its distance in kT enters, in a cold gas weakly
+            before, mu = mu, self._onset_at(mu, kT)
+            if self.top == inf or abs(mu - before) <= 1e-14 * kT:
+                return self.cloud(mu, kT)
+            if mu >= most:
                 break
-        return self.cloud(mu, kT)
+        if self._onset_at(most, kT) < most:
+            most = float(
+                brentq(lambda x: self._onset_at(x, kT) - x, min(mu, 0.0) * 2, most, xtol=1e-14 * most)
+            )
+        return self.cloud(most, kT)
+
+    def _onset_at(self, mu: float, kT: float) -> float:
+        """mu at the onset, if the escape energy were as far above it as it is above `mu`."""
+        fluid = self.cloud(mu, kT).fluid
+        w = 0.0 if fluid.G == 0 else fluid.onset.w if fluid.G > 0 else fluid.highest
+        return w * kT
 
 
 @dataclass(frozen=True)

@@ -11,6 +11,7 @@ from eoscore.constants import K_B
 from eoscore.errors import NoAnswerError
 from eoscore.state import saturation, shifts
 from eoscore.state.critical import saturated_kT
+from eoscore.state.mean_field.cloud import HOTTEST
 from eoscore.state.mean_field.precision import ROUNDING, relative_error
 from eoscore.state.reading import Reason
 from eoscore.state.root import rising_root
@@ -26,6 +27,11 @@ __all__ = ["exponent", "number", "shift", "temperature"]
 
 ROUTE = "Hartree-Fock in local density"
 STEP = 5e-4
+MET = 1e-6  # relative, of N
+FULL = (
+    "at no temperature do just N particles begin to condense: the mean field fills the place up to its escape energy "
+    "before; take fewer particles, a smaller a_s or a deeper trap"
+)
 
 
 def temperature(state: MeanFieldState, unit: str) -> Reading:
@@ -37,15 +43,23 @@ def temperature(state: MeanFieldState, unit: str) -> Reading:
     sensible = count > 0
     value = np.full(count.shape, np.nan)
     start = np.log(saturated_kT(state.held.model.whole, "N", count[sensible]))
+    start = np.minimum(start, np.log(HOTTEST * setting.top))
+    last = np.minimum(start + 3, np.log(HOTTEST * setting.top))
     a = 1.5 + setting.measure.exponent
 
     def work(x: FloatArray, which: NDArray[np.intp]) -> tuple[FloatArray, FloatArray]:
         held = np.array([setting.at_onset(float(kT)).number for kT in np.exp(x)])
         return np.log(held / count[sensible][which]), np.full(x.shape, a)
 
-    value[sensible] = np.exp(rising_root(work, start - 3, start + 3, start)) / K_B
-    none = Reason("N must be above zero", state.shaped(~sensible))
-    return state.read(value, _precision(state, K_B * value) * value, unit, ROUTE, [none])
+    value[sensible] = np.exp(rising_root(work, start - 3, last, start)) / K_B
+    held = np.array([setting.at_onset(K_B * float(T)).number if T > 0 else np.nan for T in value])
+    lost = sensible & ~(np.abs(held / count - 1) < MET)
+    value[lost] = np.nan
+    reasons = [
+        Reason("N must be above zero", state.shaped(~sensible)),
+        Reason(FULL, state.shaped(lost)),
+    ]
+    return state.read(value, _precision(state, K_B * value) * value, unit, ROUTE, reasons)
 
 
 def number(state: MeanFieldState, unit: str) -> Reading:

@@ -91,7 +91,14 @@ class Filling:
         share = float(setting.measure.volume(kT)) * kT / (k + 1) / setting.coupling  # N at mu = kT
         alone = ((number - onset.number) / share) ** (1 / (k + 1))
         reach = (setting.top * (1 - 1e-12) - onset.mu) / kT
-        if setting.top < inf and (most := setting.cloud(onset.mu + kT * reach, kT).number) < number:
+        most = (
+            setting.cloud(onset.mu + kT * reach, kT).number
+            if 0 < reach < inf
+            else inf
+            if reach > 0
+            else onset.number
+        )
+        if most < number:
             raise NoAnswerError(
                 f"the mean field lifts mu above the escape energy before {number:.4g} particles are held: at most "
                 f"{most:.4g} are, at this temperature"
@@ -169,9 +176,8 @@ class Filling:
         while here(low) > 0:
             low /= 2
             if low < COLD * exp(guess):
-                raise NoAnswerError(
-                    f"no temperature gives so small a value of {name}: the condensate has more"
-                )
+                less = "the condensate alone has more" if name == "U" else "it is nothing but rounding"
+                raise NoAnswerError(f"no temperature gives so small a value of {name}: {less}")
         while here(high) < 0:
             high *= 2
             if high > HOT * exp(guess):

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import replace
+from math import inf
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -24,6 +25,8 @@ def relative_error(cloud: Cloud) -> float:
     The rule is held against a finer one; the error of Omega below each energy counts as much as there are particles.
     """
     finer = replace(cloud, order=FINER)
+    if not finer.number > 0:
+        return inf
     energy = finer.kinetic + finer.potential + abs(finer.interaction)
     apart = [abs(cloud.number / finer.number - 1)]
     apart += [abs(a - b) / energy for a, b in _energies(cloud, finer)]

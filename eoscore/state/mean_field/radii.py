@@ -28,6 +28,10 @@ def radii(held: HeldGas, edge: float) -> FloatArray:
     NoAnswerError where the place has no potential.
     """
     place = held.place
+    if edge <= 0:
+        raise NoAnswerError(
+            "the place is flat: the condensate ends at the walls, and has no radius of its own"
+        )
     if not isinstance(place, TrapPlace):
         raise NoAnswerError("the place has no potential, and so no edge of the condensate")
     return np.array([_half(place, axis, edge) for axis in _axes(place)])

@@ -168,6 +168,28 @@ def test_words(place, gas, words):
     assert words in held(place, gas).find(["f_0"], given)["f_0"].why
 
 
+def test_more_than_a_leaky_trap_holds():
+    trap = held("V(r) = -1e-29 J*exp(-(r/(20 um))^2)", "a_s = 5 nm")
+    found = trap.find(["f_0", "T_c"], {"N": 1e8, "T": 2e-8})
+    assert "above the escape energy" in found["f_0"].why
+    assert "begin to condense" in found["T_c"].why
+    assert "times the depth" in trap.find(["N_c"], {"T": 1e-3})["N_c"].why
+    T = 5e-6
+    onset = trap.state(N=1e3, T=T).filling.setting.at_onset(1.380649e-23 * T)
+    assert 0 < onset.mu < trap.depth[0]
+    assert onset.mu == pytest.approx(onset.fluid.onset.w * onset.fluid.kT, rel=1e-9, abs=0)
+
+
+def test_a_flat_floor_has_no_thomas_fermi_radius():
+    trap = held("V(r) = 0 J where r < 10 um")
+    assert "ends at the walls" in trap.find(["R_TF"], {"N": 1e5, "T": 1e-8})["R_TF"].why
+
+
+@pytest.mark.parametrize("name", ["U", "S"])
+def test_values_that_no_temperature_gives(name):
+    assert "so small" in held(HARMONIC).find(["T"], {"N": 1e5, name: 1e-40})["T"].why
+
+
 def test_a_state_wants_one_of_four_pairs():
     with pytest.raises(NoAnswerError, match="N and T; mu and T; N and S; N and U"):
         held(HARMONIC).state(S=1e-20, T=1e-7)
