@@ -15,6 +15,9 @@ if TYPE_CHECKING:
 
 __all__ = ["TIME_LIMIT", "derive"]
 
+# What the numerical engine needs to be given for a quantity, one of several sets.
+_STATE = ({"N", "T"}, {"n", "T"})
+_NEEDS = {"T_c": ({"N"}, {"n"}), "N_c": ({"T"},), "n_c": ({"T"},)}
 TIME_LIMIT = 20.0  # s for one question; SymPy may run away, an answer may not
 
 
@@ -92,6 +95,8 @@ def _confirmed(held: HeldGas, name: str, entry: dict[str, Any], given: Mapping[s
 
     per = held.dimension if held.uniform else 0
     numerical, reason = _numerical(held, "n_c" if per and name == "N_c" else name, given)
+    if reason is not None and name in ("T_c", "N_c") and entry.get("value") is not None:
+        entry = {"why": reason}  # a sum that diverges may look as if it had a root
     if "sympy" not in entry:
         empty = dict.fromkeys(("sympy", "latex", "text")) | {"closed": False, "where": {}, "value": numerical}
         told = reason is None or reason == entry["why"] or "condens" in entry["why"]
@@ -105,12 +110,12 @@ def _confirmed(held: HeldGas, name: str, entry: dict[str, Any], given: Mapping[s
 
 def _numerical(held: HeldGas, name: str, given: Mapping[str, float]) -> tuple[float | None, str | None]:
     """The numerical engine's value, or why it has none; neither for what it does not know or was not asked."""
-    if name in ("rho", "g"):
+    if name in ("rho", "g") or not any(needs <= set(given) for needs in _NEEDS.get(name, _STATE)):
         return None, None
     try:
         reading = held.find([name], given)[name]
         return (None, str(reading.why)) if reading.why else (float(reading.value), None)
     except NoAnswerError as fault:
-        return None, fault.why if set(given) >= {"N"} or "n" in given else None
+        return None, fault.why
     except (TypeError, ValueError):
         return None, None

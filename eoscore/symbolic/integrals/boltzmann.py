@@ -71,7 +71,14 @@ def _by_rules(task: Task, solve: Solve) -> Boltzmann | None:
     constant, varying = sp.expand(task.function).as_independent(*symbols_of(task), as_Add=True)
     inner = replace(task, function=varying)
     for rule in RULES:
-        done = rule(inner, solve)
+        done = _tried(rule, inner, solve)
         if done is not None:
             return replace(done, minimum=done.minimum + constant)
     return None
+
+
+def _tried(rule: Rule, task: Task, solve: Solve) -> Boltzmann | None:
+    try:
+        return rule(task, solve)
+    except Exception:  # noqa: BLE001 - SymPy's inner works may raise anything, and another rule may do it
+        return None
