@@ -24,6 +24,7 @@ if TYPE_CHECKING:
 __all__ = ["HOTTEST", "Cloud", "Setting"]
 
 NEAR_TOP = 1e-9
+STEPS = 5  # of an iteration that mostly converges at once
 HOTTEST = 50.0  # kT over the depth; a mean field has long filled the place
 REACH = 45.0  # kT above the edge of the condensate, or the bottom: e^-45 is dropped
 
@@ -52,7 +53,7 @@ class Setting:
                 f"kT is more than {HOTTEST:.0f} times the depth: nothing of a gas with a mean field is held so hot"
             )
         mu, most = 0.0, self.top * (1 - NEAR_TOP)
-        for _ in range(20):  # with an escape energy its distance in kT enters, in a cold gas weakly
+        for _ in range(STEPS):  # with an escape energy its distance in kT enters, in a cold gas weakly
             before, mu = mu, self._onset_at(mu, kT)
             if self.top == inf or abs(mu - before) <= 1e-14 * kT:
                 return self.cloud(mu, kT)

@@ -2,10 +2,11 @@
 
 from __future__ import annotations
 
-from math import log
+from math import exp, log, nan
 from typing import TYPE_CHECKING
 
 import numpy as np
+from scipy.optimize import brentq
 
 from eoscore.constants import K_B
 from eoscore.errors import NoAnswerError
@@ -14,12 +15,9 @@ from eoscore.state.critical import saturated_kT
 from eoscore.state.mean_field.cloud import HOTTEST
 from eoscore.state.mean_field.precision import ROUNDING, relative_error
 from eoscore.state.reading import Reason
-from eoscore.state.root import rising_root
 from eoscore.state.shifts import is_flat
 
 if TYPE_CHECKING:
-    from numpy.typing import NDArray
-
     from eoscore.state.mean_field.state import MeanFieldState
     from eoscore.state.reading import FloatArray, Reading
 
@@ -27,7 +25,6 @@ __all__ = ["exponent", "number", "shift", "temperature"]
 
 ROUTE = "Hartree-Fock in local density"
 STEP = 5e-4
-MET = 1e-6  # relative, of N
 FULL = (
     "at no temperature do just N particles begin to condense: the mean field fills the place up to its escape energy "
     "before; take fewer particles, a smaller a_s or a deeper trap"
@@ -36,30 +33,34 @@ FULL = (
 
 def temperature(state: MeanFieldState, unit: str) -> Reading:
     """T_c in K: where N particles just begin to condense at the bottom; in a flat place that of the ideal gas."""
-    setting = state.filling.setting
     if is_flat(state.held):
         return saturation.critical_temperature(state, unit)
     count, _ = state.number
-    sensible = count > 0
-    value = np.full(count.shape, np.nan)
-    start = np.log(saturated_kT(state.held.model.whole, "N", count[sensible]))
-    start = np.minimum(start, np.log(HOTTEST * setting.top))
-    last = np.minimum(start + 3, np.log(HOTTEST * setting.top))
-    a = 1.5 + setting.measure.exponent
-
-    def work(x: FloatArray, which: NDArray[np.intp]) -> tuple[FloatArray, FloatArray]:
-        held = np.array([setting.at_onset(float(kT)).number for kT in np.exp(x)])
-        return np.log(held / count[sensible][which]), np.full(x.shape, a)
-
-    value[sensible] = np.exp(rising_root(work, start - 3, last, start)) / K_B
-    held = np.array([setting.at_onset(K_B * float(T)).number if T > 0 else np.nan for T in value])
-    lost = sensible & ~(np.abs(held / count - 1) < MET)
-    value[lost] = np.nan
+    value = np.array([_onset(state, n) / K_B if n > 0 else np.nan for n in count])
     reasons = [
-        Reason("N must be above zero", state.shaped(~sensible)),
-        Reason(FULL, state.shaped(lost)),
+        Reason("N must be above zero", state.shaped(~(count > 0))),
+        Reason(FULL, state.shaped((count > 0) & np.isnan(value))),
     ]
     return state.read(value, _precision(state, K_B * value) * value, unit, ROUTE, reasons)
+
+
+def _onset(state: MeanFieldState, count: float) -> float:
+    """kT (J) at which so many particles begin to condense; nan where the place is full before."""
+    setting = state.filling.setting
+    hottest = log(HOTTEST * setting.top)
+
+    def excess(x: float) -> float:
+        return log(max(setting.at_onset(exp(x)).number, 1e-300) / count)
+
+    start = min(log(float(saturated_kT(state.held.model.whole, "N", np.array([count]))[0])), hottest - 1e-3)
+    low, high = start - 0.05, min(start + 0.05, hottest)
+    while excess(low) > 0:
+        low -= 0.5
+    while excess(high) < 0:
+        if high == hottest:
+            return nan
+        high = min(high + 0.5, hottest)
+    return exp(brentq(excess, low, high, xtol=1e-14))
 
 
 def number(state: MeanFieldState, unit: str) -> Reading:

@@ -34,6 +34,7 @@ __all__ = ["Fluid", "Onset"]
 
 ORDER = 1.5  # of the density of an ideal gas of massive particles in three dimensions
 FAR = 45.0  # an upper end this far, in kT, is none
+FEW = 40
 POINTS = 48  # of the series of what is missing beyond the upper end
 CLOSE = 1e-9  # a relative step of Newton's method this short leaves an error of its square
 SMALL = 2e-3  # of G, below which the jump is where its limit G -> 0 has it, to a relative G
@@ -49,6 +50,14 @@ class Onset(NamedTuple):
     w: float
     thermal: float
     condensed: float
+
+
+def _series(x: FloatArray, coefficients: FloatArray) -> FloatArray:
+    """A Chebyshev series; term by term only where there are many x."""
+    if x.size > FEW:
+        return np.asarray(chebyshev.chebval(x, coefficients))
+    angle = np.arccos(np.clip(x, -1.0, 1.0))
+    return np.asarray(np.cos(angle[..., None] * np.arange(coefficients.size)) @ coefficients)
 
 
 class Fluid:
@@ -72,7 +81,7 @@ class Fluid:
             return whole
         end = sqrt(self.reach)
         root = np.sqrt(np.maximum(self.reach - y, 0.0))
-        missing = chebyshev.chebval(2 * root / end - 1, self._table(order))
+        missing = _series(2 * root / end - 1, self._table(order))
         return np.where(y < self.reach, np.maximum(whole - missing, 0.0), 0.0)
 
     def _table(self, order: float) -> FloatArray:

@@ -86,7 +86,10 @@ class MeanFieldState(State):
     @cached_property
     def relative(self) -> FloatArray:
         """Bound of the relative error of N, U and S, of every point; nan where there is no state."""
-        return self.each(lambda fill: relative_error(fill.cloud))
+        of_sums = self.each(lambda fill: relative_error(fill.cloud))
+        if "N" not in self.given:
+            return of_sums
+        return of_sums + np.abs(self.each(lambda fill: fill.number) / self.given["N"] - 1)  # as it was met
 
     @cached_property
     def kT(self) -> tuple[FloatArray, FloatArray]:

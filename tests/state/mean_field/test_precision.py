@@ -34,7 +34,7 @@ def test_a_much_finer_rule_agrees_within_the_error(place, T):
     assert stated < 1e-9
     for name in ("number", "entropy", "potential", "kinetic"):
         assert getattr(fill.cloud, name) == pytest.approx(getattr(fine, name), rel=stated, abs=0)
-    assert state.reading("U").error == pytest.approx(3 * stated * state.U, rel=1e-6, abs=0)
+    assert state.reading("U").error == pytest.approx(3 * stated * state.U, rel=0.01, abs=0)
 
 
 def test_a_coarse_rule_says_so():
