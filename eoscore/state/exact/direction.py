@@ -14,7 +14,7 @@ if TYPE_CHECKING:
 
     from eoscore.state.reading import FloatArray
 
-__all__ = ["END", "REACH", "Atoms", "Direction", "OnAtoms", "Oscillator", "Sums"]
+__all__ = ["END", "REACH", "Atoms", "Direction", "OnAtoms", "Oscillator", "Sums", "some"]
 
 CHUNK = 400_000  # numbers made at a time
 REACH = 42.0  # kT: e^-42 is dropped
@@ -97,15 +97,19 @@ class Oscillator:
         )
 
 
+def some(levels: FloatArray, *, coarse: bool) -> FloatArray:
+    """All of the known levels (rows, levels), or those of a coarser description."""
+    return levels[:, : levels.shape[1] * 13 // 16] if coarse else levels
+
+
 class OnAtoms(ABC):
     """A spectrum some of whose levels are known one by one, and the rest as a smooth density, up to some energy.
 
-    levels: how many are known of each row. `_known`: the relative error of these. `lowest` and `gap` as in `Direction`.
+    `_known`: the relative error of the known levels. `lowest` and `gap` as in `Direction`.
     """
 
     lowest: float
     gap: float
-    levels: int
     _known: float = 1e-10
 
     def __init__(self) -> None:
@@ -117,18 +121,18 @@ class OnAtoms(ABC):
         """See `Direction`."""
 
     @abstractmethod
-    def made(self, top: float, levels: int) -> Atoms:
-        """The spectrum up to `top` (J from the lowest level) from so many of the known levels."""
+    def made(self, top: float, *, coarse: bool) -> Atoms:
+        """The spectrum up to `top`, J from the lowest level; `coarse`: from `some` of the known levels alone."""
 
     @abstractmethod
-    def refined(self) -> bool:
-        """Come to know more levels; whether it did."""
+    def refined(self, reach: float) -> bool:
+        """Come to know more levels of the rows that begin below `reach` (J from the lowest); whether it did."""
 
     def atoms(self, kT: float) -> Atoms:
         """As far as `REACH` kT at least, and of enough known levels."""
         octave = floor(log2(kT))
         if octave not in self._good:
-            while self._apart(kT) > ENOUGH and self.refined():
+            while self._apart(kT) > ENOUGH and self.refined(REACH * kT):
                 self._kept.clear()
             self._good.add(octave)
         return self._as_far(kT, coarse=False)
@@ -142,7 +146,7 @@ class OnAtoms(ABC):
         upto, atoms = self._kept.get(coarse, (0.0, None))
         if atoms is None or upto < REACH * kT:
             upto = SPARE * REACH * kT
-            atoms = self.made(upto, self.levels * 13 // 16 if coarse else self.levels)
+            atoms = self.made(upto, coarse=coarse)
             self._kept[coarse] = upto, atoms
         return atoms
 

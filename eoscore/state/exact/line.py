@@ -15,7 +15,7 @@ from eoscore.formula import variable
 from eoscore.formula.field import Field
 from eoscore.measure import Powers, convolve, measure_of
 from eoscore.measure.landscape import survey
-from eoscore.state.exact.direction import Atoms, OnAtoms
+from eoscore.state.exact.direction import Atoms, OnAtoms, some
 from eoscore.state.exact.spectral import converged
 from eoscore.state.exact.tail import ladder
 
@@ -45,7 +45,6 @@ class Line(OnAtoms):
             )
         self.field, self.mass, self.bottom = field, mass, landscape.bottom.value
         self.center, self.states = landscape.bottom.position[0], phase_space(field, mass)
-        self.levels = LEVELS
         self.energies = np.concatenate([self._solved(FEW + 2)[:FEW], self._solved(LEVELS)[FEW:]])
         self.lowest = float(self.energies[0])
         self.gap = float(self.energies[1]) - self.lowest
@@ -54,19 +53,19 @@ class Line(OnAtoms):
         """See `Direction`."""
         return float(self.states.volume(energy + self.lowest))
 
-    def made(self, top: float, levels: int) -> Atoms:
+    def made(self, top: float, *, coarse: bool) -> Atoms:
         """See `OnAtoms`."""
-        known = self.energies[None, :levels]
+        known = some(self.energies[None, :], coarse=coarse)
         walls = self._at_walls[None, :]
         e, w = ladder(known, self._count, np.zeros(1), top + self.lowest, self.states.breaks, walls)
         return Atoms(e[0, 1:] - self.lowest, w[0, 1:])
 
-    def refined(self) -> bool:
+    def refined(self, reach: float) -> bool:  # noqa: ARG002 - there is one row
         """See `OnAtoms`."""
-        if self.levels >= MOST:
+        count = self.energies.size
+        if count >= MOST:
             return False
-        self.levels *= 2
-        self.energies = np.concatenate([self.energies, self._solved(self.levels)[self.energies.size :]])
+        self.energies = np.concatenate([self.energies, self._solved(2 * count)[count:]])
         return True
 
     def _count(self, e: FloatArray) -> FloatArray:

@@ -10,8 +10,9 @@ import numpy as np
 from eoscore.constants import HBAR
 from eoscore.errors import NoAnswerError
 from eoscore.measure.landscape import survey
+from eoscore.state.ensemble import EPS
 from eoscore.state.exact.angular import ALL, Plane, Space
-from eoscore.state.exact.direction import Atoms, OnAtoms
+from eoscore.state.exact.direction import Atoms, OnAtoms, some
 from eoscore.state.exact.orbit import Orbits, Well
 from eoscore.state.exact.spectral import converged
 from eoscore.state.exact.tail import ladder
@@ -59,7 +60,6 @@ class Radial(OnAtoms):
             return np.asarray(np.broadcast_to(slope.evaluate({name: r}), np.shape(r)))
 
         self.well = Well(potential, rise, mass, _wall(field, landscape.bottom.position[0]))
-        self.levels = LEVELS
         self.shells = [self._shell(0)]
         first = self.shells[0].energies
         self.lowest = float(first[0, 0])
@@ -69,15 +69,18 @@ class Radial(OnAtoms):
         """See `Direction`."""
         return self.shells[0].orbits.take(slice(0, 1)).volume(energy + self.lowest, self.momenta.states)
 
-    def refined(self) -> bool:
+    def refined(self, reach: float) -> bool:
         """See `OnAtoms`."""
-        if self.levels >= MOST:
-            return False
-        self.levels *= 2
-        self.shells = [self._shell(panel) for panel in range(len(self.shells))]
-        return True
+        before = self.shells
+        self.shells = [self._finer(panel, reach + self.lowest) for panel in range(len(before))]
+        return any(new is not old for new, old in zip(self.shells, before, strict=True))
 
-    def made(self, top: float, levels: int) -> Atoms:
+    def _finer(self, panel: int, reach: float) -> Shells:
+        shells = self.shells[panel]
+        count = shells.energies.shape[1]
+        return self._shell(panel, 2 * count) if count < MOST and shells.energies[0, 0] < reach else shells
+
+    def made(self, top: float, *, coarse: bool) -> Atoms:
         """See `OnAtoms`."""
         while self.shells[-1].energies[-1, 0] - self.lowest < top:
             if len(self.shells) > PANELS:
@@ -86,30 +89,31 @@ class Radial(OnAtoms):
                     "there; lower T or N, or take the trap as a continuum"
                 )
             self.shells.append(self._shell(len(self.shells)))
-        parts = [self._part(shells, levels, top + self.lowest) for shells in self.shells]
+        parts = [self._part(shells, top + self.lowest, coarse=coarse) for shells in self.shells]
         e, w = (np.concatenate([part[k] for part in parts]) for k in range(2))
         return Atoms(e[1:] - self.lowest, w[1:])  # the first one is the lowest level
 
-    def _part(self, shells: Shells, levels: int, top: float) -> tuple[FloatArray, FloatArray]:
+    def _part(self, shells: Shells, top: float, *, coarse: bool) -> tuple[FloatArray, FloatArray]:
         orbits, walls = shells.orbits, None
         if self.well.wall < inf:
             at_wall = np.full_like(orbits.squared, self.well.wall)
             walls = np.maximum(self.well.turned(at_wall, orbits.squared), orbits.floor)[:, None]
-        e, w = ladder(shells.energies[:, :levels], orbits.count, orbits.floor, top, walls=walls)
+        e, w = ladder(some(shells.energies, coarse=coarse), orbits.count, orbits.floor, top, walls=walls)
         return e.ravel(), (w * shells.weight[:, None]).ravel()
 
-    def _shell(self, panel: int) -> Shells:
+    def _shell(self, panel: int, count: int = LEVELS) -> Shells:
         """The levels of the first angular momenta, or of those of a panel."""
         angular, weight = self.momenta.panel(panel)
         squared, smooth = self.momenta.squared(angular), self.momenta.smooth(angular)
         orbits = Orbits(self.well, smooth, self._centers(smooth))
-        low, high = self._ends(orbits, _energies(orbits, float(self.levels)))
+        low, high = self._ends(orbits, _energies(orbits, float(count)))
 
         def turned(r: FloatArray) -> FloatArray:
             return self.well.turned(r, squared[:, None]) - orbits.floor[:, None]
 
+        kinetic, noise = HBAR**2 / (2 * self.well.mass), 16 * EPS * float(angular.max())
         energies, error = converged(
-            turned, low, high, HBAR**2 / (2 * self.well.mass), self.levels, planar=self.momenta.planar
+            turned, low, high, kinetic, count, planar=self.momenta.planar, noise=noise
         )
         if not error < GOOD:
             raise NoAnswerError(

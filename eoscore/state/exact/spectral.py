@@ -67,8 +67,12 @@ def converged(
     count: int,
     *,
     planar: bool = False,
+    noise: float = 0.0,
 ) -> tuple[FloatArray, float]:
-    """`eigenvalues` on the first pair of grids that agree, and how far these are apart, relative."""
+    """`eigenvalues` on the first pair of grids that agree, and how far these are apart, relative.
+
+    noise: the relative error of levels that comes with the rounding of the potential.
+    """
     best, least = np.empty(0), np.inf
     for pair in GRIDS:
         if pair[0] < 2 * count and pair != GRIDS[-1]:
@@ -80,7 +84,7 @@ def converged(
         stuck = error > least / 4 and (least < ROUGH or pair[0] > PATIENCE)
         if error < least:
             best, least = second, error
-        if error < WANTED or stuck:
+        if error < WANTED + noise or stuck:
             break
     return best, least
 

@@ -126,8 +126,8 @@ def test_more_known_levels_change_less_than_the_error(place):
     kT, spectrum = 30 * QUANTUM, Radial(field(place), MASS)
     beta, stated = np.array([1 / kT]), spectrum.error_at(kT)
     first = 1 + spectrum.sums(beta, kT).z0[0]
-    assert spectrum.refined()
-    atoms = spectrum.made(45 * kT, spectrum.levels)
+    assert spectrum.refined(45 * kT)
+    atoms = spectrum.made(45 * kT, coarse=False)
     assert abs(first / (1 + np.exp(-atoms.e / kT) @ atoms.w) - 1) < stated < 1e-6
 
 
