@@ -7,6 +7,7 @@ import pytest
 
 import eoscore
 from eoscore.constants import K_B
+from eoscore.show.report.raised import with_prefixes
 from eoscore.show.report.subject import subjects
 from eoscore.show.report.view import views_of
 from eoscore.show.report.way_out import way_out
@@ -93,6 +94,21 @@ def test_a_gas_that_is_brought_elsewhere_is_shown_at_the_temperature_found_there
     subject = asked(BOWL + tight, "T for strontium in tight from bowl with N = 1e5, T = 900 nK")
     bowl = (100 * 200 * 2000) ** (1 / 3)
     assert subject.given == pytest.approx({"N": 1e5, "T": 900e-9 * 400 / bowl}, rel=1e-9)
+
+
+@pytest.mark.parametrize(
+    ("text", "written"),
+    [
+        (
+            "over the pass at y = 0.00973091 m, z = -5.75134e-05 m, towards -z",
+            "y = 9.73091 mm, z = -57.5134 µm,",
+        ),
+        ("at x = 0 m", "at x = 0 m"),
+        ("0.1 m/s2 and 1e14 m^-3", "0.1 m/s2 and 1e14 m^-3"),
+    ],
+)
+def test_lengths_in_words_take_a_prefix(text, written):
+    assert written in with_prefixes(text)
 
 
 def test_both_sides_of_a_jump_are_looked_at():

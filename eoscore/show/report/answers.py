@@ -14,7 +14,7 @@ from eoscore.show.prefix import quantity
 from eoscore.show.report.budget import budgets
 from eoscore.show.report.formulas import formulas
 from eoscore.show.report.markup import Markup, element, listed, table, together
-from eoscore.show.report.raised import raised
+from eoscore.show.report.raised import raised, with_prefixes
 
 if TYPE_CHECKING:
     from collections.abc import Container, Iterator
@@ -118,7 +118,9 @@ def _reasons(answer: FoundAnswer) -> Markup:
 
 
 def _notes(answer: FoundAnswer) -> Markup:
-    return listed(f"{name}: {finding.note}" for name, finding in answer.found.items() if finding.note)
+    return listed(
+        f"{name}: {with_prefixes(finding.note)}" for name, finding in answer.found.items() if finding.note
+    )
 
 
 def _cautions(answer: Answer, told: set[Caution], boxed: Container[str]) -> Markup:

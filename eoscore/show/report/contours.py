@@ -8,6 +8,7 @@ import numpy as np
 
 from eoscore.show.report.axis import as_temperature, length
 from eoscore.show.report.picture import INK, ORANGE, SHAPE
+from eoscore.show.report.raised import with_prefixes
 from eoscore.show.report.way_out import leak_of
 
 if TYPE_CHECKING:
@@ -65,7 +66,9 @@ class Contours:
         if escape is None:
             return ""
         inside = escape.position is not None and self.view.shows(escape.position)
-        return f" {'Cross' if inside else 'Outside this picture'}: the trap leaks {escape.words}."
+        return (
+            f" {'Cross' if inside else 'Outside this picture'}: the trap leaks {with_prefixes(escape.words)}."
+        )
 
     def __call__(self, axes: Axes) -> None:
         """Paint."""
