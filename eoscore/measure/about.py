@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from fractions import Fraction
 from functools import partial
 from math import inf
 from typing import TYPE_CHECKING
@@ -30,7 +31,9 @@ __all__ = ["NEARING", "OPEN", "Wells", "about", "refuse_infinite"]
 
 BENT = 1e-2  # change of V against its quadratic form at which the form ends
 RUNG = 16.0  # ratio of the energies for which rays are walked anew
-LOWEST = -1  # the rung that serves all lower energies
+LOWEST, DEEPEST = -1, -12  # the rung that serves all lower energies, where the bottom is known and where not
+STEP, STEADY = 4.0, 1e-6  # of energies on the way to a bottom, and the change of a power that counts as none
+ROUNDED = 1e-8  # of V at the bottom: nearer to it too few digits are left
 GOOD, FAIR = 3e-6, 1e-4  # errors at 0.8 of the level and at the level itself, at which boxes do better
 MOST_WELLS = 12
 TOGETHER = 20  # energies that share their rays
@@ -41,13 +44,15 @@ SERIES = 0.1  # of that energy: below, Omega / v^{d/2} is a series from its exac
 
 
 class Wells:
-    """Omega of wells together below `end` (J from the lowest). Raises Declined where a bottom is of no kind for rays.
+    """Omega of wells together below `end` (J from the lowest). Raises Declined where they are too many.
 
     few: take no more rays than a try is worth.
     """
 
     def __init__(self, field: Field, minima: Sequence[Minimum], end: float, *, few: bool = False) -> None:
         kept = [minimum for minimum in minima if minimum.value - minima[0].value < end]
+        if len(kept) > MOST_WELLS:
+            raise Declined
         self.rises = [minimum.value - minima[0].value for minimum in kept]
         region = Region(field, kept, end)
         shares = _shares(kept, region)
@@ -70,29 +75,39 @@ class Wells:
 
 
 class _Well:
-    """One well; near its bottom Omega / v^k is a polynomial through five values, its exact limit among them."""
+    """One well; near its bottom Omega / v^k is a polynomial through five values, its exact limit among them.
+
+    Where the power k is not known, Omega is solved along the rays all the way down.
+    """
 
     def __init__(self, angular: Angular) -> None:
         self.angular = angular
         self.exponent = angular.exponent
-        self.scale = _scale(angular, angular.end)
-        self.edge = SERIES * self.scale
-        exact = self.angular.degree == 2
-        share = np.array([0.25, 0.5, 0.75, 1.0] if exact else [0.2, 0.4, 0.6, 0.8, 1.0])
-        volume, error = angular.with_error(self.edge * share)
-        ratio, self.error = volume / (self.edge * share) ** self.exponent, float(error.max())
-        if exact:
-            share, ratio = np.append(share, 0.0), np.append(ratio, self.angular.limit)
-        self.series = np.linalg.solve(np.vander(share), ratio)
+        self.scale, self.edge = angular.end, 0.0
+        if self.exponent is not None:
+            self.scale = _scale(angular, angular.end)
+            self.edge = SERIES * self.scale
+            self._series(self.exponent)
 
     def with_error(self, v: FloatArray) -> tuple[FloatArray, FloatArray]:
         """Omega at energies (n,) above the bottom of the well, and its relative error."""
+        if self.exponent is None:
+            return self.angular.with_error(v)
         result = np.asarray(np.polyval(self.series, np.minimum(v / self.edge, 1.0)) * v**self.exponent)
         error = np.full(v.shape, self.error)
         above = v > self.edge
         if above.any():
             result[above], error[above] = self.angular.with_error(v[above])
         return result, error
+
+    def _series(self, exponent: float) -> None:
+        exact = self.angular.degree == 2
+        share = np.array([0.25, 0.5, 0.75, 1.0] if exact else [0.2, 0.4, 0.6, 0.8, 1.0])
+        volume, error = self.angular.with_error(self.edge * share)
+        ratio, self.error = volume / (self.edge * share) ** exponent, float(error.max())
+        if exact:
+            share, ratio = np.append(share, 0.0), np.append(ratio, self.angular.limit)
+        self.series = np.linalg.solve(np.vander(share), ratio)
 
 
 def _shares(minima: Sequence[Minimum], region: Region) -> list[Callable[[FloatArray], FloatArray] | None]:
@@ -113,13 +128,36 @@ class Ladder:
     def __init__(self, field: Field, minima: Sequence[Minimum], level: float, top: float) -> None:
         self.field, self.minima, self.level, self.top = field, minima, level, top
         self._made: dict[int, Wells] = {}
+        self.lowest = LOWEST
         self._known = np.empty((0, 2))
         shares = np.array([0.8, 1.0])
         self(level * shares)
         if np.any(self._known[:, 1] > [GOOD, FAIR]):
             raise Declined
         wells = self._wells(0)
-        self.exponent, self.scale = wells.exponent, wells.scale
+        self.scale = wells.scale
+        self.foot: float | None = None
+        self.lowest = LOWEST if wells.exponent is not None else DEEPEST
+        self.exponent = wells.exponent if wells.exponent is not None else self._beginning()
+
+    def _beginning(self) -> float:
+        """The power with which Omega begins; sets the foot, below which it counts as that power."""
+        floor = max(ROUNDED * abs(self.minima[0].value), self.level * RUNG**self.lowest)
+        v, slopes = [self.level], [inf]
+        volume = self(np.array(v))
+        while v[-1] / STEP > floor:
+            v.append(v[-1] / STEP)
+            lower = self(np.array(v[-1:]))
+            slopes.append(float(np.log(volume / lower)[0] / np.log(STEP)))
+            volume = lower
+            if abs(slopes[-1] - slopes[-2]) < STEADY:
+                break
+        near = float(Fraction(slopes[-1]).limit_denominator(24))
+        exponent = near if abs(near - slopes[-1]) < 10 * STEADY else slopes[-1]
+        self.foot, self.scale = v[-1], v[-1]
+        miss = np.array([[v[-1], abs(slopes[-1] - exponent) + abs(slopes[-1] - slopes[-2])]])
+        self._known = np.concatenate([miss, self._known[self._known[:, 0] > v[-1]]])
+        return exponent
 
     def __call__(self, v: FloatArray) -> FloatArray:
         """Omega at energies (n,) above 0, in any order."""
@@ -142,7 +180,7 @@ class Ladder:
     def _rungs(self, v: FloatArray) -> NDArray[np.int_]:
         """Number of the rung up to which an energy belongs, 0 the one that ends at the level."""
         rungs = np.ceil(np.log(v / self.level) / np.log(RUNG) - 1e-9).astype(int)
-        return np.clip(rungs, LOWEST, 0 if self.top < inf else None)
+        return np.asarray(np.clip(rungs, self.lowest, 0 if self.top < inf else None))
 
     def _wells(self, k: int) -> Wells:
         if k not in self._made:
@@ -173,6 +211,7 @@ def about(field: Field, landscape: Landscape, ceiling: float) -> Measure | None:
         ladder,
         ladder.exponent,
         scale=ladder.scale,
+        foot=ladder.foot,
         top=top,
         error=ladder.error_below,
         route="about the bottom",

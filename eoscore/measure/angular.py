@@ -11,7 +11,7 @@ import numpy as np
 from eoscore.formula import evaluate_many, gradient, variable
 from eoscore.formula.field import Field
 from eoscore.measure.patches import Patches
-from eoscore.measure.rays import Declined, Line, Rays
+from eoscore.measure.rays import Line, Rays
 
 if TYPE_CHECKING:
     from collections.abc import Callable, Sequence
@@ -29,7 +29,7 @@ ON_AXIS = 1e-9  # of the width of a well: a bottom this close to the axis lies o
 ASIDE = 1e-10  # m beside the tip of a cone
 ROOTS = 1e-13  # error of the roots
 BEGIN = 1e-3  # of the guessed reach: where a walk begins
-MOST = {1: 12_000, 2: 30_000}  # rays, for one or two parameters of direction
+MOST = {1: 12_000, 2: 18_000}  # rays, for one or two parameters of direction
 FAR = 4.0  # times the reach of the form at the bottom: arms beyond it ask for stretched lines
 SEEN = 6000  # points of the region that are looked at from the bottom
 SIGHT = 24  # points on the way there
@@ -45,8 +45,8 @@ class Angular:
 
     end: the greatest energy (J) that will be asked. region: what joins the wells below it. share: of this well
     at points (d, ...), where there are others. power: of q in the integral, which is the dimension, and
-    the number of coordinates for a ring. exponent: of Omega ~ v^exponent. limit: of Omega / v^exponent for
-    v -> 0, exact, of a quadratic bottom.
+    the number of coordinates for a ring. exponent: of Omega ~ v^exponent, None where unknown. limit: of
+    Omega / v^exponent for v -> 0, exact, of a quadratic bottom.
     """
 
     def __init__(
@@ -59,10 +59,7 @@ class Angular:
         *,
         few: bool = False,
     ) -> None:
-        if bottom.kind not in DEGREES:
-            raise Declined
-        self.degree = DEGREES[bottom.kind]
-        self.frame = _cone_frame(field, bottom) if self.degree == 1 else _well_frame(bottom)
+        self.degree, self.frame = _frame(field, bottom, region)
         self.start, self.v_min, self.end = np.array(bottom.position), bottom.value, end
         turning = field.coordinates == ("rho", "z")
         if turning and self.degree == 2 and abs(bottom.position[0]) <= self._slack():
@@ -81,7 +78,7 @@ class Angular:
             self.start[0] = 0.0
         area = 2 * pi if self.shape == "circle" else 4 * pi
         self.limit = area * self.det * 2 ** (self.power / 2) / self.power * (self.ring or 1.0)
-        self.exponent = self.power / self.degree
+        self.exponent = self.power / self.degree if self.degree else None
         self.share = share
         self.line = self._line(region)
         mirrors = self._mirrors()
@@ -95,11 +92,11 @@ class Angular:
         return total * self.det, np.maximum(error, ROOTS)
 
     def radius(self, v: float) -> float:
-        """q at an energy in the form that V has at the bottom: q^2/2, or q for a cone."""
-        return sqrt(2 * v) if self.degree == 2 else v
+        """q at an energy in the form that V has at the bottom: q^2/2, or q for a cone; 1 where that is unknown."""
+        return sqrt(2 * v) if self.degree == 2 else v if self.degree else 1.0
 
     def _slack(self) -> float:
-        return ON_AXIS * sqrt(self.end) * float(np.abs(self.frame[0]).max())
+        return ON_AXIS * self.radius(self.end) * float(np.abs(self.frame[0]).max())
 
     def _line(self, region: Region) -> Line:
         """Lines to all points of the region: straight ones, or ones that suit arms which reach far along the axes."""
@@ -192,16 +189,23 @@ def _directions(shape: Shape, side: FloatArray, point: FloatArray) -> FloatArray
     return found
 
 
-def _well_frame(bottom: Minimum) -> FloatArray:
-    """Columns along the principal axes, so long that V = q^2/2 along each."""
+def _frame(field: Field, bottom: Minimum, region: Region) -> tuple[int, FloatArray]:
+    """The power with which V rises from a bottom (0: unknown), and the frame in which it does so in all directions."""
+    degree = DEGREES.get(bottom.kind, 0)
+    frame = _well_frame(bottom) if degree == 2 else _cone_frame(field, bottom) if degree == 1 else None
+    if frame is not None:
+        return degree, frame
+    return 0, np.diag(np.ptp(region.points(beyond=True), axis=0) / 2)
+
+
+def _well_frame(bottom: Minimum) -> FloatArray | None:
+    """Columns along the principal axes, so long that V = q^2/2 along each; None where V is level along one."""
     curvature, axes = np.linalg.eigh(np.nan_to_num(np.asarray(bottom.hessian)))
-    if curvature[0] <= 1e-10 * curvature[-1]:
-        raise Declined
-    return np.asarray(axes / np.sqrt(curvature))
+    return np.asarray(axes / np.sqrt(curvature)) if curvature[0] > 1e-10 * curvature[-1] else None
 
 
-def _cone_frame(field: Field, bottom: Minimum) -> FloatArray:
-    """Columns along the coordinates, so long that V = q on the average of both sides of the tip."""
+def _cone_frame(field: Field, bottom: Minimum) -> FloatArray | None:
+    """Columns along the coordinates, so long that V = q on the average of both sides of the tip; None without one."""
     d = len(field.coordinates)
     steps = ASIDE * np.concatenate([np.eye(d), -np.eye(d)])
     points = dict(zip(field.coordinates, (np.array(bottom.position) + steps).T, strict=True))
@@ -209,6 +213,4 @@ def _cone_frame(field: Field, bottom: Minimum) -> FloatArray:
         np.broadcast_to(g, 2 * d) for g in evaluate_many(gradient(field.formula, field.coordinates), points)
     ]
     steepness = np.array([(slope[i] - slope[d + i]) / 2 for i, slope in enumerate(slopes)])
-    if not np.all(steepness > 0):
-        raise Declined
-    return np.diag(1 / steepness)
+    return np.diag(1 / steepness) if np.all(steepness > 0) else None

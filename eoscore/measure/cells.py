@@ -29,7 +29,7 @@ __all__ = ["cells"]
 DOUBT = 0.3  # of the difference between boxes and halved boxes, which is eight times the error of the latter
 RUNGS = (1.45, 2.0, 4.0)  # ratio of the levels for which boxes of their own are made: few, many, without end
 # Shares of the level up to which the wells may be taken along rays.
-STARTS = np.concatenate([[0.85, 0.6], 0.4 * 0.5 ** np.arange(40)])
+STARTS = (0.85, 0.5, 0.25, 0.1, 0.03, 0.01, 1e-3)
 GOOD = 3e-6  # error at which they are
 FADING = 0.2  # of the joint: how far above it boxes are led to the value of the rays
 LOWEST = 2e-3  # of the level, where they may not: below it Omega is taken as a power
@@ -80,11 +80,11 @@ class _Boxed:
     def _low(self, landscape: Landscape) -> tuple[Wells | None, float]:
         """The wells along rays, as high as that goes."""
         for share in STARTS:
-            end = float(share * self.level)
+            end = share * self.level
             try:
                 wells = Wells(self.field, landscape.minima, end, few=True)
             except Declined:
-                break
+                continue
             if np.all(wells.with_error(end * np.array([0.5, 1.0]))[1] <= GOOD):
                 return wells, end
         return None, 0.0
@@ -101,11 +101,11 @@ class _Boxed:
 
     def beginning(self) -> tuple[float, float, float | None]:
         """Exponent, scale and foot of Omega."""
-        if self.rays is not None:
+        if self.rays is not None and self.rays.exponent is not None:
             return self.rays.exponent, self.rays.scale, None
         foot = LOWEST * self.level
         v = foot * np.geomspace(1, 3, 20)
-        steady, _ = beginning(v, self._boxes(v))
+        steady, _ = beginning(v, self(v))
         d = dimension(self.field)
         likely = [k / p for k in range(1, d + 1) for p in (1, 2, 3, 4, 6)]
         near = min(likely, key=lambda k: abs(k - steady))

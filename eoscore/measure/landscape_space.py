@@ -43,7 +43,9 @@ def survey_space(field: Field) -> Landscape:
     leak = grid.leak(points[0])
     least, far = 10.0 ** min(axis.least for axis in axes), 10.0 ** (max(axis.most for axis in axes) + 1)
     valley = lowest_valley(chart, points[0], bottom.value, least, far)
-    if valley is not None and (leak is None or valley.energy < leak.energy - 1e-9 * abs(leak.energy - bottom.value)):
+    if valley is not None and (
+        leak is None or valley.energy < leak.energy - 1e-9 * abs(leak.energy - bottom.value)
+    ):
         leak = valley
     escape, error = _escape(chart, grid, leak, points, bottom.value)
     ceiling = min([escape.energy if escape else np.inf, leak.energy if leak else np.inf])

@@ -20,7 +20,7 @@ __all__ = ["lowest_valley"]
 
 FIRST_STEPS, STEPS = 40, 5  # Newton steps on the first sphere, and on each that follows
 SHRINK = 0.6  # ratio of radii on the way back
-BEYOND = (1e2, 1e4)  # times the first radius: whether V grows along a valley
+BEYOND = (1e3, 1e6, 1e9)  # times the first radius: whether V grows along a valley, and its limit
 ALIKE = 1e-4  # radians
 RANDOM = 40  # directions besides those along and between the axes
 LEVEL = 1e-9  # of the way up: a valley no higher than this above its limit leaks at infinity
@@ -41,7 +41,7 @@ def lowest_valley(chart: Chart, bottom: Array, value: float, least: float, far: 
     for factor in BEYOND:
         farther = _settled(chart, bottom, farther, factor * far, STEPS)
         heights.append(_v(chart, bottom, farther, factor * far))
-    first, second, third = heights
+    first, second, third = (np.asarray(height) for height in heights[1:])
     with np.errstate(all="ignore"):
         rises = (third - second > 0.5 * (second - first)) & (third - second > 1e-9 * np.abs(second - value))
     out = ~rises & np.isfinite(third)
@@ -50,11 +50,13 @@ def lowest_valley(chart: Chart, bottom: Array, value: float, least: float, far: 
     rough = _way_back(chart, bottom, n[out], least, far, STEPS)
     best = int(np.argmin(np.maximum(np.max(chart.value(rough), axis=0), third[out])))
     path = _way_back(chart, bottom, n[out][[best]], least, far, FIRST_STEPS)[:, 0]
-    heights, limit, outward = chart.value(path), float(third[out][best]), n[out][best]
-    top = int(np.argmax(heights))
-    if limit >= heights[top] - LEVEL * abs(heights[top] - value):
+    radius = np.linalg.norm(path - bottom, axis=1, keepdims=True)
+    path = bottom + radius * _settled(chart, bottom, (path - bottom) / radius, radius, FIRST_STEPS)
+    v, limit, outward = chart.value(path), float(third[out][best]), n[out][best]
+    top = int(np.argmax(v))
+    if limit >= v[top] - LEVEL * abs(v[top] - value):
         return Leak(limit, value, path[0], outward, at_infinity=True)
-    return Leak(float(heights[top]), value, path[top], outward, at_infinity=False)
+    return Leak(float(v[top]), value, path[top], outward, at_infinity=False)
 
 
 def _way_back(chart: Chart, bottom: Array, n: Array, least: float, far: float, steps: int) -> Array:
@@ -66,7 +68,8 @@ def _way_back(chart: Chart, bottom: Array, n: Array, least: float, far: float, s
         places.append(bottom + radius * n)
     corners = np.array([*places, np.broadcast_to(bottom, n.shape)])
     share = (np.arange(LOOKS) / LOOKS)[:, None, None]
-    return (corners[:-1, None] + (corners[1:] - corners[:-1])[:, None] * share).reshape(-1, *n.shape)
+    path = corners[:-1, None] + (corners[1:] - corners[:-1])[:, None] * share
+    return np.asarray(path.reshape(-1, *n.shape))
 
 
 def _starts(dimension: int) -> Array:
@@ -77,17 +80,17 @@ def _starts(dimension: int) -> Array:
     return np.asarray(starts / np.linalg.norm(starts, axis=1, keepdims=True))
 
 
-def _v(chart: Chart, bottom: Array, n: Array, radius: float) -> Array:
+def _v(chart: Chart, bottom: Array, n: Array, radius: float | Array) -> Array:
     return chart.value(bottom + radius * n)
 
 
-def _settled(chart: Chart, bottom: Array, n: Array, radius: float, steps: int) -> Array:
+def _settled(chart: Chart, bottom: Array, n: Array, radius: float | Array, steps: int) -> Array:
     """Directions (n, d) moved to a minimum of V on the sphere by Newton steps of at most half a radian."""
     value = _v(chart, bottom, n, radius)
     trust = np.full(len(n), 0.5)
     for _ in range(steps):
         _, slope, bend = chart.jet(bottom + radius * n)
-        slope, bend = np.nan_to_num(slope) * radius, np.nan_to_num(bend) * radius**2
+        slope, bend = np.nan_to_num(slope) * radius, np.nan_to_num(bend) * np.expand_dims(radius, -1) ** 2
         outward = np.einsum("ni,ni->n", slope, n)
         flat = np.eye(n.shape[1]) - n[:, :, None] * n[:, None, :]
         across = np.einsum("nij,nj->ni", flat, slope)

@@ -25,6 +25,7 @@ SKETCH = {2: 160, 3: 40}  # points along each axis of the grid that finds the ex
 FINE = {2: 240, 3: 44}  # and of the grid whose boxes are kept
 TYPICAL = 0.2  # share of the points of a sketch below the first level that is looked at where nothing leaks
 MOST_WELLS = 200  # whose places decide where boxes are small
+GROWTHS, GROWTH = 12, 0.3  # times that a grid is made wider, and by how much of its width on a side
 CORE = 0.25  # share of the ceiling up to which a well counts as its core
 MARGIN = 0.05  # of the ceiling: so far below it no grid steps over a barrier at the pass
 
@@ -50,19 +51,46 @@ class Boxes:
 
 def held_boxes(field: Field, minima: Sequence[Minimum], ceiling: float) -> Boxes:
     """Boxes that hold all points which join one of the minima below `ceiling` (J from the first of them)."""
-    chart = Chart(field)
-    wells, v_min = [minimum.position for minimum in minima], minima[0].value
-    lines = held_lines(field, minima, ceiling, FINE[chart.dimension])
-    return _boxes(lines, *_held(chart, lines, wells, v_min, ceiling))
+    return _boxes(*_grown(field, minima, ceiling, FINE[len(field.coordinates)]))
 
 
 def held_grid(
     field: Field, minima: Sequence[Minimum], ceiling: float, count: int
 ) -> tuple[list[FloatArray], NDArray[np.bool_]]:
     """Points along each axis as `held_lines` gives them, and which points of their grid are held."""
+    lines, held, _ = _grown(field, minima, ceiling, count)
+    return lines, held
+
+
+def _grown(
+    field: Field, minima: Sequence[Minimum], ceiling: float, count: int
+) -> tuple[list[FloatArray], NDArray[np.bool_], NDArray[np.bool_]]:
+    """Lines whose ends nothing held touches, the held points of their grid and the lost ones.
+
+    A curved valley may go on where the sketch saw it end.
+    """
+    wells, v_min = [minimum.position for minimum in minima], minima[0].value
+    chart = Chart(field)
     lines = held_lines(field, minima, ceiling, count)
-    wells = [minimum.position for minimum in minima]
-    return lines, _held(Chart(field), lines, wells, minima[0].value, ceiling)[0]
+    for _ in range(GROWTHS):
+        held, lost = _held(chart, lines, wells, v_min, ceiling)
+        spans = [
+            _wider(line, held, i, radial)
+            for i, (line, radial) in enumerate(zip(lines, chart.radial, strict=True))
+        ]
+        if all(span == (line[0], line[-1]) for span, line in zip(spans, lines, strict=True)):
+            break
+        lines = [_between(minima, i, span, ceiling, count) for i, span in enumerate(spans)]
+    return lines, held, lost
+
+
+def _wider(line: FloatArray, held: NDArray[np.bool_], i: int, radial: bool) -> tuple[float, float]:
+    """The ends of a line, moved out where held points touch them."""
+    low, high = float(line[0]), float(line[-1])
+    step = GROWTH * (high - low)
+    touched = np.moveaxis(held, i, 0)
+    below, above = touched[0].any(), touched[-1].any()
+    return (max(low - step, 0.0) if radial else low - step) if below else low, high + step if above else high
 
 
 def held_lines(field: Field, minima: Sequence[Minimum], ceiling: float, count: int) -> list[FloatArray]:

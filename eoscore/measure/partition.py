@@ -45,6 +45,8 @@ class Partition:
                 way = other - self._bottoms[k]
                 middle = float(way @ (other + self._bottoms[k])) / 2
                 rate = STEEP / (way @ way)
-                along = sum(float(part) * column for part, column in zip(way / self._unit, x, strict=True) if part)
+                along = sum(
+                    float(part) * column for part, column in zip(way / self._unit, x, strict=True) if part
+                )
                 weight = weight * (erfc(rate * (along - middle)) / 2)
         return weight

@@ -107,7 +107,9 @@ class Patches:
             if not chosen.size:
                 return leaves
             axes = np.argmax((errors[chosen] / total).max(axis=2), axis=1)
-            halves = [half for k, axis in zip(chosen, axes, strict=True) for half in leaves[k].halves(int(axis))]
+            halves = [
+                half for k, axis in zip(chosen, axes, strict=True) for half in leaves[k].halves(int(axis))
+            ]
             made = self._patches(halves)
             more = self._evaluated(made, v)
             kept = np.delete(np.arange(len(leaves)), chosen)
@@ -125,7 +127,7 @@ class Patches:
         chosen = order[~staying][::-1]
         wide = [max(np.subtract(leaves[k].high, leaves[k].low)) > FINEST for k in chosen]
         room = self._most // self._size - len(leaves) + 1
-        return chosen[np.array(wide, dtype=bool)][:room]
+        return np.asarray(chosen[np.array(wide, dtype=bool)][:room])
 
     def _patches(self, boxes: list[Box]) -> list[_Patch]:
         """Patches, whose rays are walked together where they are new."""

@@ -48,6 +48,10 @@ class Region:
         """The held points of the grid (n, d), and, if wanted, their neighbours."""
         from scipy import ndimage
 
-        held = ndimage.binary_dilation(self.held, np.ones((3,) * self.held.ndim)) if beyond else self.held
+        held = (
+            ndimage.binary_dilation(self.held, np.ones((3,) * self.held.ndim, dtype=bool))
+            if beyond
+            else self.held
+        )
         index = np.argwhere(held)
         return np.stack([line[index[:, i]] for i, line in enumerate(self.lines)], axis=1)
