@@ -111,13 +111,12 @@ class ExactLevels(Ensemble):
 
     def below(self, number: FloatArray) -> FloatArray:
         """See `Ensemble.below`: climbing from below the first level."""
-        kT, held, guesses = 0.2 * self.gap, 0.0, []
-        for wanted in np.sort(number).tolist():
-            while held < wanted:
-                kT *= 1.3
-                held = prod(1 + direction.below(kT) for direction in self.directions) - 1
-            guesses.append(kT)
-        return np.asarray(np.interp(number, np.sort(number), np.array(guesses))) if guesses else number
+        kT, held = [0.2 * self.gap], [1e-3]
+        while number.size and held[-1] < number.max():
+            kT.append(2 * kT[-1])
+            states = prod(1 + direction.below(kT[-1]) for direction in self.directions) - 1
+            held.append(max(states, held[-1]))
+        return np.exp(np.interp(np.log(np.maximum(number, 1e-3)), np.log(held), np.log(kT)))
 
     def boltzmann(self, kT: FloatArray) -> tuple[FloatArray, FloatArray]:
         """See `Ensemble.boltzmann`."""
