@@ -39,7 +39,11 @@ DISPERSIONS = {
     "lattice": {"energy": LATTICE},
 } | {name: {"energy": energy} for name, energy in ISOTROPIC.items()}
 PLACES = {"harmonic": harmonic, "linear": lambda d: power(1.0, d=d), "box": lambda d: box(1e-4**d, d)}
-PAIRS = [(each, place) for each in DISPERSIONS for place in PLACES] + [("free", "bent")]
+PAIRS = [
+    (each, place) for each in DISPERSIONS for place in PLACES if each != "lattice" or place == "harmonic"
+]
+PAIRS += [("free", "bent")]
+FULL = ("levels", "box")  # where N goes as a logarithm of alpha, which soon is below the range of doubles
 ANY = st.sampled_from(PAIRS)
 STATISTICS = st.sampled_from(["bose", "fermi", "classical"])
 T = st.floats(50e-9, 1e-6)
@@ -64,7 +68,7 @@ def number(gas, share, temperature):
 def test_first_law_and_heat_capacity(pair, statistics, share, temperature):
     """dU = T dS + mu dN, and C_N = dU/dT = T dS/dT, by central differences of relative step 1e-4."""
     gas, h = gas_in(pair, statistics), 1e-4
-    N = number(gas, share, temperature)
+    N = number(gas, min(share, 2.0) if pair == FULL else share, temperature)
     s = gas.state(N=N * np.array([1, 1, 1, 1 - h, 1 + h]), T=temperature * np.array([1 - h, 1, 1 + h, 1, 1]))
     if len(set(s.f_0 > 0)) > 1:
         return  # the second derivatives jump at T_c
