@@ -34,7 +34,7 @@ RUNG = 16.0  # ratio of the energies for which rays are walked anew
 LOWEST, DEEPEST = -1, -12  # the rung that serves all lower energies, where the bottom is known and where not
 STEP, STEADY = 4.0, 1e-6  # of energies on the way to a bottom, and the change of a power that counts as none
 ROUNDED = 1e-8  # of V at the bottom: nearer to it too few digits are left
-GOOD, FAIR = 3e-6, 1e-4  # errors at 0.8 of the level and at the level itself, at which boxes do better
+GOOD, FAIR = 3e-5, 3e-4  # errors at 0.8 of the level and at the level itself, at which boxes do better
 MOST_WELLS = 12
 TOGETHER = 20  # energies that share their rays
 OPEN = 0.99  # of the depth: a ceiling below this keeps away from an escape at infinity
@@ -176,6 +176,10 @@ class Ladder:
         """Relative error up to energies, as far as it is known."""
         known, worst = self._known[:, 0], np.maximum.accumulate(self._known[:, 1])
         return np.asarray(worst[np.minimum(np.searchsorted(known, v * (1 - 1e-12)), known.size - 1)])
+
+    def release(self) -> None:
+        """Let go of the rays walked so far; they take tens of megabytes."""
+        self._made.clear()
 
     def _rungs(self, v: FloatArray) -> NDArray[np.int_]:
         """Number of the rung up to which an energy belongs, 0 the one that ends at the level."""

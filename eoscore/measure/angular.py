@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import replace
+from itertools import combinations
 from math import pi, sqrt
 from typing import TYPE_CHECKING, Literal
 
@@ -10,13 +11,12 @@ import numpy as np
 
 from eoscore.formula import evaluate_many, gradient, variable
 from eoscore.formula.field import Field
-from eoscore.measure.patches import Patches
+from eoscore.measure.patches import Box, Patches
 from eoscore.measure.rays import Line, Rays
 
 if TYPE_CHECKING:
-    from collections.abc import Callable, Sequence
+    from collections.abc import Callable
 
-    from eoscore.formula import Formula
     from eoscore.measure.base import FloatArray
     from eoscore.measure.landscape_record import Minimum
     from eoscore.measure.region import Region
@@ -36,6 +36,7 @@ SIGHT = 24  # points on the way there
 FAINT = 1e-13  # share of a well that does not count
 PROBES = 60  # points that tell whether V is even
 EVEN = 1e-13  # relative difference of even values
+MANY = 9_000  # rays, of a potential without symmetries, from which on less accuracy will do
 FEW = 2  # by which the number of rays is divided for a try
 DEGREES = {"quadratic": 2, "ring": 2, "cone": 1}
 
@@ -81,10 +82,11 @@ class Angular:
         self.exponent = self.power / self.degree if self.degree else None
         self.share = share
         self.line = self._line(region)
-        mirrors = self._mirrors()
+        mirrors, self.twins = self._symmetries()
         self.det *= 2 ** len(mirrors)
         most = MOST[2 if self.shape == "cube" else 1] // (FEW if few else 1)
-        self.patches = Patches(self._rays, _first(self.shape, mirrors), most)
+        many = MANY // 2 ** len(mirrors) // (2 if self.twins else 1)
+        self.patches = Patches(self._rays, _first(self.shape, mirrors, self.twins), most, many)
 
     def with_error(self, v: FloatArray) -> tuple[FloatArray, FloatArray]:
         """Omega at energies (n,), 0 < v <= end, and its relative error."""
@@ -120,52 +122,58 @@ class Angular:
                 return replace(line, clear=True)
         return line
 
-    def _mirrors(self) -> set[int]:
-        """The axes of the frame along which V and the walls are even about the bottom."""
+    def _symmetries(self) -> tuple[set[int], tuple[int, ...]]:
+        """The axes of the frame along which V and the walls are even about the bottom; two that may change places."""
         if self.share is not None or self.ring:
-            return set()
-        line, random = self.line, np.random.default_rng(7)
-        unit = random.uniform(-1, 1, (PROBES, len(self.start)))
-        reach = np.where(unit > 0, line.high, -line.low) * unit * random.uniform(0, 1, (PROBES, 1)) ** 2
-        formulas = (self.field.formula, *self.field.walls)
-        axes = [1] if self.shape == "about axis" else range(len(self.start))
-        return {i for i in axes if self._even(formulas, reach, i)}
+            return set(), ()
+        line, random, d = self.line, np.random.default_rng(7), len(self.start)
+        unit = random.uniform(-1, 1, (PROBES, d))
+        step = np.where(unit > 0, line.high, -line.low) * unit * random.uniform(0, 1, (PROBES, 1)) ** 2
+        axes = [1] if self.shape == "about axis" else range(d)
+        mirrors = {i for i in axes if self._alike(step, step * np.where(np.arange(d) == i, -1.0, 1.0))}
+        pairs = combinations(range(d), 2) if self.shape == "cube" else []
+        twins = (pair for pair in pairs if self._alike(step, _swapped(step, pair)))
+        return mirrors, next(twins, ())
 
-    def _even(self, formulas: Sequence[Formula], step: FloatArray, axis: int) -> bool:
-        """Whether formulas take the same values at steps (n, d) in the frame and at their mirror images."""
-        other = step.copy()
-        other[:, axis] *= -1
-        sides = [
-            evaluate_many(
-                formulas,
-                dict(zip(self.field.coordinates, (self.start + s @ self.frame.T).T, strict=True)),
-            )
-            for s in (step, other)
-        ]
+    def _alike(self, *steps: FloatArray) -> bool:
+        """Whether V and the walls take the same values at two sets of steps (n, d) in the frame."""
+        formulas = (self.field.formula, *self.field.walls)
+        places = [(self.start + step @ self.frame.T).T for step in steps]
+        one, other = (
+            evaluate_many(formulas, dict(zip(self.field.coordinates, x, strict=True))) for x in places
+        )
         return all(
-            np.allclose(
-                one, two, rtol=EVEN, atol=EVEN * float(np.max(np.abs(one), initial=0)), equal_nan=True
-            )
-            for one, two in zip(*sides, strict=True)
+            np.allclose(a, b, rtol=EVEN, atol=EVEN * float(np.max(np.abs(a), initial=0)), equal_nan=True)
+            for a, b in zip(one, other, strict=True)
         )
 
     def _rays(self, side: FloatArray, point: FloatArray) -> Rays:
         unit = _directions(self.shape, side, point)
-        one = np.ones(len(unit))
+        one: FloatArray = np.ones(len(unit))
+        swept: tuple[FloatArray, FloatArray]
         if self.shape == "about axis":
             swept = (0 * one, 2 * pi * np.sin(point[:, 0]))
         elif self.ring:
             swept = (self.ring * one, unit @ self.frame[0])
         else:
-            swept = (0 * one, one) if self.shape == "cube" else (one, 0 * one)
+            twice: FloatArray = np.where(np.isin(side % 3, self.twins[:1]), 2.0, 1.0)
+            swept = (0 * one, twice) if self.shape == "cube" else (one, 0 * one)
         return Rays(self.line, unit, self.end, BEGIN * self.radius(self.end), swept, self.share)
 
 
-def _first(shape: Shape, mirrors: set[int]) -> list[tuple[int, tuple[float, ...], tuple[float, ...]]]:
-    """The boxes of parameters that make up all directions, but for mirror images."""
+def _swapped(step: FloatArray, pair: tuple[int, int]) -> FloatArray:
+    """Steps (n, d) with two axes in each other's place."""
+    columns = list(range(step.shape[1]))
+    columns[pair[0]], columns[pair[1]] = pair[1], pair[0]
+    return np.asarray(step[:, columns])
+
+
+def _first(shape: Shape, mirrors: set[int], twins: tuple[int, ...]) -> list[Box]:
+    """The boxes of parameters that make up all directions, but for mirror images and the second of twin axes."""
     if shape == "cube":
         low = [0.0 if axis in mirrors else -1.0 for axis in range(3)]
         sides = [side for side in range(6) if side < 3 or side % 3 not in mirrors]
+        sides = [side for side in sides if side % 3 not in twins[1:]]
         return [(side, (low[(side + 1) % 3], low[(side + 2) % 3]), (1.0, 1.0)) for side in sides]
     if shape == "about axis":
         halves = [(0.0, pi / 2)] if mirrors else [(0.0, pi / 2), (pi / 2, pi)]

@@ -30,7 +30,7 @@ DOUBT = 0.3  # of the difference between boxes and halved boxes, which is eight 
 RUNGS = (1.45, 2.0, 4.0)  # ratio of the levels for which boxes of their own are made: few, many, without end
 # Shares of the level up to which the wells may be taken along rays.
 STARTS = (0.85, 0.5, 0.25, 0.1, 0.03, 0.01, 1e-3)
-GOOD = 3e-6  # error at which they are
+GOOD = 3e-5  # error at which they are
 FADING = 0.2  # of the joint: how far above it boxes are led to the value of the rays
 LOWEST = 2e-3  # of the level, where they may not: below it Omega is taken as a power
 

@@ -17,10 +17,9 @@ if TYPE_CHECKING:
     from eoscore.measure.base import FloatArray
     from eoscore.measure.rays import Rays
 
-__all__ = ["Patches"]
+__all__ = ["Box", "Patches"]
 
-WANTED, ENOUGH = 1e-10, 1e-6  # relative errors at which halving ends, with few rays and with many
-MANY = 9_000  # rays
+WANTED, ENOUGH = 1e-10, 1e-5  # relative errors at which halving ends, with few rays and with many
 FINEST = 1e-7  # of the first patches: none is halved beyond
 WORST = 0.02  # of the greatest error: patches above it are halved together
 PROBES = 4  # energies of many that decide where patches are halved
@@ -54,7 +53,8 @@ class Patches:
     """int f(t) dt over boxes of one or two parameters, for many energies at once.
 
     make: rays for sides (n,) and parameters (n, m). first: the boxes to begin with, as (side, low, high).
-    most: rays of all patches together, where halving ends. Patches stay as fine as the highest energies wanted.
+    most: rays of all patches together, where halving ends; many: from how many on less accuracy will do. Patches
+    stay as fine as the highest energies wanted.
     """
 
     def __init__(
@@ -62,8 +62,9 @@ class Patches:
         make: Callable[[FloatArray, FloatArray], Rays],
         first: list[Box],
         most: int,
+        many: int,
     ) -> None:
-        self._make, self._most = make, most
+        self._make, self._most, self._many = make, most, many
         self._axes = len(first[0][1])
         self._size = NODES**self._axes
         self._known: dict[Box, _Patch] = {}
@@ -86,7 +87,7 @@ class Patches:
             total = np.maximum(values.sum(axis=0), 1e-300)
             miss = errors.sum(axis=(0, 1)) / total
             rays = len(leaves) * self._size
-            wanted = ENOUGH if rays >= MANY else WANTED
+            wanted = ENOUGH if rays >= self._many else WANTED
             if miss.max() <= 2 * wanted or rays >= self._most:
                 break
             few = np.union1d(few, v[np.argsort(miss)[-2:]])
@@ -100,7 +101,7 @@ class Patches:
         while True:
             total = np.maximum(values.sum(axis=0), 1e-300)
             rays = len(leaves) * self._size
-            wanted = WANTED if rays < MANY else ENOUGH
+            wanted = WANTED if rays < self._many else ENOUGH
             if np.all(errors.sum(axis=(0, 1)) <= wanted * total) or rays >= self._most:
                 return leaves
             chosen = self._rough(leaves, errors, total, wanted)

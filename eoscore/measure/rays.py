@@ -141,9 +141,8 @@ class Rays:
         count = np.searchsorted(v, high[step, ray], side="right") - first
         column = np.arange(count.sum()) - np.repeat(np.cumsum(count) - count - first, count)
         step, ray = np.repeat(step, count), np.repeat(ray, count)
-        place = self._roots(step, which[ray], v[column])
         sense = np.where(height[step, ray] < height[step + 1, ray], 1.0, -1.0)
-        parts = sense * self._content(place, step, which[ray])
+        parts = sense * self._content(self._roots(step, which[ray], v[column]), step, which[ray])
         total = np.bincount(ray * v.size + column, parts, which.size * v.size).reshape(which.size, v.size)
         last = np.full(which.size, len(height) - 2)
         whole = self._content(self.rows.q[-1, which], last, which)
@@ -163,7 +162,7 @@ class Rays:
     def _plain(self, q: FloatArray, which: Which) -> FloatArray:
         """Swept from 0 to q without any share."""
         if self.line.stretch is not None:
-            return stretched(q, self.along[which] / self.line.stretch)
+            return self._cube[which] * stretched(q, self.along[which] / self.line.stretch)
         return np.asarray(q**2 * (self._square[which] / 2 + self._cube[which] * q / 3))
 
     def _weighed(self, start: FloatArray, end: FloatArray, which: Which) -> FloatArray:

@@ -176,11 +176,15 @@ class Sampled(Measure):
             panels, series = self._table.panels + panels, np.concatenate([self._table.series, series])
         self._table = Table(panels, series)
         self._reach = stretch.hi
+        if self._reach >= self.top and hasattr(self._function, "release"):
+            self._function.release()  # of what it holds: all its values are known
 
     def _resolved(self, panel: Panel, tail: float, before: float) -> bool:
         """Whether a series is as good as it gets; `before` is the tail of the panel that was halved for it."""
+        share = min(1.0, log(panel.last / panel.first))
         if (
-            tail <= max(SHARPEST, float(self._function_error(np.asarray(panel.last))))
+            tail <= SHARPEST
+            or tail * share <= float(self._function_error(np.asarray(panel.last)))
             or panel.stop - panel.start <= FINEST[panel.kind]
         ):
             return True

@@ -13,6 +13,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 from numpy.polynomial.chebyshev import chebfit, chebval
 
+from eoscore.errors import NoAnswerError
 from eoscore.state.closed import diverges
 from eoscore.state.ensemble import BLOCK, EPS, Ensemble
 from eoscore.state.occupation import boltzmann, bose_count, bose_sums, counter
@@ -35,6 +36,7 @@ CACHED = 200_000  # numbers of a block that is asked again and again
 SERIES = (
     20  # terms of ln N_c in ln kT over a stretch: it is analytic for |Im ln kT| < pi/2, and falls as 9^-n
 )
+HOPELESS = 0.5  # relative error at which a sum is no answer
 SHARES = np.geomspace(1e-2, 45.0, 200)  # E/kT at which the error of Omega is weighed
 
 
@@ -57,10 +59,15 @@ class OverNodes(Ensemble):
         return self.measure.error + 2000 * EPS
 
     def error_at(self, kT: FloatArray) -> FloatArray:
-        """See `Ensemble.error_at`: of the hottest kT in each octave."""
+        """See `Ensemble.error_at`: of the hottest kT in each octave. NoAnswerError where all are hopeless."""
         sensible = np.where(kT > 0, kT, 1.0)
         keys, back = np.unique(np.floor(np.log2(sensible)).astype(int), return_inverse=True)
         bounds = np.array([self._weighed(int(key)) for key in keys])
+        if bounds.size and np.all(bounds > HOPELESS):
+            raise NoAnswerError(
+                f"the number of states of this trap could not be resolved ({self.measure.route}; its error would be "
+                f"{100 * float(np.min(bounds)):.3g} %): leave walls (`where`) or an E_max about the part that matters"
+            )
         return np.where(kT > 0, bounds[back.reshape(kT.shape)], 0.0)
 
     def _weigh(self, octave: int) -> float:
