@@ -23,6 +23,7 @@ __all__ = ["Sampled"]
 FINEST = {"log": 2.0**-11, "left": 2.0**-14, "right": 2.0**-14}  # panels this short in t are not halved
 SHARPEST = 1e-14  # relative tail of a series at which a panel counts as resolved
 SHORT = 2.0**-5  # and one this short in t not, where halving did not help
+ROUGH = 1e-8  # error of a function whose series need not be better than it, each by its share of energy
 STALLED = 0.7  # share of the tail before, above which halving did not help
 NOISE = 1e-4  # a tail below this that halving does not lower is the rounding of the function itself
 
@@ -181,12 +182,9 @@ class Sampled(Measure):
 
     def _resolved(self, panel: Panel, tail: float, before: float) -> bool:
         """Whether a series is as good as it gets; `before` is the tail of the panel that was halved for it."""
-        share = min(1.0, log(panel.last / panel.first))
-        if (
-            tail <= SHARPEST
-            or tail * share <= float(self._function_error(np.asarray(panel.last)))
-            or panel.stop - panel.start <= FINEST[panel.kind]
-        ):
+        own = float(self._function_error(np.asarray(panel.last)))
+        rough = own > ROUGH and tail * min(1.0, log(panel.last / panel.first)) <= own
+        if tail <= max(SHARPEST, 0.3 * own) or rough or panel.stop - panel.start <= FINEST[panel.kind]:
             return True
         return tail > STALLED * before and (tail < self.noise or panel.stop - panel.start <= SHORT)
 
