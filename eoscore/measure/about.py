@@ -33,6 +33,7 @@ BENT = 1e-2  # change of V against its quadratic form at which the form ends
 RUNG = 16.0  # ratio of the energies for which rays are walked anew
 LOWEST, DEEPEST = -1, -12  # the rung that serves all lower energies, where the bottom is known and where not
 STEP, STEADY = 4.0, 1e-6  # of energies on the way to a bottom, and the change of a power that counts as none
+COARSE = 1e-3  # error on the way there at which boxes do better
 ROUNDED = 1e-8  # of V at the bottom: nearer to it too few digits are left
 GOOD, FAIR = 3e-5, 3e-4  # errors at 0.8 of the level and at the level itself, at which boxes do better
 MOST_WELLS = 12
@@ -150,6 +151,8 @@ class Ladder:
             lower = self(np.array(v[-1:]))
             slopes.append(float(np.log(volume / lower)[0] / np.log(STEP)))
             volume = lower
+            if np.any(self._known[:, 1] > COARSE):
+                raise Declined
             if abs(slopes[-1] - slopes[-2]) < STEADY:
                 break
         near = float(Fraction(slopes[-1]).limit_denominator(24))

@@ -85,6 +85,8 @@ class _Boxed:
                 wells = Wells(self.field, landscape.minima, end, few=True)
             except Declined:
                 continue
+            if wells.exponent is None:
+                break
             if np.all(wells.with_error(end * np.array([0.5, 1.0]))[1] <= GOOD):
                 return wells, end
         return None, 0.0

@@ -27,6 +27,7 @@ __all__ = ["survey_space"]
 MOST_STARTS = 300
 MOST_WALLED = 40  # with walls each start is followed by itself
 MOST_POINTS = 30_000
+ASIDE = 0.01  # of the least length at which anything happens
 
 
 def survey_space(field: Field) -> Landscape:
@@ -79,8 +80,8 @@ def _minima(chart: Chart, grid: Grid, axes: list[Axis]) -> tuple[Array, Array, A
     radius = grid.spacing(index)
     points, values = _snapped(chart, axes, *descend(chart, grid.points(index), radius))
     values = np.where(np.linalg.norm(points, axis=1) < chart.reach, values, np.inf)
-    values = np.where(_stands(chart, points), values, np.inf)
     least = 10.0 ** min(axis.least for axis in axes)
+    values = np.where(_stands(chart, points) & ~_falls(chart, points, ASIDE * least), values, np.inf)
     kept = distinct(points, values, 1e-3 * least)
     kept = _nearest_first(points, values, kept)
     return points[kept], values[kept], np.full(len(kept), least)
@@ -93,6 +94,17 @@ def _stands(chart: Chart, points: Array) -> NDArray[np.bool_]:
     if chart.walls:
         stands |= np.min(chart.margins(points), axis=0) <= 1e-9 * np.max(chart.margins(points), axis=0)
     return stands
+
+
+def _falls(chart: Chart, points: Array, aside: float) -> NDArray[np.bool_]:
+    """Whether V goes on falling with its slope beside a point: the way down ended in rounding; walls may stop it."""
+    if chart.walls:
+        return np.zeros(len(points), dtype=bool)
+    slope = np.nan_to_num(chart.slopes(points))
+    size = np.linalg.norm(slope, axis=1)
+    step = slope * (aside / np.maximum(size, 1e-300))[:, None]
+    lower = chart.value(points - step) < chart.value(points) - 0.5 * size * aside
+    return np.asarray(lower & (size > 0))
 
 
 def _snapped(chart: Chart, axes: list[Axis], points: Array, values: Array) -> tuple[Array, Array]:

@@ -25,7 +25,9 @@ derive T_c for strontium in bowl
 
 @pytest.fixture(scope="module")
 def shell():
-    shell = InteractiveShell()
+    with pytest.MonkeyPatch.context() as patch:
+        patch.delenv("VIRTUAL_ENV", raising=False)  # of whoever runs the tests: it may be another one
+        shell = InteractiveShell()
     shell.run_line_magic("load_ext", "eoscore")
     return shell
 
