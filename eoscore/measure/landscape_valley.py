@@ -18,7 +18,7 @@ if TYPE_CHECKING:
 
 __all__ = ["lowest_valley"]
 
-FIRST_STEPS, STEPS = 40, 5  # Newton steps on the first sphere, and on each that follows
+FIRST_STEPS, STEPS = 80, 5  # Newton steps on the first sphere, and on each that follows
 SHRINK = 0.6  # ratio of radii on the way back
 BEYOND = (1e3, 1e6, 1e9)  # times the first radius: whether V grows along a valley, and its limit
 ALIKE = 1e-4  # radians
@@ -39,7 +39,7 @@ def lowest_valley(chart: Chart, bottom: Array, value: float, least: float, far: 
     heights = [_v(chart, bottom, n, far)]
     farther = n
     for factor in BEYOND:
-        farther = _settled(chart, bottom, farther, factor * far, STEPS)
+        farther = _settled(chart, bottom, farther, factor * far, FIRST_STEPS)
         heights.append(_v(chart, bottom, farther, factor * far))
     first, second, third = (np.asarray(height) for height in heights[1:])
     with np.errstate(all="ignore"):
