@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import os
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -57,12 +56,10 @@ def report(file: str, out: Path, settings: tuple[str, ...], accuracy: float, wor
 
 def _unwritable(out: Path, file: str) -> str | None:
     """Why no page can be written there, found before anything is computed; None where it can."""
-    if out.is_dir():
-        return f"{out} is a folder."
-    if not out.parent.is_dir():
-        return f"the folder {out.parent} does not exist."
-    if not os.access(out if out.exists() else out.parent, os.W_OK):
-        return f"{out} may not be written."
+    from eoscore.show.saving import no_place
+
+    if reason := no_place(out):
+        return f"{reason}."
     if file != "-" and out.exists() and Path(file).exists() and out.samefile(file):
         return f"{out} is the file that the page is about; give the page another name."
     return None

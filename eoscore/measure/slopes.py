@@ -7,7 +7,7 @@ of t: between the two ends of a wave cos(q x), x is t itself.
 from __future__ import annotations
 
 from dataclasses import dataclass, fields, replace
-from functools import cache, cached_property
+from functools import cached_property
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -15,6 +15,7 @@ from numpy.polynomial.chebyshev import chebder, chebvander
 
 from eoscore.formula import evaluate_many
 from eoscore.measure.coordinate import between
+from eoscore.measure.panel import ORDER, points, to_series
 from eoscore.measure.rules import legendre
 
 if TYPE_CHECKING:
@@ -31,7 +32,6 @@ SMALLEST = 1e-12  # term of a series, beside the space of its stretch
 RESOLVED = 1e-10  # tail of a series at which a stretch is not halved
 ROUNDS = 12  # of halving
 BLOCK = 20_000  # pairs of a stretch and an energy at once
-ORDER = 20  # nodes of a series, and of a rule in a stretch
 SPREAD = 1e-3  # of V at a point: the space about it is spread over so much
 NOISE = 2e-11  # 1e5 roundings: next to its ends a stretch hardly rises, and the first node lies at 2e-3
 TURNS = 60  # of Newton's rule
@@ -152,12 +152,12 @@ def _made(
     name: str, formula: Formula, low: FloatArray, high: FloatArray, ends: FloatArray
 ) -> tuple[Slopes, FloatArray]:
     """The stretches as they are, and the x where V is half-way."""
-    t = np.append(_points(), 0.5)
+    t = np.append(points(), 0.5)
     sine = np.sin(np.pi / 2 * t)
     base, height = ends[:, 0], np.maximum(ends[:, 1] - ends[:, 0], 1e-300)
     x = _roots(name, formula, low, high, height[:, None] * sine**2)
     space = between(name, low[:, None], x[:, :-1]) / sine[:-1]
-    series = space @ _to_series().T
+    series = space @ to_series().T
     tail = np.abs(series[:, -3:]).max(axis=1)
     return Slopes(base, height, between(name, low, high), series, tail), x[:, -1]
 
@@ -221,23 +221,8 @@ def _add(moments: FloatArray, panel: np.ndarray, place: FloatArray, w: FloatArra
 
 def strata(name: str, x: FloatArray, middle: FloatArray) -> Slopes:
     """Stretches between neighbours of x (n + 1,), each with all its space next to the V of one point, `middle`."""
-    sine = np.sin(np.pi / 2 * _points())
+    sine = np.sin(np.pi / 2 * points())
     height = SPREAD * np.abs(middle)
     whole = np.abs(between(name, x[:-1], x[1:]))
-    series = whole[:, None] * (_to_series() @ sine)
+    series = whole[:, None] * (to_series() @ sine)
     return Slopes(middle - height / 2, height, whole, series, np.zeros_like(middle))
-
-
-@cache
-def _points() -> FloatArray:
-    """Chebyshev points on [0, 1], ascending."""
-    return np.asarray((1 - np.cos(np.pi * (np.arange(ORDER) + 0.5) / ORDER)) / 2)
-
-
-@cache
-def _to_series() -> FloatArray:
-    """The matrix from values at the points to coefficients of T_n(2 t - 1)."""
-    angle = np.pi * (np.arange(ORDER) + 0.5) / ORDER
-    matrix = 2 / ORDER * np.cos(np.outer(np.arange(ORDER), np.pi - angle))
-    matrix[0] /= 2
-    return np.asarray(matrix)

@@ -6,12 +6,11 @@ Nothing is told by colour alone: lines differ in dash and carry their labels, ma
 
 from __future__ import annotations
 
-import os
 from typing import TYPE_CHECKING
 
 from eoscore.errors import EoscoreError
 from eoscore.show.dataset import MissingExtraError
-from eoscore.show.saving import appearing
+from eoscore.show.saving import appearing, no_place
 
 if TYPE_CHECKING:
     from collections.abc import Iterable
@@ -40,13 +39,7 @@ def undrawable(target: Path) -> str | None:
     """Why nothing can be drawn there, found before anything is computed; None where it can."""
     if target.suffix.lower() not in FORMATS:
         return f"{target} ends in {target.suffix or 'nothing'}; the formats are {', '.join(FORMATS)}"
-    if target.is_dir():
-        return f"{target} is a folder"
-    if not target.parent.is_dir():
-        return f"the folder {target.parent} does not exist"
-    if not os.access(target if target.exists() else target.parent, os.W_OK):
-        return f"{target} may not be written"
-    return None
+    return no_place(target)
 
 
 def require_drawable(file: str, questions: Iterable[Question]) -> None:

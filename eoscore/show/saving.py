@@ -12,7 +12,7 @@ if TYPE_CHECKING:
 
     from eoscore.answer.record import FoundAnswer, Report
 
-__all__ = ["FORMATS", "appearing", "save", "unwritable"]
+__all__ = ["FORMATS", "appearing", "no_place", "save", "unwritable"]
 
 FORMATS = (".csv", ".nc", ".json")
 
@@ -21,6 +21,11 @@ def unwritable(target: Path) -> str | None:
     """Why a file cannot be written there, found before anything is computed; None where it can."""
     if target.suffix not in FORMATS:
         return f"{target} ends in {target.suffix or 'nothing'}; the formats are {', '.join(FORMATS)}"
+    return no_place(target)
+
+
+def no_place(target: Path) -> str | None:
+    """Why there is no place for a file of any format; None where there is."""
     if target.is_dir():
         return f"{target} is a folder"
     if not target.parent.is_dir():
