@@ -33,6 +33,7 @@ class ScaledTrap(TrapPlace):
     def __init__(self, facts: TrapFacts, origin: TrapPlace, factor: float, mass: float | None = None) -> None:
         self.origin, self.factor = origin, factor
         super().__init__(facts.name, facts.field, facts.e_max, mass, _scaled(origin.landscape, factor))
+        self.levels = facts.levels
 
     @cached_property
     def whole(self) -> Measure:

@@ -80,3 +80,15 @@ def test_a_trap_is_measured_once_unless_gravity_pulls(monkeypatch, pull, measure
         for name, finding in single.found.items():
             assert np.isfinite(finding.value)
             np.testing.assert_allclose(answer.found[name].value[place], finding.value, rtol=1e-9, atol=0)
+
+
+def test_exact_levels_stay_exact():
+    """A stronger trap in a grid has the levels that it has by itself."""
+    text = (
+        "gas g {{ m = 84 u }}\ntrap t {{ f = {} Hz\n V(x) = m/2*(2*pi*f)^2*x^2\n levels exact }}\n"
+        "find T_c for g in t with N = 100"
+    )
+    alone = [eoscore.loads(text.format(f)).answers()[0].found["T_c"].value for f in (100, 130)]
+    grid = eoscore.loads(text.format(100) + " over f = [100 Hz, 130 Hz]").answers()[0].found["T_c"]
+    assert "exact sums" in grid.route
+    assert grid.value == pytest.approx(alone, rel=1e-12, abs=0)
