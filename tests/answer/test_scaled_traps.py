@@ -88,7 +88,7 @@ def test_exact_levels_stay_exact():
         "gas g {{ m = 84 u }}\ntrap t {{ f = {} Hz\n V(x) = m/2*(2*pi*f)^2*x^2\n levels exact }}\n"
         "find T_c for g in t with N = 100"
     )
-    alone = [eoscore.loads(text.format(f)).answers()[0].found["T_c"].value for f in (100, 130)]
+    alone = [float(eoscore.loads(text.format(f)).answers()[0].found["T_c"].value) for f in (100, 130)]
     grid = eoscore.loads(text.format(100) + " over f = [100 Hz, 130 Hz]").answers()[0].found["T_c"]
     assert "exact sums" in grid.route
     assert grid.value == pytest.approx(alone, rel=1e-12, abs=0)
