@@ -16,10 +16,12 @@ from eoscore.formula.simplify import CONDITIONS, simplified
 from eoscore.formula.tape import ordered, tape_of
 
 if TYPE_CHECKING:
-    from collections.abc import Mapping, Sequence
+    from collections.abc import Callable, Mapping, Sequence
 
     import numpy as np
     from numpy.typing import ArrayLike, NDArray
+
+    Packed = list[tuple[str, tuple[int, ...], float, str]]
 
 __all__ = ["Condition", "Formula", "Node", "condition", "formula", "intern"]
 
@@ -38,6 +40,13 @@ class Node:
     variables: frozenset[str]
     _derivatives: dict[str, Formula]
     is_formula = False
+
+    def __reduce__(self) -> tuple[Callable[[Packed], Node], tuple[Packed]]:
+        """A flat list travels between processes: no depth, each subexpression once, the same object at the end."""
+        nodes = ordered([self])
+        place = {node.serial: i for i, node in enumerate(nodes)}
+        rows = [(n.op, tuple(place[arg.serial] for arg in n.args), n.value, n.name) for n in nodes]
+        return _unpacked, (rows,)
 
     def evaluate(self, values: Mapping[str, ArrayLike]) -> NDArray[np.float64]:
         """The value, with the shape of all given values broadcast together; a condition gives 0 or 1.
@@ -176,6 +185,15 @@ def intern(
             node.variables = _union(args) if args else frozenset({name} - {""})
             _nodes[identity] = known = node
     return cast("AnyNode", known)
+
+
+def _unpacked(rows: Packed) -> Node:
+    """The last of nodes that are given by their operation, the places of their arguments, value and name."""
+    nodes: list[Node] = []
+    for op, args, value, name in rows:
+        kind = Condition if op in CONDITIONS else Formula
+        nodes.append(intern(kind, op, tuple(nodes[i] for i in args), value=value, name=name))
+    return nodes[-1]
 
 
 def _union(args: Sequence[Node]) -> frozenset[str]:

@@ -18,6 +18,7 @@ if TYPE_CHECKING:
 __all__ = ["FAR", "NEAR", "Branch"]
 
 NEAR, FAR = 1e-40, 1e50  # m or kg m/s: all that matters of a branch without end lies between
+FAINT, HUGE = 1e-120, 1e120  # J: all energies lie between
 EPS = float(np.finfo(float).eps)
 
 
@@ -51,7 +52,7 @@ class Branch:
     def rises(self) -> FloatArray:
         """Some rises above 0, in ascending order, over the whole of the branch."""
         rise = self._table[1]
-        return rise[(rise > 1e-120) & (rise < 1e120)]
+        return rise[(rise > FAINT) & (rise < HUGE)]
 
     @property
     def noise(self) -> float:
@@ -67,9 +68,19 @@ class Branch:
             near = np.geomspace(min(NEAR / self.length, 1e-20), 0.5, 600)
             far = np.geomspace(1e-15, 0.5, 200)[-2::-1]
             u = self.length * np.concatenate([[0.0], near, 1 - far, [1.0]])
-        rise = self.rise(u)
+        u, rise = self._between_extremes(u, self.rise(u))
         good = np.isfinite(rise)
         return u[good], np.maximum.accumulate(rise[good])
+
+    def _between_extremes(self, u: FloatArray, rise: FloatArray) -> tuple[FloatArray, FloatArray]:
+        """With more points where V rises from nothing beyond all energies in one step, as x^1000000 does."""
+        for _ in range(16):
+            jump = int(np.argmax(~(rise <= FAINT)))
+            if not jump or rise[jump] < HUGE:
+                break
+            more = np.linspace(u[jump - 1], u[jump], 100)[1:-1]
+            u, rise = np.insert(u, jump, more), np.insert(rise, jump, self.rise(more))
+        return u, rise
 
     @cached_property
     def _gradient(self) -> Formula:
@@ -88,13 +99,13 @@ class Branch:
     def _close(self) -> float:
         """The u below which the rise is integrated from the second derivative, which loses no digits.
 
-        The largest u at which two orders of that rule agree, and agree with V itself; 0 where there is none, as
-        under |x|^1.5.
+        The largest u up to which two orders of that rule agree, and at which they agree with V itself; 0 where
+        there is none, as under |x|^1.5.
         """
         u = np.geomspace(NEAR, min(self.length, FAR), 271)
         with np.errstate(all="ignore"):
             fine, coarse, direct = self._integral(u), self._integral(u, 12), self._difference(u)
-            agree = np.abs(fine - coarse) <= 1e-13 * np.abs(fine)
+            agree = np.logical_and.accumulate(np.abs(fine - coarse) <= 1e-13 * np.abs(fine))
             agree &= np.abs(direct - fine) <= 1e-8 * np.abs(direct)
         usable = np.flatnonzero(agree & (direct > 0) & np.isfinite(direct))
         return float(u[usable[-1]]) if usable.size else 0.0

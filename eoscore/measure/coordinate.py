@@ -27,9 +27,12 @@ def content(name: str, x: FloatArray) -> FloatArray:
     return np.asarray(factor * x**power)
 
 
-def between(name: str, start: FloatArray, end: FloatArray) -> FloatArray:
-    """Length, area or volume between two values of a coordinate, without a difference of nearly equal numbers."""
-    step = np.abs(end - start)
+def between(name: str, start: FloatArray, end: FloatArray, step: FloatArray | None = None) -> FloatArray:
+    """Length, area or volume between two values of a coordinate, without a difference of nearly equal numbers.
+
+    step: their distance, where it is known better than from the two.
+    """
+    step = np.abs(end - start) if step is None else step
     if name not in RADIAL:
         return step
     factor, power = RADIAL[name]

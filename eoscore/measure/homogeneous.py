@@ -15,6 +15,8 @@ from eoscore.measure.landscape_record import multiplicity
 from eoscore.measure.powers import Powers
 
 if TYPE_CHECKING:
+    from collections.abc import Callable
+
     from eoscore.formula import Formula
     from eoscore.formula.field import Field
     from eoscore.measure.base import FloatArray, Measure
@@ -23,6 +25,7 @@ __all__ = ["homogeneous"]
 
 ROUTE = "quasi-homogeneous"
 ORDERS = (48, 72, 108, 162)  # nodes in each angle; the error falls to about its square from one to the next
+LONGEST = 40.0  # decades of m
 ENOUGH, ROUNDING, WORST = 5e-10, 3e-14, 1e-5  # relative differences between two rules
 
 
@@ -69,13 +72,31 @@ def _units(field: Field, powers: FloatArray) -> FloatArray | None:
     names = field.coordinates
     lengths = []
     for i, name in enumerate(names):
-        along = {other: np.zeros(2) for other in names} | {name: np.array([1.0, -1.0])}
-        v = np.broadcast_to(field.formula.evaluate(along), (2,))[: 1 if least(name) == 0 else 2]
-        v = v[np.isfinite(v)]
-        if not v.size or v.max() <= 0:
+
+        def largest(x: float, name: str = name) -> float:
+            along = {other: np.zeros(2) for other in names} | {name: np.array([x, -x])}
+            v = np.broadcast_to(field.formula.evaluate(along), (2,))[: 1 if least(name) == 0 else 2]
+            return float(np.max(v[~np.isnan(v)], initial=0.0))
+
+        x = _seen(largest)
+        if x is None:
             return None
-        lengths.append(float(v.max() ** -powers[i]))
+        lengths.append(float(x * largest(x) ** -powers[i]))
     return np.array(lengths)
+
+
+def _seen(v: Callable[[float], float]) -> float | None:
+    """A length, 1 m if possible, at which V is neither 0 nor infinite in doubles; None where there is none."""
+    if 0 < v(1.0) < np.inf:
+        return 1.0
+    low, high = (0.0, LONGEST) if v(1.0) == 0 else (-LONGEST, 0.0)
+    for _ in range(60):
+        middle = (low + high) / 2
+        height = v(10.0**middle)
+        if 0 < height < np.inf:
+            return float(10.0**middle)
+        low, high = (middle, high) if height == 0 else (low, middle)
+    return None
 
 
 def _angular(field: Field, axes: FloatArray, powers: FloatArray, total: float, order: int) -> float | None:

@@ -133,10 +133,14 @@ def _in_the_noise(f: Formula, slope: Formula, name: str, low: Array, high: Array
 
 
 def _range_within(f: Formula, name: str, reach: Array) -> Array:
-    """How much f varies within -reach..reach, seen at decades."""
+    """How much f varies within -reach..reach, seen at decades; the slope of a pole at 0 does not count."""
     radii = np.concatenate([[0.0], DECADES])
     with np.errstate(all="ignore"):
         both = np.stack([f.evaluate({name: radii}), f.evaluate({name: -radii})])
+        if not np.isfinite(both[0, 0]):
+            size = np.abs(both[:, 1:])
+            lowered = np.logical_and.accumulate(~(size[:, 1:] >= size[:, :-1]), axis=1)
+            both[:, 1:-1][lowered] = np.nan
         both = np.where(np.isfinite(both), both, np.nan)
         least = np.fmin.accumulate(np.fmin(both[0], both[1]))
         most = np.fmax.accumulate(np.fmax(both[0], both[1]))

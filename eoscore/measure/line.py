@@ -83,8 +83,6 @@ def _resolved(found: HeldLine, landscape: Landscape) -> Measure:
 
 
 def _swept(name: str, branch: Branch, u: FloatArray) -> FloatArray:
-    """Length, area or volume between the start of a branch and u; u itself, which has all its digits, for x."""
-    if name not in RADIAL:
-        return u
+    """Length, area or volume between the start of a branch and u, which has all its digits."""
     start = np.asarray(branch.start)
-    return between(name, start, start + branch.sign * u)
+    return between(name, start, start + branch.sign * u, u)

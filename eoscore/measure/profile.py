@@ -92,7 +92,8 @@ def _rise(f: Formula, name: str, x: FloatArray, v_min: float) -> FloatArray:
     """V - V_min at the points; at an infinite end, the limit, inf where it rises for ever."""
     v = np.broadcast_to(f.evaluate({name: np.clip(x, -FAR, FAR)}), x.shape)
     rise = v - v_min
-    rise = np.where(np.abs(rise) <= ROUNDING * np.maximum(np.abs(v), abs(v_min)), 0.0, rise)
+    equal = np.isfinite(v) & (np.abs(rise) <= ROUNDING * np.maximum(np.abs(v), abs(v_min)))
+    rise = np.where(equal, 0.0, rise)
     return np.where(np.isnan(rise), inf, rise)
 
 

@@ -8,6 +8,7 @@ from eoscore.errors import NoAnswerError
 from eoscore.formula import call, variable
 from eoscore.formula.field import Field
 from eoscore.measure import measure_of
+from eoscore.measure.landscape import survey
 
 S, L = 1e-30, 1e-6
 x, r, rho = (variable(name) / L for name in ("x", "r", "rho"))
@@ -81,3 +82,25 @@ def test_a_wall_never_adds():
 def test_a_slope_holds_nothing(v):
     with pytest.raises(NoAnswerError, match="holds nothing"):
         omega("x", v)
+
+
+def test_a_pole_at_the_centre_is_no_slope_to_measure_wells_by():
+    """r^2/2 + c/r^2 = e at r^2 = e +- sqrt(e^2 - 2 c), the bottom at r = (2 c)^(1/4), where V is sqrt(2 c)."""
+    c = 0.07
+    field = Field(("r",), S * (r**2 / 2 + c / r**2))
+    bottom = survey(field).bottom
+    assert bottom.position[0] == pytest.approx(L * (2 * c) ** 0.25, rel=1e-14)
+    assert bottom.value == pytest.approx(S * np.sqrt(2 * c), rel=1e-14)
+    assert bottom.curvatures == pytest.approx((0, 0, 4 * S / L**2), rel=1e-13)
+    v = np.geomspace(1e-12, 1e4, 40)
+    low, root = np.sqrt(2 * c), np.sqrt(v * (v + 2 * np.sqrt(2 * c)))
+    outer, product = v + low + root, low**2 / (v + low + root)
+    shell = 2 * root * (outer + np.sqrt(outer * product) + product) / (np.sqrt(outer) + np.sqrt(product))
+    np.testing.assert_allclose(measure_of(field).volume(v * S), 4 / 3 * np.pi * L**3 * shell, rtol=1e-11)
+
+
+@pytest.mark.parametrize("more", [0.0, 0 * call("abs", variable("x"))], ids=["closed form", "line"])
+def test_a_power_that_leaps_from_nothing_to_everything(more):
+    """x^1000000: Omega is the width of a box but for a factor v^(1e-6)."""
+    measure = omega("x", x**1_000_000 + more)
+    np.testing.assert_allclose(measure.volume(SPREAD * S), 2 * L * SPREAD**1e-6, rtol=1e-12)
