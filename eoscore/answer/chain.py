@@ -11,7 +11,8 @@ from eoscore.answer.grid import Grid, Stop
 from eoscore.answer.origin import Origins
 from eoscore.answer.unit import unit_of_dimension
 from eoscore.errors import NoAnswerError
-from eoscore.language.quantities import AT_POSITIONS, QUANTITIES
+from eoscore.language.quantities import AT_COUNTS, AT_POSITIONS, COUNT, QUANTITIES
+from eoscore.state.fixed_number import probability_at
 from eoscore.state.positioned import read_at
 from eoscore.state.reading import Reason, reading_of, spread_over
 from eoscore.state.scale import with_scale
@@ -98,11 +99,15 @@ class Chain:
 
     def _reading(self, state: State, name: str, positions: Mapping[str, NDArray[np.float64]]) -> Reading:
         """One quantity of a state; where positions are given, it is spread over them."""
-        if name in AT_POSITIONS:
-            return read_at(state, name, positions)
-        reading = with_scale(state, name, state.reading(name))
         shape = tuple(axis.points for axis in self.grid.conditions)
-        return spread_over(reading, state.shape, shape) if positions else reading
+        if name in AT_POSITIONS:
+            reading = read_at(state, name, {each: x for each, x in positions.items() if each != COUNT})
+        elif name in AT_COUNTS:
+            reading = probability_at(state, positions[COUNT])
+        else:
+            reading = with_scale(state, name, state.reading(name))
+            return spread_over(reading, state.shape, shape) if positions else reading
+        return spread_over(reading, reading.value.shape, shape)
 
     def _held(self, binding: Binding, place: str | None, stop: Stop) -> HeldGas:
         like = None if place is None else self._origins.of(place, stop.values)

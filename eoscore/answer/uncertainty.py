@@ -13,7 +13,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from eoscore.answer.assembly import values_of
-from eoscore.language.quantities import AT_POSITIONS, QUANTITIES
+from eoscore.language.quantities import AT_COUNTS, AT_POSITIONS, QUANTITIES
 
 if TYPE_CHECKING:
     from collections.abc import Mapping, Sequence
@@ -30,7 +30,12 @@ __all__ = ["labelled", "with_uncertainty"]
 _STEP_OF_SIGMA = 0.1
 _STEP_OF_VALUE = 5e-4
 # Which conditions a quantity depends on where they are given, by what the language says it needs; else on all.
-_CONDITIONS = {"nothing": (), "number": ("N", "n"), "temperature": ("T",)}
+_CONDITIONS = {
+    "nothing": (),
+    "number": ("N", "n"),
+    "temperature": ("T",),
+    "number and temperature": ("N", "T"),
+}
 
 
 def with_uncertainty(
@@ -93,7 +98,7 @@ def _bears(name: str, parts: Sequence[Part], moved: Sequence[Part]) -> bool:
             return True
         if any(not np.array_equal(part.given[c], other.given[c]) for c in _needed(name, part)):
             return True
-        places = part.positions if name in AT_POSITIONS else ()
+        places = part.positions if name in AT_POSITIONS or name in AT_COUNTS else ()
         if any(not np.array_equal(part.positions[c], other.positions[c]) for c in places):
             return True
     return False

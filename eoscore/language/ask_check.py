@@ -9,7 +9,7 @@ from eoscore.language import nodes
 from eoscore.language.faults import listed
 from eoscore.language.kind import dimension
 from eoscore.language.place_check import dimension_of
-from eoscore.language.quantities import CONDITIONS, DERIVED, QUANTITIES
+from eoscore.language.quantities import AT_COUNTS, CONDITIONS, COUNT, DERIVED, QUANTITIES
 
 if TYPE_CHECKING:
     from collections.abc import Sequence
@@ -60,11 +60,15 @@ def _written(question: Question, roles: Roles) -> list[nodes.Ident]:
 
 
 def _positions(question: Question, checker: Checker) -> None:
-    """A column runs along the one coordinate that is left free."""
+    """A column runs along the one coordinate that is left free; a probability is that of some number."""
     names = [condition.name.name for condition in question.node.conditions]
     names += [axis.name.name for axis in question.node.over] if isinstance(question.node, nodes.Find) else []
-    free = [name for name in question.coordinates if name not in names]
+    free = [name for name in question.coordinates if name not in (*names, COUNT)]
     for asked in question.quantities:
+        if asked.name in AT_COUNTS and COUNT not in names and question.verb == "find":
+            message = f"`{asked.name}` is the probability of some number {COUNT}, and none is given"
+            hint = f"write: with N = 100, T = 20 nK over {COUNT} = even(0, 100, 101)"
+            checker.faults.add(asked.span, message, hint)
         if asked.name == "n_column" and question.coordinates and len(free) != 1:
             came = f"{', '.join(free)} are" if free else "none is"
             message = f"`n_column` runs along the one coordinate that is not given; {came} left here"
@@ -162,6 +166,7 @@ def _needs(name: nodes.Ident, question: Question, written: Sequence[nodes.Ident]
         "number": None if {"N", "n"} & set(given) or is_state else "the number N (or the density n)",
         "temperature": None if "T" in given or is_state else "the temperature T",
         "state": None if is_state else f"a state, which is two of {_KNOWN}",
+        "number and temperature": None if {"N", "T"} <= set(given) else "the number N and the temperature T",
     }[need]
     if lacking is not None:
         came = f"only {', '.join(given)} is given" if given else "nothing is given"

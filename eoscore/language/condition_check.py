@@ -10,7 +10,7 @@ from eoscore.language.demand import above_zero, must_be
 from eoscore.language.faults import listed
 from eoscore.language.kind import PURE, Kind, Wild, alike, told
 from eoscore.language.mend import mend
-from eoscore.language.quantities import CONDITIONS
+from eoscore.language.quantities import CONDITIONS, COUNT
 from eoscore.language.question import Axis, Given
 from eoscore.language.rules import short
 from eoscore.language.scope import constant_scope
@@ -83,8 +83,9 @@ def _fits(name: nodes.Ident, parts: Sequence[tuple[Span, Kind]], roles: Roles, c
     if role == "condition":
         fits = [_thermodynamic(name, span, kind, own, checker) for span, kind in parts]
     elif role == "coordinate":
-        what = f"the coordinate `{name.name}`"
-        fits = [must_be(kind, ("m",), span, what, checker.faults) for span, kind in parts]
+        counted = name.name == COUNT
+        what, units = (f"`{name.name}`", ("1",)) if counted else (f"the coordinate `{name.name}`", ("m",))
+        fits = [must_be(kind, units, span, what, checker.faults) for span, kind in parts]
     elif own is None:
         return _unknown(name, roles, checker)
     else:

@@ -4,16 +4,20 @@ from __future__ import annotations
 
 from typing import Final, Literal
 
-__all__ = ["AT_POSITIONS", "CONDITIONS", "DERIVED", "QUANTITIES", "Need"]
+__all__ = ["AT_COUNTS", "AT_POSITIONS", "CONDITIONS", "COUNT", "DERIVED", "QUANTITIES", "Need"]
 
-# What a quantity needs: nothing, the number (N or n), the temperature, a state (two conditions).
-Need = Literal["nothing", "number", "temperature", "state"]
+# What a quantity needs: nothing, the number (N or n), the temperature, a state (two conditions), N and T themselves.
+Need = Literal["nothing", "number", "temperature", "state", "number and temperature"]
 
 # What is asked at a position, which coordinates among the conditions and axes give.
 AT_POSITIONS: Final[dict[str, Need]] = {
     "V_at": "nothing",
     **dict.fromkeys(("n_at", "pressure_at", "n_column"), "state"),
 }
+
+# What is asked at a number of condensed particles, which `COUNT` among the conditions and axes gives.
+AT_COUNTS: Final[dict[str, Need]] = {"P_N_0": "number and temperature"}
+COUNT: Final = "N_0"
 
 # tarn.md, the table of questions.
 QUANTITIES: Final[dict[str, Need]] = {
@@ -30,6 +34,8 @@ QUANTITIES: Final[dict[str, Need]] = {
     "eta": "temperature",
     **dict.fromkeys(("depth", "freq", "r_min", "V_min"), "nothing"),
     **dict.fromkeys(("shift_size", "shift_int"), "number"),
+    **dict.fromkeys(("N_0_canonical", "Delta_N_0"), "number and temperature"),
+    **AT_COUNTS,
     **AT_POSITIONS,
 }
 

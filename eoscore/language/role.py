@@ -6,7 +6,7 @@ from dataclasses import dataclass
 from functools import cached_property
 from typing import TYPE_CHECKING, Final, Literal
 
-from eoscore.language.quantities import AT_POSITIONS, CONDITIONS
+from eoscore.language.quantities import AT_COUNTS, AT_POSITIONS, CONDITIONS, COUNT
 from eoscore.language.scope import constant_scope
 
 if TYPE_CHECKING:
@@ -36,7 +36,11 @@ def settable(scopes: Sequence[Scope]) -> dict[str, Named]:
 
 @dataclass(frozen=True)
 class Roles:
-    """The names of one question. `coordinates` are those of its place, where something is asked at positions."""
+    """The names of one question.
+
+    `coordinates` are those of its place where something is asked at positions, and the number of condensed particles
+    where its probability is asked for.
+    """
 
     scopes: Sequence[Scope]
     coordinates: tuple[str, ...] = ()
@@ -48,7 +52,9 @@ class Roles:
         potential = pairs[0].named("V") if is_local else None
         definition = potential.definition if potential else None
         parameters = (definition.parameters if definition else None) or ()
-        return cls([each.scope for each in pairs], tuple(parameter.name for parameter in parameters))
+        counts = (COUNT,) if any(name.name in AT_COUNTS for name in node.quantities) else ()
+        names = tuple(parameter.name for parameter in parameters)
+        return cls([each.scope for each in pairs], names + counts)
 
     @cached_property
     def known(self) -> dict[str, Named]:

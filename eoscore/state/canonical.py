@@ -14,12 +14,13 @@ import numpy as np
 from eoscore.constants import K_B
 from eoscore.errors import NoAnswerError
 from eoscore.state.exact import ExactLevels
+from eoscore.state.exact.direction import Oscillator
 
 if TYPE_CHECKING:
     from eoscore.state.held import HeldGas
     from eoscore.state.reading import FloatArray
 
-__all__ = ["MOST", "CondensateStatistics", "condensate_statistics"]
+__all__ = ["MOST", "CondensateStatistics", "chances", "condensate_statistics", "levels_of", "logarithms"]
 
 MOST = 20_000  # particles; the time grows as their square
 LARGE = 1e100  # weights above are scaled down; what is 1e-400 of them counts as nothing
@@ -34,7 +35,7 @@ class CondensateStatistics(NamedTuple):
 
 
 def condensate_statistics(held: HeldGas, N: int, T: float) -> CondensateStatistics:
-    """N ideal bosons at T (K) in a place with `levels exact`.
+    """N ideal bosons at T (K) in a place with `levels exact`, or on the levels of their dispersion.
 
     NoAnswerError where the levels are not known one by one, or there are more than `MOST` particles.
     """
@@ -42,26 +43,29 @@ def condensate_statistics(held: HeldGas, N: int, T: float) -> CondensateStatisti
         raise NoAnswerError(f"N came as {N:g}; a fixed number is counted from 1 to {MOST}")
     if not T > 0:
         raise NoAnswerError(f"T came as {T:g} K; it must be above zero")
-    excited = np.exp(_logarithms(_partition(held, int(N), K_B * T)))
-    probability = (excited / excited.sum())[::-1]
+    probability = chances(logarithms(levels_of(held), int(N), K_B * T))
     n = np.arange(N + 1.0)
     mean = float(probability @ n)
     return CondensateStatistics(mean, float(probability @ (n - mean) ** 2), probability)
 
 
-def _partition(held: HeldGas, count: int, kT: float) -> FloatArray:
-    """Z_1(k/kT) of the excited levels, k = 1 ... count."""
-    whole = held.model.whole
-    if held.gas.statistics != "bose" or held.gas.degeneracy != 1 or not isinstance(whole, ExactLevels):
-        raise NoAnswerError(
-            "the statistics of a condensate want bosons of one spin state on known levels: add `levels exact`"
-        )
-    return np.asarray(np.real(whole.partition(np.arange(1.0, count + 1) / kT, kT).z0), dtype=np.float64)
+def levels_of(held: HeldGas) -> ExactLevels:
+    """The levels over which a fixed number is spread; NoAnswerError where they are not known one by one."""
+    gas = held.gas
+    if gas.statistics == "bose" and gas.degeneracy == 1:
+        if held.place is None:
+            return ExactLevels(tuple(Oscillator(each) for each in gas.quanta), "bose", 1.0)
+        whole = held.model.whole if held.place.levels == "exact" else None
+        if isinstance(whole, ExactLevels):
+            return whole
+    raise NoAnswerError(
+        "the statistics of a condensate want bosons of one spin state on known levels: add `levels exact`"
+    )
 
 
-def _logarithms(single: FloatArray) -> FloatArray:
-    """ln Z_M, M = 0 ... N, less its largest value."""
-    count = single.size
+def logarithms(levels: ExactLevels, count: int, kT: float) -> FloatArray:
+    """ln Z_M of M = 0 ... `count` particles on the excited levels, less the largest."""
+    single = np.asarray(np.real(levels.partition(np.arange(1.0, count + 1) / kT, kT).z0), dtype=np.float64)
     weights, logs = np.zeros(count + 1), np.zeros(count + 1)
     weights[0], scaled = 1.0, 0.0
     backwards = single[::-1]
@@ -73,3 +77,9 @@ def _logarithms(single: FloatArray) -> FloatArray:
             scaled += np.log(weights[m])
             weights[: m + 1] /= weights[m]
     return np.asarray(logs - logs.max(), dtype=np.float64)
+
+
+def chances(logs: FloatArray) -> FloatArray:
+    """The probability of each n = 0 ... N in the lowest level, from ln Z_M, M = 0 ... N."""
+    excited = np.exp(logs - logs.max())
+    return np.asarray((excited / excited.sum())[::-1])

@@ -105,6 +105,8 @@ def _column(
     state: State, name: str, given: Mapping[str, FloatArray], shape: tuple[int, ...]
 ) -> tuple[FloatArray, FloatArray, str]:
     trap = trap_of(state.held)
+    if state.held.model.local is None:
+        raise NoAnswerError(state.held.why_not_local)
     free = [each for each in trap.field.coordinates if each not in given]
     if len(free) != 1:
         came, wanted = ", ".join(given) or "none", ", ".join(trap.field.coordinates)

@@ -28,7 +28,7 @@ RADII = ("r", "rho")  # on the other side of the centre where they are negative
 def trap_of(held: HeldGas) -> TrapPlace:
     """The trap of a gas; NoAnswerError where the place has no coordinates."""
     place = held.place
-    if not isinstance(place, TrapPlace) or held.model.local is None:
+    if not isinstance(place, TrapPlace):
         raise NoAnswerError(f"{held.name} has no coordinates along which a profile could run")
     return place
 

@@ -4,7 +4,16 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING, NamedTuple
 
-from eoscore.state import beyond, bottom, collisions, geometry, saturation, shifts, thermal
+from eoscore.state import (
+    beyond,
+    bottom,
+    collisions,
+    fixed_number,
+    geometry,
+    saturation,
+    shifts,
+    thermal,
+)
 
 if TYPE_CHECKING:
     from collections.abc import Callable
@@ -65,6 +74,9 @@ QUANTITIES: dict[str, Quantity] = {
     "n_0_peak": Quantity(beyond.condensate_peak, "m^-d"),
     "R_TF": Quantity(beyond.radii, "m"),
     "rate_coll": Quantity(collisions.rate, "1/s"),
+    "N_0_canonical": Quantity(fixed_number.mean, "1"),
+    "Delta_N_0": Quantity(fixed_number.spread, "1"),
+    "P_N_0": Quantity(fixed_number.probability, "1"),
     "V_at": Quantity(_at("V_at"), "J"),
     "n_at": Quantity(_at("n_at"), "m^-d"),
     "pressure_at": Quantity(_at("pressure_at"), "J/m^d"),

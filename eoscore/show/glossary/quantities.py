@@ -15,6 +15,7 @@ _BAGNATO = "V. Bagnato, D. E. Pritchard, D. Kleppner, Phys. Rev. A 35, 4354 (198
 _LUITEN = "O. J. Luiten, M. W. Reynolds, J. T. M. Walraven, Phys. Rev. A 53, 381 (1996)"
 _LANDAU = "L. D. Landau, E. M. Lifshitz, Mechanics, section 23"
 _GIORGINI = "S. Giorgini, L. P. Pitaevskii, S. Stringari, Phys. Rev. A 54, R4633 (1996)"
+_WEISS = "C. Weiss, M. Wilkens, Opt. Express 1, 272 (1997)"
 _GROSSMANN = "S. Grossmann, M. Holthaus, Phys. Lett. A 208, 188 (1995)"
 
 # name: what it is, formula, source
@@ -101,6 +102,21 @@ QUANTITIES: Final[dict[str, tuple[str, str, str]]] = {
         "elastic collisions per particle and time, averaged over the density of the non-condensed gas",
         "8*pi*a_s^2*sqrt(16*k*T/(pi*m)) * integral n^2/integral n; 0 for one-component fermions",
         f"{_LUITEN}; {_DALFOVO}",
+    ),
+    "N_0_canonical": (
+        "mean condensate number of exactly N particles (canonical ensemble), in a trap with `levels exact`",
+        "sum over n = 0 ... N of n*P_N_0(n)",
+        _WEISS,
+    ),
+    "Delta_N_0": (
+        "standard deviation of the condensate number of exactly N particles (canonical ensemble)",
+        "Delta_N_0^2 = sum over n = 0 ... N of (n - N_0_canonical)^2*P_N_0(n)",
+        _WEISS,
+    ),
+    "P_N_0": (
+        "probability that just N_0 of exactly N particles are in the lowest level, asked `over N_0 = ...`",
+        "Z_(N - N_0)/(Z_0 + ... + Z_N), Z_M the partition function of M particles on the excited levels",
+        _WEISS,
     ),
     "V_at": ("potential at a position, counted from the bottom of the trap", "V(r) - V_min", _LANDAU),
     "n_at": (
