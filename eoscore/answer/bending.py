@@ -40,9 +40,14 @@ def bending(chain: Chain, findings: Mapping[str, Finding]) -> Iterator[Caution]:
             if not bad.any():
                 continue
             worst = np.unravel_index(np.argmax(np.where(bad, bend, 0.0)), bend.shape)
+            mend = (
+                "`--sample 1000` gives an interval"
+                if findings[name].interval is None
+                else "the sampled interval holds"
+            )
             yield Caution(
                 "first_derivative",
                 f"{name} sets in within the uncertainty of {label}: one standard deviation down and up gives "
                 f"{low[worst]:.3g} and {high[worst]:.3g} where the answer is {here[worst]:.3g}, and its standard "
-                "deviation, a first derivative, misleads there; `--sample 1000` gives an interval.",
+                f"deviation, a first derivative, misleads there; {mend}.",
             )

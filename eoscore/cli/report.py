@@ -9,7 +9,7 @@ import click
 
 from eoscore.cli.exits import ANSWERED, FAULTY, INACCURATE
 from eoscore.cli.reading import Text
-from eoscore.cli.run import complain_of_accuracy
+from eoscore.cli.run import complain_of_accuracy, sample_option
 from eoscore.errors import TarnError
 
 if TYPE_CHECKING:
@@ -31,10 +31,13 @@ __all__ = ["report"]
     show_default=True,
     help="Relative error wanted of every number.",
 )
+@sample_option
 @click.option(
     "--workers", type=click.IntRange(1), default=1, show_default=True, help="Processes that share a grid."
 )
-def report(file: str, out: Path, settings: tuple[str, ...], accuracy: float, workers: int) -> int:
+def report(
+    file: str, out: Path, settings: tuple[str, ...], accuracy: float, sample: int, workers: int
+) -> int:
     """Answer every question of FILE on one self-contained page: tables, trap, curves, formulas, source.
 
     The page asks the network for nothing and prints well. Pictures want the extra `plot`.
@@ -43,7 +46,7 @@ def report(file: str, out: Path, settings: tuple[str, ...], accuracy: float, wor
         raise click.BadParameter(reason, param_hint="--out")
     text = Text.of(file)
     try:
-        answers, page = _page(text, settings, accuracy, workers)
+        answers, page = _page(text, settings, accuracy, sample, workers)
     except TarnError as fault:
         from eoscore.show.complaint import complaints_text
 
@@ -76,14 +79,16 @@ def _write(out: Path, page: str) -> None:
         path.write_text(page, encoding="utf-8")
 
 
-def _page(text: Text, settings: tuple[str, ...], accuracy: float, workers: int) -> tuple[Report, str]:
+def _page(
+    text: Text, settings: tuple[str, ...], accuracy: float, sample: int, workers: int
+) -> tuple[Report, str]:
     _require_matplotlib()
     from eoscore.answer.record import Report
     from eoscore.show.report.build import Input, report_page
 
-    lab = text.lab(settings)
+    lab = text.lab(settings, sample)
     answers = Report(text.name, lab.answers(accuracy=accuracy, workers=workers))
-    return answers, report_page(Input(text.name, text.content, settings, accuracy), lab, answers)
+    return answers, report_page(Input(text.name, text.content, settings, accuracy, sample), lab, answers)
 
 
 def _require_matplotlib() -> None:

@@ -5,7 +5,7 @@ from __future__ import annotations
 import sys
 from dataclasses import dataclass
 from pathlib import Path
-from typing import TYPE_CHECKING, Any, TypeVar
+from typing import TYPE_CHECKING, Any, Final, TypeVar
 
 import click
 
@@ -22,9 +22,18 @@ if TYPE_CHECKING:
     from eoscore.answer.record import Answer, Report
     from eoscore.cli.keeping import Kept
 
-__all__ = ["Asked", "answer_text", "asking", "complain_of_accuracy", "run"]
+__all__ = ["Asked", "answer_text", "asking", "complain_of_accuracy", "run", "sample_option"]
 
 _F = TypeVar("_F", bound="Callable[..., Any]")
+
+
+sample_option: Final = click.option(
+    "--sample",
+    type=click.IntRange(0, 10**6),
+    default=0,
+    metavar="K",
+    help="Give intervals from K draws of the uncertain numbers, beside first derivatives.",
+)
 
 
 def asking(function: _F) -> _F:
@@ -55,13 +64,7 @@ def asking(function: _F) -> _F:
                 show_default=True,
                 help="Relative error wanted of every number.",
             ),
-            click.option(
-                "--sample",
-                type=click.IntRange(0, 10**6),
-                default=0,
-                metavar="K",
-                help="Give intervals from K draws of the uncertain numbers, beside first derivatives.",
-            ),
+            sample_option,
             grid_options,
         )
     ):

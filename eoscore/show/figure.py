@@ -9,6 +9,7 @@ import numpy as np
 from matplotlib import rc_context
 from matplotlib.figure import Figure
 
+from eoscore.show.band import band_of, band_words
 from eoscore.show.panel_lines import draw_lines
 from eoscore.show.panel_map import draw_map
 from eoscore.show.scale import Scale
@@ -64,7 +65,7 @@ def figure_of(answer: FoundAnswer, *, bare: bool = False) -> Figure:
         for axes in panels[:-1]:
             axes.set_xlabel("")
         if not bare:
-            figure.suptitle(fill(answer.question, 84), fontsize=8.5, color="0.1")
+            figure.suptitle(fill(answer.question, 76), fontsize=8.5, color="0.1")
         if not bare and (notes := _notes(answer, as_map=mapped)):
             figure.supxlabel(notes, fontsize=7.5, color="0.3", x=0.02, ha="left")
         figure.draw_without_rendering()  # with the look in force: texts are laid out now
@@ -85,7 +86,7 @@ def _draw(axes: Axes, answer: FoundAnswer, name: str, *, as_map: bool) -> None:
     elif as_map and finding.value.ndim == 2:
         draw_map(axes, list(scales.values()), value)
     else:
-        draw_lines(axes, list(scales.values()), value, finding.sigma)
+        draw_lines(axes, list(scales.values()), value, band_of(finding))
 
 
 def _say_nothing(axes: Axes, name: str, finding: Finding, scales: dict[str, Scale]) -> None:
@@ -101,11 +102,11 @@ def _say_nothing(axes: Axes, name: str, finding: Finding, scales: dict[str, Scal
 def _notes(answer: FoundAnswer, *, as_map: bool) -> str:
     """Why points are blank, and what a band means."""
     lines = []
-    if not as_map and any(finding.sigma is not None for finding in answer.found.values()):
-        lines.append("Bands: one standard deviation carried from the input.")
+    if not as_map and (bands := band_words(answer.found.values())):
+        lines.append(bands)
     reasons: dict[str, list[str]] = {}
     for name, finding in answer.found.items():
         for reason in finding.reasons:
             reasons.setdefault(reason.text, []).append(name)
     lines += [f"Blank in {', '.join(names)}: {text}" for text, names in list(reasons.items())[:3]]
-    return "\n".join(fill(line, 100) for line in lines)
+    return "\n".join(fill(line, 88) for line in lines)

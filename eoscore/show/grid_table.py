@@ -84,10 +84,10 @@ def grid_rows(answer: FoundAnswer) -> tuple[tuple[str, ...], list[tuple[str, ...
     """The heads and the rows of the table as texts, with a row of dots where rows are left out."""
     parts = list(grid_columns(answer))
     shown = _shown(parts[0].values.size)
-    heads, texts = zip(*(_written_column(part, shown) for part in parts), strict=True)
+    heads, texts = zip(*(each for part in parts for each in _written_columns(part, shown)), strict=True)
     rows = list(zip(*texts, strict=True))
     if hidden_rows(answer):
-        rows.insert(_ROWS // 2, ("…",) * len(parts))
+        rows.insert(_ROWS // 2, ("…",) * len(heads))
     return heads, rows
 
 
@@ -103,11 +103,17 @@ def _shown(rows: int) -> NDArray[np.intp]:
     return np.arange(rows) if rows <= _ROWS else np.r_[:half, rows - half : rows]
 
 
-def _written_column(part: Column, shown: NDArray[np.intp]) -> tuple[str, list[str]]:
-    """The head and the texts; the prefix fits the whole column, whatever is shown of it."""
+def _written_columns(part: Column, shown: NDArray[np.intp]) -> Iterator[tuple[str, list[str]]]:
+    """The head and the texts, and those of a sampled interval; the prefix fits the whole, whatever is shown of it."""
     finite = np.abs(part.values[np.isfinite(part.values) & (part.values != 0.0)])
     factor, unit = fitting(float(np.median(finite)), part.unit) if finite.size else (1.0, part.unit)
     sigmas = [None] * shown.size if part.sigma is None else (part.sigma[shown] / factor).tolist()
-    head = part.name if unit == "1" else f"{part.name} ({unit})"
+    rest = "" if unit == "1" else f" ({unit})"
     pairs = zip((part.values[shown] / factor).tolist(), sigmas, strict=True)
-    return head, [written(value, sigma) for value, sigma in pairs]
+    yield f"{part.name}{rest}", [written(value, sigma) for value, sigma in pairs]
+    if part.interval is not None:
+        for end, values in (("low", part.interval.low), ("high", part.interval.high)):
+            yield (
+                f"{end} {part.name}{rest}",
+                [written(x, digits=4) for x in (values[shown] / factor).tolist()],
+            )

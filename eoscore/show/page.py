@@ -5,10 +5,12 @@ from __future__ import annotations
 import math
 from typing import IO, TYPE_CHECKING
 
+import numpy as np
+
 from eoscore.answer.record import DerivedAnswer
 from eoscore.show.formulas import formula_lines
 from eoscore.show.grid_table import grid_table, hidden_rows
-from eoscore.show.prefix import fitting, quantity
+from eoscore.show.prefix import fitting, quantity, written
 from eoscore.show.table import columns, console_on, paragraph, put
 
 if TYPE_CHECKING:
@@ -19,7 +21,7 @@ if TYPE_CHECKING:
 
     from eoscore.answer.record import Answer, Caution, Finding, FoundAnswer, Interval, Reason, Report
 
-__all__ = ["print_report"]
+__all__ = ["error_text", "interval_text", "print_report"]
 
 
 def print_report(report: Report, stream: IO[str]) -> None:
@@ -87,23 +89,28 @@ def _notes(answer: Answer) -> Iterator[str]:
             yield f"{name}: {finding.note}"
         if not answer.over and (shares := _budget(finding)):
             yield f"{name}: its uncertainty comes from {shares}"
-        if not answer.over and finding.interval is not None:
-            yield f"{name}: {_interval(finding.interval, finding.unit)}"
+        if not answer.over and finding.interval is not None and finding.interval.answered.any():
+            yield f"{name}: {interval_text(finding.interval, finding.unit)}"
 
 
-def _interval(interval: Interval, unit: str) -> str:
+def interval_text(interval: Interval, unit: str) -> str:
+    """How many of the samples lie between what, for every entry of a quantity without a grid."""
+    share = float(interval.answered.min())
+    lost = f" ({100 * (1 - share):.3g} % of them had no answer)" if share < 1 else ""
+    if not np.isfinite(interval.low).all():
+        return f"no interval: too few of {interval.samples} samples have an answer{lost}"
     ends = zip(interval.low.reshape(-1).tolist(), interval.high.reshape(-1).tolist(), strict=True)
     told = "; ".join(_between(low, high, unit) for low, high in ends)
-    share = float(interval.answered.min())
-    lost = f" ({100 * (1 - share):.2g} % of them had no answer)" if share < 1 else ""
     return f"{100 * interval.coverage:.0f} % of {interval.samples} samples{lost} lie {told}"
 
 
 def _between(low: float, high: float, unit: str) -> str:
-    if not math.isfinite(low):
-        return "nowhere: too few had an answer"
     factor, shown = fitting(high, unit)
-    return f"from {low / factor:.4g} to {high / factor:.4g} {shown}".removesuffix(" 1")
+    return (
+        f"from {written(low / factor, digits=4)} to {written(high / factor, digits=4)} {shown}".removesuffix(
+            " 1"
+        )
+    )
 
 
 def _reasons(answer: FoundAnswer) -> dict[Reason, list[str]]:

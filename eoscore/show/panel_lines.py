@@ -6,6 +6,7 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from eoscore.show.band import Band
 from eoscore.show.factors import mark_factors
 
 if TYPE_CHECKING:
@@ -23,20 +24,24 @@ _DASHES = ("-", (0, (6, 2)), (0, (1.5, 1.5)), (0, (7, 2, 1.5, 2)), (0, (3, 3)), 
 _FEW = 15  # points that are marked one by one
 
 
-def draw_lines(axes: Axes, over: Sequence[Scale], value: Scale, sigma: NDArray[np.float64] | None) -> None:
-    """Draw a quantity over one name, or over two of which the shorter one gives a line for each value."""
+def draw_lines(axes: Axes, over: Sequence[Scale], value: Scale, band: Band | None) -> None:
+    """Draw a quantity over one name, or over two of which the shorter one gives a line for each value.
+
+    `band` is that of the quantity in SI.
+    """
     along = max(range(len(over)), key=lambda place: over[place].values.size)
     x = over[along]
-    lines = list(_lines(over, along, value, sigma))
+    lines = list(_lines(over, along, value, band))
     many = len(lines) > 1
-    for place, (label, y, spread) in enumerate(lines):
+    for place, (label, y, ends) in enumerate(lines):
         colour = _colour(place, len(lines))
         marker = "o" if x.values.size <= _FEW else None
         axes.plot(
             x.values, y, color=colour, linestyle=_DASHES[place], marker=marker, markersize=2.5, label=label
         )
-        if spread is not None:
-            axes.fill_between(x.values, y - spread, y + spread, color=colour, alpha=0.22, linewidth=0)
+        if ends is not None:
+            axes.fill_between(x.values, ends.low, ends.high, color=colour, alpha=0.22, linewidth=0)
+    axes.dataLim.update_from_data_x(x.values, ignore=False)  # points without an answer keep their room
     axes.set_xscale("log" if x.logarithmic else "linear")
     axes.set_yscale("log" if value.logarithmic else "linear")
     axes.set_xlabel(x.label)
@@ -53,11 +58,11 @@ def draw_lines(axes: Axes, over: Sequence[Scale], value: Scale, sigma: NDArray[n
 
 
 def _lines(
-    over: Sequence[Scale], along: int, value: Scale, sigma: NDArray[np.float64] | None
-) -> Iterator[tuple[str, NDArray[np.float64], NDArray[np.float64] | None]]:
-    """Label, values and standard deviations of every line."""
+    over: Sequence[Scale], along: int, value: Scale, band: Band | None
+) -> Iterator[tuple[str, NDArray[np.float64], Band | None]]:
+    """Label, values and band of every line."""
     own = value.values.ndim > len(over)
-    spread = None if sigma is None else np.moveaxis(sigma / value.factor, along, -1)
+    ends = None if band is None else [np.moveaxis(end / value.factor, along, -1) for end in band]
     table = np.moveaxis(value.values, along, -1)
     others = [scale for place, scale in enumerate(over) if place != along]
     every = list(np.ndindex(table.shape[:-1]))
@@ -65,7 +70,11 @@ def _lines(
     for index in (every[place] for place in shown):
         words = [scale.text(float(scale.values[i])) for scale, i in zip(others, index, strict=False)]
         words += [f"{value.name}, {index[-1] + 1}"] if own else []
-        yield ", ".join(words) or value.name, table[index], None if spread is None else spread[index]
+        yield (
+            ", ".join(words) or value.name,
+            table[index],
+            None if ends is None else Band(*(end[index] for end in ends)),
+        )
 
 
 def _colour(place: int, count: int) -> tuple[float, float, float, float]:

@@ -25,12 +25,12 @@ def fitting(size: float, unit: str) -> tuple[float, str]:
     return 10.0**power, _PREFIXES[power] + unit
 
 
-def written(value: float, sigma: float | None = None) -> str:
-    """A number to six digits, or with its standard deviation in concise notation: `703(14)`."""
+def written(value: float, sigma: float | None = None, digits: int = _DIGITS) -> str:
+    """A number to six `digits`, or with its standard deviation in concise notation: `703(14)`."""
     if not math.isfinite(value):
         return "-"
     if sigma is None or not math.isfinite(sigma) or sigma <= _NOISE * abs(value):
-        return _short_power(f"{value:.{_DIGITS}g}")
+        return _short_power(f"{value:.{digits}g}")
     from uncertainties import ufloat
 
     return _short_power(f"{ufloat(value, sigma):.2uS}")

@@ -2,9 +2,11 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import numpy as np
 
-from eoscore.answer.record import Caution, Finding, FoundAnswer, Given, Points, Reason, Report
+from eoscore.answer.record import Caution, Finding, FoundAnswer, Given, Interval, Points, Reason, Report
 from eoscore.errors import Complaint
 
 
@@ -19,6 +21,15 @@ def finding(value, unit="K", *, sigma=None, error=0.0, why=None, points=((),), b
         reasons=() if why is None else (Reason(why, Points(points)),),
         budget={name: np.array(share) for name, share in (budget or {}).items()},
     )
+
+
+def sampled(value, low, high, *, answered=1.0, **parts):
+    """A finding with the interval of fifty samples."""
+    told = finding(value, **parts)
+    low, high, share = (
+        np.broadcast_to(np.array(each, dtype=float), told.value.shape) for each in (low, high, answered)
+    )
+    return replace(told, interval=Interval(low, high, share, samples=50, coverage=0.6827))
 
 
 def answer(found, over=None, units=None, **parts):

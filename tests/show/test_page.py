@@ -4,13 +4,14 @@ from __future__ import annotations
 
 import io
 import math
+import re
 
 import pytest
 
 from eoscore.answer.record import DerivedAnswer
 from eoscore.show.page import print_report
 
-from .records import answer, finding, report
+from .records import answer, finding, report, sampled
 
 
 def page(*answers):
@@ -30,6 +31,29 @@ def test_a_missing_number_is_told_in_words():
     text = page(answer({"T_c": finding(math.nan, why="the trap is open")}))
     assert "T_c: no value, because the trap is open" in text
     assert "nan" not in text
+
+
+@pytest.mark.parametrize(
+    ("found", "words"),
+    [
+        (sampled(1e-7, 0.9e-7, 1.4e-7), "T_c: 68 % of 50 samples lie from 90 to 140 nK"),
+        (sampled(1e-7, 0.9e-7, 1.4e-7, answered=0.8), "50 samples (20 % of them had no answer) lie from"),
+        (sampled(1e-7, math.nan, math.nan, answered=0.1), "T_c: no interval: too few of 50 samples have"),
+    ],
+)
+def test_a_sampled_interval_is_told(found, words):
+    assert words in page(answer({"T_c": found}))
+
+
+def test_an_interval_that_no_sample_has_is_not_told():
+    assert "samples" not in page(answer({"T_c": sampled(math.nan, math.nan, math.nan, answered=0.0)}))
+
+
+def test_a_grid_shows_the_ends_of_sampled_intervals():
+    found = sampled([1e-7, 2e-7], [0.9e-7, math.nan], [1.1e-7, math.nan])
+    rows = page(answer({"T_c": found}, over={"P": [1, 2]}, units={"P": "W"})).splitlines()
+    assert re.split(r"  +", rows[1]) == ["P (W)", "T_c (nK)", "low T_c (nK)", "high T_c (nK)"]
+    assert [row.split() for row in rows[3:5]] == [["1", "100", "90", "110"], ["2", "200", "-", "-"]]
 
 
 def test_lists_show_every_entry():

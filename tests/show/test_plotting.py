@@ -7,16 +7,22 @@ import math
 import numpy as np
 import pytest
 
+from eoscore.show.band import band_words
 from eoscore.show.plotting import NothingToDrawError, draw, undrawable
 from eoscore.show.scale import Scale
 
-from .records import answer, finding, report
+from .records import answer, finding, report, sampled
 
 pytest.importorskip("matplotlib")
 
 ONE = answer(
     {"T_c": finding([1e-7, 2e-7, math.nan], sigma=[1e-9, 2e-9, math.nan], why="open", points=((2,),))},
     over={"P": [1, 2, 3]},
+    units={"P": "W"},
+)
+SAMPLED = answer(
+    {"T_c": sampled([1e-7, 2e-7], [0.9e-7, 1.5e-7], [1.1e-7, 4e-7], sigma=[1e-9, 2e-9])},
+    over={"P": [1, 2]},
     units={"P": "W"},
 )
 MAP = answer(
@@ -46,6 +52,27 @@ def test_lines_have_bands_and_units_that_fit():
     assert (axes.get_xlabel(), axes.get_ylabel()) == ("P (W)", "T_c (nK)")
     np.testing.assert_allclose(axes.lines[0].get_ydata()[:2], [100.0, 200.0], rtol=1e-12)
     assert len(axes.collections) == 1
+
+
+def test_bands_are_the_sampled_interval_where_there_is_one():
+    from eoscore.show.figure import figure_of
+
+    (axes,) = figure_of(SAMPLED).axes
+    low, high = axes.collections[0].get_paths()[0].get_extents().get_points()[:, 1]
+    assert (low, high) == (pytest.approx(90.0), pytest.approx(400.0))
+
+
+def test_the_words_say_what_the_bands_are():
+    assert band_words(SAMPLED.found.values()) == "Bands: where 68 % of 50 samples of the input lie."
+    assert band_words(ONE.found.values()) == "Bands: one standard deviation carried from the input."
+    assert band_words(MAP.found.values()) is None
+
+
+def test_points_without_an_answer_keep_their_room():
+    from eoscore.show.figure import figure_of
+
+    (axes,) = figure_of(ONE).axes
+    assert axes.get_xlim()[1] > 3.0
 
 
 def test_a_map_has_the_second_name_across_and_a_bar():

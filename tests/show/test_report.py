@@ -168,6 +168,16 @@ def test_a_number_short_of_the_accuracy_is_on_the_page_and_in_the_status(tmp_pat
     assert "was not reached" in (tmp_path / "a.html").read_text()
 
 
+def test_intervals_of_samples_are_on_the_page_and_in_its_command(tmp_path):
+    text = "gas g { isotope Sr-84 }\ntrap t { f = 80(9) Hz\nV(r) = m/2*(2*pi*f*r)^2 }\n"
+    asked = "find T_c for g in t with N = 1e5\nfind T_c for g in t over N = [1e4, 1e5]\n"
+    (tmp_path / "a.tarn").write_text(text + asked)
+    assert reported(tmp_path / "a.tarn", "--out", tmp_path / "a.html", "--sample", 20).return_value == 0
+    page = (tmp_path / "a.html").read_text()
+    for words in ("T_c: 68 % of 20 samples lie", "low T_c", "Bands: where 68 % of 20", "--sample 20 --out"):
+        assert words in page
+
+
 def test_a_faulty_file_has_no_page(tmp_path):
     (tmp_path / "a.tarn").write_text("f = 2 khz")
     words = ["report", str(tmp_path / "a.tarn"), "--out", str(tmp_path / "a.html")]

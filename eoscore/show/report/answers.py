@@ -9,7 +9,7 @@ import numpy as np
 from eoscore.answer.record import DerivedAnswer
 from eoscore.constants import K_B
 from eoscore.show.grid_table import grid_rows, hidden_rows
-from eoscore.show.page import error_text
+from eoscore.show.page import error_text, interval_text
 from eoscore.show.prefix import quantity
 from eoscore.show.report.budget import budgets
 from eoscore.show.report.formulas import formulas
@@ -118,9 +118,13 @@ def _reasons(answer: FoundAnswer) -> Markup:
 
 
 def _notes(answer: FoundAnswer) -> Markup:
-    return listed(
-        f"{name}: {with_prefixes(finding.note)}" for name, finding in answer.found.items() if finding.note
-    )
+    notes = []
+    for name, finding in answer.found.items():
+        if finding.note:
+            notes.append(f"{name}: {with_prefixes(finding.note)}")
+        if not answer.over and finding.interval is not None and finding.interval.answered.any():
+            notes.append(together(f"{name}: ", raised(interval_text(finding.interval, finding.unit))))
+    return listed(notes)
 
 
 def _cautions(answer: Answer, told: set[Caution], boxed: Container[str]) -> Markup:

@@ -28,12 +28,13 @@ __all__ = ["Input", "report_page"]
 
 @dataclass(frozen=True)
 class Input:
-    """What a page is made of: the text with its name, the settings and the accuracy of the run."""
+    """What a page is made of: the text with its name, the settings, the accuracy and the draws of the run."""
 
     name: str
     content: bytes
     settings: Sequence[str] = ()
     accuracy: float = 1e-6
+    sample: int = 0
 
     @property
     def file(self) -> str:
@@ -115,4 +116,6 @@ def _lines(report: Report) -> dict[int, int]:
 
 
 def _provenance(source: Input) -> Markup:
-    return provenance(source.file, source.content, source.settings, source.accuracy)
+    options = [] if source.accuracy == 1e-6 else ["--accuracy", f"{source.accuracy:g}"]
+    options += ["--sample", str(source.sample)] if source.sample else []
+    return provenance(source.file, source.content, source.settings, options)

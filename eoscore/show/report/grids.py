@@ -6,6 +6,7 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from eoscore.show.band import band_words
 from eoscore.show.figure import as_map, figure_of
 from eoscore.show.prefix import quantity
 from eoscore.show.report.raised import raised
@@ -33,8 +34,8 @@ def _words(answer: FoundAnswer) -> Iterator[str]:
         yield f"{name} runs from {quantity(float(values[0]), unit)} to {quantity(float(values[-1]), unit)}."
     for name, finding in answer.found.items():
         yield _range(name, finding)
-    if not as_map(answer) and any(finding.sigma is not None for finding in answer.found.values()):
-        yield "Bands: one standard deviation carried from the input."
+    if not as_map(answer) and (bands := band_words(answer.found.values())):
+        yield bands
 
 
 def _range(name: str, finding: Finding) -> str:

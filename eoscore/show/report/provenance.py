@@ -18,12 +18,11 @@ __all__ = ["provenance"]
 _PACKAGES = ("numpy", "scipy", "sympy", "matplotlib", "lark", "periodictable")
 
 
-def provenance(name: str, content: bytes, settings: Sequence[str], accuracy: float) -> Markup:
-    """A table of what a colleague needs to make the same page."""
+def provenance(name: str, content: bytes, settings: Sequence[str], options: Sequence[str]) -> Markup:
+    """A table of what a colleague needs to make the same page; `options` are the further words of the command."""
     rows = list(_rows(name, content, settings))
     words = ["eoscore", "report", name, *(word for each in settings for word in ("--set", each))]
-    words += [] if accuracy == 1e-6 else ["--accuracy", f"{accuracy:g}"]
-    command = element("code", shlex.join([*words, "--out", "page.html"]))
+    command = element("code", shlex.join([*words, *options, "--out", "page.html"]))
     return together(table("Input and versions", ("what", "value"), rows), element("p", "Made by ", command))
 
 
