@@ -1,4 +1,4 @@
-"""What a question says, for the answer that repeats it."""
+"""What a question says, for the answer that repeats it, and relative changes in words."""
 
 from __future__ import annotations
 
@@ -10,7 +10,7 @@ from eoscore.answer.unit import unit_of_dimension
 if TYPE_CHECKING:
     from eoscore.language.question import Question
 
-__all__ = ["given_of", "words_of"]
+__all__ = ["given_of", "percent", "words_of"]
 
 
 def words_of(question: Question) -> str:
@@ -23,3 +23,9 @@ def given_of(question: Question) -> dict[str, Given]:
     """The conditions and the new values of parameters, in SI."""
     every = {**question.given, **question.values}
     return {name: Given(each.value, unit_of_dimension(each.dimension)) for name, each in every.items()}
+
+
+def percent(share: float) -> str:
+    """A relative change such as `-1.3 %` or `+240 %`: two digits, and no power of ten."""
+    digits = f"{100.0 * share:+.2g}"
+    return f"{digits if 'e' not in digits else f'{100.0 * share:+.0f}'} %"

@@ -78,8 +78,8 @@ def _lines(
 
 
 def _colour(place: int, count: int) -> tuple[float, float, float, float]:
-    """From dark to light within cividis, whose lightness rises steadily."""
+    """From dark to light within cividis, as far as a line keeps a contrast of 3 on white and, inverted, on black."""
     from matplotlib import colormaps
 
-    red, green, blue, alpha = colormaps["cividis"](0.12 + 0.58 * place / max(1, count - 1))
+    red, green, blue, alpha = colormaps["cividis"](0.1 + 0.5 * place / max(1, count - 1))
     return red, green, blue, alpha

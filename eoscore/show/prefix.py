@@ -33,7 +33,11 @@ def written(value: float, sigma: float | None = None, digits: int = _DIGITS) -> 
         return _short_power(f"{value:.{digits}g}")
     from uncertainties import ufloat
 
-    return _short_power(f"{ufloat(value, sigma):.2uS}")
+    number, _, rest = f"{ufloat(value, sigma):.2uS}".partition("(")
+    deviation, _, power = rest.partition(
+        ")"
+    )  # counted in the last digits: 1.6(12), where the package writes 1.6(1.2)
+    return _short_power(f"{number}({deviation.replace('.', '')}){power}")
 
 
 def _short_power(number: str) -> str:

@@ -7,6 +7,7 @@ import re
 import pytest
 
 import eoscore
+from eoscore.answer.wording import percent
 
 ISOTROPIC = "V(x, y, z) = m/2*(2*pi*f)^2*(x^2 + y^2 + z^2)"
 PANCAKE = "V(x, y, z) = m/2*(2*pi*f)^2*(x^2 + y^2 + 400*z^2)"
@@ -179,3 +180,11 @@ def test_hardware_cautions_defer_to_the_local_rules(code):
 def test_a_hot_gas_fills_its_momentum_zone():
     text = cautions("V(x) = 1e-20 N/m*x^2", "mu for a in b with N = 1e3, T = 100 nK", BAND)
     assert "0.29 kT wide" in text["momentum_zone"]
+
+
+@pytest.mark.parametrize(
+    ("share", "words"),
+    [(-0.0132, "-1.3 %"), (0.5, "+50 %"), (-0.9999, "-100 %"), (-13.7, "-1370 %"), (2e-7, "+0 %")],
+)
+def test_relative_changes_read_without_powers_of_ten(share, words):
+    assert percent(share) == words

@@ -8,6 +8,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
+from eoscore.language.parse import parse
 from eoscore.show.prefix import fitting, quantity, written
 
 
@@ -24,6 +25,8 @@ from eoscore.show.prefix import fitting, quantity, written
         (0.42, "1", 0.031, "0.420(31)"),
         (2e20, "m^-3", None, "2e20 m^-3"),
         (4.24e4, "1", 3.4e3, "4.24(34)e4"),
+        (3.991e-7, "K", 9.4e-9, "399.1(94) nK"),  # counted in the last digits, as Tarn reads it
+        (4e-7, "K", 1e-7, "4.0(10)e2 nK"),
         (1e-30, "m", None, "1e-30 m"),
         (math.nan, "K", None, "- K"),
         (999.9996e-9, "K", None, "1000 nK"),
@@ -31,6 +34,14 @@ from eoscore.show.prefix import fitting, quantity, written
 )
 def test_quantities_read_well(value, unit, sigma, shown):
     assert quantity(value, unit, sigma) == shown
+
+
+@given(st.floats(1e-30, 1e30), st.floats(1e-6, 10.0))
+def test_tarn_reads_back_what_is_written_with_a_deviation(value, share):
+    sigma = share * value
+    (entry,) = parse(f"a = {written(value, sigma)}").entries
+    assert entry.value.sigma == pytest.approx(sigma, rel=0.051)
+    assert entry.value.value == pytest.approx(value, abs=0.051 * sigma)
 
 
 @given(st.floats(1e-15, 1e14))

@@ -135,6 +135,12 @@ def test_a_narrow_page_does_not_scroll_sideways(tab):
         assert tab.evaluate("document.documentElement.scrollWidth") <= width
 
 
+def test_paper_is_white_by_night_too(tab):
+    tab.emulate_media(media="print", color_scheme="dark")
+    assert tab.evaluate("getComputedStyle(document.body).backgroundColor") == "rgb(255, 255, 255)"
+    assert tab.evaluate("getComputedStyle(document.querySelector('figure svg')).filter") == "none"
+
+
 def test_pictures_and_rows_are_whole_on_paper(tab):
     tab.emulate_media(media="print")
     assert tab.evaluate("getComputedStyle(document.querySelector('nav')).display") == "none"

@@ -6,6 +6,7 @@ import math
 from typing import TYPE_CHECKING
 
 from eoscore.answer.record import Caution
+from eoscore.answer.wording import percent
 
 if TYPE_CHECKING:
     from collections.abc import Iterator
@@ -25,7 +26,7 @@ def finite_number(scene: Scene) -> Iterator[Caution]:
     if shift is not None and abs(shift) > _WORTH_SAYING:
         yield Caution(
             "finite_number",
-            f"for this finite number T_c lies {100.0 * shift:+.2g} % from the T_c of the infinite gas given here "
+            f"for this finite number T_c lies {percent(shift)} from the T_c of the infinite gas given here "
             "(first order).",
         )
 

@@ -6,6 +6,7 @@ import math
 from typing import TYPE_CHECKING
 
 from eoscore.answer.record import Caution
+from eoscore.answer.wording import percent
 from eoscore.constants import HBAR
 
 if TYPE_CHECKING:
@@ -29,7 +30,7 @@ def interactions(scene: Scene) -> Iterator[Caution]:
     if shift is not None and abs(shift) > _WORTH_SAYING:
         yield Caution(
             "interactions",
-            f"interactions are left out: to first order in a_s they move T_c by {100.0 * shift:+.2g} %.",
+            f"interactions are left out: to first order in a_s they move T_c by {percent(shift)}.",
         )
     if scene.density is not None and (dilution := scene.density * abs(gas.a_s) ** 3) > _DILUTE:
         yield Caution(
