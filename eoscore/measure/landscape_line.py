@@ -10,6 +10,7 @@ import numpy as np
 
 from eoscore.formula import call, variable
 from eoscore.formula.interval import bounds
+from eoscore.measure.kinks import jumps_of
 from eoscore.measure.landscape_pieces import FAR, monotone_pieces, positive_intervals
 from eoscore.measure.landscape_record import Escape, Kind, Landscape, Minimum, multiplicity
 
@@ -54,7 +55,7 @@ def survey_line(field: Field) -> Landscape:
         f, walls = f.substitute(even), tuple(wall.substitute(even) for wall in walls)
     stretches = positive_intervals(walls, name)
     ends = (stretches[0][0], stretches[-1][1]) if stretches else (-np.inf, np.inf)
-    pieces = monotone_pieces(f, name, ends)
+    pieces = monotone_pieces(f, name, ends, jumps_of(f, name, *ends))
     wells = [well for ends in stretches for well in _wells(f, name, ends, pieces.points, pieces.signs)]
     if name in RADIAL:
         wells = [well for well in wells if well.place >= 0 or well.high > 0]

@@ -30,6 +30,7 @@ FAR = 1e24
 DECADES = 10.0 ** np.arange(-36, 25)
 MOST_CELLS = 40_000
 SAMPLES = 24
+BESIDE, NEAREST = 2e-15, 1e-30  # relative, and in SI: the sides of a jump
 LEVEL = 1e-14  # a slope that changes V by less than this share of its range so far is level
 _KINKS = frozenset({"abs", "sign", "min", "max", "choose", "atan2"})
 
@@ -47,17 +48,20 @@ class Pieces:
 
 
 @lru_cache(maxsize=32)
-def monotone_pieces(f: Formula, name: str, ends: tuple[float, float] = (-np.inf, np.inf)) -> Pieces:
+def monotone_pieces(
+    f: Formula, name: str, ends: tuple[float, float] = (-np.inf, np.inf), jumps: tuple[float, ...] = ()
+) -> Pieces:
     """The pieces of f between -1e24 and 1e24; what lies beyond `ends` by a decade is left out.
 
-    Where more than some ten thousand cells are unproved, the points of those farthest from 0 tell the slope.
+    jumps: places at which f goes up or down at once; each is a piece of no length. Where more than some ten thousand
+    cells are unproved, the points of those farthest from 0 tell the slope.
     """
     slope = f.derivative(name)
     smooth = not any(node.op in _KINKS and not _folds(node) for node in ordered([f]))
     edges = np.concatenate([-DECADES[::-1], [0.0], DECADES])
     within = (edges[1:] > ends[0]) & (edges[:-1] < ends[1])
-    low, high = edges[:-1][within], edges[1:][within]
-    done: list[tuple[Array, Array, Array]] = []
+    low, high, steps = _beside(f, name, edges[:-1][within], edges[1:][within], jumps)
+    done: list[tuple[Array, Array, Array]] = [steps]
     left: list[Array] = []
     for _ in range(140):
         if not low.size:
@@ -80,6 +84,20 @@ def monotone_pieces(f: Formula, name: str, ends: tuple[float, float] = (-np.inf,
             left.append(np.stack([low[far], high[far]], axis=1)[~seen])
             low, high = low[near], high[near]
     return _joined(done, _merged(left))
+
+
+def _beside(
+    f: Formula, name: str, low: Array, high: Array, jumps: tuple[float, ...]
+) -> tuple[Array, Array, tuple[Array, Array, Array]]:
+    """Cells cut on both sides of jumps, and the cells between these sides with the sign of the jump."""
+    at = np.array([x for x in jumps if low[0] < x < high[-1]])
+    beside = np.maximum(np.abs(at) * BESIDE, NEAREST)
+    left, right = at - beside, at + beside
+    edges = np.unique(np.concatenate([low, high, left, right]))
+    low, high = edges[:-1], edges[1:]
+    crossing = np.any(np.abs((low + high) / 2 - at[:, None]) < beside[:, None], axis=0)
+    values = [np.broadcast_to(f.evaluate({name: x}), x.shape) for x in (left, right)]
+    return low[~crossing], high[~crossing], (left, right, np.sign(values[1] - values[0]))
 
 
 def _seen(f: Formula, name: str, low: Array, high: Array) -> tuple[Array, NDArray[np.bool_]]:

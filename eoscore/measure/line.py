@@ -43,7 +43,7 @@ def line(field: Field, landscape: Landscape) -> Measure | None:
         return None
     found = held_line(field, landscape)
     if found.gaps.size or len(found.breaks) > MOST_BREAKS:
-        many = crowd(found, landscape)
+        many = None if found.jumps else crowd(found, landscape)
         if many is not None:
             return many
         if found.gaps.size or len(found.breaks) > FAR_TOO_MANY:
@@ -62,6 +62,9 @@ def _resolved(found: HeldLine, landscape: Landscape) -> Measure:
     lowest = min(branches, key=lambda branch: branch.base)
     noise = max(branch.noise for branch in branches)
     rises = lowest.rises
+    if not rises.size:  # a flat floor between jumps
+        floor = float(omega(np.array([first / 2]))[0])
+        return Powers([(floor, 0.0)], landscape.depth, error=ERROR, route="line")
     start = max(DEEPEST * first if first < inf else rises[0], noise)
     v = np.geomspace(start, min(first / 2, rises[-1] / 2), STEPS)
     exponent, bent = beginning(v, omega(v))

@@ -11,6 +11,7 @@ import numpy as np
 
 from eoscore.formula import call, variable
 from eoscore.measure.branch import Branch
+from eoscore.measure.kinks import jumps_of
 from eoscore.measure.landscape_pieces import FAR, Pieces, monotone_pieces, positive_intervals
 from eoscore.measure.landscape_record import multiplicity
 
@@ -22,6 +23,7 @@ if TYPE_CHECKING:
 
 __all__ = ["HeldLine", "held_line"]
 
+BESIDE, NEAR = 2e-15, 1e-30  # relative, and m: the sides of a jump
 ROUNDING = 4e-15  # of V: wells whose bottoms differ by less are equally deep
 
 
@@ -31,7 +33,7 @@ class HeldLine:
 
     x (n,): where V turns, and the ends. rise (n,): V there, J from the bottom. gaps (m, 2): stretches on which
     there are too many turns to know. breaks: energies (J from the bottom) at which a turning point or a wall is
-    reached.
+    reached. jumps (k,): places at which V jumps; both sides of each are among x.
     """
 
     name: str
@@ -40,6 +42,7 @@ class HeldLine:
     rise: FloatArray
     gaps: FloatArray
     breaks: tuple[float, ...]
+    jumps: tuple[float, ...] = ()
 
     def branches(self) -> tuple[Branch, ...]:
         """The monotone stretches between the turning points."""
@@ -50,6 +53,7 @@ class HeldLine:
             for (a, b), (up, down) in zip(
                 pairwise(self.x.tolist()), pairwise(self.rise.tolist()), strict=True
             )
+            if not any(a < jump < b for jump in self.jumps)
         )
 
 
@@ -65,15 +69,16 @@ def held_line(field: Field, landscape: Landscape) -> HeldLine:
     place, v_min = bottom.position[0], bottom.value
     ends = next(ends for ends in positive_intervals(walls, name) if ends[0] <= place <= ends[1])
     ends = (max(ends[0], 0.0), ends[1]) if radial else ends
-    pieces = monotone_pieces(f, name, ends)
-    turning = _turning(pieces)
+    jumps = jumps_of(f, name, *ends)
+    pieces = monotone_pieces(f, name, ends, jumps)
+    turning = _with_sides(_turning(pieces), jumps)
     x = np.array([ends[0], *turning[(turning > ends[0]) & (turning < ends[1])], ends[1]])
     rise = _rise(f, name, x, v_min)
     held = _connected(x, rise, place, landscape.depth)
     x, rise = x[held], rise[held]
     breaks = tuple(sorted({float(v) for v in rise[np.isfinite(x)] if 0 < v < landscape.depth}))
     gaps = np.clip(pieces.gaps, max(x[0], -FAR), min(x[-1], FAR))
-    return HeldLine(name, field.formula, x, rise, gaps[gaps[:, 0] < gaps[:, 1]], breaks)
+    return HeldLine(name, field.formula, x, rise, gaps[gaps[:, 0] < gaps[:, 1]], breaks, jumps)
 
 
 def _turning(pieces: Pieces) -> FloatArray:
@@ -86,6 +91,14 @@ def _turning(pieces: Pieces) -> FloatArray:
             if pieces.signs[before] != pieces.signs[after]
         ]
     )
+
+
+def _with_sides(turning: FloatArray, jumps: tuple[float, ...]) -> FloatArray:
+    """The turning points with the places just before and just after each jump, which itself is none."""
+    at = np.array(jumps)
+    beside = np.maximum(np.abs(at) * BESIDE, NEAR)
+    far = np.array([x for x in turning if not np.any(np.abs(x - at) <= 2 * beside)])
+    return np.sort(np.concatenate([far, at - beside, at + beside]))
 
 
 def _rise(f: Formula, name: str, x: FloatArray, v_min: float) -> FloatArray:

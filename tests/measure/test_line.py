@@ -5,7 +5,7 @@ import pytest
 from scipy.special import iv
 
 from eoscore.errors import NoAnswerError
-from eoscore.formula import call, variable
+from eoscore.formula import call, choose, less, variable
 from eoscore.formula.field import Field
 from eoscore.measure import measure_of
 from eoscore.measure.landscape import survey
@@ -104,3 +104,46 @@ def test_a_power_that_leaps_from_nothing_to_everything(more):
     """x^1000000: Omega is the width of a box but for a factor v^(1e-6)."""
     measure = omega("x", x**1_000_000 + more)
     np.testing.assert_allclose(measure.volume(SPREAD * S), 2 * L * SPREAD**1e-6, rtol=1e-12)
+
+
+def high(v):
+    return np.sqrt(np.maximum(v, 0))
+
+
+STEPS = [
+    # V, where it is least, and the length below v, all in units of S and L
+    (
+        x**2 + choose(less(x, 1.0), 0.0, 1.0),
+        0,
+        lambda v: high(v) + np.maximum(np.minimum(high(v), 1), high(v - 1)),
+    ),
+    (
+        x**2 + choose(less(x, 1.0), 1.5, 0.0),
+        1,
+        lambda v: high(v - 0.5) + np.minimum(high(v - 0.5), 1) + high(v + 1) - 1,
+    ),
+    (-choose(less(call("abs", x), 1.0), 1.0, 0.0), 0, lambda v: 2 + 0 * v),
+    (
+        call("abs", x) - choose(less(call("abs", x - 5.5), 0.5), 10.0, 0.0),
+        5,
+        lambda v: np.minimum(v, 1) + 2 * np.maximum(v - 5, 0),
+    ),
+]
+
+
+@pytest.mark.parametrize(("potential", "place", "length"), STEPS)
+def test_steps_go_up_and_down(potential, place, length):
+    """V jumps: its least value may stand at the side of a step, and the length below v has kinks at both its ends."""
+    field = Field(("x",), S * potential)
+    assert survey(field).bottom.position[0] == pytest.approx(place * L, rel=1e-9, abs=1e-18)
+    measure = measure_of(field)
+    v = np.array([0.1, 0.3, 0.7, 1.2, 1.7, 2.5, 6, 9])
+    v = v[v * S < measure.top]
+    np.testing.assert_allclose(measure.volume(v * S), length(v) * L, rtol=1e-11)
+
+
+def test_a_core_is_cut_out():
+    """V(r) = r beyond a core that is higher by far: a shell of 4 pi/3 ((1 + v)^3 - 1)."""
+    v = np.array([0.1, 1.0, 10.0])
+    measure = omega("r", r + choose(less(r, 1.0), 100.0, 0.0))
+    np.testing.assert_allclose(measure.volume(v * S), 4 * np.pi / 3 * L**3 * ((1 + v) ** 3 - 1), rtol=1e-11)
