@@ -200,6 +200,8 @@ def _see_scales(chart: Chart, axes: list[Axis], anchors: Array) -> None:
             points[:, :, i] += side * steps
             slope = chart.slopes(points)[..., i]
             lost = steps < 1e-9 * np.linalg.norm(anchors, axis=1)[:, None]  # in the rounding of x
+            if chart.creases:
+                lost = lost | chart.unresolved(points, anchors[:, None, :])
             slope[lost] = np.nan
             axis.see(DECADES[_bends(slope)])
             if chart.walls:

@@ -8,10 +8,12 @@ import numpy as np
 from numpy.typing import NDArray
 
 from eoscore.formula import gradient, hessian
+from eoscore.formula.interval import bounds
 from eoscore.formula.tape import tape_of
+from eoscore.measure.landscape_crease import Creases
 
 if TYPE_CHECKING:
-    from collections.abc import Sequence
+    from collections.abc import Iterator, Sequence
 
     from eoscore.formula import Formula
     from eoscore.formula.field import Field
@@ -44,6 +46,7 @@ class Chart:
             tape_of(wall, *gradient(wall, self.names), *sum(hessian(wall, self.names), ()))
             for wall in self.walls
         ]
+        self.creases = Creases(self.formula, self.names)
         self._upper = np.triu_indices(self.dimension)
         self.nudge, self.reach = 0.0, np.inf
 
@@ -52,7 +55,7 @@ class Chart:
         columns = enumerate(self.names)
         return {name: np.abs(points[..., i]) if self.radial[i] else points[..., i] for i, name in columns}
 
-    def _sides(self, points: Array) -> Array:
+    def sides(self, points: Array) -> Array:
         """The sign of each radial coordinate, 1 for the others and at 0."""
         return np.where(self.radial & (points < 0), -1.0, 1.0)
 
@@ -70,7 +73,7 @@ class Chart:
 
     def slopes(self, points: Array) -> Array:
         """First derivatives, shape (..., d)."""
-        return np.stack(self._slopes.run(self.at(points))[1:], axis=-1) * self._sides(points)
+        return np.stack(self._slopes.run(self.at(points))[1:], axis=-1) * self.sides(points)
 
     def jet(self, points: Array) -> tuple[Array, Array, Array]:
         """V without walls (n,), gradient (n, d), Hessian (n, d, d)."""
@@ -84,7 +87,7 @@ class Chart:
         curvature = np.empty((*values[0].shape, d, d))
         for entry, i, j in zip(values[1 + d :], *self._upper, strict=True):
             curvature[..., i, j] = curvature[..., j, i] = entry
-        sides = self._sides(points)
+        sides = self.sides(points)
         curvature *= sides[..., :, None] * sides[..., None, :]
         return values[0], np.stack(values[1 : 1 + d], axis=-1) * sides, curvature
 
@@ -92,9 +95,22 @@ class Chart:
         """A wall function at one point: value, gradient (d,), Hessian (d, d)."""
         values = np.array([float(v) for v in self._wall_jets[index].run(self.at(point))])
         d = self.dimension
-        sides = self._sides(point)
+        sides = self.sides(point)
         bend = values[1 + d :].reshape(d, d) * np.outer(sides, sides)
         return float(values[0]), values[1 : 1 + d] * sides, bend
+
+    def unresolved(self, points: Array, others: Array) -> NDArray[np.bool_]:
+        """Whether V at points differs from V at others by rounding alone."""
+        values = self.at(points)
+        low, high = bounds(self.formula, {name: (x, x) for name, x in values.items()})
+        rise = self._value.run(values)[0] - self._value.run(self.at(others))[0]
+        return np.asarray(np.abs(rise) <= high - low)
+
+    def wall_slopes(self, points: Array) -> Iterator[tuple[Array, Array]]:
+        """Each wall function (...) and its gradient (..., d) at points."""
+        for tape in self._wall_jets:
+            margin, *normal = tape.run(self.at(points))[: 1 + self.dimension]
+            yield margin, np.stack(normal, axis=-1) * self.sides(points)
 
     def margins(self, points: Array) -> Array:
         """The wall functions, shape (walls, ...)."""

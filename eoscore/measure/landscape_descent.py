@@ -6,10 +6,12 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from eoscore.measure.landscape_settled import settled
+
 if TYPE_CHECKING:
     from eoscore.measure.landscape_chart import Array, Chart
 
-__all__ = ["descend", "distinct"]
+__all__ = ["descend"]
 
 STEPS = 200
 
@@ -19,7 +21,7 @@ def descend(chart: Chart, starts: Array, radius: Array) -> tuple[Array, Array]:
 
     A point whose V falls without end stops beyond the chart's reach.
     """
-    points, radius = starts.copy(), radius.copy()
+    points, first, radius = starts.copy(), radius, radius.copy()
     walled = bool(chart.walls)
     value, slope, bend = chart.jet(points)
     active = np.isfinite(value)
@@ -47,7 +49,10 @@ def descend(chart: Chart, starts: Array, radius: Array) -> tuple[Array, Array]:
         small = np.linalg.norm(taken, axis=1) <= 1e-15 * np.linalg.norm(points[now], axis=1)
         active[now] = ~small & (radius[now] > 1e-17 * np.linalg.norm(points[now], axis=1)) & (length > 0)
         active[now] &= (radius[now] > 1e-40) & (np.linalg.norm(points[now], axis=1) < chart.reach)
-    return points if walled else _polished(chart, points), value
+    points = points if walled else _polished(chart, points)
+    if chart.creases and chart.nudge:
+        return settled(chart, points, value, first, 1e9 * chart.nudge)
+    return points, value
 
 
 def _polished(chart: Chart, points: Array) -> Array:
@@ -133,13 +138,3 @@ def _pulled_back(chart: Chart, point: Array, reach: float) -> Array | None:
                 return None
             moved = moved + (1e-14 * np.linalg.norm(moved) * np.sqrt(square) - margin) * normal / square
     return None
-
-
-def distinct(points: Array, values: Array, tolerance: float) -> list[int]:
-    """Indices of points that differ, lowest value first; those closer than `tolerance` (m) count once."""
-    kept: list[int] = []
-    for k in np.argsort(values, kind="stable").tolist():
-        near = kept and np.min(np.linalg.norm(points[kept] - points[k], axis=1)) <= tolerance
-        if np.isfinite(values[k]) and not near:
-            kept.append(k)
-    return kept

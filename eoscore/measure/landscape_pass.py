@@ -11,7 +11,7 @@ import numpy as np
 if TYPE_CHECKING:
     from eoscore.measure.landscape_chart import Array, Chart
 
-__all__ = ["Pass", "passes_from", "walled_passes"]
+__all__ = ["Pass", "passes_from", "still", "walled_passes"]
 
 STEPS = 200
 LEVEL = 1e-9  # curvatures below this share of the largest count as none
@@ -52,7 +52,7 @@ def passes_from(chart: Chart, starts: Array, radius: Array) -> list[Pass]:
     found = []
     for k in np.flatnonzero(np.linalg.norm(points, axis=1) < chart.reach):
         size, axes = np.linalg.eigh(np.nan_to_num(bend[k]))
-        if _is_pass(size) and _still(slope[k], size, points[k], chart):
+        if _is_pass(size) and still(slope[k], size, points[k], chart):
             found.append(Pass(points[k], float(value[k]), axes[:, 0]))
     return found
 
@@ -62,7 +62,7 @@ def _is_pass(size: Array) -> bool:
     return int(np.sum(size < -LEVEL * np.max(np.abs(size)))) == 1
 
 
-def _still(slope: Array, size: Array, point: Array, chart: Chart) -> bool:
+def still(slope: Array, size: Array, point: Array, chart: Chart) -> bool:
     """Whether the slope has vanished: a Newton step would not move the point."""
     step = float(np.linalg.norm(slope)) / float(np.max(np.abs(size)))
     return step <= 1e-6 * (float(np.linalg.norm(point)) + 1e3 * chart.nudge)
@@ -102,7 +102,7 @@ def _along_walls(chart: Chart, start: Array, radius: float, held: tuple[int, ...
     slope, bend, frame, _ = _reduced(chart, point, held)
     size, axes = np.linalg.eigh(bend)
     others = [margin for index, margin in enumerate(chart.margins(point)) if index not in held]
-    if min(others, default=0.0) < 0 or not _is_pass(size) or not _still(slope, size, point, chart):
+    if min(others, default=0.0) < 0 or not _is_pass(size) or not still(slope, size, point, chart):
         return None
     return Pass(point, float(chart.jet(point[None])[0][0]), frame @ axes[:, 0])
 

@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from eoscore.measure.landscape_creased_pass import creased_passes
 from eoscore.measure.landscape_descent import descend
 from eoscore.measure.landscape_pass import Pass, passes_from, walled_passes
 
@@ -19,6 +20,7 @@ __all__ = ["lowest_way_out"]
 OUT = -1
 MOST_STARTS = 100
 MOST_WELLS = 12
+MOST_CREASED = 10
 SEEN = 0.02
 CLOSE = 0.15  # of the depth: a pass this near the grid's level is the one the grid has seen
 
@@ -74,7 +76,8 @@ def _near(chart: Chart, grid: Grid, leak: Leak) -> list[Pass]:
     """Passes near the leak of the grid."""
     radius = grid.spacing(np.array([grid.nearest(leak.point)]))
     found = passes_from(chart, leak.point[None], radius)
-    return _distinct(chart, found + walled_passes(chart, leak.point, float(radius[0])))
+    found += walled_passes(chart, leak.point, float(radius[0]))
+    return _distinct(chart, found + creased_passes(chart, leak.point, float(radius[0])))
 
 
 def _passes(chart: Chart, grid: Grid, minima: Array, ceiling: float) -> list[Pass]:
@@ -87,6 +90,8 @@ def _passes(chart: Chart, grid: Grid, minima: Array, ceiling: float) -> list[Pas
         starts.append(line[np.argmax(chart.value(line))][None])
         radius.append(np.array([np.linalg.norm(other - one) / 10]))
     found = passes_from(chart, np.concatenate(starts), np.concatenate(radius))
+    for start, reach in zip(starts[0][:MOST_CREASED], radius[0][:MOST_CREASED], strict=True):
+        found += creased_passes(chart, start, float(reach))
     return _distinct(chart, [one for one in found if one.value < ceiling])
 
 

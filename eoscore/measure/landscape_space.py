@@ -9,10 +9,12 @@ import numpy as np
 from eoscore.measure.landscape_axes import axes_of
 from eoscore.measure.landscape_bottom import minimum_at
 from eoscore.measure.landscape_chart import Chart
-from eoscore.measure.landscape_descent import descend, distinct
+from eoscore.measure.landscape_descent import descend
+from eoscore.measure.landscape_distinct import distinct
 from eoscore.measure.landscape_grid import Grid, Leak
 from eoscore.measure.landscape_record import Escape, Landscape, Minimum, sense
 from eoscore.measure.landscape_routes import lowest_way_out
+from eoscore.measure.landscape_settled import rests
 from eoscore.measure.landscape_valley import lowest_valley
 
 if TYPE_CHECKING:
@@ -81,7 +83,11 @@ def _minima(chart: Chart, grid: Grid, axes: list[Axis]) -> tuple[Array, Array, A
     points, values = _snapped(chart, axes, *descend(chart, grid.points(index), radius))
     values = np.where(np.linalg.norm(points, axis=1) < chart.reach, values, np.inf)
     least = 10.0 ** min(axis.least for axis in axes)
-    values = np.where(_stands(chart, points) & ~_falls(chart, points, ASIDE * least), values, np.inf)
+    stands = _stands(chart, points) & ~_falls(chart, points, ASIDE * least)
+    if chart.creases:
+        on, lowest = rests(chart, points, least)
+        stands = lowest & (on | stands)
+    values = np.where(stands, values, np.inf)
     kept = distinct(points, values, 1e-3 * least)
     kept = _nearest_first(points, values, kept)
     return points[kept], values[kept], np.full(len(kept), least)
