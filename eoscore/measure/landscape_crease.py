@@ -74,13 +74,20 @@ def normals_of(chart: Chart, point: Array, held: list[int]) -> tuple[Array, Arra
 def held_jet(chart: Chart, point: Array, held: list[int]) -> tuple[Array, Array, Array]:
     """Slope (k,) and curvature (k, k) of V along creases that are held, and the frame (d, k) of directions there.
 
-    The curvature is that of the Lagrangian V - sum m u, so that bent creases count.
+    The curvature is that of the Lagrangian V - sum m u, so that bent creases count. V is looked at on two sides of
+    the creases, since on the tip of a cone it has no derivatives.
     """
-    _, slopes, bends = chart.jet(point[None])
-    slope, bend = np.nan_to_num(slopes[0]), np.nan_to_num(bends[0])
-    slant = np.nan_to_num(chart.creases.jets(chart, point[None])[1][held, 0])
-    weights = np.linalg.lstsq(slant.T, slope)[0]
-    bend = bend - np.tensordot(weights, np.nan_to_num(chart.creases.bends(chart, point)[held]), 1)
-    _, sizes, rows = np.linalg.svd(normals_of(chart, point, held)[1])
+    normals = normals_of(chart, point, held)[1]
+    aside = chart.nudge * (np.sqrt(np.arange(2.0, 2.0 + len(held))) @ normals)
+    sides = np.array([point + aside, point - aside])
+    _, slopes, bends = (np.nan_to_num(rows) for rows in chart.jet(sides))
+    slants = np.nan_to_num(chart.creases.jets(chart, sides)[1][held])
+    curves = np.nan_to_num(chart.creases.bends(chart, point)[held])
+    sizes, rows = np.linalg.svd(normals)[1:]
     frame = rows[int(np.sum(sizes > 1e-9)) :].T
+    slope, bend = np.zeros(point.size), np.zeros((point.size,) * 2)
+    for k in range(2):
+        weights = np.linalg.lstsq(slants[:, k].T, slopes[k])[0]
+        slope += (slopes[k] - weights @ slants[:, k]) / 2
+        bend += (bends[k] - np.tensordot(weights, curves, 1)) / 2
     return slope @ frame, frame.T @ bend @ frame, frame

@@ -15,8 +15,9 @@ if TYPE_CHECKING:
 
 __all__ = ["creased_passes"]
 
-STEPS = 100
+STEPS = 50
 MOST_TRIALS = 12  # combinations of so many of the creases near a start
+BESIDE, JUMP = 1e-6, 1e-4  # of such a length, across a crease; relative change of the slope there
 ASIDE = 1e-3  # of a length over which V is resolved: whether V rises or falls across a crease
 
 
@@ -39,6 +40,8 @@ def creased_passes(chart: Chart, start: Array, radius: float) -> list[Pass]:
 def _along(chart: Chart, start: Array, radius: float, held: list[int], *, ridge: bool) -> Pass | None:
     """The lowest place of a ridge, or the highest one along a valley, by Newton steps along what holds it."""
     point, best = onto(chart, start, held, 10 * radius), np.inf
+    if point is None or not _bent(chart, point, held):
+        return None
     for _ in range(STEPS):
         if point is None or not np.linalg.norm(point) < chart.reach:
             return None
@@ -55,6 +58,14 @@ def _along(chart: Chart, start: Array, radius: float, held: list[int], *, ridge:
             chart, point + frame @ axes @ step * min(1.0, radius / max(length, 1e-300)), held, radius
         )
     return None if point is None else _verified(chart, point, held, ridge=ridge)
+
+
+def _bent(chart: Chart, point: Array, held: list[int]) -> bool:
+    """Whether the slope of V jumps across each of the creases."""
+    normals = normals_of(chart, point, held)[1]
+    aside = BESIDE * 1e9 * chart.nudge * normals
+    jump = np.linalg.norm(chart.slopes(point + aside) - chart.slopes(point - aside), axis=1)
+    return bool(np.all(jump > JUMP * np.linalg.norm(chart.slopes(point + aside), axis=1)))
 
 
 def _verified(chart: Chart, point: Array, held: list[int], *, ridge: bool) -> Pass | None:

@@ -22,7 +22,7 @@ def descend(chart: Chart, starts: Array, radius: Array) -> tuple[Array, Array]:
     A point whose V falls without end stops beyond the chart's reach.
     """
     points, first, radius = starts.copy(), radius, radius.copy()
-    walled = bool(chart.walls)
+    walled, least = bool(chart.walls), 10 * chart.nudge if chart.creases else 1e-40
     value, slope, bend = chart.jet(points)
     active = np.isfinite(value)
     for _ in range(STEPS):
@@ -48,7 +48,7 @@ def descend(chart: Chart, starts: Array, radius: Array) -> tuple[Array, Array]:
         value[moved], slope[moved], bend[moved] = chart.jet(points[moved])
         small = np.linalg.norm(taken, axis=1) <= 1e-15 * np.linalg.norm(points[now], axis=1)
         active[now] = ~small & (radius[now] > 1e-17 * np.linalg.norm(points[now], axis=1)) & (length > 0)
-        active[now] &= (radius[now] > 1e-40) & (np.linalg.norm(points[now], axis=1) < chart.reach)
+        active[now] &= (radius[now] > least) & (np.linalg.norm(points[now], axis=1) < chart.reach)
     points = points if walled else _polished(chart, points)
     if chart.creases and chart.nudge:
         return settled(chart, points, value, first, 1e9 * chart.nudge)

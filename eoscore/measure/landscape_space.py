@@ -122,6 +122,9 @@ def _snapped(chart: Chart, axes: list[Axis], points: Array, values: Array) -> tu
             snapped[close, i] = mark
     better = chart.value(snapped)
     kept = better <= values + 1e-15 * np.abs(values)
+    if chart.creases:  # V at a tip is all rounding
+        dust = np.max(np.abs(snapped - points), axis=1) <= 1e-9 * 10.0 ** min(axis.least for axis in axes)
+        kept |= dust & np.isfinite(better) & chart.unresolved(points, snapped)
     return np.where(kept[:, None], snapped, points), np.where(kept, better, values)
 
 

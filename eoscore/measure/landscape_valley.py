@@ -24,6 +24,8 @@ BEYOND = (1e3, 1e6, 1e9)  # times the first radius: whether V grows along a vall
 ALIKE = 1e-4  # radians
 RANDOM = 40  # directions besides those along and between the axes
 LEVEL = 1e-9  # of the way up: a valley no higher than this above its limit leaks at infinity
+UNSEEN = 1e-7  # radians: a Newton step so short changes V by its rounding only
+LEVEL_BEND = 1e-8  # of the largest curvature: below it V is level, but for rounding
 LOOKS = 5  # points between the valley's places on neighbouring spheres
 
 
@@ -47,8 +49,10 @@ def lowest_valley(chart: Chart, bottom: Array, value: float, least: float, far: 
     out = ~rises & np.isfinite(third)
     if not out.any():
         return None
-    rough = _way_back(chart, bottom, n[out], least, far, STEPS)
-    best = int(np.argmin(np.maximum(np.max(chart.value(rough), axis=0), third[out])))
+    best = 0
+    if np.count_nonzero(out) > 1:
+        rough = _way_back(chart, bottom, n[out], least, far, STEPS)
+        best = int(np.argmin(np.maximum(np.max(chart.value(rough), axis=0), third[out])))
     path = _way_back(chart, bottom, n[out][[best]], least, far, FIRST_STEPS)[:, 0]
     radius = np.linalg.norm(path - bottom, axis=1, keepdims=True)
     path = bottom + radius * _settled(chart, bottom, (path - bottom) / radius, radius, FIRST_STEPS)
@@ -97,17 +101,17 @@ def _settled(chart: Chart, bottom: Array, n: Array, radius: float | Array, steps
         curve = np.einsum("nij,njk,nkl->nil", flat, bend, flat) - outward[:, None, None] * flat
         size, axes = np.linalg.eigh(curve)
         along = np.einsum("nji,nj->ni", axes, across)
-        floor = 1e-14 * np.max(np.abs(size), axis=1, keepdims=True) + 1e-300
+        floor = LEVEL_BEND * np.max(np.abs(size), axis=1, keepdims=True) + 1e-300
         step = -np.einsum("nij,nj->ni", axes, along / np.maximum(np.abs(size), floor))
         length = np.linalg.norm(step, axis=1)
         step *= np.minimum(1.0, trust / np.maximum(length, 1e-300))[:, None]
         trial = n + step
         trial /= np.linalg.norm(trial, axis=1, keepdims=True)
         new = _v(chart, bottom, trial, radius)
-        better = new <= value
+        better, lower = new <= value, new < value
         n, value = np.where(better[:, None], trial, n), np.where(better, new, value)
         trust = np.where(better, np.minimum(2 * trust, 0.5), trust / 4)
-        if np.all((length <= 1e-13) | (trust < 1e-15)):
+        if np.all((length <= 1e-13) | (trust < 1e-15) | (~lower & (length <= UNSEEN))):
             break
     return n
 

@@ -11,6 +11,7 @@ from scipy.spatial.transform import Rotation
 
 from eoscore.formula import call, choose, constant, less
 from eoscore.formula.field import Field
+from eoscore.language import read
 from eoscore.measure.landscape import survey
 
 from .potentials import K_B, RB87, SR84, E, G, S, U, crossed, exp, r, rho, sagging, single, turned, x, y, z
@@ -275,3 +276,27 @@ def test_a_lattice_inside_a_gaussian_leaks_over_its_first_barrier():
     low = minimize_scalar(line, bounds=(-0.05, 0.05), method="bounded", options=options).fun
     assert found.depth / E == pytest.approx(high - low, rel=1e-10, abs=0)
     assert len(found.minima) == 1
+
+
+def test_between_opposed_coils_the_tip_holds_until_a_coil_lets_it_fall():
+    """On the axis the field is the difference of two loops' (Jackson, section 5.5); gravity opens the lower coil."""
+    text = """
+        use magnetics
+        gas rubidium { isotope Rb-87 }
+        trap coils {
+            V(rho, z) = zeeman_energy(0.5, 1, anti_helmholtz(400 A, 2 cm, rho, z)) + m*g_n*z
+        }
+    """
+    program = read(text, "coils.tarn", dispersions={})
+    found = survey(program.bind("rubidium", "coils").place.field)
+    one = 0.5 * 9.2740100657e-24 * 2e-7 * math.pi * 400 * 2e-2**2  # moment and mu_0 I R^2/2 (CODATA 2022)
+
+    def minus_v(u):
+        near, far = (1 / (2e-2**2 + (u + side * 1e-2) ** 2) ** 1.5 for side in (1, -1))
+        return -one * abs(near - far) - RB87 * G * u
+
+    options = {"xatol": 1e-13}
+    top = minimize_scalar(minus_v, bounds=(-1.2e-2, -0.8e-2), method="bounded", options=options)
+    assert found.bottom.position == (0, 0)
+    assert found.depth == pytest.approx(-top.fun, rel=1e-9, abs=0)
+    assert found.escape.position[1] == pytest.approx(top.x, rel=1e-6, abs=0)
