@@ -14,8 +14,10 @@ from eoscore.errors import NoAnswerError
 from eoscore.formula import variable
 from eoscore.formula.field import Field
 from eoscore.measure import Powers, convolve, measure_of
+from eoscore.measure.kinks import kinks_of
 from eoscore.measure.landscape import survey
-from eoscore.state.exact.direction import Atoms, OnAtoms, some
+from eoscore.state.exact.direction import END, Atoms, OnAtoms, some
+from eoscore.state.exact.fading import SEEN, TURNED, faded
 from eoscore.state.exact.spectral import converged
 from eoscore.state.exact.tail import ladder
 
@@ -45,6 +47,8 @@ class Line(OnAtoms):
             )
         self.field, self.mass, self.bottom = field, mass, landscape.bottom.value
         self.center, self.states = landscape.bottom.position[0], phase_space(field, mass)
+        far = 30 * self._width(_energy_of(self.states, MOST + 1.0))
+        self.kinks = kinks_of(field.formula, "x", self.center - far, self.center + far)
         self.energies = np.concatenate([self._solved(FEW + 2)[:FEW], self._solved(LEVELS)[FEW:]])
         self.lowest = float(self.energies[0])
         self.gap = float(self.energies[1]) - self.lowest
@@ -55,10 +59,23 @@ class Line(OnAtoms):
 
     def made(self, top: float, *, coarse: bool) -> Atoms:
         """See `OnAtoms`."""
-        known = some(self.energies[None, :], coarse=coarse)
-        walls = self._at_walls[None, :]
-        e, w = ladder(known, self._count, np.zeros(1), top + self.lowest, self.states.breaks, walls)
-        return Atoms(e[0, 1:] - self.lowest, w[0, 1:])
+        known, upto = some(self.energies[None, :], coarse=coarse), top + self.lowest
+        walls, breaks = self._at_walls, self.states.breaks
+        if self.kinks:
+            e, w = faded(known[0], self._count, upto, breaks, walls)
+        else:
+            e, w = (x[0] for x in ladder(known, self._count, np.zeros(1), upto, breaks, walls[None, :]))
+        return Atoms(e[1:] - self.lowest, w[1:])
+
+    def _apart(self, kT: float) -> float:
+        """With what kinks above the known levels may do to those that reach them."""
+        high = self._at_kinks[self._at_kinks > SEEN * self.energies[-1]] - self.lowest
+        if not high.size:
+            return super()._apart(kT)
+        e, w = self._as_far(kT, coarse=False)
+        whole = 1 + float((np.exp(-np.minimum(e / kT, END)) * w).sum())
+        turned = TURNED * float(np.exp(-np.minimum(high / kT, END)).sum())
+        return super()._apart(kT) + turned / whole
 
     def refined(self, reach: float) -> bool:  # noqa: ARG002 - there is one row
         """See `OnAtoms`."""
@@ -82,19 +99,20 @@ class Line(OnAtoms):
         """The lowest levels, J from the bottom."""
         top = _energy_of(self.states, count + 1)
         low, high = (np.array([self._end(sign, top)]) for sign in (-1.0, 1.0))
-        energies, error = converged(self._potential, low, high, HBAR**2 / (2 * self.mass), count)
+        energies, error = converged(
+            lambda x, _: self._potential(x), low, high, HBAR**2 / (2 * self.mass), count, kinks=self.kinks
+        )
         if not error < GOOD:
             raise NoAnswerError(
                 f"the levels of a direction have not converged (relative difference {error:.1e} of two grids): the "
-                "potential is too rough for the spectral method; round off its kinks and jumps"
+                "potential varies on too many scales, or has too many kinks, for the spectral method"
             )
         self._known = max(self._known, error)
         return np.asarray(energies[0])
 
     def _end(self, sign: float, top: float) -> float:
         """Where a wave of energy `top` has died out in one direction, or the wall before."""
-        density = float(self.states.density(np.array([top]))[0])
-        step = H * density / math.sqrt(2 * self.mass / top) / 400  # a small part of the width of the orbit
+        step = self._width(top) / 400
         decayed = 0.0
         for start in range(0, 200_000, BLOCK):
             distance = step * np.arange(start, start + BLOCK + 1.0)
@@ -117,15 +135,20 @@ class Line(OnAtoms):
             low, high = (middle, high) if self._inside(self.center + sign * middle) else (low, middle)
         return self.center + sign * high
 
+    def _width(self, energy: float) -> float:
+        """About that of an orbit, m."""
+        return float(H * self.states.density(np.array([energy]))[0] / math.sqrt(2 * self.mass / energy))
+
+    @cached_property
+    def _at_kinks(self) -> FloatArray:
+        """V at the kinks, J: the higher side of each."""
+        beside = 1e-9 * self._width(self.gap) * np.array([[-1.0], [1.0]])
+        return np.asarray(self._potential(np.array(self.kinks) + beside).max(axis=0))
+
     @cached_property
     def _at_walls(self) -> FloatArray:
         """V at the walls, J; as far as a thousand times the width of the known levels."""
-        far = (
-            1e3
-            * H
-            * float(self.states.density(self.energies[-1:])[0])
-            / math.sqrt(2 * self.mass / self.energies[-1])
-        )
+        far = 1e3 * self._width(float(self.energies[-1]))
         walls = [self._wall(s, 0.0, far) for s in (-1.0, 1.0) if not self._inside(self.center + s * far)]
         return self._potential(np.array(walls)) if walls else np.empty(0)
 

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from itertools import pairwise
 from math import pi
 from typing import TYPE_CHECKING
 
@@ -24,16 +25,17 @@ NODES = 64
 
 
 class Well:
-    """V(r) with its slope, J from the bottom at r in m, and a wall (m; inf where there is none)."""
+    """V(r) with its slope, J from the bottom at r in m; its kinks up to an r, and a wall (m; inf if there is none)."""
 
     def __init__(
         self,
         potential: Callable[[FloatArray], FloatArray],
         slope: Callable[[FloatArray], FloatArray],
+        kinks: Callable[[float], tuple[float, ...]],
         mass: float,
         wall: float,
     ) -> None:
-        self.potential, self.slope, self.mass, self.wall = potential, slope, mass, wall
+        self.potential, self.slope, self.kinks, self.mass, self.wall = potential, slope, kinks, mass, wall
 
     def turned(self, r: FloatArray, squared: FloatArray) -> FloatArray:
         """V + hbar^2 squared/(2 m r^2)."""
@@ -57,12 +59,16 @@ class Orbits:
 
     def count(self, energy: FloatArray) -> FloatArray:
         """N(E) of (rows, any) energies, J."""
-        squared = np.broadcast_to(self.squared[:, None], energy.shape)
         inner, outer = self.turning(energy)
+        edges = [inner, *(np.clip(k, inner, outer) for k in self.well.kinks(float(outer.max()))), outer]
+        return sum((self._action(energy, *ends) for ends in pairwise(edges)), np.zeros_like(energy))
+
+    def _action(self, energy: FloatArray, inner: FloatArray, outer: FloatArray) -> FloatArray:
+        """The part of N(E) between two radii."""
         s, w = legendre(NODES)
         width = (outer - inner)[..., None]
         r = inner[..., None] + width * s**2 * (3 - 2 * s)  # both roots of p become smooth
-        left = energy[..., None] - self.well.turned(r, squared[..., None])
+        left = energy[..., None] - self.well.turned(r, self.squared[:, None, None])
         p = np.sqrt(2 * self.well.mass * np.maximum(left, 0.0))
         return np.asarray((p * (6 * s * (1 - s) * w)).sum(axis=-1) * (outer - inner) / (pi * HBAR))
 

@@ -9,15 +9,19 @@ import numpy as np
 
 from eoscore.constants import HBAR
 from eoscore.errors import NoAnswerError
+from eoscore.measure.kinks import kinks_of
 from eoscore.measure.landscape import survey
 from eoscore.state.ensemble import EPS
 from eoscore.state.exact.angular import ALL, Plane, Space
-from eoscore.state.exact.direction import Atoms, OnAtoms, some
+from eoscore.state.exact.direction import END, REACH, Atoms, OnAtoms, some
+from eoscore.state.exact.fading import SEEN, TURNED
 from eoscore.state.exact.orbit import Orbits, Well
 from eoscore.state.exact.spectral import converged
 from eoscore.state.exact.tail import ladder
 
 if TYPE_CHECKING:
+    from numpy.typing import NDArray
+
     from eoscore.formula.field import Field
     from eoscore.state.exact.angular import Momenta
     from eoscore.state.reading import FloatArray
@@ -29,6 +33,7 @@ MOST = 32  # where these do not do
 DECAY = 10.0  # e-foldings of the wave beyond its turning points
 GOOD = 1e-5
 PANELS = 20
+BESIDE = 1e-9  # relative, next to a kink
 
 
 class Shells(NamedTuple):
@@ -59,7 +64,10 @@ class Radial(OnAtoms):
         def rise(r: FloatArray) -> FloatArray:
             return np.asarray(np.broadcast_to(slope.evaluate({name: r}), np.shape(r)))
 
-        self.well = Well(potential, rise, mass, _wall(field, landscape.bottom.position[0]))
+        def kinks(far: float) -> tuple[float, ...]:
+            return kinks_of(field.formula, name, 0.0, far)
+
+        self.well = Well(potential, rise, kinks, mass, _wall(field, landscape.bottom.position[0]))
         self.shells = [self._shell(0)]
         first = self.shells[0].energies
         self.lowest = float(first[0, 0])
@@ -93,6 +101,23 @@ class Radial(OnAtoms):
         e, w = (np.concatenate([part[k] for part in parts]) for k in range(2))
         return Atoms(e[1:] - self.lowest, w[1:])  # the first one is the lowest level
 
+    def _apart(self, kT: float) -> float:
+        """With what kinks above the known levels may do to those that reach them; that turns from row to row."""
+        squares = 0.0
+        for shells in self.shells:
+            orbits, known = shells.orbits, shells.energies[:, -1] - shells.orbits.floor
+            far = float(orbits.turning(shells.energies[:, -1:] + 2 * REACH * kT)[1].max())
+            for r in self.well.kinks(far):
+                height = self.well.turned(np.full_like(orbits.squared, r * (1 + BESIDE)), orbits.squared)
+                unseen = (height - orbits.floor > SEEN * known) & (r > orbits.center)
+                level = np.exp(-np.minimum((height - self.lowest) / kT, END)) * shells.weight
+                squares += float((level[unseen] ** 2).sum())
+        if not squares:
+            return super()._apart(kT)
+        e, w = self._as_far(kT, coarse=False)
+        whole = 1 + float((np.exp(-np.minimum(e / kT, END)) * w).sum())
+        return super()._apart(kT) + TURNED * squares**0.5 / whole
+
     def _part(self, shells: Shells, top: float, *, coarse: bool) -> tuple[FloatArray, FloatArray]:
         orbits, walls = shells.orbits, None
         if self.well.wall < inf:
@@ -108,17 +133,18 @@ class Radial(OnAtoms):
         orbits = Orbits(self.well, smooth, self._centers(smooth))
         low, high = self._ends(orbits, _energies(orbits, float(count)))
 
-        def turned(r: FloatArray) -> FloatArray:
-            return self.well.turned(r, squared[:, None]) - orbits.floor[:, None]
+        def turned(r: FloatArray, which: NDArray[np.intp]) -> FloatArray:
+            return self.well.turned(r, squared[which, None]) - orbits.floor[which, None]
 
         kinetic, noise = HBAR**2 / (2 * self.well.mass), 16 * EPS * float(angular.max())
+        kinks, planar = self.well.kinks(float(high.max())), self.momenta.planar
         energies, error = converged(
-            turned, low, high, kinetic, count, planar=self.momenta.planar, noise=noise
+            turned, low, high, kinetic, count, planar=planar, noise=noise, kinks=kinks
         )
         if not error < GOOD:
             raise NoAnswerError(
                 f"the levels of angular momentum {angular[0]:.0f} have not converged (relative difference {error:.1e} "
-                "of two grids): the potential is too rough for the spectral method; round off its kinks and jumps"
+                "of two grids): the potential varies on too many scales, or has too many kinks, for the spectral method"
             )
         self._known = max(self._known, error)
         return Shells(weight, orbits, energies + orbits.floor[:, None])

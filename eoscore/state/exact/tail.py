@@ -20,7 +20,7 @@ if TYPE_CHECKING:
 
     from eoscore.state.reading import FloatArray
 
-__all__ = ["ladder"]
+__all__ = ["NODES", "WALL", "edges_of", "ladder", "slopes_of"]
 
 NODES = 14  # of a panel; the energies of the next one are twice as high
 WALL = 0.25  # of a level is lost where an orbit reaches a wall
@@ -41,13 +41,13 @@ def ladder(
     reach a wall.
     """
     last = energies[:, -1:]
-    edges = _edges(last, floor[:, None], max(top, float(last.min())), breaks)
+    edges = edges_of(last, floor[:, None], max(top, float(last.min())), breaks)
     x, w = legendre(NODES)
     width = np.diff(edges)[:, :, None]
     e = edges[:, :-1, None] + width * x
     rows = e.shape[0]
     number = _numbers(energies, count, e.reshape(rows, -1)).reshape(e.shape)
-    dn = (w * (number @ _slopes().T)).reshape(rows, -1)
+    dn = (w * (number @ slopes_of().T)).reshape(rows, -1)
     parts = [
         (energies, np.broadcast_to(joined(energies.shape[1]), energies.shape)),
         (e.reshape(rows, -1), dn),
@@ -58,7 +58,7 @@ def ladder(
     return np.concatenate([p for p, _ in parts], axis=1), np.concatenate([q for _, q in parts], axis=1)
 
 
-def _edges(last: FloatArray, floor: FloatArray, top: float, breaks: tuple[float, ...]) -> FloatArray:
+def edges_of(last: FloatArray, floor: FloatArray, top: float, breaks: tuple[float, ...]) -> FloatArray:
     """From the last known level to `top` by steps of a ratio of at most two above the floor; empty beyond `top`."""
     ratio = np.maximum((top - floor) / (last - floor), 1.0)
     panels = max(int(np.ceil(np.log2(ratio.max()))), 1)
@@ -87,7 +87,7 @@ def _numbers(energies: FloatArray, count: Callable[[FloatArray], FloatArray], e:
 
 
 @cache
-def _slopes() -> FloatArray:
+def slopes_of() -> FloatArray:
     """The derivative at the nodes of the polynomial through values there."""
     x, _ = legendre(NODES)
     gap = x[:, None] - x

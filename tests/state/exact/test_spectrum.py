@@ -22,7 +22,7 @@ UNIT = hbar**2 / MASS / 1e-12  # J: hbar = m = 1 with lengths in um
 
 def solved(potential, count, points, reach=6.0):
     ends = np.array([-reach]), np.array([reach])
-    return eigenvalues(potential, *ends, 1.0, count, points)[0]
+    return eigenvalues(lambda x, _: potential(x), *ends, 1.0, count, points)[0]
 
 
 def field(place):
@@ -31,7 +31,7 @@ def field(place):
 
 
 def test_levels_of_a_box_are_squares():
-    x = eigenvalues(np.zeros_like, np.zeros(2), np.array([1.0, 2.0]), 1.0, 20, 80)
+    x = eigenvalues(lambda x, _: np.zeros_like(x), np.zeros(2), np.array([1.0, 2.0]), 1.0, 20, 80)
     squares = (np.pi * np.arange(1, 21)) ** 2
     assert x == pytest.approx(np.array([squares, squares / 4]), rel=1e-10)
 
@@ -48,10 +48,10 @@ def test_spectral_convergence():
 def test_two_grids_tell_the_error():
     """Levels 2 n + 1 of -d^2/dx^2 + x^2; an edge in the potential is seen."""
     ends = np.array([-8.0]), np.array([8.0])
-    levels, error = converged(lambda x: x**2, *ends, 1.0, 16)
+    levels, error = converged(lambda x, _: x**2, *ends, 1.0, 16)
     assert levels[0] == pytest.approx(2 * np.arange(16) + 1, rel=1e-9)
     assert error < 1e-9
-    assert converged(lambda x: np.where(x > 0.123, 30.0, 0.0), *ends, 1.0, 16)[1] > 1e-5
+    assert converged(lambda x, _: np.where(x > 0.123, 30.0, 0.0), *ends, 1.0, 16)[1] > 1e-5
 
 
 @pytest.mark.parametrize("step", [0.03, 0.1, 0.3])
