@@ -64,6 +64,8 @@ class Radial(OnAtoms):
         def rise(r: FloatArray) -> FloatArray:
             return np.asarray(np.broadcast_to(slope.evaluate({name: r}), np.shape(r)))
 
+        self.rough = bool(kinks_of(field.formula, name, 0.0))
+
         def kinks(far: float) -> tuple[float, ...]:
             return kinks_of(field.formula, name, 0.0, far)
 
@@ -104,7 +106,7 @@ class Radial(OnAtoms):
     def _apart(self, kT: float) -> float:
         """With what kinks above the known levels may do to those that reach them; that turns from row to row."""
         squares = 0.0
-        for shells in self.shells:
+        for shells in self.shells if self.rough else ():
             orbits, known = shells.orbits, shells.energies[:, -1] - shells.orbits.floor
             far = float(orbits.turning(shells.energies[:, -1:] + 2 * REACH * kT)[1].max())
             for r in self.well.kinks(far):
@@ -116,7 +118,7 @@ class Radial(OnAtoms):
             return super()._apart(kT)
         e, w = self._as_far(kT, coarse=False)
         whole = 1 + float((np.exp(-np.minimum(e / kT, END)) * w).sum())
-        return super()._apart(kT) + TURNED * squares**0.5 / whole
+        return super()._apart(kT) + TURNED * float(np.sqrt(squares)) / whole
 
     def _part(self, shells: Shells, top: float, *, coarse: bool) -> tuple[FloatArray, FloatArray]:
         orbits, walls = shells.orbits, None
