@@ -150,7 +150,7 @@ class Derivation:
         entry = self._filled(name, self._tidy(expression))
         if name == "g":
             scale = self._tidy(self.model.number.whole.subs(self._beta))
-            entry["scale"] = forms("N_scale", scale)
+            entry["scale"] = forms("N_scale", scale, entry["where"])
         if name in ("U", "S", "C_N", "f_0") and not self.no_condensate:
             entry["side"] = "T <= T_c" if self.model.condensed else "T > T_c"
         return entry | (self._jump() if name == "C_N" else {})
@@ -160,10 +160,11 @@ class Derivation:
         values = self._values(expression.free_symbols - _FREE.get(name, set()))
         why = missing_words(expression.free_symbols - set(values))
         value = None if why else number(expression, values)
+        known = where(values.items())
         entry = {
-            **forms(name, expression),
+            **forms(name, expression, known),
             "closed": not expression.has(sp.Sum),
-            "where": where(values.items()),
+            "where": known,
         }
         entry |= {"value": value, "unit": unit_of(name, self.problem.per), "why": why}
         return entry

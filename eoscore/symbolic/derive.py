@@ -18,6 +18,7 @@ __all__ = ["TIME_LIMIT", "derive"]
 # What the numerical engine needs to be given for a quantity, one of several sets.
 _STATE = ({"N", "T"}, {"n", "T"})
 _NEEDS = {"T_c": ({"N"}, {"n"}), "N_c": ({"T"},), "n_c": ({"T"},)}
+_APART = 1e-3  # relative; both ways are good to far more digits, unless one of them is wrong
 TIME_LIMIT = 20.0  # s for one question; SymPy may run away, an answer may not
 
 
@@ -31,7 +32,8 @@ def derive(
     """For each quantity its forms, `where`, value and notes, as the JSON document has them.
 
     given: N, T or n in SI units. Where SymPy stops, or time runs out, the entry says why, and T_c and N_c carry
-    the numerical value. Each value is confirmed by the numerical engine: `numerical` and `difference`, relative.
+    the numerical value. Each value is confirmed by the numerical engine: `numerical` and `difference`, relative
+    (absolute for f_0); where they are apart there is no value.
     Formulas are those of the ideal, infinite gas; `first_order` of T_c holds the first terms beyond it.
     """
     from eoscore.symbolic.first_order import continuum, first_orders
@@ -103,9 +105,19 @@ def _confirmed(held: HeldGas, name: str, entry: dict[str, Any], given: Mapping[s
         why = entry["why"] if told else f"{entry['why']}; the numbers: {reason}"
         return {**empty, "unit": unit_of(name, per), **entry, "why": why}
     if numerical is not None and entry["value"] is not None:
-        scale = max(abs(numerical), abs(entry["value"])) or 1.0
+        scale = 1.0 if name == "f_0" else max(abs(numerical), abs(entry["value"])) or 1.0
         entry |= {"numerical": numerical, "difference": abs(entry["value"] - numerical) / scale}
+        if entry["difference"] > _APART:
+            entry |= {"value": None, "why": _apart(entry["value"], numerical, entry["unit"])}
     return entry
+
+
+def _apart(value: float, numerical: float, unit: str) -> str:
+    """Why no number is given where the two ways to it part."""
+    return (
+        f"the formula gives {value:.6g} {unit} here and the numerical engine {numerical:.6g} {unit}: one of them is "
+        "wrong, please report it"
+    )
 
 
 def _numerical(held: HeldGas, name: str, given: Mapping[str, float]) -> tuple[float | None, str | None]:

@@ -22,6 +22,7 @@ __all__ = ["compiled", "in_double", "number", "numerical_slope"]
 
 # 1 - e^y, and prod 1/(1 - e_i) - 1, where the plain form would cancel.
 _FALL, _LESS_ONE = sp.Function("fall"), sp.Function("less_one")
+_ERFCX = sp.Function("erfcx")  # e^{z^2} erfc(z), where a growing exponential meets a vanishing erfc
 
 _PRECISE: dict[Any, Callable[..., Any]] = {
     sp.exp: mpmath.exp,
@@ -68,6 +69,7 @@ _DOUBLE: dict[Any, Callable[..., Any]] = {
     sp.Abs: np.abs,
     sp.erf: special.erf,
     sp.erfc: special.erfc,
+    _ERFCX: special.erfcx,
     sp.gamma: special.gamma,
     sp.zeta: special.zeta,
     ScaledI: scaled_i,
@@ -126,8 +128,14 @@ def _sum(expression: sp.Sum, symbols: Sequence[sp.Symbol]) -> Callable[..., Any]
 def _steady(body: sp.Expr) -> sp.Expr:
     """The same term without overflow and cancellation in double precision."""
     body = body.replace(_is_excited, lambda e: _LESS_ONE(*(1 - f.base for f in sp.Mul.make_args(e + 1))))
+    body = body.replace(_is_small, lambda e: sp.exp(-(e.args[0] ** 2)) * _ERFCX(*e.args))
     body = body.replace(_is_fall, lambda e: _FALL((1 - e).exp))
     return sp.powsimp(sp.expand_mul(scaled(body)), combine="exp")
+
+
+def _is_small(expression: sp.Expr) -> bool:
+    """erfc of a positive argument."""
+    return isinstance(expression, sp.erfc) and bool(expression.args[0].is_nonnegative)
 
 
 def _is_fall(expression: sp.Expr) -> bool:

@@ -82,4 +82,4 @@ def _rises(held: HeldGas) -> bool:
 
 
 def _entry(name: str, formula: sp.Expr, values: dict[str, float], value: float) -> dict[str, Any]:
-    return {**forms(name, formula), "where": values, "value": value, "unit": "1"}
+    return {**forms(name, formula, values), "where": values, "value": value, "unit": "1"}

@@ -13,7 +13,7 @@ from eoscore.symbolic.quantities import K_B, NUMBER, TEMPERATURE
 from eoscore.symbolic.writing import forms, missing_words, root_forms, where, written_name
 
 if TYPE_CHECKING:
-    from collections.abc import Callable, Mapping, Sequence
+    from collections.abc import Callable, Collection, Mapping, Sequence
 
     from eoscore.symbolic.expansion import Expansion
 
@@ -35,8 +35,9 @@ def implicit(
     values = {**values, number_symbol: values[NUMBER]} if NUMBER in values else dict(values)
     used = (count.free_symbols | {number_symbol}) - {TEMPERATURE}
     known = {s: v for s, v in values.items() if s in used}
-    equation = root_forms("T_c", count, number_symbol)
-    entry = {**equation, "closed": False, "equation": equation["sympy"], "where": where(known.items())}
+    given = where(known.items())
+    equation = root_forms("T_c", count, number_symbol, given)
+    entry = {**equation, "closed": False, "equation": equation["sympy"], "where": given}
     entry |= {"value": None, "unit": "K"}
     entry["why"] = missing_words(used - set(known))
     here: dict[sp.Symbol, float] | None = None
@@ -45,7 +46,7 @@ def implicit(
         here = {**known, TEMPERATURE: temperature}
         entry["sensitivities"] = _slopes(count, number_symbol, here)
     walk = walked(count, here) if here and expanded else []
-    several = [_written(expansion, walk, number_symbol, here, tidied) for expansion in expanded]
+    several = [_written(expansion, walk, number_symbol, here, tidied, given) for expansion in expanded]
     several.sort(key=lambda e: e["small_value"] or 0.0)
     return entry | ({"expansion": several[0], "expansions": several} if several else {})
 
@@ -65,12 +66,17 @@ def _written(
     total: sp.Symbol,
     here: Mapping[sp.Symbol, float] | None,
     tidied: Callable[[sp.Expr], sp.Expr],
+    given: Collection[str],
 ) -> dict[str, Any]:
     leading, correction, small = (
         tidied(part) for part in (expansion.leading, expansion.correction, expansion.small)
     )
     whole = leading if correction == 0 else sp.Mul(leading, 1 + correction, evaluate=False)
-    entry = {**forms("T_c", whole), "limit": expansion.limit, "small": forms("small", small)["sympy"]}
+    entry = {
+        **forms("T_c", whole, given),
+        "limit": expansion.limit,
+        "small": forms("small", small, given)["sympy"],
+    }
     if here is None:
         return entry | {"small_value": None, "range": "small -> 0", "value": None}
     size = number(small, here)

@@ -5,12 +5,13 @@ from __future__ import annotations
 from typing import TYPE_CHECKING, Any
 
 import sympy as sp
+from sympy.printing.str import StrPrinter
 
 from eoscore.symbolic.presentation import presentation
 from eoscore.symbolic.scaled import written_out
 
 if TYPE_CHECKING:
-    from collections.abc import Iterable
+    from collections.abc import Collection, Iterable
 
 __all__ = ["forms", "gathered", "missing_words", "plain", "root_forms", "tidy", "where", "written_name"]
 
@@ -88,24 +89,39 @@ def _positive(base: sp.Expr) -> bool:
     return bool(base.is_positive) or isinstance(base, (sp.zeta, sp.gamma))
 
 
-def forms(name: str, expression: sp.Expr) -> dict[str, Any]:
-    """SymPy text, LaTeX, plain text and presentation MathML of `name = expression`."""
+class _Reader(StrPrinter):  # type: ignore[misc]  # SymPy is not typed
+    """SymPy text whose symbols read back as such: those without a value stand in no table of the reader.
+
+    Where SymPy has a word of its own for such a name (E, N, S), the text says `Symbol('E')`.
+    """
+
+    def __init__(self, given: Collection[str]) -> None:
+        super().__init__({"full_prec": True})
+        self._given = given
+
+    def _print_Symbol(self, symbol: sp.Symbol) -> str:
+        name = symbol.name
+        return f"Symbol('{name}')" if name not in self._given and hasattr(sp, name) else str(name)
+
+
+def forms(name: str, expression: sp.Expr, given: Collection[str]) -> dict[str, Any]:
+    """SymPy text, LaTeX, plain text and presentation MathML of `name = expression`; `given`: names with a value."""
     written = gathered(_renamed(written_out(expression)))
     equation = sp.Eq(sp.Symbol(name), written, evaluate=False)
     return {
         **_forms(equation),
-        "sympy": sp.sstr(written, full_prec=True),
+        "sympy": _Reader(given).doprint(written),
         "text": f"{name} = {plain(written)}",
     }
 
 
-def root_forms(name: str, count: sp.Expr, total: sp.Symbol) -> dict[str, Any]:
+def root_forms(name: str, count: sp.Expr, total: sp.Symbol, given: Collection[str]) -> dict[str, Any]:
     """The same of the equation count = total that `name` solves; its SymPy text is zero at the root."""
     plainly = _renamed(written_out(count))
     written, total = gathered(plainly), _renamed(total)
     return {
         **_forms(sp.Eq(written, total, evaluate=False)),
-        "sympy": sp.sstr(sp.Add(-total, *sp.Add.make_args(written), evaluate=False), full_prec=True),
+        "sympy": _Reader(given).doprint(sp.Add(-total, *sp.Add.make_args(written), evaluate=False)),
         "text": f"{name} solves {_inline(plainly)} = {total}",
     }
 

@@ -1,5 +1,6 @@
 """`derive` from the text on, against published forms and against the numerical engine, which shares no code with it."""
 
+import importlib
 import math
 import re
 
@@ -90,6 +91,8 @@ trap sheet_trap { q = k_B*1 nK/um2
   V(x, y) = q*(x^2 + y^2) }
 trap wedge { F = 1e-24 N
   V(x) = F*abs(x) }
+trap funnel { q = k_B*1 uK
+  V(x, y, z) = q*(sqrt(x^2 + y^2 + z^2)/(1 um) + (x^2 + y^2 + z^2)/(1 um)^2) }
 trap knife { f = 40 Hz
   E_max = k_B*1 uK
   V(x, y, z) = m/2*(2*pi*f)^2*(x^2 + y^2 + 4*z^2) }
@@ -181,6 +184,29 @@ def test_an_implicit_temperature_and_its_sums_equal_the_numerical_engine(who, gi
     where = {**critical["where"], "T": critical["value"]}
     left = number(text_of(critical["equation"], where), symbols(where))
     assert abs(left) < 1e-9 * where["N"]
+
+
+def test_a_funnel_is_no_tilted_cone_and_its_sum_does_not_cancel():
+    """A radius has no other side to lean to; e^{z^2} erfc(z) overflows where l is large."""
+    entry = formulas("derive T_c for strontium in funnel with N = 1e5")["T_c"]
+    assert "erfc" in entry["sympy"]
+    assert entry["difference"] < 1e-10
+
+
+@pytest.mark.parametrize(("name", "free"), [("T_c", {"N"}), ("f_0", {"N", "T"}), ("rho", {"E"})])
+def test_what_has_no_value_reads_back_as_a_symbol(name, free):
+    """SymPy has E, N and S for words of its own."""
+    entry = formulas(f"derive {name} for strontium in bowl")[name]
+    read = text_of(entry["sympy"], entry["where"]).free_symbols
+    assert {symbol.name for symbol in read} - set(entry["where"]) == free
+
+
+def test_where_the_two_ways_part_there_is_no_value(monkeypatch):
+    module = importlib.import_module("eoscore.symbolic.derive")
+    monkeypatch.setattr(module, "_numerical", lambda *_: (1e-6, None))
+    entry = formulas("derive T_c for strontium in bowl with N = 1e5")["T_c"]
+    assert entry["value"] is None
+    assert re.match(r"the formula gives 1\.\d+e-07 K here and the numerical engine 1e-06 K", entry["why"])
 
 
 def test_the_harmonic_form_is_the_published_one():

@@ -31,6 +31,7 @@ ONE = {
     "symbolic exponent": (a * sp.Abs(x) ** k, x, (), (-12, 12), 1.0),
     "disc": (a * rho**3, rho, (), (0, 9), 2 * np.pi * rho),
     "ball": (a * r**12, r, (), (0, 3), 4 * np.pi * r**2),
+    "line and square of a radius": (a * r + b * r**2, r, (), (0, 9), 4 * np.pi * r**2),
     "biased ball": (sp.sqrt(a**2 + b**2 * r**2) - a, r, (), (0, 90), 4 * np.pi * r**2),
     "flat cylinder wall": (sp.Integer(0) * r, r, (a**2 - r**2,), (0, 1.3), 4 * np.pi * r**2),
 }

@@ -27,7 +27,7 @@ def _shape(element):
 
 
 def written(expression):
-    return shape(forms("x", expression)["mathml"])[2]
+    return shape(forms("x", expression, ())["mathml"])[2]
 
 
 def test_a_root_of_a_ratio_stays_one_root():

@@ -29,17 +29,12 @@ def cone(task: Task, solve: Solve) -> Boltzmann | None:  # noqa: ARG001 - every 
     if odd == 0 or not odd.is_polynomial(*symbols) or sp.Poly(odd, *symbols).total_degree() != 1:
         return None
     square = sp.expand((task.function - odd) ** 2)
-    if not square.is_polynomial(*symbols) or not sp.Poly(square, *symbols).is_homogeneous:
+    if not square.is_polynomial(*symbols) or sp.Poly(square, *symbols).homogeneous_order() != 2:
         return None
     form = sp.hessian(square, symbols) / 2
     tilt = sp.Matrix([sp.diff(odd, s) for s in symbols])
-    if any(
-        form[i, j] != 0 or tilt[i] != 0
-        for i, a in enumerate(task.axes)
-        if a.radius
-        for j in range(len(symbols))
-        if i != j
-    ):
+    radii = [i for i, axis in enumerate(task.axes) if axis.radius]
+    if any(tilt[i] != 0 or any(form[i, j] != 0 for j in range(len(symbols)) if i != j) for i in radii):
         return None
     d = sum(axis.dimension for axis in task.axes)
     # A radius stands for several directions, so its entry counts that often in the determinant.
