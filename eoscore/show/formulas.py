@@ -11,7 +11,7 @@ if TYPE_CHECKING:
 
     from eoscore.answer.record import DerivedAnswer
 
-__all__ = ["formula_lines"]
+__all__ = ["formula_lines", "small_words"]
 
 
 def formula_lines(answer: DerivedAnswer) -> Iterator[str]:
@@ -36,13 +36,14 @@ def _lines(name: str, formula: Mapping[str, Any]) -> Iterator[str]:
     yield f"  {formula['text']}{side}"
     if value is not None:
         yield f"    = {quantity(value, unit)}"
+    elif "numerical" in formula:
+        yield f"    no number, because {formula['why']}"
     if "scale" in formula:
         yield f"    with {formula['scale']['text']}"
     for expansion in formula.get("expansions", ()):
         here = "" if expansion["value"] is None else f" = {quantity(expansion['value'], unit)}"
         yield f"    {expansion['limit']}: {expansion['text']}{here}"
-        small = expansion["small"].replace("**", "^")
-        yield f"      small = {small} = {expansion['small_value']:.3g}; {expansion['range']}"
+        yield f"      {small_words(expansion)}"
     if "jump" in formula:
         yield f"    heat capacity jump at T_c: {formula['jump']['text']}"
     for term in formula.get("first_order", {}).values():
@@ -51,6 +52,12 @@ def _lines(name: str, formula: Mapping[str, Any]) -> Iterator[str]:
         yield "    d ln T_c / d ln: " + ", ".join(
             f"{symbol} {_slope(slope)}" for symbol, slope in slopes.items()
         )
+
+
+def small_words(expansion: Mapping[str, Any]) -> str:
+    """What is small in an expansion, its value where there is one, and how far the leading terms reach."""
+    value = expansion["small_value"]
+    return f"{expansion['small_text']}{'' if value is None else f' = {value:.3g}'}; {expansion['range']}"
 
 
 def _slope(slope: str | float) -> str:

@@ -72,11 +72,9 @@ def _written(
         tidied(part) for part in (expansion.leading, expansion.correction, expansion.small)
     )
     whole = leading if correction == 0 else sp.Mul(leading, 1 + correction, evaluate=False)
-    entry = {
-        **forms("T_c", whole, given),
-        "limit": expansion.limit,
-        "small": forms("small", small, given)["sympy"],
-    }
+    smallness = forms("small", small, given)
+    entry = {**forms("T_c", whole, given), "limit": expansion.limit}
+    entry |= {"small": smallness["sympy"], "small_text": smallness["text"]}
     if here is None:
         return entry | {"small_value": None, "range": "small -> 0", "value": None}
     size = number(small, here)

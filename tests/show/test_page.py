@@ -95,3 +95,18 @@ def test_formulas_show_text_and_value():
     text = page(DerivedAnswer(3, "derive T_c for a in b", "a", "b", {}, formulas))
     assert "T_c = hbar*omega" in text
     assert "700 nK" in text
+
+
+@pytest.mark.parametrize(
+    ("value", "words"), [(None, "small = N/2; small -> 0"), (0.25, "small = N/2 = 0.25; ")]
+)
+def test_an_expansion_tells_what_is_small_with_or_without_numbers(value, words):
+    expansion = {"limit": "low temperature", "text": "T_c = N", "value": value, "range": "small -> 0"}
+    expansion |= {"small_text": "small = N/2", "small_value": value}
+    formula = {"sympy": "...", "text": "T_c solves T^3 = N", "value": None, "expansions": [expansion]}
+    assert words in page(DerivedAnswer(3, "derive T_c for a in b", "a", "b", {}, {"T_c": formula}))
+
+
+def test_formula_and_engine_that_part_are_told():
+    formula = {"sympy": "...", "text": "T_c = N", "value": None, "numerical": 1.0, "why": "they part"}
+    assert "no number, because they part" in page(DerivedAnswer(3, "", "a", "b", {}, {"T_c": formula}))

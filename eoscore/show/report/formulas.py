@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING, Any
 
+from eoscore.show.formulas import small_words
 from eoscore.show.prefix import quantity, written
 from eoscore.show.report.markup import Markup, element, table, together
 from eoscore.show.report.raised import raised
@@ -42,6 +43,8 @@ def _formula(name: str, formula: Mapping[str, Any]) -> Iterator[Markup]:
         yield element("p", f"for {formula['side']}")
     if value is not None:
         yield element("p", element("code", name), " = ", element("b", raised(quantity(value, unit))))
+    elif "numerical" in formula:
+        yield element("p", f"no number, because {formula['why']}")
     if where := formula.get("where"):
         shown = ", ".join(f"{symbol} = {written(number)}" for symbol, number in where.items())
         yield element("p", f"where, in SI units, {shown}", class_="text")
@@ -62,11 +65,7 @@ def _formula(name: str, formula: Mapping[str, Any]) -> Iterator[Markup]:
 
 def _expansion(expansion: Mapping[str, Any], unit: str) -> Iterator[Markup]:
     here = "" if expansion["value"] is None else f" = {quantity(expansion['value'], unit)} here"
-    small = expansion["small"].replace("**", "^")
-    yield element(
-        "p",
-        f"{expansion['limit']}{here}; small = {small} = {expansion['small_value']:.3g}; {expansion['range']}",
-    )
+    yield element("p", f"{expansion['limit']}{here}; {small_words(expansion)}")
     yield _math(expansion) if "mathml" in expansion else element("p", element("code", expansion["text"]))
 
 
