@@ -20,6 +20,7 @@ __all__ = ["bending"]
 
 _BENT = ("f_0", "N_0")  # zero above T_c, and rising at once below it
 _TOLERATED = 0.2  # of the standard deviation
+_ROUNDING = 1e-9  # of the value: what moves by less does not depend on the literal
 
 
 def bending(chain: Chain, findings: Mapping[str, Finding]) -> Iterator[Caution]:
@@ -36,7 +37,8 @@ def bending(chain: Chain, findings: Mapping[str, Finding]) -> Iterator[Caution]:
             here = findings[name].value
             bend = np.abs(low + high - 2.0 * here)
             spread = np.abs(high - low)
-            bad = np.isfinite(bend) & (bend > _TOLERATED * spread) & (spread > 0.0)
+            size = np.abs(low) + np.abs(high) + np.abs(here)
+            bad = np.isfinite(bend) & (bend > _TOLERATED * spread) & (spread > _ROUNDING * size)
             if not bad.any():
                 continue
             worst = np.unravel_index(np.argmax(np.where(bad, bend, 0.0)), bend.shape)

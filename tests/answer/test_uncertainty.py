@@ -88,9 +88,9 @@ def test_the_condensate_fraction_far_below_T_c():
     assert float(finding.sigma) == pytest.approx(3 * (1 - float(finding.value)) * 0.02, rel=1e-6, abs=0)
 
 
-def cautions(temperature):
-    trap = "f = 100 Hz\n V(x, y, z) = m/2*(2*pi*f)^2*(x^2 + y^2 + z^2)"
-    text = f"{GAS}trap bowl {{ {trap} }}\nfind f_0 for strontium in bowl with N = 1e5, T = {temperature}\n"
+def cautions(condition, f="100 Hz"):
+    trap = f"f = {f}\n V(x, y, z) = m/2*(2*pi*f)^2*(x^2 + y^2 + z^2)"
+    text = f"{GAS}trap bowl {{ {trap} }}\nfind f_0 for strontium in bowl with N = 1e5, {condition}\n"
     (answer,) = eoscore.loads(text).answers()
     return {caution.code: caution.text for caution in answer.cautions}
 
@@ -101,7 +101,12 @@ def cautions(temperature):
 )
 def test_a_condensate_that_sets_in_within_the_uncertainty_is_told(temperature, misleads):
     # T_c = 0.9405 hbar w N^(1/3)/k = 209.5 nK
-    assert ("first_derivative" in cautions(temperature)) is misleads
+    assert ("first_derivative" in cautions(f"T = {temperature}")) is misleads
+
+
+def test_rounding_is_no_onset():
+    # At fixed N and S a bowl of any frequency has the same f_0.
+    assert "first_derivative" not in cautions("S = 1e-18 J/K", f="55.0(5) Hz")
 
 
 def test_equal_literals_keep_their_own_shares():
