@@ -25,6 +25,7 @@ if TYPE_CHECKING:
 
 __all__ = ["Composed", "composed"]
 
+HUGE = 1e120  # J or what u is counted in: beyond all walls
 FAINT, STRONG = 1e-60, 1e5  # J: where the first power is looked for in a measure without top
 
 
@@ -54,7 +55,8 @@ def _of(inner: Measure, chain: Chain) -> Measure:
         return Powers(found, top, error=inner.error + 1e-15, route=route)
 
     def omega(v: FloatArray) -> FloatArray:
-        return inner.volume(chain.back(v))
+        with np.errstate(over="ignore"):
+            return inner.volume(np.minimum(chain.back(v), HUGE))
 
     v = np.geomspace(1e-14 * top, top / 2, 1200) if top < inf else np.geomspace(FAINT, STRONG, 4000)
     exponent, scale = beginning(v, omega(v))

@@ -8,6 +8,8 @@ from typing import TYPE_CHECKING
 import numpy as np
 from numpy.polynomial.chebyshev import chebvander
 
+from eoscore.constants import K_B
+from eoscore.errors import NoAnswerError
 from eoscore.measure import Foot, Nodes
 from eoscore.measure.rules import RATIO, legendre, log_panels
 
@@ -19,6 +21,8 @@ __all__ = ["REACH", "rule_for"]
 
 REACH = 45.0  # e^-45 = 3e-20 is dropped
 NEGLIGIBLE = 1e-17
+SOARING, MODEST = 1e3, 4.5  # times the growth by the power at the bottom, or by this one
+LONGER = 8  # times the reach is made half as long again
 AGREED = 1e-12  # relative, between the weights and the difference of Omega over the panels
 MARGINAL = 2.5  # below, -dN/dalpha close to saturation comes from the foot
 ORDER = 22  # of a panel in ln v over a factor 8: x^8 e^-x to 1e-14
@@ -31,9 +35,11 @@ def rule_for(measure: Measure, low: float, high: float) -> Nodes:
 
     The foot reaches up to where it would show that Omega is no pure power, or that f is not 1/t there: much higher
     than a rule for every kT could let it, so that fewer nodes are needed. The weights must add up to the
-    difference of Omega, else the measure's own nodes are taken.
+    difference of Omega, else the measure's own nodes are taken. NoAnswerError where the sums do not end.
     """
     end = min(measure.top, REACH * high)
+    if _soars(measure, high, end):
+        return _with_low_foot(measure.nodes(_enough(measure, high)), low)
     edge = min(_edge(measure, low), end / 8)
     v, w = _panels(measure, edge, end)
     k = measure.exponent
@@ -41,6 +47,30 @@ def rule_for(measure: Measure, low: float, high: float) -> Nodes:
     if abs(first + w.sum() - last) > max(AGREED, measure.error) * last:
         return _condensed(_with_low_foot(measure.nodes(end), low), end)
     return Nodes(v, w, Foot(first / edge**k, k, edge))
+
+
+def _soars(measure: Measure, kT: float, end: float) -> bool:
+    """Whether Omega grows much faster than at the bottom, as it does where V rises like a logarithm."""
+    if end == measure.top or measure.powers() is not None:
+        return False
+    first, last = (float(measure.volume(e)) for e in (kT, end))
+    return last > SOARING * first * (end / kT) ** max(measure.exponent, MODEST)
+
+
+def _enough(measure: Measure, kT: float) -> float:
+    """The energy above which nothing counts at kT."""
+    first, reach = float(measure.volume(kT)), REACH
+    for _ in range(LONGER):
+        last = float(measure.volume(reach * kT))
+        if last == inf:
+            break
+        if log(last / first) < reach + 0.8 * log(NEGLIGIBLE):
+            return reach * kT
+        reach *= 1.5
+    raise NoAnswerError(
+        f"V rises so slowly far out that the sum over states does not end at T = {kT / K_B:.3g} K; lower T or N, or "
+        "give the trap walls (`where`) or an E_max"
+    )
 
 
 def _edge(measure: Measure, low: float) -> float:

@@ -95,8 +95,8 @@ class Radial(OnAtoms):
         while self.shells[-1].energies[-1, 0] - self.lowest < top:
             if len(self.shells) > PANELS:
                 raise NoAnswerError(
-                    f"angular momenta beyond {ALL * 2**PANELS:.0e} count at this temperature, and sums over levels end "
-                    "there; lower T or N, or take the trap as a continuum"
+                    f"angular momenta beyond {ALL * 2**PANELS:.0e} count at this temperature, where sums over levels "
+                    "end: V rises too slowly far out; lower T or N, or give the trap a wall (`where`)"
                 )
             self.shells.append(self._shell(len(self.shells)))
         parts = [self._part(shells, top + self.lowest, coarse=coarse) for shells in self.shells]

@@ -151,5 +151,5 @@ def differences(half, points):
 
 def test_more_angular_momenta_than_are_summed(monkeypatch):
     monkeypatch.setattr("eoscore.state.exact.radial.PANELS", 1)
-    with pytest.raises(NoAnswerError, match="sums over levels end there"):
+    with pytest.raises(NoAnswerError, match="where sums over levels end"):
         Radial(field("V(r) = 1e-24 J/m*r"), MASS).sums(np.array([1 / QUANTUM]), 100 * QUANTUM)

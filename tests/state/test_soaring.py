@@ -1,0 +1,46 @@
+"""Traps whose states grow like an exponential of the energy: V = U ln(1 + r^2/b^2)."""
+
+from __future__ import annotations
+
+import numpy as np
+import pytest
+from scipy.constants import h, k, physical_constants
+from scipy.special import gammaln
+
+import eoscore
+
+MASS = 84 * physical_constants["atomic mass constant"][0]
+SLOW = "V(r) = 1e-30 J*ln(1 + (r/(1 um))^2)"
+
+
+def held(place):
+    lab = eoscore.loads(f"gas g {{ m = 84 u }}\ntrap t {{ {place} }}")
+    return lab["g"].held_in(lab["t"])
+
+
+def critical_number(T):
+    """sum_l Z(l/kT), Z = (b/lambda)^3 pi^(3/2) Gamma(a - 3/2)/Gamma(a), a = U/kT; the rest by its zeta-like tail."""
+    a, count = np.arange(1, 100_000) * 1e-30 / (k * T), 1e-18 * (2 * np.pi * MASS * k * T) ** 1.5 / h**3
+    terms = count * np.pi**1.5 * np.exp(gammaln(a - 1.5) - gammaln(a)) * np.arange(1, 100_000) ** -1.5
+    return terms.sum() + terms[-1] * 100_000 / 2
+
+
+@pytest.mark.parametrize("nK", [5, 20, 30, 40, 44])
+def test_below_the_temperature_that_empties_the_trap(nK):
+    """The sum over states diverges for kT >= 2 U/3, 48.3 nK here."""
+    reading = held(SLOW).find(["N_c"], {"T": nK * 1e-9})["N_c"]
+    assert reading.value == pytest.approx(critical_number(nK * 1e-9), rel=1e-9)
+
+
+@pytest.mark.parametrize("nK", [48, 60, 239])
+def test_words_above(nK):
+    assert "does not end at T" in held(SLOW).find(["N_c"], {"T": nK * 1e-9})["N_c"].why
+
+
+def test_walls_make_it_finite():
+    """At high temperature the ball inside the walls is all that counts: zeta(3/2) times volume over lambda^3."""
+    trap = held(SLOW + " where r < 20 um")
+    T = 1e-5
+    ball = 4 / 3 * np.pi * (20e-6) ** 3 * (2 * np.pi * MASS * k * T) ** 1.5 / h**3 * 2.6123753486854883
+    assert trap.N_c(T=T) == pytest.approx(ball, rel=0.2)
+    assert trap.N_c(T=T) < ball
