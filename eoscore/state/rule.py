@@ -54,7 +54,7 @@ def _soars(measure: Measure, kT: float, end: float) -> bool:
     if end == measure.top or measure.powers() is not None:
         return False
     first, last = (float(measure.volume(e)) for e in (kT, end))
-    return last > SOARING * first * (end / kT) ** max(measure.exponent, MODEST)
+    return bool(last > SOARING * first * (end / kT) ** max(measure.exponent, MODEST))
 
 
 def _enough(measure: Measure, kT: float) -> float:

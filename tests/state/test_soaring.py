@@ -2,9 +2,11 @@
 
 from __future__ import annotations
 
+import mpmath
 import numpy as np
 import pytest
 from scipy.constants import h, k, physical_constants
+from scipy.integrate import quad
 from scipy.special import gammaln
 
 import eoscore
@@ -38,9 +40,15 @@ def test_words_above(nK):
 
 
 def test_walls_make_it_finite():
-    """At high temperature the ball inside the walls is all that counts: zeta(3/2) times volume over lambda^3."""
-    trap = held(SLOW + " where r < 20 um")
-    T = 1e-5
-    ball = 4 / 3 * np.pi * (20e-6) ** 3 * (2 * np.pi * MASS * k * T) ** 1.5 / h**3 * 2.6123753486854883
-    assert trap.N_c(T=T) == pytest.approx(ball, rel=0.2)
-    assert trap.N_c(T=T) < ball
+    """int g_(3/2)(e^(-V/kT)) d^3r/lambda^3 over the ball inside, by quadrature and mpmath's polylogarithm."""
+    T = 1e-6
+
+    def shell(r):
+        return (
+            4 * np.pi * r**2 * float(mpmath.polylog(1.5, mpmath.exp(-1e-30 * np.log1p(r * r) / (k * T))).real)
+        )
+
+    expected = quad(shell, 0, 20, epsrel=1e-9)[0] * 1e-18 * (2 * np.pi * MASS * k * T) ** 1.5 / h**3
+    reading = held(SLOW + " where r < 20 um").find(["N_c"], {"T": T})["N_c"]
+    assert reading.value == pytest.approx(expected, rel=1e-8, abs=float(reading.error))
+    assert reading.error < 1e-5 * reading.value
