@@ -45,7 +45,7 @@ def critical_temperature(state: State, unit: str) -> Reading:
     error = kT * ((whole.error_at(kT) + 8 * EPS) * held + of_number) / slope
     label = "n" if state.held.uniform else "N"
     reason = Reason(f"{label} must be above zero", state.shaped(~sensible))
-    return state.read(kT / K_B, error / K_B, unit, "", [reason])
+    return state.read(kT / K_B, error / K_B, unit, "", [reason], of="N")
 
 
 def _temperature(state: State) -> tuple[FloatArray, FloatArray, Reason]:
@@ -62,7 +62,7 @@ def critical_number(state: State, unit: str) -> Reading:
     whole = _condensing(state.held.model.whole)
     kT, dlog, reason = _temperature(state)
     held, slope = _at_zero(whole, kT)
-    return state.read(held, (whole.error_at(kT) + 4 * EPS) * held + slope * dlog, unit, "", [reason])
+    return state.read(held, (whole.error_at(kT) + 4 * EPS) * held + slope * dlog, unit, "", [reason], of="T")
 
 
 def critical_density(state: State, unit: str) -> Reading:
@@ -72,7 +72,9 @@ def critical_density(state: State, unit: str) -> Reading:
         raise NoAnswerError(local.why_not.replace("no condensation", "no critical density at the bottom"))
     kT, dlog, reason = _temperature(state)
     held, slope = _at_zero(local, kT)
-    return state.read(held, (local.error + 4 * EPS) * held + slope * dlog, unit, local.route, [reason])
+    return state.read(
+        held, (local.error + 4 * EPS) * held + slope * dlog, unit, local.route, [reason], of="T"
+    )
 
 
 def exponent(state: State, unit: str) -> Reading:
@@ -83,4 +85,4 @@ def exponent(state: State, unit: str) -> Reading:
     value = slope / held
     further = _at_zero(whole, kT * 1.0001)
     drift = np.abs(further[1] / further[0] - value) * 1e4 * dlog
-    return state.read(value, (2 * whole.error_at(kT) + 8 * EPS) * value + drift, unit, "", [reason])
+    return state.read(value, (2 * whole.error_at(kT) + 8 * EPS) * value + drift, unit, "", [reason], of="T")

@@ -24,7 +24,7 @@ if TYPE_CHECKING:
     from eoscore.state.state import State
     from eoscore.state.sums import Sums
 
-__all__ = ["beyond_mean_field", "is_flat", "of_interactions", "of_size"]
+__all__ = ["BOX", "beyond_mean_field", "is_flat", "of_interactions", "of_size"]
 
 BOX = 1.32, 0.02  # of x = a_s n^(1/3): P. Arnold, G. Moore, Phys. Rev. Lett. 87, 120401 (2001)
 # (19.7518 ln x + 75.7(4)) x^2: P. Arnold, G. Moore, B. Tomasik, Phys. Rev. A 65, 013606 (2002); the first number is
@@ -59,7 +59,7 @@ def _critical(state: State) -> tuple[FloatArray, FloatArray]:
 
 def _told(state: State, value: FloatArray, error: FloatArray, unit: str, route: str) -> Reading:
     words = "n must be above zero" if state.held.uniform else "N must be above zero"
-    return state.read(value, error, unit, route, [Reason(words, state.shaped(np.isnan(value)))])
+    return state.read(value, error, unit, route, [Reason(words, state.shaped(np.isnan(value)))], of="N")
 
 
 def of_size(state: State, unit: str) -> Reading:

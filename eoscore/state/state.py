@@ -163,11 +163,17 @@ class State:
         return np.asarray(flat).reshape(self.shape)
 
     def read(
-        self, value: FloatArray, error: FloatArray, unit: str, route: str = "", reasons: Iterable[Reason] = ()
+        self,
+        value: FloatArray,
+        error: FloatArray,
+        unit: str,
+        route: str = "",
+        reasons: Iterable[Reason] = (),
+        of: str = "",
     ) -> Reading:
-        """A reading of the state, in the shape of the question."""
+        """A reading of the state, in the shape of the question; `of`: the one condition it depends on, if given."""
         route = route or self.held.model.whole.route
-        told = [*(self.reasons if self.solved else ()), *reasons]
+        told = [*(self.reasons if self.solved and of not in self.given else ()), *reasons]
         lost = ~np.isfinite(value).reshape(self.shape)
         for reason in told:
             lost &= ~reason.where

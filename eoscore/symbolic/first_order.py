@@ -13,6 +13,7 @@ import sympy as sp
 from eoscore.constants import HBAR, K_B, H
 from eoscore.errors import NoAnswerError
 from eoscore.state import hold
+from eoscore.state.shifts import BOX, is_flat
 from eoscore.symbolic.writing import forms
 
 if TYPE_CHECKING:
@@ -22,7 +23,7 @@ if TYPE_CHECKING:
 
 __all__ = ["continuum", "first_orders"]
 
-ENERGY, TEMPERATURE, LENGTH, MASS = sp.symbols("E_0 T_c a_s m", positive=True)
+ENERGY, TEMPERATURE, LENGTH, MASS, DENSITY = sp.symbols("E_0 T_c a_s m n", positive=True)
 BOLTZMANN, PLANCK = sp.symbols("k_B h", positive=True)
 
 
@@ -40,7 +41,7 @@ def first_orders(held: HeldGas, given: Mapping[str, float]) -> dict[str, dict[st
     """Relative shifts of T_c as formulas, where rho(E) is one power E^(a - 1), with their values at N.
 
     By the lowest level, E_0 above the bottom: -zeta(a - 1)/(a zeta(a)) E_0/(k_B T_c), a > 2. By collisions: a number
-    that the shape of the trap alone decides, times a_s/lambda_T.
+    that the shape of the trap alone decides, times a_s/lambda_T; in a box 1.32 a_s n^(1/3), beyond the mean field.
     """
     counts = {name: given[name] for name in ("N", "n") if name in given}
     terms = held.model.whole.measure.powers() if hasattr(held.model.whole, "measure") else None
@@ -62,7 +63,9 @@ def first_orders(held: HeldGas, given: Mapping[str, float]) -> dict[str, dict[st
         formula = -sp.zeta(order - 1) / (order * sp.zeta(order)) * ENERGY / (BOLTZMANN * TEMPERATURE)
         values = {"E_0": float(np.sum(held.frequencies())) * pi * HBAR, "k_B": K_B, "T_c": T_c}
         entries["shift_size"] = _entry("shift_size", formula, values, float(found["shift_size"].value))
-    if found["shift_int"].why is None and found["shift_int"].route.startswith("first order"):
+    if found["shift_int"].why is None and is_flat(held):
+        entries["shift_int"] = _of_box(held, counts, float(found["shift_int"].value))
+    elif found["shift_int"].why is None and found["shift_int"].route.startswith("first order"):
         a_s, m = held.gas.a_s or np.nan, held.gas.mass or np.nan
         value = float(found["shift_int"].value)
         number = value * H / (a_s * (2 * pi * m * K_B * T_c) ** 0.5)
@@ -71,6 +74,14 @@ def first_orders(held: HeldGas, given: Mapping[str, float]) -> dict[str, dict[st
         values = {"a_s": a_s, "m": m, "h": H, "k_B": K_B, "T_c": T_c}
         entries["shift_int"] = _entry("shift_int", formula, values, value)
     return entries
+
+
+def _of_box(held: HeldGas, counts: Mapping[str, float], value: float) -> dict[str, Any]:
+    """The density that the shift goes with is read off the shift itself, whatever gave it."""
+    a_s = held.gas.a_s or np.nan
+    density = counts["n"] if "n" in counts else (value / (BOX[0] * a_s)) ** 3
+    formula = sp.Float(str(BOX[0])) * LENGTH * DENSITY ** sp.Rational(1, 3)
+    return _entry("shift_int", formula, {"a_s": a_s, "n": density}, value)
 
 
 def _rises(held: HeldGas) -> bool:

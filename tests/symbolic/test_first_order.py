@@ -48,3 +48,25 @@ def test_the_formula_is_that_of_the_ideal_continuum(place, gas):
     found = derived(place, f"isotope Rb-87\n a_s = 100 a0\n {gas}")
     assert found["difference"] < 1e-10
     assert math.isclose(found["value"], derived(HARMONIC)["value"], rel_tol=1e-14)
+
+
+@pytest.mark.parametrize(
+    ("place", "density"),
+    [
+        ("volume = 1e-3 mm3", 1e5 / 1e-12),
+        ("V(x, y, z) = 0 J where x > 0 m, x < 50 um, y > 0 m, y < 50 um, z > 0 m, z < 20 um", 1e5 / 5e-14),
+    ],
+)
+def test_a_box_lies_beyond_the_mean_field(place, density):
+    """1.32(2) a n^(1/3): P. Arnold, G. Moore, Phys. Rev. Lett. 87, 120401 (2001)."""
+    entry = derived(place)["first_order"]["shift_int"]
+    assert entry["where"]["n"] == pytest.approx(density, rel=1e-9)
+    assert value(entry) == pytest.approx(1.32 * 100 * 5.29177210544e-11 * density ** (1 / 3), rel=1e-9)
+    assert entry["text"] == "shift_int = 1.32*a_s*n^(1/3)"
+
+
+def test_a_uniform_gas_has_its_density():
+    text = "gas g { isotope Rb-87\n a_s = 100 a0 }\nderive T_c for g in uniform with n = 2e19 m-3"
+    entry = eoscore.loads(text).answers()[0].formulas["T_c"]["first_order"]["shift_int"]
+    assert entry["where"]["n"] == 2e19
+    assert value(entry) == pytest.approx(entry["value"], rel=1e-12)

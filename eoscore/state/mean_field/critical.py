@@ -41,7 +41,7 @@ def temperature(state: MeanFieldState, unit: str) -> Reading:
         Reason("N must be above zero", state.shaped(~(count > 0))),
         Reason(FULL, state.shaped((count > 0) & np.isnan(value))),
     ]
-    return state.read(value, _precision(state, K_B * value) * value, unit, ROUTE, reasons)
+    return state.read(value, _precision(state, K_B * value) * value, unit, ROUTE, reasons, of="N")
 
 
 def _onset(state: MeanFieldState, count: float) -> float:
@@ -95,7 +95,7 @@ def _precision(state: MeanFieldState, kT: FloatArray) -> FloatArray:
 
 def _told(state: MeanFieldState, value: FloatArray, unit: str, relative: FloatArray) -> Reading:
     none = Reason("T must be above zero", state.shaped(~(state.kT[0] > 0)))
-    return state.read(value, relative * np.abs(value), unit, ROUTE, [none])
+    return state.read(value, relative * np.abs(value), unit, ROUTE, [none], of="T")
 
 
 def shift(state: MeanFieldState, unit: str) -> Reading:
@@ -108,4 +108,4 @@ def shift(state: MeanFieldState, unit: str) -> Reading:
     if not np.all(state.number[0] > 0):
         raise NoAnswerError("N must be above zero")
     zero = np.zeros_like(state.number[0])
-    return state.read(zero, zero, unit, "mean field alone, at fixed density: none")
+    return state.read(zero, zero, unit, "mean field alone, at fixed density: none", of="N")

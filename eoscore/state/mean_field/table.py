@@ -27,8 +27,8 @@ if TYPE_CHECKING:
 __all__ = ["READ"]
 
 ATTRACTED = (
-    "a_s is negative: a condensate without repulsion has no Thomas-Fermi limit, and its energy and density are not "
-    "told here; N_0, f_0 and what the thermal part has are"
+    "a_s is negative: the condensate is held open by its kinetic energy, which the Thomas-Fermi limit leaves out, so "
+    "that its energy and density are not told; N_0, f_0, mu, S and n_peak are, and all of it above T_c or with a_s > 0"
 )
 IDEAL = (
     "a_s is 0: an ideal condensate has the size of the lowest level, which a semiclassical gas does not know"

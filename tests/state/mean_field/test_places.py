@@ -119,9 +119,18 @@ def test_a_condensate_without_repulsion_has_no_shape(name):
     trap = held(HARMONIC, "a_s = -100 a0")
     given = {"N": trap.N_c(T=1e-7) + np.array([-10.0, 50.0]), "T": 1e-7}
     reading = trap.find([name], given)[name]
-    assert "no Thomas-Fermi limit" in reading.why
+    assert "kinetic energy, which the Thomas-Fermi limit leaves out" in reading.why
     assert np.isfinite(reading.value[0])
     assert list(reading.missing) == [False, True]
+
+
+def test_what_needs_no_state_is_told_where_there_is_none():
+    """T_c and its shifts depend on N alone, N_c on T alone: they stand where the condensate falls in."""
+    trap, given = held(HARMONIC, "a_s = -100 a0"), {"N": 1e4, "T": 1e-8}
+    found = trap.find(["f_0", "T_c", "N_c", "shift_int", "shift_size"], given)
+    assert "falls in on itself" in found["f_0"].why
+    assert [name for name, reading in found.items() if reading.why] == ["f_0"]
+    assert found["T_c"].value == pytest.approx(trap.T_c(N=1e4), rel=1e-12)
 
 
 @pytest.mark.parametrize("name", ["U", "S"])
