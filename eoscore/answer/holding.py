@@ -73,9 +73,10 @@ class HeldGases:
             scaled = None if factor is None else self._scaled(facts, mass, origin, factor)
             if scaled is not None:
                 return scaled
-        place: Place | None = self._places.of(
-            (facts, mass, dimension), lambda: place_of(facts, mass, dimension)
-        )
+        told = None if isinstance(facts, TrapFacts) else dimension
+        place: Place | None = self._places.of((facts, told), lambda: place_of(facts, mass, told))
+        if isinstance(facts, TrapFacts) and isinstance(place, TrapPlace) and place.mass != mass:
+            return ScaledTrap(facts, place, 1.0, mass)  # only its frequencies know of a mass
         return place
 
     def _scaled(

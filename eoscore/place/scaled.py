@@ -38,7 +38,7 @@ class ScaledTrap(TrapPlace):
     @cached_property
     def whole(self) -> Measure:
         """See `TrapPlace.whole`."""
-        return stretched(self.origin.whole, self.factor)
+        return self.origin.whole if self.factor == 1.0 else stretched(self.origin.whole, self.factor)
 
 
 def _scaled(landscape: Landscape, factor: float) -> Landscape:

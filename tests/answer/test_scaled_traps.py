@@ -82,6 +82,36 @@ def test_a_trap_is_measured_once_unless_gravity_pulls(monkeypatch, pull, measure
             np.testing.assert_allclose(answer.found[name].value[place], finding.value, rtol=1e-9, atol=0)
 
 
+OVER = {
+    "mass that V does not know": ("A = k_B*1 uK", "q = even(40, 90, 5)"),
+    "mass that scales V": ("A = m*(1 mm/s)^2", "q = even(40, 90, 5)"),
+    "knife": ("A = k_B*1 uK\n E_max = 0.5*k*k_B*1 uK", "k = even(0.2, 1, 5)"),
+    "power below a knife": ("A = k_B*k*1 uK\n E_max = k_B*0.5 uK", "k = even(0.7, 2, 5)"),
+    "name that is not used": ("A = k_B*1 uK\n other = 3 um", "other = even(1 um, 2 um, 5)"),
+    "scattering length": ("A = k_B*1 uK", "a_s = even(1 nm, 5 nm, 5)"),
+}
+
+
+@pytest.mark.parametrize("name", OVER)
+def test_what_does_not_change_along_an_axis_is_measured_once(monkeypatch, name):
+    asked, whole = [], measure.measure_of
+    monkeypatch.setattr(measure, "measure_of", lambda *a: asked.append(a) or whole(*a))
+    given, over = OVER[name]
+    text = (
+        "gas g { q = 84\n m = q*1 u\n a_s = 1 nm }\n"
+        f"trap t {{ k = 1\n {given}\n V(x, y) = -A*exp(-(x^2 + 3*y^2 + x*y)/(50 um)^2) }}\n"
+        f"find S, freq, depth for g in t with N = 100, T = 60 nK over {over}"
+    )
+    (answer,) = eoscore.loads(text).answers()
+    assert len(asked) == 1
+    alone = text.partition(" over ")[0]
+    values = next(iter(answer.over.values()))
+    setting = f"{next(iter(answer.over))}={values[-1]} {next(iter(answer.over_units.values()))}"
+    (last,) = eoscore.loads(alone, settings=[setting.removesuffix(" 1")]).answers()
+    for finding, single in zip(answer.found.values(), last.found.values(), strict=True):
+        np.testing.assert_allclose(finding.value[-1], single.value, rtol=1e-9, atol=0)
+
+
 def test_exact_levels_stay_exact():
     """A stronger trap in a grid has the levels that it has by itself."""
     text = (
