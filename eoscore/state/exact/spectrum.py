@@ -16,6 +16,7 @@ from eoscore.state.exact.ensemble import ExactLevels
 from eoscore.state.exact.line import levels_on_line
 from eoscore.state.exact.radial import radial_levels
 from eoscore.state.exact.ring import Ring
+from eoscore.state.exact.rotated import as_radial
 
 if TYPE_CHECKING:
     from eoscore.formula.field import Field
@@ -68,8 +69,9 @@ def _of_part(field: Field, mass: float) -> tuple[Direction, ...]:
         return tuple(Oscillator(HBAR * (bend / mass) ** 0.5) for bend in bottom.curvatures)
     if field.coordinates in (("x",), ("y",), ("z",)):
         return (levels_on_line(field, mass),)
-    if field.coordinates in (("r",), ("rho",)):
-        return (radial_levels(field, mass),)
+    turned = field if field.coordinates in (("r",), ("rho",)) else as_radial(field)
+    if turned is not None:
+        return (radial_levels(turned, mass),)
     raise NoAnswerError(
         "exact levels are known of harmonic traps, independent directions, V(r) and V(rho); "
         f"{', '.join(field.coordinates)} depend on each other here"

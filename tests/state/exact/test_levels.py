@@ -129,7 +129,22 @@ def test_one_dimension():
     assert trap.N_c(T=T) == pytest.approx(518.4885156445064, rel=1e-9)
 
 
+@pytest.mark.parametrize(
+    ("place", "radial"),
+    [
+        ("V(x, y, z) = 1e-24 J/m*sqrt(x^2 + y^2 + z^2)", "V(r) = 1e-24 J/m*r"),
+        (
+            "V(x, y, z) = 1e-31 J*((x^2 + y^2)/(1 um)^2)^2 + 1e-31 J*(z/(1 um))^2 where x^2 + y^2 < (9 um)^2",
+            "V(rho, z) = 1e-31 J*(rho/(1 um))^4 + 1e-31 J*(z/(1 um))^2 where rho < 9 um",
+        ),
+    ],
+)
+def test_what_turns_about_the_origin_may_be_written_in_x_y_z(place, radial):
+    assert held(place).N_c(T=2e-8) == pytest.approx(held(radial).N_c(T=2e-8), rel=1e-9)
+
+
 WORDS = [
+    ("V(x, y, z) = 1e-24 J/m*sqrt(x^2 + y^2 + 4*z^2)", "m = 84 u", "depend on each other"),
     (
         "V(x, y, z) = 1e-30 J*(x^2 + y^2 + z^2 + x^2*y^2/(1 um)^2)/(1 um)^2",
         "m = 84 u",
