@@ -5,7 +5,6 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 import numpy as np
-from scipy.optimize import brentq
 
 from eoscore.formula import Formula
 from eoscore.formula.tape import ordered
@@ -56,6 +55,7 @@ def _parts(formula: Formula) -> Iterator[Formula]:
 
 def _zeros(formula: Formula, name: str, low: float, high: float) -> Iterator[float]:
     """Where it changes its sign between two places, and where it touches zero."""
+    from scipy.optimize import brentq  # 0.3 s to import, and only a formula with bends wants it
 
     def value(x: float) -> float:
         return float(formula.evaluate({name: np.array(x)}))
