@@ -115,6 +115,9 @@ class OnAtoms(ABC):
     def __init__(self) -> None:
         self._kept: dict[bool, tuple[float, Atoms]] = {}
         self._good: set[int] = set()  # octaves of kT at which enough levels are known
+        self._farthest = (
+            0.0  # J, how far they were ever made: another temperature of the same grid wants it again
+        )
 
     @abstractmethod
     def below(self, energy: float) -> float:
@@ -145,8 +148,8 @@ class OnAtoms(ABC):
     def _as_far(self, kT: float, *, coarse: bool) -> Atoms:
         upto, atoms = self._kept.get(coarse, (0.0, None))
         if atoms is None or upto < REACH * kT:
-            upto = SPARE * REACH * kT
-            atoms = self.made(upto, coarse=coarse)
+            upto = self._farthest = max(SPARE * REACH * kT, self._farthest)
+            atoms = _ascending(self.made(upto, coarse=coarse))
             self._kept[coarse] = upto, atoms
         return atoms
 
@@ -162,10 +165,19 @@ class OnAtoms(ABC):
         e, w = self.atoms(kT)
         rows = np.stack([w, w * e, w * e * e])
         flat = np.ravel(beta)
-        size = max(CHUNK // e.size, 1)
-        parts = [_summed(flat[i : i + size], e, rows) for i in range(0, flat.size, size)]
-        whole = np.concatenate(parts)
+        whole = np.empty((flat.size, 3), dtype=flat.dtype)
+        octaves = np.floor(np.log2(np.real(flat) * kT))
+        for octave in np.unique(octaves):  # the colder, the fewer levels count
+            few = int(np.searchsorted(e, REACH * kT / 2.0**octave)) + 1
+            same = np.flatnonzero(octaves == octave)
+            for which in np.array_split(same, same.size * few // CHUNK + 1):
+                whole[which] = _summed(flat[which], e[:few], rows[:, :few])
         return Sums(*(whole[:, k].reshape(np.shape(beta)) for k in range(3)))
+
+
+def _ascending(atoms: Atoms) -> Atoms:
+    order = np.argsort(atoms.e, kind="stable")
+    return Atoms(atoms.e[order], atoms.w[order])
 
 
 def _summed(beta: NDArray[np.inexact], e: FloatArray, rows: FloatArray) -> NDArray[np.inexact]:

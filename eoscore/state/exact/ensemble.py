@@ -98,7 +98,8 @@ class ExactLevels(Ensemble):
 
     def partition(self, beta: NDArray[np.inexact], kT: float) -> OfLevels:
         """The product over the directions, without the lowest level where bosons are counted."""
-        parts = [direction.sums(beta, kT) for direction in self.directions]
+        known = {each: each.sums(beta, kT) for each in dict.fromkeys(self.directions)}  # equal ones once
+        parts = [known[direction] for direction in self.directions]
         excited, mean, variance = 0.0 * beta, 0.0 * beta, 0.0 * beta
         for z0, z1, z2 in parts:
             excited = excited + np.log1p(z0)

@@ -30,7 +30,7 @@ def as_radial(field: Field) -> Field | None:
     if not all(_turns(formula, names, points) for formula in (field.formula, *field.walls)):
         return None
     radius = "r" if len(names) == 3 else "rho"
-    along = {names[0]: variable(radius), **dict.fromkeys(names[1:], 0.0)}
+    along: dict[str, Formula | float] = {names[0]: variable(radius), **dict.fromkeys(names[1:], 0.0)}
     return Field((radius,), field.formula.substitute(along), tuple(w.substitute(along) for w in field.walls))
 
 
