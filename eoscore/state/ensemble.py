@@ -23,7 +23,7 @@ if TYPE_CHECKING:
     Counter = Callable[[FloatArray, NDArray[np.intp]], tuple[FloatArray, FloatArray]]
 
 EPS = float(np.finfo(float).eps)
-BLOCK = 250_000  # numbers held at a time by the evaluators that sum over nodes
+BLOCK = 125_000  # numbers held at a time by the evaluators that sum over nodes: the allocator keeps arrays of 1 MB
 
 
 class Ensemble(ABC):

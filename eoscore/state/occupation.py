@@ -59,19 +59,22 @@ def bose_count(alpha: FloatArray, kT: FloatArray, rule: Nodes) -> tuple[FloatArr
 
 def bose_sums(alpha: FloatArray, kT: FloatArray, rule: Nodes) -> tuple[FloatArray, ...]:
     """The seven columns of `Sums` of bosons."""
-    t = rule.v / kT[:, None] + alpha[:, None]
-    f = 1 / np.expm1(t)
-    log = np.log1p(f)
+    t = rule.v / kT[:, None]
+    t += alpha[:, None]
+    f = np.expm1(t)
+    np.divide(1, f, out=f)
     n = f @ rule.w
     u = f @ (rule.w * rule.v)
-    y = log @ rule.w
+    work = np.log1p(f)
+    y = work @ rule.w
     s = y + u / kT + alpha * n
-    spread = f * (1 + f)
-    b0 = spread @ rule.w
-    spread *= t
-    b1 = spread @ rule.w
-    spread *= t
-    nodes = n, u, s, y, b0, b1, spread @ rule.w
+    np.add(f, 1, out=work)
+    f *= work
+    b0 = f @ rule.w
+    f *= t
+    b1 = f @ rule.w
+    f *= t
+    nodes = n, u, s, y, b0, b1, f @ rule.w
     return tuple(a + b for a, b in zip(nodes, _bose_foot(alpha, kT, rule.foot), strict=True))
 
 
