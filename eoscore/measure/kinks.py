@@ -64,7 +64,8 @@ def _zeros(formula: Formula, name: str, low: float, high: float) -> Iterator[flo
     values = np.broadcast_to(formula.evaluate({name: points}), points.shape)
     yield from points[values == 0].tolist()
     for i in np.flatnonzero(np.sign(values[:-1]) * np.sign(values[1:]) < 0).tolist():
-        yield float(brentq(value, points[i], points[i + 1], xtol=1e-300, rtol=4 * np.finfo(float).eps))
+        ends = points[i], points[i + 1]  # of all scales: halving alone takes some two hundred steps
+        yield float(brentq(value, *ends, xtol=1e-300, rtol=4 * np.finfo(float).eps, maxiter=5000))
 
 
 def _jumps(formula: Formula, name: str, at: float) -> bool:

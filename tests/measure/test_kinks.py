@@ -27,6 +27,7 @@ BOX = choose(both(less(X, 3.0), less(-1.0, X)), X**2, 2 * X**2)
         (choose(less(X, 0.0), -3 * X, X), (0,), ()),
         (BOX, (-1, 3), (-1, 3)),
         (X * SIGN, (2,), (2,)),
+        (call("min", (X - 0.57) ** 2, 4.0), (-1.43, 2.57), ()),
     ],
 )
 def test_known_places(formula, kinks, jumps):
@@ -45,3 +46,10 @@ def test_a_jump_is_a_piece_of_no_length():
     assert pieces.signs.tolist() == [1, -1, 1]
     assert pieces.points[1:3] == pytest.approx([2, 2], rel=1e-14)
     assert pieces.points[1] < 2 < pieces.points[2]
+
+
+@pytest.mark.parametrize("place", [-0.57, 1e-6, 3e5])
+def test_kinks_of_any_size_without_ends(place):
+    """Brackets reach from 1e-36 to 1e24."""
+    hat = call("min", ((X - place) / place) ** 2, 4.0)
+    assert kinks_of(hat, "x") == pytest.approx(sorted([-place, 3 * place]), rel=1e-12)
