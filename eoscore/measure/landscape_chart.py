@@ -94,6 +94,9 @@ class Chart:
     def wall_jet(self, index: int, point: Array) -> tuple[float, Array, Array]:
         """A wall function at one point: value, gradient (d,), Hessian (d, d)."""
         values = np.array([float(v) for v in self._wall_jets[index].run(self.at(point))])
+        if self.nudge and not np.all(np.isfinite(values)):
+            aside = point + self.nudge * np.sqrt(np.arange(2.0, 2.0 + self.dimension))
+            values[1:] = [float(v) for v in self._wall_jets[index].run(self.at(aside))[1:]]
         d = self.dimension
         sides = self.sides(point)
         bend = values[1 + d :].reshape(d, d) * np.outer(sides, sides)

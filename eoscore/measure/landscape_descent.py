@@ -11,9 +11,10 @@ from eoscore.measure.landscape_settled import settled
 if TYPE_CHECKING:
     from eoscore.measure.landscape_chart import Array, Chart
 
-__all__ = ["descend"]
+__all__ = ["along_walls", "descend", "held_walls"]
 
 STEPS = 200
+CUTS, PARTS = 12, 32  # of a step that leads through a wall
 
 
 def descend(chart: Chart, starts: Array, radius: Array) -> tuple[Array, Array]:
@@ -22,18 +23,20 @@ def descend(chart: Chart, starts: Array, radius: Array) -> tuple[Array, Array]:
     A point whose V falls without end stops beyond the chart's reach.
     """
     points, first, radius = starts.copy(), radius, radius.copy()
-    walled, least = bool(chart.walls), 10 * chart.nudge if chart.creases else 1e-40
+    walled, least = bool(chart.walls), 10 * chart.nudge if chart.creases or chart.walls else 1e-40
     value, slope, bend = chart.jet(points)
     active = np.isfinite(value)
     for _ in range(STEPS):
         now = np.flatnonzero(active)
         if not now.size:
             break
-        frames = [_free(chart, points[k], slope[k]) for k in now] if walled else None
-        step = _steps(slope[now], bend[now], radius[now], frames)
+        helds = [held_walls(chart, points[k], slope[k]) for k in now] if walled else []
+        curved, frames = along_walls(chart, points[now], slope[now], bend[now], helds)
+        step = _steps(slope[now], curved, radius[now], frames)
         trial = points[now] + step
         if walled:
-            trial = np.array([_inside(chart, points[k], x) for k, x in zip(now, trial, strict=True)])
+            rows = zip(now, trial, helds, strict=True)
+            trial = np.array([_inside(chart, points[k], x, held) for k, x, held in rows])
         taken = trial - points[now]
         new = chart.value(trial)
         better = new < value[now]
@@ -42,11 +45,12 @@ def descend(chart: Chart, starts: Array, radius: Array) -> tuple[Array, Array]:
             np.einsum("ni,ni->n", slope[now], taken) + np.einsum("ni,nij,nj->n", taken, bend[now], taken) / 2
         )
         trusted = (new - value[now] < 0.5 * model) & (length > 0.7 * radius[now])
-        radius[now] = np.where(better, np.where(trusted, 2 * radius[now], radius[now]), length / 4)
+        far = better & (np.linalg.norm(taken, axis=1) > 0.5 * length)  # else a wall has cut the step short
+        radius[now] = np.where(far, np.where(trusted, 2 * radius[now], radius[now]), length / 4)
         moved = now[better]
         points[moved] = trial[better]
         value[moved], slope[moved], bend[moved] = chart.jet(points[moved])
-        small = np.linalg.norm(taken, axis=1) <= 1e-15 * np.linalg.norm(points[now], axis=1)
+        small = length <= 1e-15 * np.linalg.norm(points[now], axis=1)
         active[now] = ~small & (radius[now] > 1e-17 * np.linalg.norm(points[now], axis=1)) & (length > 0)
         active[now] &= (radius[now] > least) & (np.linalg.norm(points[now], axis=1) < chart.reach)
     points = points if walled else _polished(chart, points)
@@ -93,41 +97,72 @@ def _steps(slope: Array, bend: Array, radius: Array, frames: list[Array] | None)
     return result
 
 
-def _free(chart: Chart, point: Array, slope: Array) -> Array:
-    """Directions (d, k) along the walls that hold the point where V pushes it against them."""
-    held: list[Array] = []
+def held_walls(chart: Chart, point: Array, slope: Array) -> list[int]:
+    """The walls that hold the point, where V pushes it against them."""
+    found = []
     for index in range(len(chart.walls)):
         margin, normal, _ = chart.wall_jet(index, point)
         size = float(np.linalg.norm(normal))
         if size and margin / size <= 1e-9 * (np.linalg.norm(point) + chart.nudge) and slope @ normal > 0:
-            held.append(normal / size)
-    frame = np.eye(point.size)
-    if held:
-        _, sizes, rows = np.linalg.svd(np.array(held))
-        frame = rows[int(np.sum(sizes > 1e-9)) :].T
-    return frame
+            found.append(index)
+    return found
 
 
-def _inside(chart: Chart, start: Array, end: Array) -> Array:
+def along_walls(
+    chart: Chart, points: Array, slope: Array, bend: Array, helds: list[list[int]]
+) -> tuple[Array, list[Array] | None]:
+    """Curvatures of V, with those of the walls that hold each point, and the directions (d, k) along these."""
+    if not helds:
+        return bend, None
+    curved, frames = bend.copy(), []
+    for k, held in enumerate(helds):
+        jets = [chart.wall_jet(index, points[k]) for index in held]
+        normals = np.array([normal for _, normal, _ in jets]).reshape(-1, slope.shape[1])
+        weights = np.linalg.lstsq(normals.T, slope[k])[0]
+        for weight, (_, _, curve) in zip(weights, jets, strict=True):
+            curved[k] -= weight * curve
+        _, sizes, rows = np.linalg.svd(normals / np.linalg.norm(normals, axis=1, keepdims=True))
+        frames.append(rows[int(np.sum(sizes > 1e-9)) :].T)
+    return curved, frames
+
+
+def _inside(chart: Chart, start: Array, end: Array, held: list[int]) -> Array:
     """The end, or the last point inside the walls on the way to it from the start (slid back onto them)."""
-    if np.all(chart.margins(end) >= 0):
-        return end
-    back = _pulled_back(chart, end, float(np.linalg.norm(end - start)))
-    if back is not None:
-        return back
+    reach = float(np.linalg.norm(end - start))
+    for target in (_onto_walls(chart, end, held), end):
+        if np.all(chart.margins(target) >= 0):
+            return target
+        back = _pulled_back(chart, target, reach)
+        if back is not None:
+            return back
     low, high = 0.0, 1.0
-    for _ in range(60):
-        middle = (low + high) / 2
-        inside = bool(np.all(chart.margins(start + middle * (end - start)) >= 0))
-        low, high = (middle, high) if inside else (low, middle)
+    for _ in range(CUTS):
+        shares = np.linspace(low, high, PARTS + 1)
+        inside = np.all(chart.margins(start + shares[:, None] * (end - start)) >= 0, axis=0)
+        last = max(int(np.argmin(inside)), 1)  # the first outside
+        low, high = shares[last - 1], shares[last]
     result: Array = start + low * (end - start)
     return result
+
+
+def _onto_walls(chart: Chart, point: Array, held: list[int]) -> Array:
+    """The point moved onto walls by Newton steps."""
+    for _ in range(6 if held else 0):
+        jets = [chart.wall_jet(index, point) for index in held]
+        normals = np.array([normal for _, normal, _ in jets])
+        back = np.linalg.lstsq(normals, np.array([margin for margin, _, _ in jets]))[0]
+        point = point - back
+        if np.linalg.norm(back) <= 1e-15 * np.linalg.norm(point):
+            break
+    return point
 
 
 def _pulled_back(chart: Chart, point: Array, reach: float) -> Array | None:
     """The point moved to the inner side of the walls that it lies a little outside of; None if that is far."""
     moved = point.copy()
     for _ in range(12):
+        if np.linalg.norm(moved - point) > reach:
+            return None
         outside = [k for k, margin in enumerate(chart.margins(moved)) if margin < 0]
         if not outside:
             return moved if np.linalg.norm(moved - point) <= 0.3 * reach else None

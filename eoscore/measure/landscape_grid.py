@@ -7,6 +7,8 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from eoscore.measure.landscape_settled import round_about
+
 if TYPE_CHECKING:
     from numpy.typing import NDArray
 
@@ -46,6 +48,8 @@ class Grid:
             self.v = chart.value(self.points(np.indices(self.shape).reshape(len(axes), -1).T)).reshape(
                 self.shape
             )
+        if chart.walls:
+            self._close_slits()
 
     def points(self, index: Index) -> Array:
         """Chart coordinates of grid indices (n, d)."""
@@ -61,8 +65,31 @@ class Grid:
         return result
 
     def minima(self, most: int) -> Index:
-        """Indices (n, d) of the lowest inner points that no neighbour along an axis undercuts."""
-        return self._lowest(np.logical_and.reduce([self._turns(i, 1.0) for i in range(self.v.ndim)]), most)
+        """Indices (n, d) of the lowest inner points that no neighbour along an axis undercuts.
+
+        Between walls those come first that none aslant undercuts either: beside a wall aslant there is no end of
+        the others.
+        """
+        some = np.logical_and.reduce([self._turns(i, 1.0) for i in range(self.v.ndim)])
+        if not self.chart.walls:
+            return self._lowest(some, most)
+        from scipy import ndimage
+
+        true = some & (self.v <= ndimage.minimum_filter(self.v, size=3))
+        first = self._lowest(true, most)
+        rest = self._lowest(some & ~true, most - len(first))
+        result: Index = np.concatenate([first, rest])
+        return result
+
+    def _close_slits(self) -> None:
+        """Take out points that lie on walls with nothing inside them on any side: where two walls just meet."""
+        index = np.argwhere(np.isfinite(self.v))
+        points = self.points(index)
+        on = np.min(self.chart.margins(points), axis=0) <= 0
+        aside = np.maximum(self.chart.nudge, 1e-13 * np.linalg.norm(points[on], axis=1))
+        beside = points[on, None] + aside[:, None, None] * round_about(points.shape[1])
+        closed = np.all(np.min(self.chart.margins(beside), axis=0) <= 0, axis=1)
+        self.v[tuple(index[on][closed].T)] = np.inf
 
     def saddles(self, most: int) -> Index:
         """Indices (n, d) of the lowest inner points that are highest along one axis and lowest along the others."""
@@ -118,7 +145,10 @@ class Grid:
         chosen = tuple(ends[out[np.argmin(exits[out])]])
         outward = self.points(np.array([chosen]))[0] - bottom
         last = np.argwhere(self.v == level)
-        if not last.size or edge[tuple(last[0])] or exits[out].min() >= level > self.v[chosen]:
+        inner = last[~edge[tuple(last.T)]]
+        if inner.size and exits[out].min() < level:  # far outside many points may be as high as the pass
+            last = inner[np.argsort(np.linalg.norm(self.points(inner) - bottom, axis=1), kind="stable")]
+        elif not last.size or edge[tuple(last[0])] or exits[out].min() >= level > self.v[chosen]:
             return Leak(
                 level, float(self.v[start]), self.points(np.array([chosen]))[0], outward, at_infinity=True
             )

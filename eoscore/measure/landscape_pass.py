@@ -68,8 +68,8 @@ def still(slope: Array, size: Array, point: Array, chart: Chart) -> bool:
     return step <= 1e-6 * (float(np.linalg.norm(point)) + 1e3 * chart.nudge)
 
 
-def walled_passes(chart: Chart, start: Array, radius: float) -> list[Pass]:
-    """The passes that lie on walls within the radius of a start."""
+def walled_passes(chart: Chart, start: Array, radius: float, steps: int = STEPS) -> list[Pass]:
+    """The passes that lie on walls within the radius of a start, reached in so many steps."""
     near = []
     for index in range(len(chart.walls)):
         margin, normal, _ = chart.wall_jet(index, start)
@@ -78,16 +78,16 @@ def walled_passes(chart: Chart, start: Array, radius: float) -> list[Pass]:
     found = []
     for size in range(1, min(len(near), start.size - 1) + 1):
         for held in combinations(near, size):
-            reached = _along_walls(chart, start, radius, held)
+            reached = _along_walls(chart, start, radius, held, steps)
             if reached is not None:
                 found.append(reached)
     return found
 
 
-def _along_walls(chart: Chart, start: Array, radius: float, held: tuple[int, ...]) -> Pass | None:
+def _along_walls(chart: Chart, start: Array, radius: float, held: tuple[int, ...], steps: int) -> Pass | None:
     """The same steps, within the walls that hold."""
     point, best = start.copy(), np.inf
-    for _ in range(STEPS):
+    for _ in range(steps):
         slope, bend, frame, back = _reduced(chart, point, held)
         size, axes = np.linalg.eigh(bend)
         step = -(slope @ axes) / np.maximum(np.abs(size), 1e-13 * np.max(np.abs(size)) + 1e-300)

@@ -157,7 +157,8 @@ def _range_within(f: Formula, name: str, reach: Array) -> Array:
         both = np.stack([f.evaluate({name: radii}), f.evaluate({name: -radii})])
         if not np.isfinite(both[0, 0]):
             size = np.abs(both[:, 1:])
-            lowered = np.logical_and.accumulate(~(size[:, 1:] >= size[:, :-1]), axis=1)
+            rising = (size[:, 1:] >= size[:, :-1]) & np.isfinite(size[:, 1:])
+            lowered = np.logical_and.accumulate(~rising, axis=1)
             both[:, 1:-1][lowered] = np.nan
         both = np.where(np.isfinite(both), both, np.nan)
         least = np.fmin.accumulate(np.fmin(both[0], both[1]))

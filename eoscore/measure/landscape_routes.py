@@ -10,6 +10,7 @@ import numpy as np
 from eoscore.measure.landscape_creased_pass import creased_passes
 from eoscore.measure.landscape_descent import descend
 from eoscore.measure.landscape_pass import Pass, passes_from, walled_passes
+from eoscore.measure.landscape_settled import round_about
 
 if TYPE_CHECKING:
     from eoscore.measure.landscape_chart import Array, Chart
@@ -21,6 +22,7 @@ OUT = -1
 MOST_STARTS = 100
 MOST_WELLS = 12
 MOST_CREASED = 10
+DISTANCES, FEW = 4, 30  # at which passes on walls are looked for, and Newton steps to each
 SEEN = 0.02
 CLOSE = 0.15  # of the depth: a pass this near the grid's level is the one the grid has seen
 
@@ -40,6 +42,9 @@ def lowest_way_out(chart: Chart, grid: Grid, leak: Leak | None, minima: Array) -
     others = _passes(chart, grid, minima, np.inf if best is None else best.value - 1e-12 * abs(best.value))
     if best is None or others:
         best = _through(chart, _distinct(chart, found + others), minima)
+    if best is None and chart.walls:
+        found = _distinct(chart, found + others + _along_walls(chart, grid, minima[0]))
+        best = _through(chart, found, minima)
     if (
         best is None and leak is not None
     ):  # a long chain of wells: the grid has seen that this is its highest pass
@@ -95,17 +100,35 @@ def _passes(chart: Chart, grid: Grid, minima: Array, ceiling: float) -> list[Pas
     return _distinct(chart, [one for one in found if one.value < ceiling])
 
 
+def _along_walls(chart: Chart, grid: Grid, bottom: Array) -> list[Pass]:
+    """Passes on walls reached from all round the bottom, at several distances."""
+    ways = round_about(bottom.size)
+    reach = np.concatenate([np.abs(axis[axis != 0]) for axis in grid.axes])
+    near, far = (max(float(np.quantile(reach, share)), 1e8 * chart.nudge) for share in (0.1, 0.7))
+    found: list[Pass] = []
+    for distance in np.geomspace(near, far, DISTANCES):
+        for way in ways:
+            found += walled_passes(chart, bottom + distance * way, float(distance) / 2, FEW)
+    return found
+
+
 def _distinct(chart: Chart, found: list[Pass]) -> list[Pass]:
     """Passes inside the walls, each once, lowest first."""
     kept: list[Pass] = []
     for one_pass in sorted(found, key=lambda p: p.value):
-        margins = chart.margins(one_pass.point)
-        if np.min(margins, initial=0.0) < -1e-9 * np.max(np.abs(margins), initial=0.0):
+        if _outside(chart, one_pass.point):
             continue
         close = 1e-6 * (np.linalg.norm(one_pass.point) + 1e6 * chart.nudge)
         if not any(np.linalg.norm(one_pass.point - other.point) <= close for other in kept):
             kept.append(one_pass)
     return kept
+
+
+def _outside(chart: Chart, point: Array) -> bool:
+    """Whether a point lies outside a wall by more than rounding."""
+    slack = 1e-9 * (np.linalg.norm(point) + 1e3 * chart.nudge)
+    jets = (chart.wall_jet(index, point) for index in range(len(chart.walls)))
+    return any(margin < -slack * np.linalg.norm(normal) for margin, normal, _ in jets)
 
 
 def _ends(chart: Chart, passes: list[Pass], wells: list[Array]) -> list[tuple[int, int]]:

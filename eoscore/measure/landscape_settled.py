@@ -20,7 +20,7 @@ if TYPE_CHECKING:
 
     from eoscore.measure.landscape_chart import Array, Chart
 
-__all__ = ["rests", "settled"]
+__all__ = ["rests", "round_about", "settled"]
 
 ROUNDS = 150
 BESIDE = 1e-6  # of a length over which V is resolved: a way down that ends this near a crease was ended by it
@@ -62,7 +62,7 @@ def rests(chart: Chart, points: Array, scale: float) -> tuple[NDArray[np.bool_],
     """Which of points (n, d) lie on creases, and beside which V is nowhere lower: directions at several distances."""
     on = np.min(chart.creases.distance(chart, points), axis=0) <= BESIDE * scale
     lowest = np.ones(len(points), bool)
-    ways = _round_about(points.shape[1])
+    ways = round_about(points.shape[1])
     turned = np.linalg.qr(np.random.default_rng(5).normal(size=(points.shape[1],) * 2))[0]
     for aside in scale * np.array([1e-2, 1e-4]):
         v = chart.value(points)
@@ -93,13 +93,13 @@ def _brought_down(
 def _sampled(chart: Chart, points: Array, values: Array, radius: Array, scale: float) -> tuple[Array, Array]:
     """Down by means of slopes sampled within radii (n,), until these have shrunk to rounding."""
     points, values, radius = points.copy(), values.copy(), np.minimum(radius, scale)
-    rng, round_about = np.random.default_rng(11), _round_about(points.shape[1])
+    rng, ways = np.random.default_rng(11), round_about(points.shape[1])
     for _ in range(ROUNDS):
         smallest = 1e-14 * (np.linalg.norm(points, axis=1) + scale)
         now = np.flatnonzero((radius > smallest) & (np.linalg.norm(points, axis=1) < chart.reach))
         if not now.size:
             break
-        turned = round_about @ np.linalg.qr(rng.normal(size=(points.shape[1],) * 2))[0]
+        turned = ways @ np.linalg.qr(rng.normal(size=(points.shape[1],) * 2))[0]
         slopes = _slopes(chart, points[now, None] + radius[now, None, None] * turned)
         mean = _shortest(slopes)
         size, steepest = np.linalg.norm(mean, axis=1), np.max(np.linalg.norm(slopes, axis=2), axis=1)
@@ -118,7 +118,7 @@ def _sampled(chart: Chart, points: Array, values: Array, radius: Array, scale: f
     return points, values
 
 
-def _round_about(dimension: int) -> Array:
+def round_about(dimension: int) -> Array:
     """Unit vectors along the axes and between them, (m, d)."""
     ways = np.array([way for way in product((-1.0, 0.0, 1.0), repeat=dimension) if any(way)])
     return np.asarray(ways / np.linalg.norm(ways, axis=1, keepdims=True))

@@ -9,7 +9,7 @@ import numpy as np
 from eoscore.measure.landscape_axes import axes_of
 from eoscore.measure.landscape_bottom import minimum_at
 from eoscore.measure.landscape_chart import Chart
-from eoscore.measure.landscape_descent import descend
+from eoscore.measure.landscape_descent import along_walls, descend, held_walls
 from eoscore.measure.landscape_distinct import distinct
 from eoscore.measure.landscape_grid import Grid, Leak
 from eoscore.measure.landscape_record import Escape, Landscape, Minimum, sense
@@ -29,6 +29,7 @@ __all__ = ["survey_space"]
 MOST_STARTS = 300
 MOST_WALLED = 40  # with walls each start is followed by itself
 MOST_POINTS = 30_000
+ROUNDED = 1e-7  # of the largest curvature: a negative one below it is none
 ASIDE = 0.01  # of the least length at which anything happens
 
 
@@ -94,12 +95,18 @@ def _minima(chart: Chart, grid: Grid, axes: list[Axis]) -> tuple[Array, Array, A
 
 
 def _stands(chart: Chart, points: Array) -> NDArray[np.bool_]:
-    """Whether no curvature is negative; on walls that is left open."""
-    size = np.linalg.eigvalsh(np.nan_to_num(chart.jet(points)[2]))
-    stands: NDArray[np.bool_] = size[:, 0] >= -1e-7 * np.max(np.abs(size), axis=1)
-    if chart.walls:
-        stands |= np.min(chart.margins(points), axis=0) <= 1e-9 * np.max(chart.margins(points), axis=0)
-    return stands
+    """Whether no curvature is negative; on walls, whether none along them is."""
+    _, slope, bend = (np.nan_to_num(rows) for rows in chart.jet(points))
+    helds = (
+        [held_walls(chart, point, g) for point, g in zip(points, slope, strict=True)] if chart.walls else []
+    )
+    curved, frames = along_walls(chart, points, slope, bend, helds)
+    if frames is None:
+        size = np.linalg.eigvalsh(curved)
+        stands: NDArray[np.bool_] = size[:, 0] >= -ROUNDED * np.max(np.abs(size), axis=1)
+        return stands
+    along = [np.linalg.eigvalsh(f.T @ c @ f) for f, c in zip(frames, curved, strict=True)]
+    return np.array([not size.size or size[0] >= -ROUNDED * np.max(np.abs(size)) for size in along], bool)
 
 
 def _falls(chart: Chart, points: Array, aside: float) -> NDArray[np.bool_]:

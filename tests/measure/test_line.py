@@ -147,3 +147,11 @@ def test_a_core_is_cut_out():
     v = np.array([0.1, 1.0, 10.0])
     measure = omega("r", r + choose(less(r, 1.0), 100.0, 0.0))
     np.testing.assert_allclose(measure.volume(v * S), 4 * np.pi / 3 * L**3 * ((1 + v) ** 3 - 1), rtol=1e-11)
+
+
+def test_poles_that_cancel_where_both_are_infinite():
+    """(r0/r)^12 - 2 (r0/r)^6: bottom -1 at r0, curvature 72/r0^2; far inside it is infinity less infinity."""
+    found = survey(Field(("r",), S * (r**-12 - 2 * r**-6)))
+    assert found.bottom.position[0] == pytest.approx(L, rel=1e-13)
+    assert found.bottom.curvatures == pytest.approx((0, 0, 72 * S / L**2), rel=1e-12)
+    assert found.depth == pytest.approx(S, rel=1e-12)
