@@ -81,8 +81,9 @@ def _level_along(chart: Chart, point: Array, value: float, axis: Array, scale: f
     """Whether V is level along a straight line ("straight"), a curve ("bends"), or rises.
 
     A point aside, far enough for V to differ, slides back to the bottom if V rises, to its own part of a curve
-    if that is level.
+    if that is level. Where V has not risen at all before it does, there is a floor with an edge.
     """
+    floor = False
     for reach in np.geomspace(0.05 * scale, chart.reach, 12):
         aside = point + reach * axis
         across = chart.value(point + reach * np.vstack([np.eye(point.size), -np.eye(point.size)]))
@@ -94,7 +95,10 @@ def _level_along(chart: Chart, point: Array, value: float, axis: Array, scale: f
         if risen > slack:
             ends, values = descend(chart, aside[None], np.array([0.1 * reach]))
             moved = float(np.linalg.norm(ends[0] - point)) > 0.3 * reach
-            return "bends" if moved and values[0] - value <= slack else "rises"
+            if moved and values[0] - value <= slack:
+                return "bends"
+            return "straight" if floor else "rises"
+        floor |= risen == 0.0
     return "straight"
 
 

@@ -157,7 +157,8 @@ def _escape(
     if found is not None and found.value < limit:
         way = found.way if found.way @ (found.point - minima[0]) >= 0 else -found.way
         doubt = 1e-12 if leak is None or leak.energy > found.value - 0.3 * (found.value - low) else 0.3
-        return Escape(chart.names, found.value, tuple(found.point.tolist()), tuple(way.tolist())), doubt
+        place = np.where(chart.radial, np.abs(found.point), found.point)
+        return Escape(chart.names, found.value, tuple(place.tolist()), tuple(way.tolist())), doubt
     if leak is None:
         return None, 1e-12
     out = tuple((leak.outward / np.linalg.norm(leak.outward)).tolist())

@@ -130,6 +130,7 @@ def test_scaling_all_lengths_scales_the_landscape():
         (Field(("x",), constant(0), (x, S - x)), "flat", (0,)),
         (Field(("x", "y"), constant(0), (S**2 - x**2 - y**2,)), "flat", (0, 0)),
         (Field(("x",), choose(less(call("abs", x), S), 0.0, E * (call("abs", x) / S - 1) ** 2)), "flat", (0,)),
+        (Field(("x", "y"), choose(less(x**2 + y**2, S**2), 0.0, constant(E))), "flat", (0, 0)),
         (Field(("x",), E * x**4 / S**4), "other", None),
         (Field(("x", "y"), E * (x**4 + y**4 + x**2 * y**2) / S**4), "other", None),
         (Field(("r",), E * r / S), "cone", None),
