@@ -26,6 +26,6 @@ def given_of(question: Question) -> dict[str, Given]:
 
 
 def percent(share: float) -> str:
-    """A relative change such as `-1.3 %` or `+240 %`: two digits, and no power of ten."""
+    """A relative change such as `-1.3 %` or `+240 %`: two digits, and no power of ten where it can be read."""
     digits = f"{100.0 * share:+.2g}"
-    return f"{digits if 'e' not in digits else f'{100.0 * share:+.0f}'} %"
+    return f"{f'{100.0 * share:+.0f}' if 'e+0' in digits else digits} %"

@@ -19,8 +19,9 @@ if TYPE_CHECKING:
 
     from eoscore.answer.record import FoundAnswer, Interval
 
-__all__ = ["Column", "grid_columns", "grid_rows", "grid_table", "hidden_rows"]
+__all__ = ["Column", "grid_columns", "grid_rows", "grid_tables", "hidden_rows"]
 
+_GAP = 2  # blanks between columns
 _ROWS = 40  # more rows than this are cut in the middle
 
 
@@ -69,15 +70,32 @@ def _flat(interval: Interval | None, shape: tuple[int, ...], entry: int) -> Inte
     return replace(interval, low=low, high=high, answered=answered)
 
 
-def grid_table(answer: FoundAnswer) -> Table:
-    """The grid for a screen: one prefix per column, cut in the middle where it is long."""
+def grid_tables(answer: FoundAnswer, width: int) -> Iterator[Table]:
+    """The grid for a screen: one prefix per column, cut in the middle where it is long.
+
+    Where its columns do not stand side by side in `width` characters, further tables repeat the names of the grid.
+    """
     heads, rows = grid_rows(answer)
-    table = columns(*heads)
-    for column in table.columns:
-        column.justify = "right"
-    for row in rows:
-        table.add_row(*row)
-    return table
+    sizes = [max(map(len, column)) + _GAP for column in zip(heads, *rows, strict=True)]
+    for shown in _side_by_side(sizes, len(answer.over), width):
+        table = columns(*(heads[place] for place in shown))
+        for column in table.columns:
+            column.justify = "right"
+        for row in rows:
+            table.add_row(*(row[place] for place in shown))
+        yield table
+
+
+def _side_by_side(sizes: list[int], names: int, width: int) -> Iterator[list[int]]:
+    """Columns that fit a width, each time after those of the names; one at least."""
+    axes = list(range(names))
+    shown = axes.copy()
+    for place in range(names, len(sizes)):
+        if len(shown) > names and sum(sizes[each] for each in (*shown, place)) > width:
+            yield shown
+            shown = axes.copy()
+        shown.append(place)
+    yield shown
 
 
 def grid_rows(answer: FoundAnswer) -> tuple[tuple[str, ...], list[tuple[str, ...]]]:

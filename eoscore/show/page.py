@@ -9,7 +9,7 @@ import numpy as np
 
 from eoscore.answer.record import DerivedAnswer
 from eoscore.show.formulas import formula_lines
-from eoscore.show.grid_table import grid_table, hidden_rows
+from eoscore.show.grid_table import grid_tables, hidden_rows
 from eoscore.show.prefix import fitting, quantity, written
 from eoscore.show.table import columns, console_on, paragraph, put
 
@@ -42,7 +42,10 @@ def _print_answer(answer: Answer, console: Console) -> None:
         for line in formula_lines(answer):
             paragraph(console, line)
     elif answer.over:
-        put(console, grid_table(answer))
+        for number, table in enumerate(grid_tables(answer, console.width)):
+            if number:
+                console.print()
+            put(console, table)
         if hidden := hidden_rows(answer):
             paragraph(console, f"{hidden} rows more; --out FILE.csv writes them all")
     else:

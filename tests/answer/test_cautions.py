@@ -184,7 +184,14 @@ def test_a_hot_gas_fills_its_momentum_zone():
 
 @pytest.mark.parametrize(
     ("share", "words"),
-    [(-0.0132, "-1.3 %"), (0.5, "+50 %"), (-0.9999, "-100 %"), (-13.7, "-1370 %"), (2e-7, "+0 %")],
+    [
+        (-0.0132, "-1.3 %"),
+        (0.5, "+50 %"),
+        (-0.9999, "-100 %"),
+        (-13.7, "-1370 %"),
+        (2e-7, "+2e-05 %"),
+        (-7e98, "-7e+100 %"),
+    ],
 )
 def test_relative_changes_read_without_powers_of_ten(share, words):
     assert percent(share) == words

@@ -110,3 +110,11 @@ def test_an_expansion_tells_what_is_small_with_or_without_numbers(value, words):
 def test_formula_and_engine_that_part_are_told():
     formula = {"sympy": "...", "text": "T_c = N", "value": None, "numerical": 1.0, "why": "they part"}
     assert "no number, because they part" in page(DerivedAnswer(3, "", "a", "b", {}, {"T_c": formula}))
+
+
+def test_a_grid_that_is_too_wide_stands_in_several_tables():
+    found = {f"quantity_number_{place}": finding([1.25e-31, 1.0 / 3], "J") for place in range(9)}
+    lines = page(answer(found, over={"P": [1, 2]}, units={"P": "W"})).splitlines()
+    assert max(map(len, lines)) <= 110
+    assert sum(line.startswith("P (W)") for line in lines) == 3
+    assert sum(line.count("0.333333") for line in lines) == 9
