@@ -21,7 +21,7 @@ if TYPE_CHECKING:
 
 __all__ = ["Column", "grid_columns", "grid_rows", "grid_tables", "hidden_rows"]
 
-_GAP = 2  # blanks between columns
+_GAP = 3  # blanks between columns
 _ROWS = 40  # more rows than this are cut in the middle
 
 
