@@ -99,6 +99,12 @@ class _Walker:
         turning = np.flatnonzero(slope * d < 0)
         if turning.size:
             self._turn(before[turning], q[turning], active[turning], np.sign(slope[turning]))
+            if self.line.clear:  # a summit above the end is where the ray leaves, however low it lies beyond
+                over = self.rows[-1][1][active] >= self.end
+                q, v, d = (
+                    np.where(over, row[active], new)
+                    for row, new in zip(self.rows[-1], (q, v, d), strict=True)
+                )
         self._add(active, q, v, d)
         done = q >= self.leaving[active]
         done[out] = True
