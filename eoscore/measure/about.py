@@ -2,144 +2,91 @@
 
 from __future__ import annotations
 
+from copy import copy
 from fractions import Fraction
-from functools import partial
 from math import inf
 from typing import TYPE_CHECKING
 
 import numpy as np
 
 from eoscore.errors import NoAnswerError
-from eoscore.measure.angular import Angular
+from eoscore.measure.angular import ROOTS
 from eoscore.measure.critical import saddles
+from eoscore.measure.landscape_chart import Chart
+from eoscore.measure.landscape_record import Minimum
 from eoscore.measure.mesh import SKETCH, held_lines, typical_level
-from eoscore.measure.partition import Partition
+from eoscore.measure.moments import cumulated, edges_of
+from eoscore.measure.need import Need
 from eoscore.measure.rays import Declined
-from eoscore.measure.region import Region
 from eoscore.measure.sampled import Sampled
+from eoscore.measure.wells import MOST_WELLS, Wells
 
 if TYPE_CHECKING:
-    from collections.abc import Callable, Sequence
+    from collections.abc import Sequence
 
     from numpy.typing import NDArray
 
     from eoscore.formula.field import Field
     from eoscore.measure.base import FloatArray, Measure
-    from eoscore.measure.landscape_record import Landscape, Minimum
+    from eoscore.measure.landscape_record import Landscape
+    from eoscore.measure.panel import Panel
+    from eoscore.measure.wells import How
 
-__all__ = ["NEARING", "OPEN", "Wells", "about", "refuse_infinite"]
+__all__ = ["NEARING", "OPEN", "about", "refuse_infinite"]
 
-BENT = 1e-2  # change of V against its quadratic form at which the form ends
 RUNG = 16.0  # ratio of the energies for which rays are walked anew
 LOWEST, DEEPEST = -1, -12  # the rung that serves all lower energies, where the bottom is known and where not
 STEP, STEADY = 4.0, 1e-6  # of energies on the way to a bottom, and the change of a power that counts as none
 COARSE = 1e-3  # error on the way there at which boxes do better
 ROUNDED = 1e-8  # of V at the bottom: nearer to it too few digits are left
 GOOD, FAIR = 3e-5, 3e-4  # errors at 0.8 of the level and at the level itself, at which boxes do better
-MOST_WELLS = 12
 TOGETHER = 20  # energies that share their rays
 OPEN = 0.99  # of the depth: a ceiling below this keeps away from an escape at infinity
 NEARING = np.array([7 / 8, 31 / 32])
 GROWTH = 1.4  # power of 1/(depth - v) in Omega at which, with 3/2 from the momenta, states are without number
-SERIES = 0.1  # of that energy: below, Omega / v^{d/2} is a series from its exact beginning
-
-
-class Wells:
-    """Omega of wells together below `end` (J from the lowest). Raises Declined where they are too many.
-
-    few: take no more rays than a try is worth.
-    """
-
-    def __init__(self, field: Field, minima: Sequence[Minimum], end: float, *, few: bool = False) -> None:
-        kept = [minimum for minimum in minima if minimum.value - minima[0].value < end]
-        if len(kept) > MOST_WELLS:
-            raise Declined
-        self.rises = [minimum.value - minima[0].value for minimum in kept]
-        region = Region(field, kept, end)
-        shares = _shares(kept, region)
-        self.wells = [
-            _Well(Angular(field, minimum, end - rise, region, share, few=few))
-            for minimum, rise, share in zip(kept, self.rises, shares, strict=True)
-        ]
-        self.exponent, self.scale = self.wells[0].exponent, self.wells[0].scale
-
-    def with_error(self, v: FloatArray) -> tuple[FloatArray, FloatArray]:
-        """Omega at energies (n,) above 0, and its relative error."""
-        total, miss = np.zeros_like(v), np.zeros_like(v)
-        for well, rise in zip(self.wells, self.rises, strict=True):
-            above = v > rise
-            if above.any():
-                volume, error = well.with_error(v[above] - rise)
-                total[above] += volume
-                miss[above] += volume * error
-        return total, miss / total
-
-
-class _Well:
-    """One well; near its bottom Omega / v^k is a polynomial through five values, its exact limit among them.
-
-    Where the power k is not known, Omega is solved along the rays all the way down.
-    """
-
-    def __init__(self, angular: Angular) -> None:
-        self.angular = angular
-        self.exponent = angular.exponent
-        self.scale, self.edge = angular.end, 0.0
-        if self.exponent is not None:
-            self.scale = _scale(angular, angular.end)
-            self.edge = SERIES * self.scale
-            self._series(self.exponent)
-
-    def with_error(self, v: FloatArray) -> tuple[FloatArray, FloatArray]:
-        """Omega at energies (n,) above the bottom of the well, and its relative error."""
-        if self.exponent is None:
-            return self.angular.with_error(v)
-        result = np.asarray(np.polyval(self.series, np.minimum(v / self.edge, 1.0)) * v**self.exponent)
-        error = np.full(v.shape, self.error)
-        above = v > self.edge
-        if above.any():
-            result[above], error[above] = self.angular.with_error(v[above])
-        return result, error
-
-    def _series(self, exponent: float) -> None:
-        exact = self.angular.degree == 2
-        share = np.array([0.25, 0.5, 0.75, 1.0] if exact else [0.2, 0.4, 0.6, 0.8, 1.0])
-        volume, error = self.angular.with_error(self.edge * share)
-        ratio, self.error = volume / (self.edge * share) ** exponent, float(error.max())
-        if exact:
-            share, ratio = np.append(share, 0.0), np.append(ratio, self.angular.limit)
-        self.series = np.linalg.solve(np.vander(share), ratio)
-
-
-def _shares(minima: Sequence[Minimum], region: Region) -> list[Callable[[FloatArray], FloatArray] | None]:
-    """The share of space of each well; None for one alone."""
-    if len(minima) == 1:
-        return [None]
-    partition = Partition(np.array([m.position for m in minima]), region.size)
-    return [partial(partition.share, k) for k in range(len(minima))]
+SAME = 1e-9  # relative, of the energy of a pass
+APART = 2.0  # times the highest pass between wells: from there on rays from one bottom serve for all
 
 
 class Ladder:
     """Omega from wells along rays, which are walked anew for energies RUNG times as high; errors by energy.
 
-    level: the highest energy (J), or, without a top, one from which rungs go up without end. Raises Declined
-    where the wells cannot be taken so with the accuracy of GOOD and FAIR.
+    level: the highest energy (J), or, without a top, one from which rungs go up without end. passes: saddles
+    between the wells below the level, the lowest first. Raises Declined where the wells cannot be taken so with the
+    accuracy of GOOD and FAIR.
     """
 
-    def __init__(self, field: Field, minima: Sequence[Minimum], level: float, top: float) -> None:
+    def __init__(
+        self, field: Field, minima: Sequence[Minimum], level: float, top: float, passes: Sequence[Minimum]
+    ) -> None:
         self.field, self.minima, self.level, self.top = field, minima, level, top
-        self._made: dict[int, Wells] = {}
+        self.passes = passes if len(minima) > 1 else ()
+        marks = [one.value - minima[0].value for one in (*self.passes, *(minima if self.passes else ()))]
+        self.lowest_pass, self.highest_pass = marks[0] if marks else inf, max(marks, default=inf)
         self.lowest = LOWEST
-        self._known = np.empty((0, 2))
-        shares = np.array([0.8, 1.0])
-        self(level * shares)
-        if np.any(self._known[:, 1] > [GOOD, FAIR]):
-            raise Declined
-        wells = self._wells(0)
+        self._made: dict[tuple[int, How], Wells] = {}
+        self._asked(Need(wanted=GOOD / 3))
+        if not self._wells(self.level, 0.0).plain:
+            self(level * np.array([0.8, 1.0]))
+            if np.any(self._known[1:, 1] > [GOOD, FAIR]):
+                raise Declined
+        self._asked(Need())
+        wells = self._wells(self.level, 0.0)
         self.scale = wells.scale
         self.foot: float | None = None
         self.lowest = LOWEST if wells.exponent is not None else DEEPEST
         self.exponent = wells.exponent if wells.exponent is not None else self._beginning()
+
+    def _asked(self, need: Need) -> None:
+        self._need, self._known = need, np.array([[0.0, ROOTS]])
+
+    def eased(self, kT: float) -> Ladder:
+        """The same wells, only as well known at each energy as sums at temperatures up to kT (J) need it."""
+        other = copy(self)
+        other._asked(Need(kT))
+        if self.foot is not None:
+            other._known = self._known[:2]
+        return other
 
     def _beginning(self) -> float:
         """The power with which Omega begins; sets the foot, below which it counts as that power."""
@@ -159,21 +106,37 @@ class Ladder:
         exponent = near if abs(near - slopes[-1]) < 10 * STEADY else slopes[-1]
         self.foot, self.scale = v[-1], v[-1]
         miss = np.array([[v[-1], abs(slopes[-1] - exponent) + abs(slopes[-1] - slopes[-2])]])
-        self._known = np.concatenate([miss, self._known[self._known[:, 0] > v[-1]]])
+        self._known = np.concatenate([self._known[:1], miss, self._known[self._known[:, 0] > v[-1]]])
         return exponent
 
     def __call__(self, v: FloatArray) -> FloatArray:
         """Omega at energies (n,) above 0, in any order."""
         result, errors = np.empty_like(v), np.empty_like(v)
-        rungs = self._rungs(v)
-        for k in np.unique(rungs).tolist():
-            mine = np.flatnonzero(rungs == k)
-            mine = mine[np.argsort(v[mine])]
+        order = np.argsort(v)
+        edges = np.array([self.lowest_pass * (1 + SAME), APART * self.highest_pass])
+        keys = np.stack([self._rungs(v), np.searchsorted(edges, v)])[:, order]
+        groups = np.split(order, 1 + np.flatnonzero(np.any(np.diff(keys, axis=1), axis=0)))
+        for mine in groups:
+            wells = self._wells(float(v[mine[-1]]), float(v[mine[0]]))
             for part in np.array_split(mine, -(-mine.size // TOGETHER)):  # the lower ones need fewer rays
-                result[part], errors[part] = self._wells(k).with_error(v[part])
+                result[part], errors[part] = wells.with_error(v[part], self._need)
+        self._remember(v, errors)
+        return result
+
+    def project(self, stretch: Panel, parts: int, base: float) -> FloatArray:
+        """Omega on the parts of a stretch (parts, n) as coefficients of T_n, from `base` at its start.
+
+        For smooth functions g it gives int g dOmega, though Omega itself may be rough between the edges.
+        """
+        moments, miss = self._wells(stretch.hi, stretch.lo).moments(stretch, parts, base, self._need)
+        series = cumulated(moments, base)
+        ends = series.sum(axis=1)
+        self._remember(edges_of(stretch, parts)[1:], np.maximum(miss / ends, ROOTS))
+        return series
+
+    def _remember(self, v: FloatArray, errors: FloatArray) -> None:
         known = np.concatenate([self._known, np.stack([v, errors], axis=1)])
         self._known = known[np.argsort(known[:, 0], kind="stable")]
-        return result
 
     def error_below(self, v: FloatArray) -> FloatArray:
         """Relative error up to energies, as far as it is known."""
@@ -181,18 +144,38 @@ class Ladder:
         return np.asarray(worst[np.minimum(np.searchsorted(known, v * (1 - 1e-12)), known.size - 1)])
 
     def release(self) -> None:
-        """Let go of the rays walked so far; they take tens of megabytes."""
-        self._made.clear()
+        """Let go of the rays walked so far."""
+        for wells in self._made.values():
+            wells.release()
 
     def _rungs(self, v: FloatArray) -> NDArray[np.int_]:
         """Number of the rung up to which an energy belongs, 0 the one that ends at the level."""
         rungs = np.ceil(np.log(v / self.level) / np.log(RUNG) - 1e-9).astype(int)
         return np.asarray(np.clip(rungs, self.lowest, 0 if self.top < inf else None))
 
-    def _wells(self, k: int) -> Wells:
-        if k not in self._made:
-            self._made[k] = Wells(self.field, self.minima, self.level * RUNG**k)
-        return self._made[k]
+    def _wells(self, upto: float, low: float) -> Wells:
+        """What tells Omega from an energy up to another, in one rung."""
+        k = int(self._rungs(np.array([upto]))[0])
+        how: How = "shared"
+        if upto <= self.lowest_pass * (1 + SAME) < inf:
+            how = "apart"
+        elif low >= APART * self.highest_pass:
+            how = "joined"
+        if (k, how) not in self._made:
+            end = self.level * RUNG**k
+            try:
+                self._made[k, how] = Wells(
+                    self.field,
+                    self.minima,
+                    min(end, self.lowest_pass) if how == "apart" else end,
+                    how,
+                    self.passes,
+                )
+            except Declined:
+                if how == "shared":
+                    raise
+                self._made[k, how] = Wells(self.field, self.minima, end)
+        return self._made[k, how]
 
 
 def about(field: Field, landscape: Landscape, ceiling: float) -> Measure | None:
@@ -205,25 +188,45 @@ def about(field: Field, landscape: Landscape, ceiling: float) -> Measure | None:
     ):
         return None
     level = top if top < inf else typical_level(field, landscape.bottom.value)
+    rises = [minimum.value - landscape.bottom.value for minimum in landscape.minima[1:]]
+    passes, places = saddles(field, _lines(field, landscape, level), landscape.bottom.value, level)
+    between = [
+        Minimum(tuple(place), landscape.bottom.value + rise, "other", bend)
+        for rise, place, bend in zip(
+            passes.tolist(), places.tolist(), Chart(field).jet(places)[2], strict=True
+        )
+    ]
     try:
-        ladder = Ladder(field, landscape.minima, level, top)
+        ladder = Ladder(field, landscape.minima, level, top, between)
     except Declined:
         return None
     escape = landscape.escape
     if escape is not None and escape.position is None and top > OPEN * landscape.depth:
         refuse_infinite(*ladder(level * NEARING))
-    rises = [minimum.value - landscape.bottom.value for minimum in landscape.minima[1:]]
-    passes = saddles(field, _lines(field, landscape, level), landscape.bottom.value, level)
-    return Sampled(
+    return _sampled(ladder, (*rises, *passes.tolist()))
+
+
+def _sampled(
+    ladder: Ladder, breaks: tuple[float, ...], parent: Sampled | None = None, kT: float = inf
+) -> Sampled:
+    def ease(kT: float) -> Sampled:
+        return _sampled(ladder.eased(kT), breaks, whole, kT)
+
+    whole = Sampled(
         ladder,
         ladder.exponent,
         scale=ladder.scale,
         foot=ladder.foot,
-        top=top,
+        top=ladder.top,
         error=ladder.error_below,
         route="about the bottom",
-        breaks=(*rises, *passes),
+        breaks=breaks,
+        kT=kT,
+        ease=ease if parent is None else None,
+        project=None if parent is None else ladder.project,
+        parent=parent,
     )
+    return whole
 
 
 def refuse_infinite(lower: float, upper: float) -> None:
@@ -237,20 +240,3 @@ def refuse_infinite(lower: float, upper: float) -> None:
 
 def _lines(field: Field, landscape: Landscape, level: float) -> list[FloatArray]:
     return held_lines(field, landscape.minima, level, SKETCH[len(field.coordinates)])
-
-
-def _scale(angular: Angular, end: float) -> float:
-    """The energy, at most `end`, at which V leaves its quadratic form by a hundredth along a principal axis."""
-    found, size = end, abs(angular.v_min)
-    q = angular.radius(end) * np.geomspace(1e-9, 1.0, 300)
-    form = q**2 / 2 if angular.degree == 2 else q
-    names = angular.field.coordinates
-    for along in np.concatenate([angular.frame.T, -angular.frame.T]):
-        x = angular.start[:, None] + along[:, None] * q
-        v = angular.field.formula.evaluate(dict(zip(names, x, strict=True))) - angular.v_min
-        ratio = v / form
-        clear = form > 1e-10 * size
-        bent = np.flatnonzero(clear & ~(np.abs(ratio / ratio[np.argmax(clear)] - 1) <= BENT))
-        if bent.size:
-            found = min(found, float(form[bent[0]]))
-    return found

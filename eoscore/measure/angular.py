@@ -11,24 +11,30 @@ import numpy as np
 
 from eoscore.formula import evaluate_many, gradient, variable
 from eoscore.formula.field import Field
-from eoscore.measure.patches import Box, Patches
-from eoscore.measure.rays import Line, Rays
+from eoscore.measure.moments import along_rays, edges_of, weights
+from eoscore.measure.patches import Box, Patches, eased
+from eoscore.measure.rays import Line, Rays, unstretched
 
 if TYPE_CHECKING:
     from collections.abc import Callable
 
+    from numpy.typing import NDArray
+
     from eoscore.measure.base import FloatArray
     from eoscore.measure.landscape_record import Minimum
+    from eoscore.measure.need import Wanted
+    from eoscore.measure.panel import Panel
     from eoscore.measure.region import Region
 
-__all__ = ["Angular"]
+__all__ = ["ROOTS", "Angular"]
 
 Shape = Literal["cube", "circle", "about axis"]  # `about axis`: (rho, z) directions, rho >= 0
 
 ON_AXIS = 1e-9  # of the width of a well: a bottom this close to the axis lies on it
 ASIDE = 1e-10  # m beside the tip of a cone
 ROOTS = 1e-13  # error of the roots
-BEGIN = 1e-3  # of the guessed reach: where a walk begins
+BENT = 1e-2  # change of V against its form at the bottom, at which the form ends
+EARLY, BEGIN = 0.2, 1e-3  # of the reach there, and of that of all energies: where a walk begins at the latest
 MOST = {1: 12_000, 2: 18_000}  # rays, for one or two parameters of direction
 FAR = 4.0  # times the reach of the form at the bottom: arms beyond it ask for stretched lines
 SEEN = 6000  # points of the region that are looked at from the bottom
@@ -60,7 +66,7 @@ class Angular:
         *,
         few: bool = False,
     ) -> None:
-        self.degree, self.frame = _frame(field, bottom, region)
+        self.degree, self.frame = _frame(field, bottom, region, end)
         self.start, self.v_min, self.end = np.array(bottom.position), bottom.value, end
         turning = field.coordinates == ("rho", "z")
         if turning and self.degree == 2 and abs(bottom.position[0]) <= self._slack():
@@ -82,20 +88,58 @@ class Angular:
         self.exponent = self.power / self.degree if self.degree else None
         self.share = share
         self.line = self._line(region)
+        self.scale = self._scale() if self.degree else end
         mirrors, self.twins = self._symmetries()
         self.det *= 2 ** len(mirrors)
         most = MOST[2 if self.shape == "cube" else 1] // (FEW if few else 1)
         many = MANY // 2 ** len(mirrors) // (2 if self.twins else 1)
         self.patches = Patches(self._rays, _first(self.shape, mirrors, self.twins), most, many)
 
-    def with_error(self, v: FloatArray) -> tuple[FloatArray, FloatArray]:
-        """Omega at energies (n,), 0 < v <= end, and its relative error."""
-        total, error = self.patches.integral(v)
+    def with_error(self, v: FloatArray, wanted: Wanted) -> tuple[FloatArray, FloatArray]:
+        """Omega at energies (n,), 0 < v <= end, and its relative error, of which `wanted` may stay."""
+        total, error = self.patches.integral(v, lambda v, total: wanted(v, total * self.det))
         return total * self.det, np.maximum(error, ROOTS)
+
+    def moments(
+        self, stretch: Panel, parts: int, rise: float, base: float, wanted: Wanted
+    ) -> tuple[FloatArray, FloatArray]:
+        """Moments of Omega on the parts of a stretch (parts, TERMS), and the error of Omega they leave (parts,).
+
+        rise: of this bottom above the energies of the stretch, J. base: Omega of all wells at its start.
+        """
+        edges = edges_of(stretch, parts)
+
+        def allowed(found: FloatArray, many: bool) -> FloatArray:
+            omega = base + self.det * np.cumsum(np.maximum(found.reshape(parts, -1)[:, 0], 0.0))
+            share = eased(wanted(edges[:-1], omega), many) * omega
+            return np.ravel((share / self.det)[:, None] / weights())
+
+        def sweep(rays: Rays, which: NDArray[np.intp]) -> FloatArray:
+            return along_rays(rays, stretch, parts, rise, which)
+
+        found, error = self.patches.settled(sweep, allowed, (stretch, parts))
+        worst = (error.reshape(parts, -1) * weights()).max(axis=1)
+        return self.det * found.reshape(parts, -1), self.det * worst
 
     def radius(self, v: float) -> float:
         """q at an energy in the form that V has at the bottom: q^2/2, or q for a cone; 1 where that is unknown."""
         return sqrt(2 * v) if self.degree == 2 else v if self.degree else 1.0
+
+    def _scale(self) -> float:
+        """The energy, at most `end`, at which V leaves its form at the bottom by a hundredth along a principal axis."""
+        found, size = self.end, abs(self.v_min)
+        q = self.radius(self.end) * np.geomspace(1e-9, 1.0, 300)
+        form = q**2 / 2 if self.degree == 2 else q
+        names = self.field.coordinates
+        for along in np.concatenate([self.frame.T, -self.frame.T]):
+            x = self.start[:, None] + along[:, None] * q
+            v = self.field.formula.evaluate(dict(zip(names, x, strict=True))) - self.v_min
+            ratio = v / form
+            clear = form > 1e-10 * size
+            bent = np.flatnonzero(clear & ~(np.abs(ratio / ratio[np.argmax(clear)] - 1) <= BENT))
+            if bent.size:
+                found = min(found, float(form[bent[0]]))
+        return found
 
     def _slack(self) -> float:
         return ON_AXIS * self.radius(self.end) * float(np.abs(self.frame[0]).max())
@@ -115,7 +159,7 @@ class Angular:
             line = Line(
                 self.field, self.start, self.frame, self.v_min, low, high, stretch, clear=False, region=region
             )
-            flat = points if stretch is None else stretch * np.arcsinh(points / stretch)
+            flat = points if stretch is None else stretch * unstretched(points / stretch)
             steps = (np.arange(SIGHT) + 0.5) / SIGHT
             ways = line.points(np.broadcast_to(steps, (len(flat), SIGHT)), flat[:, None, :])
             if np.all(region.chart.value(ways) <= region.ceiling):
@@ -124,7 +168,7 @@ class Angular:
 
     def _symmetries(self) -> tuple[set[int], tuple[int, ...]]:
         """The axes of the frame along which V and the walls are even about the bottom; two that may change places."""
-        if self.share is not None or self.ring:
+        if self.ring:
             return set(), ()
         line, random, d = self.line, np.random.default_rng(7), len(self.start)
         unit = random.uniform(-1, 1, (PROBES, d))
@@ -136,12 +180,15 @@ class Angular:
         return mirrors, next(twins, ())
 
     def _alike(self, *steps: FloatArray) -> bool:
-        """Whether V and the walls take the same values at two sets of steps (n, d) in the frame."""
+        """Whether V, the walls and the share take the same values at two sets of steps (n, d) in the frame."""
         formulas = (self.field.formula, *self.field.walls)
         places = [(self.start + step @ self.frame.T).T for step in steps]
         one, other = (
-            evaluate_many(formulas, dict(zip(self.field.coordinates, x, strict=True))) for x in places
+            list(evaluate_many(formulas, dict(zip(self.field.coordinates, x, strict=True)))) for x in places
         )
+        if self.share is not None:
+            one.append(self.share(places[0]))
+            other.append(self.share(places[1]))
         return all(
             np.allclose(a, b, rtol=EVEN, atol=EVEN * float(np.max(np.abs(a), initial=0)), equal_nan=True)
             for a, b in zip(one, other, strict=True)
@@ -158,7 +205,8 @@ class Angular:
         else:
             twice: FloatArray = np.where(np.isin(side % 3, self.twins[:1]), 2.0, 1.0)
             swept = (0 * one, twice) if self.shape == "cube" else (one, 0 * one)
-        return Rays(self.line, unit, self.end, BEGIN * self.radius(self.end), swept, self.share)
+        begin = max(BEGIN * self.radius(self.end), EARLY * self.radius(self.scale) if self.degree else 0.0)
+        return Rays(self.line, unit, self.end, begin, swept, self.share)
 
 
 def _swapped(step: FloatArray, pair: tuple[int, int]) -> FloatArray:
@@ -197,12 +245,18 @@ def _directions(shape: Shape, side: FloatArray, point: FloatArray) -> FloatArray
     return found
 
 
-def _frame(field: Field, bottom: Minimum, region: Region) -> tuple[int, FloatArray]:
-    """The power with which V rises from a bottom (0: unknown), and the frame in which it does so in all directions."""
+def _frame(field: Field, bottom: Minimum, region: Region, end: float) -> tuple[int, FloatArray]:
+    """The power with which V rises from a bottom (0: unknown), and the frame in which it does so in all directions.
+
+    On a pass V rises along some axes of the frame as it falls along others, by `end` at a distance of 1.
+    """
     degree = DEGREES.get(bottom.kind, 0)
     frame = _well_frame(bottom) if degree == 2 else _cone_frame(field, bottom) if degree == 1 else None
     if frame is not None:
         return degree, frame
+    curvature, axes = np.linalg.eigh(np.nan_to_num(np.asarray(bottom.hessian)))
+    if curvature[0] < 0 and np.abs(curvature).min() > 1e-10 * np.abs(curvature).max():
+        return 0, np.asarray(axes * np.sqrt(2 * end / np.abs(curvature)))
     return 0, np.diag(np.ptp(region.points(beyond=True), axis=0) / 2)
 
 

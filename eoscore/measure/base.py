@@ -127,6 +127,10 @@ class Measure(ABC):
 
         return Changed(self, factor, self.top)
 
+    def eased(self, kT: float) -> Measure:  # noqa: ARG002
+        """The same measure, perhaps less well known where sums at temperatures up to kT (J) do not need it."""
+        return self
+
     def cut(self, top: float) -> Measure:
         """The measure without the energies above `top` (J)."""
         from eoscore.measure.changed import Changed

@@ -8,14 +8,16 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from eoscore.errors import NoAnswerError
-from eoscore.measure.about import NEARING, OPEN, Wells, refuse_infinite
+from eoscore.measure.about import NEARING, OPEN, refuse_infinite
 from eoscore.measure.bottom import beginning
 from eoscore.measure.coordinate import dimension
 from eoscore.measure.critical import saddles
 from eoscore.measure.mesh import SKETCH, held_boxes, held_lines, typical_level
+from eoscore.measure.need import Need
 from eoscore.measure.rays import Declined
 from eoscore.measure.sampled import Sampled
 from eoscore.measure.slabs import Slabs
+from eoscore.measure.wells import Wells
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
@@ -87,14 +89,14 @@ class _Boxed:
                 continue
             if wells.exponent is None:
                 break
-            if np.all(wells.with_error(end * np.array([0.5, 1.0]))[1] <= GOOD):
+            if np.all(wells.with_error(end * np.array([0.5, 1.0]), Need())[1] <= GOOD):
                 return wells, end
         return None, 0.0
 
     def saddles(self) -> tuple[float, ...]:
         """Energies at which wells join or arms open, below the level."""
         lines = held_lines(self.field, self.minima, self.level, SKETCH[len(self.field.coordinates)])
-        return saddles(self.field, lines, self.v_min, self.level)
+        return tuple(saddles(self.field, lines, self.v_min, self.level)[0].tolist())
 
     def under(self, v: float) -> float:
         """Omega at one energy, from boxes of its own."""
@@ -130,7 +132,7 @@ class _Boxed:
     def _along(self, v: FloatArray) -> FloatArray:
         if self.rays is None:
             return np.zeros_like(v)
-        volume, error = self.rays.with_error(v)
+        volume, error = self.rays.with_error(v, Need())
         self.low_error = max(self.low_error, float(np.max(error)))
         return volume
 

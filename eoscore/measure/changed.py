@@ -38,6 +38,10 @@ class Changed(Measure):
         """See `Measure.error_below`."""
         return self.origin.error_below(v)
 
+    def eased(self, kT: float) -> Measure:
+        """See `Measure.eased`."""
+        return Changed(self.origin.eased(kT), self.factor, self.top)
+
     def volume(self, v: ArrayLike) -> FloatArray:
         """See `Measure.volume`."""
         return self.factor * self.origin.volume(np.minimum(v, self.top))

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from functools import cache, partial
+from functools import partial
 from itertools import pairwise
 from math import inf
 from typing import TYPE_CHECKING
@@ -12,7 +12,7 @@ import numpy as np
 from eoscore.errors import NoAnswerError
 from eoscore.measure.crowded import Crowd
 from eoscore.measure.powers import Powers
-from eoscore.measure.rules import graded, legendre
+from eoscore.measure.rules import graded, legendre, quartering
 from eoscore.measure.sampled import Sampled
 from eoscore.measure.smeared import smeared
 from eoscore.measure.smeared_crowd import SmearedCrowd
@@ -57,23 +57,36 @@ def convolve(a: Measure, b: Measure) -> Measure:
     for one, other in ((a, b), (b, a)):
         if isinstance(one, Crowd):
             return SmearedCrowd(one, other, top)
-    feet = [m.foot for m in (a, b) if isinstance(m, Sampled)]
-    return Sampled(
+    return _sampled(a, b)
+
+
+def _sampled(a: Measure, b: Measure, parent: Sampled | None = None, kT: float = inf) -> Sampled:
+    """The convolution as a function of energy; with a parent, for sums at temperatures up to kT."""
+
+    def ease(kT: float) -> Sampled:
+        pair = a.eased(kT), b.eased(kT)
+        return joined if pair == (a, b) else _sampled(*pair, joined, kT)
+
+    joined = Sampled(
         _function(a, b),
         a.exponent + b.exponent,
         scale=min(a.scale, b.scale),
-        foot=max(feet, default=None),
-        top=top,
+        foot=max([m.foot for m in (a, b) if isinstance(m, Sampled)], default=None),
+        top=min(a.top, b.top),
         error=lambda v: a.error_below(v) + b.error_below(v) + ROUNDING,
-        route=route,
+        route=a.route if b.powers() else b.route if a.powers() else f"{a.route} * {b.route}",
         breaks=_joined_breaks(a, b),
+        kT=kT,
+        ease=ease if parent is None else None,
+        parent=parent,
     )
+    return joined
 
 
 def _function(a: Measure, b: Measure) -> Callable[[FloatArray], FloatArray]:
     """Omega of the two together as a function of energies."""
     for one, other in ((a, b), (b, a)):
-        if isinstance(one, Sampled) and not one.breaks and isinstance(other, Powers):
+        if isinstance(one, Sampled) and isinstance(other, Powers):
             return partial(smeared, one, other)
     return partial(_volume, a, b)
 
@@ -171,7 +184,7 @@ def _towards(a: Measure, end: FloatArray, length: FloatArray) -> Rule:
 
     The distances from the nearest break of a are exact, so its density keeps its digits beside 1/sqrt.
     """
-    t, dt = _quartering()
+    t, dt = quartering()
     step = length[:, None] * t**POWER
     v, dv = end[:, None] + step, np.abs(length)[:, None] * POWER * t ** (POWER - 1) * dt
     if not a.breaks:
@@ -180,12 +193,3 @@ def _towards(a: Measure, end: FloatArray, length: FloatArray) -> Rule:
     nearest = breaks[np.argmin(np.abs(breaks[:, None] - end), axis=0)][:, None]
     gap = (end[:, None] - nearest) + step
     return np.where(gap < 0, np.minimum(v, np.nextafter(nearest, 0.0)), np.maximum(v, nearest)), dv, gap
-
-
-@cache
-def _quartering(panels: int = 11, order: int = 14) -> tuple[FloatArray, FloatArray]:
-    """Nodes t and weights on [0, 1], in panels of ratio 4 towards 0: another break may lie just outside."""
-    x, w = legendre(order)
-    edges = np.concatenate([[0.0], 0.25 ** np.arange(panels - 1, -1, -1)])
-    length = np.diff(edges)[:, None]
-    return (edges[:-1, None] + length * x).ravel(), (length * w).ravel()

@@ -19,11 +19,13 @@ STEPS = 30  # of Newton's rule
 APART = 1e-7  # relative: saddles closer in energy are one break
 
 
-def saddles(field: Field, lines: list[FloatArray], v_min: float, ceiling: float) -> tuple[float, ...]:
-    """Energies (J from v_min) of saddles on the grid of these lines, below the ceiling, ascending.
+def saddles(
+    field: Field, lines: list[FloatArray], v_min: float, ceiling: float
+) -> tuple[FloatArray, FloatArray]:
+    """Energies (n,) in J from v_min and places (n, d) of saddles below the ceiling on the grid of these lines.
 
-    Candidates are grid points that are highest along one axis and lowest along the others; Newton's rule on
-    the gradient makes them exact. Walls have no saddles of their own here.
+    In ascending order. Candidates are grid points that are highest along one axis and lowest along the others;
+    Newton's rule on the gradient makes them exact. Walls have no saddles of their own here.
     """
     chart = Chart(field)
     mesh = np.meshgrid(*lines, indexing="ij", sparse=True)
@@ -33,10 +35,11 @@ def saddles(field: Field, lines: list[FloatArray], v_min: float, ceiling: float)
     index = _candidates(v)[:MOST]
     points = np.stack([line[index[:, i]] for i, line in enumerate(lines)], axis=1)
     found = _polished(chart, points, lines)
-    rises = np.sort(chart.value(found) - v_min) if len(found) else np.empty(0)
-    rises = rises[(rises > 0) & (rises < ceiling * (1 - APART))]
-    kept = np.diff(rises, prepend=-np.inf) > APART * rises
-    return tuple(rises[kept].tolist())
+    rises = chart.value(found) - v_min if len(found) else np.empty(0)
+    order = np.argsort(rises)
+    order = order[(rises[order] > 0) & (rises[order] < ceiling * (1 - APART))]
+    kept = order[np.diff(rises[order], prepend=-np.inf) > APART * rises[order]]
+    return rises[kept], found[kept]
 
 
 def _candidates(v: FloatArray) -> FloatArray:

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass, replace
 from functools import cache
+from itertools import pairwise
 from math import log
 from typing import TYPE_CHECKING, Literal
 
@@ -12,13 +13,15 @@ import numpy as np
 if TYPE_CHECKING:
     from collections.abc import Iterator
 
+    from numpy.typing import ArrayLike
+
     from eoscore.measure.base import FloatArray
 
 __all__ = ["ORDER", "Panel", "points", "stretches", "to_series"]
 
 ORDER = 20  # nodes of a panel
 POWER = 2  # of the maps at a break, where Omega has a step of power 1/2 (1D), 3/2 (3D) or a logarithm
-STRIDE = 256.0  # ratio of the ends of a first stretch; it is halved until its series converges
+STRIDE = 16.0  # ratio of the ends of a first stretch; it is halved until its series converges
 
 Kind = Literal["log", "left", "right"]
 
@@ -69,14 +72,15 @@ class Panel:
         width = self.hi - self.lo
         return self.lo + width * t**POWER if self.kind == "left" else self.hi - width * (1 - t) ** POWER
 
-    def place(self, v: float) -> float:
-        """The t of an energy in [lo, hi]."""
+    def place(self, v: ArrayLike) -> FloatArray:
+        """The t of energies in [lo, hi]."""
+        v = np.asarray(v, dtype=float)
         if self.kind == "log":
-            return log(v / self.lo) / log(self.hi / self.lo)
+            return np.asarray(np.log(v / self.lo) / log(self.hi / self.lo))
         width = self.hi - self.lo
         if self.kind == "left":
-            return float(((v - self.lo) / width) ** (1 / POWER))
-        return 1 - float(((self.hi - v) / width) ** (1 / POWER))
+            return np.asarray(((v - self.lo) / width) ** (1 / POWER))
+        return np.asarray(1 - ((self.hi - v) / width) ** (1 / POWER))
 
     def slope(self, t: FloatArray) -> FloatArray:
         """dv/dt."""
@@ -85,10 +89,15 @@ class Panel:
         from_break = t if self.kind == "left" else 1 - t
         return np.asarray((self.hi - self.lo) * POWER * from_break ** (POWER - 1))
 
+    def parts(self, count: int) -> list[Panel]:
+        """The panel in parts of equal length in t."""
+        edges = np.linspace(self.start, self.stop, count + 1).tolist()
+        return [replace(self, start=start, stop=stop) for start, stop in pairwise(edges)]
+
     def halves(self) -> tuple[Panel, Panel]:
         """The panel in two, at the middle of its t."""
-        middle = (self.start + self.stop) / 2
-        return replace(self, stop=middle), replace(self, start=middle)
+        lower, upper = self.parts(2)
+        return lower, upper
 
 
 def stretches(foot: float, breaks: tuple[float, ...], top: float) -> Iterator[Panel]:

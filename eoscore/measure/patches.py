@@ -2,59 +2,47 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from collections.abc import Callable, Hashable
+from functools import partial
 from typing import TYPE_CHECKING
 
 import numpy as np
+from numpy.typing import NDArray
 
+from eoscore.measure.base import FloatArray
 from eoscore.measure.kronrod import NODES, kronrod
+from eoscore.measure.rays import Rays
 
 if TYPE_CHECKING:
-    from collections.abc import Callable
+    from eoscore.measure.need import Wanted
 
-    from numpy.typing import NDArray
+__all__ = ["Box", "Patches", "eased"]
 
-    from eoscore.measure.base import FloatArray
-    from eoscore.measure.rays import Rays
-
-__all__ = ["Box", "Patches"]
-
-WANTED, ENOUGH = 1e-10, 1e-5  # relative errors at which halving ends, with few rays and with many
+ENOUGH, EASED = (
+    1e-5,
+    1e3,
+)  # relative error at which halving ends with many rays, or so many times what is wanted
 FINEST = 1e-7  # of the first patches: none is halved beyond
-WORST = 0.02  # of the greatest error: patches above it are halved together
+WORST = 0.2
 PROBES = 4  # energies of many that decide where patches are halved
-TRIES = 3  # times that the worst of the others are added to them
+TRIES = 5  # times that the worst of the others are added to them
 SAFE = 10.0  # that a rule gains less than the one before it
 LEAST = 1e-3  # and it is not trusted to gain more
 
 
+Sweep = Callable[[Rays, NDArray[np.intp]], FloatArray]
+Allowed = Callable[[FloatArray, bool], FloatArray]
 Box = tuple[int, tuple[float, ...], tuple[float, ...]]  # side of the cube or 0, lower and upper ends
 
-
-@dataclass(frozen=True)
-class _Patch:
-    """A box of directions, and where its rays are kept."""
-
-    side: int
-    low: tuple[float, ...]
-    high: tuple[float, ...]
-    rays: Rays
-    first: int
-
-    def halves(self, axis: int) -> list[Box]:
-        """The two halves along an axis."""
-        middle = (self.low[axis] + self.high[axis]) / 2
-        upper = (*self.low[:axis], middle, *self.low[axis + 1 :])
-        lower = (*self.high[:axis], middle, *self.high[axis + 1 :])
-        return [(self.side, self.low, lower), (self.side, upper, self.high)]
+Memory = dict[Box, tuple[FloatArray, FloatArray]]  # integrals over boxes and their errors
 
 
 class Patches:
     """int f(t) dt over boxes of one or two parameters, for many energies at once.
 
     make: rays for sides (n,) and parameters (n, m). first: the boxes to begin with, as (side, low, high).
-    most: rays of all patches together, where halving ends; many: from how many on less accuracy will do. Patches
-    stay as fine as the highest energies wanted.
+    most: rays of all patches together, where halving ends; many: from how many on less accuracy will do. Rays are
+    kept from call to call.
     """
 
     def __init__(
@@ -64,100 +52,137 @@ class Patches:
         most: int,
         many: int,
     ) -> None:
-        self._make, self._most, self._many = make, most, many
+        self._make, self._first, self._most, self._many = make, first, most, many
         self._axes = len(first[0][1])
         self._size = NODES**self._axes
-        self._known: dict[Box, _Patch] = {}
-        self._first = self._patches(first)
-        self._leaves, self._highest = list(self._first), 0.0
+        self._walked: dict[Box, tuple[Rays, int]] = {}  # and which of them is the first of a box
+        self._remembered: dict[Hashable, Memory] = {}
 
-    def integral(self, v: FloatArray) -> tuple[FloatArray, FloatArray]:
+    def integral(self, v: FloatArray, wanted: Wanted) -> tuple[FloatArray, FloatArray]:
         """The integral of what the rays sweep at energies (n,), in any order, and its relative error."""
         order = np.argsort(v)
         back = np.argsort(order)
-        total, error = self._integral(v[order])
+        total, error = self._integral(v[order], wanted)
         return total[back], error[back]
 
-    def _integral(self, v: FloatArray) -> tuple[FloatArray, FloatArray]:
-        leaves = self._leaves if v[-1] >= self._highest else list(self._first)
+    def _integral(self, v: FloatArray, wanted: Wanted) -> tuple[FloatArray, FloatArray]:
+        leaves = self._first
         few = np.union1d(v[:: max(1, (v.size - 1) // PROBES)], v[-1:])
         for _ in range(TRIES):
-            leaves = self._refined(leaves, few)
-            values, errors = self._evaluated(leaves, v)
-            total = np.maximum(values.sum(axis=0), 1e-300)
-            miss = errors.sum(axis=(0, 1)) / total
-            rays = len(leaves) * self._size
-            wanted = ENOUGH if rays >= self._many else WANTED
-            if miss.max() <= 2 * wanted or rays >= self._most:
+            allowed = partial(_allowed, few, wanted)
+            leaves = self._refined(leaves, partial(_swept, few), allowed)[0]
+            total, miss = _added(*self._evaluated(leaves, partial(_swept, v)))
+            excess = miss / self._eased(leaves, partial(_allowed, v, wanted), total)
+            if excess.max() <= 2 or len(leaves) * self._size >= self._most:
                 break
-            few = np.union1d(few, v[np.argsort(miss)[-2:]])
-        if v[-1] >= self._highest:
-            self._leaves, self._highest = leaves, float(v[-1])
-        return total, miss
+            few = np.union1d(few, v[np.argsort(excess)[-3:]])
+        total = np.maximum(total, 1e-300)
+        return total, miss / total
 
-    def _refined(self, leaves: list[_Patch], v: FloatArray) -> list[_Patch]:
-        """Patches in which the integrals at these energies are as good as wanted, or as may be."""
-        values, errors = self._evaluated(leaves, v)
+    def settled(self, sweep: Sweep, allowed: Allowed, key: Hashable) -> tuple[FloatArray, FloatArray]:
+        """The integral of numbers (n,) that each ray gives, and its error.
+
+        sweep: rays, and which of them (m,), to the numbers (m, n). allowed: integrals, and whether the rays are many,
+        to the errors that may stay. key: names the sweep, whose patches are remembered.
+        """
+        memory = self._remembered.setdefault(key, {})
+        _, values, errors = self._refined(self._first, sweep, allowed, memory)
+        return _added(values, errors)
+
+    def release(self) -> None:
+        """Let go of all rays; they take tens of megabytes."""
+        self._walked.clear()
+
+    def _eased(self, leaves: list[Box], allowed: Allowed, total: FloatArray) -> FloatArray:
+        """Errors that may stay."""
+        return np.maximum(allowed(total, len(leaves) * self._size >= self._many), 1e-300)
+
+    def _refined(
+        self, leaves: list[Box], sweep: Sweep, allowed: Allowed, memory: Memory | None = None
+    ) -> tuple[list[Box], FloatArray, FloatArray]:
+        """Patches in which the integrals are as good as wanted, or as may be; what they hold, and their errors."""
+        values, errors = self._evaluated(leaves, sweep, memory)
         while True:
-            total = np.maximum(values.sum(axis=0), 1e-300)
-            rays = len(leaves) * self._size
-            wanted = WANTED if rays < self._many else ENOUGH
-            if np.all(errors.sum(axis=(0, 1)) <= wanted * total) or rays >= self._most:
-                return leaves
-            chosen = self._rough(leaves, errors, total, wanted)
+            excess = errors / self._eased(leaves, allowed, values.sum(axis=0))
+            if np.all(excess.sum(axis=(0, 1)) <= 1) or len(leaves) * self._size >= self._most:
+                return leaves, values, errors
+            chosen = self._rough(leaves, excess)
             if not chosen.size:
-                return leaves
-            axes = np.argmax((errors[chosen] / total).max(axis=2), axis=1)
-            halves = [
-                half for k, axis in zip(chosen, axes, strict=True) for half in leaves[k].halves(int(axis))
+                return leaves, values, errors
+            axes = np.argmax(excess[chosen].max(axis=2), axis=1)
+            made = [
+                half for k, axis in zip(chosen, axes, strict=True) for half in _halves(leaves[k], int(axis))
             ]
-            made = self._patches(halves)
-            more = self._evaluated(made, v)
+            more = self._evaluated(made, sweep, memory)
             kept = np.delete(np.arange(len(leaves)), chosen)
             leaves = [leaves[k] for k in kept] + made
             values = np.concatenate([values[kept], more[0]])
             errors = np.concatenate([errors[kept], more[1]])
 
-    def _rough(
-        self, leaves: list[_Patch], errors: FloatArray, total: FloatArray, wanted: float
-    ) -> NDArray[np.intp]:
+    def _rough(self, leaves: list[Box], excess: FloatArray) -> NDArray[np.intp]:
         """The worst patches, of those that together hold all but half of the error that may stay."""
-        share = (errors.sum(axis=1) / total).max(axis=1)
+        share = excess.sum(axis=1).max(axis=1)
         order = np.argsort(share)
-        staying = (np.cumsum(share[order]) <= wanted / 2) | (share[order] < WORST * share.max())
+        staying = (np.cumsum(share[order]) <= 0.5) | (share[order] < WORST * share.max())
         chosen = order[~staying][::-1]
-        wide = [max(np.subtract(leaves[k].high, leaves[k].low)) > FINEST for k in chosen]
+        wide = [max(np.subtract(leaves[k][2], leaves[k][1])) > FINEST for k in chosen]
         room = self._most // self._size - len(leaves) + 1
         return np.asarray(chosen[np.array(wide, dtype=bool)][:room])
 
-    def _patches(self, boxes: list[Box]) -> list[_Patch]:
-        """Patches, whose rays are walked together where they are new."""
-        new = [box for box in boxes if box not in self._known]
-        if new:
-            self._known.update(zip(new, self._walked(new), strict=True))
-        return [self._known[box] for box in boxes]
+    def _evaluated(
+        self, boxes: list[Box], sweep: Sweep, memory: Memory | None = None
+    ) -> tuple[FloatArray, FloatArray]:
+        """Integrals (boxes, n) and their errors along each axis (boxes, axes, n)."""
+        known: Memory = {} if memory is None else memory
+        new = [box for box in boxes if box not in known]
+        self._walk([box for box in new if box not in self._walked])
+        for rays in {id(rays): rays for rays, _ in (self._walked[box] for box in new)}.values():
+            mine = [box for box in new if self._walked[box][0] is rays]
+            which = np.concatenate([self._walked[box][1] + np.arange(self._size) for box in mine])
+            swept = sweep(rays, which).reshape(len(mine), *[NODES] * self._axes, -1)
+            area = np.array([np.prod(np.subtract(high, low)) for _, low, high in mine])
+            known.update(zip(mine, zip(*_summed(swept, area), strict=True), strict=True))
+        values, errors = zip(*[known[box] for box in boxes], strict=True)
+        return np.array(values), np.array(errors)
 
-    def _walked(self, boxes: list[Box]) -> list[_Patch]:
+    def _walk(self, boxes: list[Box]) -> None:
+        """Walk the rays of new boxes together."""
+        if not boxes:
+            return
         node = kronrod()[0]
         grid = np.stack(np.meshgrid(*[node] * self._axes, indexing="ij"), axis=-1).reshape(-1, self._axes)
         low, high = (np.array([box[k] for box in boxes]) for k in (1, 2))
         points = (low[:, None, :] + (high - low)[:, None, :] * grid).reshape(-1, self._axes)
         sides = np.repeat([box[0] for box in boxes], self._size)
         rays = self._make(sides, points)
-        return [_Patch(*box, rays, k * self._size) for k, box in enumerate(boxes)]
+        self._walked.update({box: (rays, k * self._size) for k, box in enumerate(boxes)})
 
-    def _evaluated(self, patches: list[_Patch], v: FloatArray) -> tuple[FloatArray, FloatArray]:
-        """Integrals (patches, n) and their errors along each axis (patches, axes, n)."""
-        order = {id(patch.rays): patch.rays for patch in patches}
-        values = np.empty((len(patches), v.size))
-        errors = np.empty((len(patches), self._axes, v.size))
-        for key, rays in order.items():
-            mine = [k for k, patch in enumerate(patches) if id(patch.rays) == key]
-            which = np.concatenate([patches[k].first + np.arange(self._size) for k in mine])
-            swept = rays.swept(v, which).reshape(len(mine), *[NODES] * self._axes, v.size)
-            area = np.array([np.prod(np.subtract(patches[k].high, patches[k].low)) for k in mine])
-            values[mine], errors[mine] = _summed(swept, area)
-        return values, errors
+
+def _halves(box: Box, axis: int) -> list[Box]:
+    """The two halves along an axis."""
+    side, low, high = box
+    middle = (low[axis] + high[axis]) / 2
+    upper = (*low[:axis], middle, *low[axis + 1 :])
+    lower = (*high[:axis], middle, *high[axis + 1 :])
+    return [(side, low, lower), (side, upper, high)]
+
+
+def _swept(v: FloatArray, rays: Rays, which: NDArray[np.intp]) -> FloatArray:
+    return rays.swept(v, which)
+
+
+def _allowed(v: FloatArray, wanted: Wanted, total: FloatArray, many: bool) -> FloatArray:
+    total = np.maximum(total, 1e-300)
+    return eased(wanted(v, total), many) * total
+
+
+def eased(wanted: FloatArray, many: bool) -> FloatArray:
+    """The relative error that may stay where so much is wanted."""
+    return np.maximum(ENOUGH, EASED * wanted) if many else wanted
+
+
+def _added(values: FloatArray, errors: FloatArray) -> tuple[FloatArray, FloatArray]:
+    return values.sum(axis=0), errors.sum(axis=(0, 1))
 
 
 def _summed(swept: FloatArray, area: FloatArray) -> tuple[FloatArray, FloatArray]:

@@ -5,11 +5,12 @@ from __future__ import annotations
 from dataclasses import dataclass
 from functools import cached_property
 from itertools import pairwise
+from math import sqrt
 from typing import TYPE_CHECKING
 
 import numpy as np
 
-from eoscore.formula import call, constant, evaluate_many, variable
+from eoscore.formula import constant, evaluate_many, variable
 from eoscore.measure.coordinate import inside
 from eoscore.measure.rules import legendre
 from eoscore.measure.walk import Rows, walk
@@ -26,9 +27,8 @@ if TYPE_CHECKING:
 
     Which = NDArray[np.intp]
 
-__all__ = ["Declined", "Line", "Rays"]
+__all__ = ["Declined", "Line", "Rays", "unstretched"]
 
-SMALL, TERMS = 1.0, 8  # below: a series, whose next term is below rounding
 NEAR = 1e-5  # relative step of Newton's rule after which the next one is below rounding
 WHOLE = 1 - 1e-12  # a share that counts as all
 SHARES = 10  # Gauss points of the share of a well between two rows
@@ -40,10 +40,10 @@ class Declined(Exception):  # noqa: N818 - no error: the route does not fit, ano
 
 @dataclass(frozen=True)
 class Line:
-    """V - V_min along x = start + frame (n q), q >= 0, or, stretched, along x = start + frame (s sinh(n q / s)).
+    """V - V_min along x = start + frame (n q), q >= 0, or, stretched, along x = start + frame f(n q).
 
-    low, high (d,): ends of the region in the frame. stretch: s, where arms reach far along the axes of the frame.
-    clear: every ray leaves the region once.
+    low, high (d,): ends of the region in the frame. stretch: s of f(u) = u + u^3 / s^2, where arms reach far along
+    the axes of the frame. clear: every ray leaves the region once.
     """
 
     field: Field
@@ -62,7 +62,7 @@ class Line:
         q, s = variable("q"), self.stretch
         steps = [variable(f"n{i}") * q for i in range(len(self.start))]
         if s is not None:
-            steps = [s * call("sinh", step / s) for step in steps]
+            steps = [step + step * step * step / s**2 for step in steps]
         along = {
             name: sum((float(part) * step for part, step in zip(row, steps, strict=True)), constant(float(x)))
             for name, x, row in zip(self.field.coordinates, self.start, self.frame, strict=True)
@@ -76,11 +76,17 @@ class Line:
         v = np.broadcast_to(v, q.shape) - self.v_min
         return np.where(np.isnan(v), np.inf, v), np.broadcast_to(slope, q.shape)
 
+    def height(self, q: FloatArray, n: FloatArray) -> FloatArray:
+        """V - V_min at q (rays,) in directions n (rays, d); inf where V is not defined."""
+        v = self.formulas[0].evaluate({"q": q, **{f"n{i}": part for i, part in enumerate(n.T)}})
+        v = np.broadcast_to(v, q.shape) - self.v_min
+        return np.where(np.isnan(v), np.inf, v)
+
     def columns(self, q: FloatArray, n: FloatArray) -> list[FloatArray]:
         """The coordinates of points at q (...) in directions n (..., d), each of shape (...)."""
         steps = [q * part for part in np.moveaxis(n, -1, 0)]
         if self.stretch is not None:
-            steps = [self.stretch * np.sinh(step / self.stretch) for step in steps]
+            steps = [step + step * step * step / self.stretch**2 for step in steps]
         return [
             np.asarray(x + sum(part * step for part, step in zip(row, steps, strict=True) if part))
             for x, row in zip(self.start.tolist(), self.frame.tolist(), strict=True)
@@ -94,7 +100,9 @@ class Line:
         """By how much space is stretched at q (...) in directions n (..., d)."""
         if self.stretch is None:
             return np.ones(q.shape)
-        return np.asarray(np.prod(np.cosh(n * q[..., None] / self.stretch), axis=-1))
+        square = (q / self.stretch) ** 2
+        a, b, c = (1 + 3 * part**2 * square for part in np.moveaxis(n, -1, 0))
+        return np.asarray(a * b * c)
 
     def within(self, q: FloatArray, n: FloatArray) -> NDArray[np.bool_]:
         """Whether points lie inside all walls."""
@@ -104,7 +112,7 @@ class Line:
         """The q at which rays leave the box about the region."""
         ends = np.where(n > 0, self.high, self.low)
         if self.stretch is not None:
-            ends = self.stretch * np.arcsinh(ends / self.stretch)
+            ends = self.stretch * unstretched(ends / self.stretch)
         with np.errstate(divide="ignore", invalid="ignore"):
             q = ends / n
         return np.asarray(np.min(np.where(np.isnan(q) | (q < 0), np.inf, q), axis=1))
@@ -142,7 +150,7 @@ class Rays:
         column = np.arange(count.sum()) - np.repeat(np.cumsum(count) - count - first, count)
         step, ray = np.repeat(step, count), np.repeat(ray, count)
         sense = np.where(height[step, ray] < height[step + 1, ray], 1.0, -1.0)
-        parts = sense * self._content(self._roots(step, which[ray], v[column]), step, which[ray])
+        parts = sense * self._content(self.roots(step, which[ray], v[column]), step, which[ray])
         total = np.bincount(ray * v.size + column, parts, which.size * v.size).reshape(which.size, v.size)
         last = np.full(which.size, len(height) - 2)
         whole = self._content(self.rows.q[-1, which], last, which)
@@ -171,10 +179,17 @@ class Rays:
             return np.zeros_like(end)
         t, w = legendre(SHARES)
         q = start[:, None] + (end - start)[:, None] * t
+        return np.asarray(self.space(q, which) @ w * (end - start))
+
+    def space(self, q: FloatArray, which: Which) -> FloatArray:
+        """The integrand of what rays `which` (m,) sweep, at q (m, n): with the stretching of space and the share."""
         n = self.along[which][:, None, :]
-        value = q * (self._square[which][:, None] + self._cube[which][:, None] * q) * self.line.worth(q, n)
-        value = value * self.share(np.array(self.line.columns(q, n)))
-        return np.asarray(value @ w * (end - start))
+        value = q * (self._square[which][:, None] + self._cube[which][:, None] * q)
+        if self.line.stretch is not None:
+            value = value * self.line.worth(q, n)
+        if self.share is not None:
+            value = value * self.share(np.array(self.line.columns(q, n)))
+        return np.asarray(value)
 
     def _cumulated(self) -> FloatArray:
         """The integral up to each row, and so (rows, rays); most stretches lie wholly in the share."""
@@ -193,8 +208,8 @@ class Rays:
             total[k + 1] = total[k] + part
         return total
 
-    def _roots(self, step: Which, ray: Which, wanted: FloatArray) -> FloatArray:
-        """q at which V - V_min is as wanted, between rows step and step + 1 of rays: Newton in brackets."""
+    def roots(self, step: Which, ray: Which, wanted: FloatArray) -> FloatArray:
+        """q at which V - V_min is as wanted (n,), between rows step and step + 1 of rays: Newton in brackets."""
         rows = self.rows
         lo, hi = rows.q[step, ray], rows.q[step + 1, ray]
         v0, v1 = rows.v[step, ray], rows.v[step + 1, ray]
@@ -237,25 +252,15 @@ def _inverse(
 
 
 def stretched(q: FloatArray, rate: FloatArray) -> FloatArray:
-    """int_0^q t^2 cosh(a t) cosh(b t) cosh(c t) dt for rates (n, 3), by the four cosh of a +- b +- c."""
-    total = np.zeros_like(q)
-    for one in (1, -1):
-        for other in (1, -1):
-            total += _moment(q, rate @ np.array([1.0, one, other]))
-    return total / 4
+    """int_0^q t^2 (1 + 3 a^2 t^2) (1 + 3 b^2 t^2) (1 + 3 c^2 t^2) dt for rates (n, 3) = (a, b, c)."""
+    a, b, c = 3 * rate.T**2
+    square = q * q
+    third = a * b + a * c + b * c
+    return np.asarray(
+        q * square * (1 / 3 + square * ((a + b + c) / 5 + square * (third / 7 + square * a * b * c / 9)))
+    )
 
 
-def _moment(q: FloatArray, rate: FloatArray) -> FloatArray:
-    """int_0^q t^2 cosh(rate t) dt."""
-    u = np.abs(rate * q)
-    result = np.empty_like(u)
-    small = u < SMALL
-    square, series = u[small] ** 2, np.zeros(np.count_nonzero(small))
-    for k in range(TERMS, -1, -1):
-        series = series * square / ((2 * k + 1) * (2 * k + 2)) + 1 / (2 * k + 3)
-    result[small] = series
-    u = u[~small]
-    up = np.exp(u)
-    down = 1 / up
-    result[~small] = ((up - down) * (u * u + 2) / 2 - u * (up + down)) / u**3
-    return np.asarray(q**3 * result)
+def unstretched(x: FloatArray) -> FloatArray:
+    """The u with u + u^3 = x."""
+    return np.asarray(2 / sqrt(3) * np.sinh(np.arcsinh(1.5 * sqrt(3) * x) / 3))

@@ -11,7 +11,7 @@ from numpy.polynomial.legendre import leggauss
 if TYPE_CHECKING:
     from eoscore.measure.base import FloatArray
 
-__all__ = ["graded", "legendre", "log_panels"]
+__all__ = ["graded", "legendre", "log_panels", "quartering"]
 
 RATIO = 8.0  # of neighbouring panel edges: in ln v the poles of a Bose function stay i pi/2 away
 
@@ -51,3 +51,12 @@ def graded(exponent: float, depth: int = 10) -> tuple[FloatArray, FloatArray]:
     first_w = w * (start / 2) ** exponent * first ** (1 - exponent)
     t, weight = log_panels(start, 1.0)
     return np.concatenate([first, t]), np.concatenate([first_w, weight])
+
+
+@cache
+def quartering(panels: int = 11, order: int = 14) -> tuple[FloatArray, FloatArray]:
+    """Nodes t and weights on [0, 1], in panels of ratio 4 towards 0: a singular place may lie just outside."""
+    x, w = legendre(order)
+    edges = np.concatenate([[0.0], 0.25 ** np.arange(panels - 1, -1, -1)])
+    length = np.diff(edges)[:, None]
+    return (edges[:-1, None] + length * x).ravel(), (length * w).ravel()

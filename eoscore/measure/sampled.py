@@ -2,15 +2,16 @@
 
 from __future__ import annotations
 
-from math import inf, log
+from functools import cache
+from math import ceil, inf, log, log2
 from threading import Lock
 from typing import TYPE_CHECKING
 
 import numpy as np
 
 from eoscore.measure.base import FloatArray, Foot, Measure, Nodes
+from eoscore.measure.need import EASES, Need, eased_at
 from eoscore.measure.panel import ORDER, Panel, points, stretches, to_series
-from eoscore.measure.rules import RATIO, legendre
 from eoscore.measure.table import Table
 
 if TYPE_CHECKING:
@@ -25,6 +26,7 @@ SHARPEST = 1e-14  # relative tail of a series at which a panel counts as resolve
 SHORT = 2.0**-5  # and one this short in t not, where halving did not help
 ROUGH = 1e-8  # error of a function whose series need not be better than it, each by its share of energy
 STALLED = 0.7  # share of the tail before, above which halving did not help
+PARTS = 8  # of a stretch towards a break, for moments
 NOISE = 1e-4  # a tail below this that halving does not lower is the rounding of the function itself
 
 
@@ -36,6 +38,10 @@ class Sampled(Measure):
     error: relative bound on the function's own values, or a function of energies (any shape) that tells it up
     to each as far as it is known; the tails of the series are added to it, each with the
     share of energy that its panel takes (a panel as narrow as 4e-9 at a break hardly counts).
+    kT: the series are as good as sums up to that temperature (J) need them. ease: makes the measure that is so.
+    project: Omega on the parts of a stretch (parts, n) as coefficients of T_n, given its value at the start, where
+    its moments do for those sums and its values would need many panels. parent: the same measure for all
+    temperatures, whose panels serve far below kT.
     """
 
     noise = NOISE  # of the function, which a kind that knows its own may lower
@@ -51,12 +57,19 @@ class Sampled(Measure):
         error: float | Callable[[FloatArray], FloatArray] = 0.0,
         route: str,
         breaks: tuple[float, ...] = (),
+        kT: float = inf,
+        ease: Callable[[float], Measure] | None = None,
+        project: Callable[[Panel, int, float], FloatArray] | None = None,
+        parent: Sampled | None = None,
     ) -> None:
         breaks = tuple(b for b in breaks if 0 < b < top)
         scale = min(scale, top, *breaks)
         super().__init__(exponent, top=top, error=0.0, route=route, breaks=breaks, scale=scale)
         self._function = function
         self._own_error = error
+        self._need = Need(kT, SHARPEST)
+        self._ease = None if ease is None else cache(ease)
+        self._project, self._parent = project, parent
         self.foot = foot if foot is not None else scale * 2.0**-52
         self._ahead = stretches(self.foot, self.breaks, top)
         self._lock = Lock()
@@ -82,12 +95,16 @@ class Sampled(Measure):
         own = self._own_error
         return own(v) if callable(own) else np.full(v.shape, own)
 
+    def eased(self, kT: float) -> Measure:
+        """See `Measure.eased`."""
+        return self if self._ease is None else self._ease(eased_at(kT, self.top))
+
     def volume(self, v: ArrayLike) -> FloatArray:
         """See `Measure.volume`."""
         energy = np.clip(np.asarray(v, dtype=float), 0.0, self.top)
         flat = energy.ravel()
-        ratio = self._up_to(flat).value(np.maximum(flat, self.foot))
-        return np.reshape(ratio * (flat / self.scale) ** self.exponent, energy.shape)
+        volume = self._up_to(flat).volume(np.maximum(flat, self.foot))
+        return np.reshape(volume * np.minimum(flat / self.foot, 1.0) ** self.exponent, energy.shape)
 
     def density(self, v: ArrayLike) -> FloatArray:
         """See `Measure.density`."""
@@ -99,50 +116,34 @@ class Sampled(Measure):
         flat = energy.ravel()
         inside = (flat > 0) & (flat < self.top)
         flat = np.where(inside, flat, self.foot)
-        ratio, slope = self._up_to(flat).value_and_derivative(
-            np.maximum(flat, self.foot), None if gap is None else gap.ravel()
-        )
-        slope = np.where(flat < self.foot, 0.0, slope)
-        density = (flat / self.scale) ** self.exponent * (self.exponent * ratio / flat + slope)
+        table = self._up_to(flat)
+        density = table.density(np.maximum(flat, self.foot), None if gap is None else gap.ravel())
+        low = flat < self.foot
+        if low.any():
+            density[low] = self.exponent * self.volume(flat[low]) / flat[low]
         return np.where(inside, density, 0.0).reshape(energy.shape)
 
     def nodes(self, upto: float = inf) -> Nodes:
         """See `Measure.nodes`."""
         end = self.end(upto)
         table = self._up_to(np.array([end]))
-        foot = Foot(
-            float(table.value(np.array([self.foot]))[0]) / self.scale**self.exponent, self.exponent, self.foot
+        which, low, high = table.pieces
+        last, s = table.place(end)
+        below = (which < last) | ((which == last) & (low < s))
+        v, w = table.rule(
+            which[below], low[below], np.where(which[below] == last, np.minimum(high[below], s), high[below])
         )
-        rules = [
-            self._rule(panel, series, end) for panel, series in zip(table.panels, table.series, strict=True)
-        ]
-        return Nodes(np.concatenate([v for v, _ in rules]), np.concatenate([w for _, w in rules]), foot)
+        return Nodes(v.ravel(), w.ravel(), self.footing)
 
-    def whole_panels(self, upto: float) -> tuple[FloatArray, Nodes]:
-        """Where the panels of a rule begin, and the rule: to the end of the panel that holds `upto` (J)."""
-        panels = self._up_to(np.array([self.end(upto)])).panels
-        edges = []
-        for panel in panels:
-            parts = max(1, int(np.ceil(np.log(panel.last / panel.first) / np.log(RATIO))))
-            edges.append(panel.energy(np.linspace(panel.start, panel.stop, parts + 1)[:-1]))
-        return np.concatenate(edges), self.nodes(panels[-1].last)
+    @property
+    def footing(self) -> Foot:
+        """The part that is a pure power."""
+        first = float(self._up_to(np.array([self.foot])).volume(np.array([self.foot]))[0])
+        return Foot(first / self.foot**self.exponent, self.exponent, self.foot)
 
-    def _rule(self, panel: Panel, series: FloatArray, end: float) -> tuple[FloatArray, FloatArray]:
-        """Nodes and weights dOmega on the part of a panel below `end`."""
-        if panel.first >= end:
-            return np.empty(0), np.empty(0)
-        stop = panel.stop if panel.last <= end else panel.place(end)
-        parts = int(np.ceil(np.log(min(panel.last, end) / panel.first) / np.log(RATIO)))
-        edges = np.linspace(panel.start, stop, max(parts, 1) + 1)
-        x, w = legendre(ORDER)
-        t = (edges[:-1, None] + np.diff(edges)[:, None] * x).ravel()
-        dt = (np.diff(edges)[:, None] * w).ravel()
-        v, slope = panel.energy(t), panel.slope(t)
-        place = 2 * (t - panel.start) / (panel.stop - panel.start) - 1
-        ratio = np.polynomial.chebyshev.chebval(place, series)
-        bend = np.polynomial.chebyshev.chebval(place, np.polynomial.chebyshev.chebder(series))
-        bend *= 2 / (panel.stop - panel.start)
-        return v, dt * (v / self.scale) ** self.exponent * (self.exponent * ratio / v * slope + bend)
+    def table(self, upto: float) -> Table:
+        """Omega on panels up to an energy (J) at least."""
+        return self._up_to(np.array([self.end(upto)]))
 
     def _up_to(self, v: FloatArray) -> Table:
         """The table with panels at least up to the greatest of these energies."""
@@ -156,40 +157,73 @@ class Sampled(Measure):
         return table
 
     def _extend(self) -> None:
-        """Add the next stretch, in panels fine enough for their series to converge."""
+        """Add the next stretch: its moments, or panels fine enough for their series to converge."""
         stretch = next(self._ahead)
-        done: list[tuple[Panel, FloatArray, float]] = []
-        waiting = [(stretch, inf)]
-        while waiting:
-            series, tails = self._sample([panel for panel, _ in waiting])
-            halved: list[tuple[Panel, float]] = []
-            for (panel, before), row, tail in zip(waiting, series, tails, strict=True):
-                if self._resolved(panel, tail, before):
-                    done.append((panel, row, tail * min(1.0, log(panel.last / panel.first))))
-                else:
-                    halved += [(half, tail) for half in panel.halves()]
-            waiting = halved
-        done.sort(key=lambda item: (item[0].first, item[0].start))
-        panels = tuple(panel for panel, _, _ in done)
-        series = np.array([row for _, row, _ in done])
-        self._tails = np.concatenate([self._tails, [tail for _, _, tail in done]])
-        if self._table is not None:
-            panels, series = self._table.panels + panels, np.concatenate([self._table.series, series])
-        self._table = Table(panels, series)
+        rough = self._project is not None and self._table is not None and stretch.kind != "log"
+        low = stretch.kind == "log" and stretch.hi <= min(self._need.kT, self.top / EASES)
+        done = (
+            self._parent._rows(stretch)
+            if self._parent and low
+            else []
+            if rough
+            else self._converging(stretch)
+        )
+        panels = [panel for panel, _, _ in done]
+        series, powers = np.array([row for _, row, _ in done]), np.full(len(done), self.exponent)
+        if not done:
+            panels, series = self._projected(stretch)
+            powers = np.zeros(len(panels))
+        self._tails = np.concatenate([self._tails, [tail for _, _, tail in done] or np.zeros(len(panels))])
+        if self._table is None:
+            self._table = Table(tuple(panels), series, powers, self.scale)
+        else:
+            self._table = self._table.with_more(panels, series, powers)
         self._reach = stretch.hi
         if self._reach >= self.top and hasattr(self._function, "release"):
             self._function.release()  # of what it holds: all its values are known
 
-    def _resolved(self, panel: Panel, tail: float, before: float) -> bool:
-        """Whether a series is as good as it gets; `before` is the tail of the panel that was halved for it."""
+    def _rows(self, stretch: Panel) -> list[tuple[Panel, FloatArray, float]]:
+        """The panels of a stretch, with their series and its tail."""
+        table = self._up_to(np.array([stretch.hi]))
+        rows = zip(table.panels, table.series, self._tails.tolist(), strict=True)
+        return [row for row in rows if stretch.lo <= row[0].lo and row[0].hi <= stretch.hi]
+
+    def _converging(self, stretch: Panel) -> list[tuple[Panel, FloatArray, float]]:
+        """Panels in ascending order, with their series and its tail; none where moments will do better."""
+        done: list[tuple[Panel, FloatArray, float]] = []
+        waiting = [(stretch, inf)]
+        while waiting:
+            series, tails, needs = self._sample([panel for panel, _ in waiting])
+            halved: list[tuple[Panel, float]] = []
+            for (panel, before), row, tail, need in zip(waiting, series, tails, needs, strict=True):
+                if self._resolved(panel, tail, before, need):
+                    done.append((panel, row, tail * min(1.0, log(panel.last / panel.first))))
+                elif self._project is not None and self._table is not None:
+                    return []
+                else:
+                    halved += [(half, tail) for half in panel.halves()]
+            waiting = halved
+        return sorted(done, key=lambda item: (item[0].first, item[0].start))
+
+    def _projected(self, stretch: Panel) -> tuple[list[Panel], FloatArray]:
+        """The parts of a stretch and Omega on each as a series, from its moments."""
+        if self._project is None or self._table is None:
+            return [], np.empty((0, ORDER))
+        count = ceil(log2(stretch.hi / stretch.lo)) if stretch.kind == "log" else PARTS
+        base = float(self._table.volume(np.array([self._reach]))[0])
+        series = self._project(stretch, count, base)
+        return stretch.parts(count), series
+
+    def _resolved(self, panel: Panel, tail: float, before: float, need: float) -> bool:
+        """Whether a series is as good as needed or as it gets; `before` is the tail of the panel halved for it."""
         own = float(self._function_error(np.asarray(panel.last)))
         rough = own > ROUGH and tail * min(1.0, log(panel.last / panel.first)) <= own
-        if tail <= max(SHARPEST, 0.3 * own) or rough or panel.stop - panel.start <= FINEST[panel.kind]:
+        if tail <= max(need, 0.3 * own) or rough or panel.stop - panel.start <= FINEST[panel.kind]:
             return True
         return tail > STALLED * before and (tail < self.noise or panel.stop - panel.start <= SHORT)
 
-    def _sample(self, panels: list[Panel]) -> tuple[FloatArray, list[float]]:
-        """Series of Omega / (v/scale)^exponent on panels, and their last coefficients beside its least value."""
+    def _sample(self, panels: list[Panel]) -> tuple[FloatArray, list[float], FloatArray]:
+        """Series of Omega / (v/scale)^exponent on panels; their last coefficients beside its least value; the need."""
         s = points()
         v = np.array([p.energy(p.start + (p.stop - p.start) * s) for p in panels])
         omega = self._function(v.ravel()).reshape(v.shape)
@@ -198,4 +232,4 @@ class Sampled(Measure):
         tails = np.abs(series[:, -3:]).max(axis=1) / np.maximum(
             np.abs(values).min(axis=1), 1e-6 * np.abs(values).max(axis=1)
         )
-        return series, [float(tail) for tail in tails]
+        return series, [float(tail) for tail in tails], self._need.allowed(v, omega).min(axis=1)

@@ -46,6 +46,10 @@ class _Stretched(Measure):
         """See `Measure.error_below`."""
         return self.origin.error_below(np.asarray(v, dtype=float) / self.factor)
 
+    def eased(self, kT: float) -> Measure:
+        """See `Measure.eased`."""
+        return _Stretched(self.origin.eased(kT / self.factor), self.factor)
+
     def volume(self, v: ArrayLike) -> FloatArray:
         """See `Measure.volume`."""
         return self.origin.volume(np.asarray(v, dtype=float) / self.factor)

@@ -40,9 +40,12 @@ def saturated_kT(ensemble: Ensemble, name: str, value: FloatArray) -> FloatArray
 
 
 def _scale(ensemble: Ensemble, name: str, value: FloatArray) -> FloatArray:
-    """A first guess of kT: as many states below it as there are particles; for U, also N kT = U."""
+    """A first guess of kT: half the energy below which so many states lie; for U, also N kT = U.
+
+    Over a pure power Omega ~ E^k, N_c = zeta(k) Gamma(k+1) Omega(kT): that energy is 1.8 to 2.3 kT for k from 3/2 to 4.
+    """
     if name != "U":
-        return np.maximum(ensemble.below(value), 1e-300)
+        return np.maximum(ensemble.below(value) / 2, 1e-300)
     energy = ensemble.below(np.ones_like(value))
     for _ in range(60):
         following = np.sqrt(energy * np.maximum(ensemble.below(value / energy), 1e-300))

@@ -31,12 +31,13 @@ if TYPE_CHECKING:
 
 __all__ = ["NodeBose", "OverNodes"]
 
-STRETCH = 1  # octaves of kT that share nodes
+STRETCH = 1 / 2 / 4 / 2  # octaves of kT that share nodes
 CACHED = 200_000  # numbers of a block that is asked again and again
 SERIES = (
     20  # terms of ln N_c in ln kT over a stretch: it is analytic for |Im ln kT| < pi/2, and falls as 9^-n
 )
 HOPELESS = 0.5  # relative error at which a sum is no answer
+ROUGHLY = 1e-3  # of the scale of a measure: the kT of one that is known to some percent only
 SHARES = np.geomspace(1e-2, 45.0, 200)  # E/kT at which the error of Omega is weighed
 
 
@@ -59,9 +60,8 @@ class OverNodes(Ensemble):
         return self.measure.error + 2000 * EPS
 
     def error_at(self, kT: FloatArray) -> FloatArray:
-        """See `Ensemble.error_at`: of the hottest kT in each octave. NoAnswerError where all are hopeless."""
-        sensible = np.where(kT > 0, kT, 1.0)
-        keys, back = np.unique(np.floor(np.log2(sensible)).astype(int), return_inverse=True)
+        """See `Ensemble.error_at`: of the hottest kT in each stretch. NoAnswerError where all are hopeless."""
+        keys, back = np.unique(_stretch(np.where(kT > 0, kT, 1.0)), return_inverse=True)
         bounds = np.array([self._weighed(int(key)) for key in keys])
         if bounds.size and np.all(bounds > HOPELESS):
             raise NoAnswerError(
@@ -70,20 +70,22 @@ class OverNodes(Ensemble):
             )
         return np.where(kT > 0, bounds[back.reshape(kT.shape)], 0.0)
 
-    def _weigh(self, octave: int) -> float:
+    def _weigh(self, stretch: int) -> float:
         """The mean of `error_below` with the weight Omega (-g'), and x^2 more for U and the heat capacity."""
-        kT = 2.0 ** (octave + 1)
+        kT = 2.0 ** ((stretch + 1) * STRETCH)
+        measure = self.measure.eased(kT)
         energies = np.minimum(SHARES * kT, self.top)
-        weight = self.measure.volume(energies) * SHARES**3 * np.exp(-SHARES)
-        bounds = self.measure.error_below(energies)
+        weight = measure.volume(energies) * SHARES**3 * np.exp(-SHARES)
+        bounds = measure.error_below(energies)
         mean = float(np.sum(weight * bounds) / np.sum(weight))
         at_top = float(bounds[-1]) if self.top < SHARES[-1] * kT else 0.0
         share = np.exp(-self.top / kT) if at_top else 0.0
-        least = float(self.measure.error_below(np.minimum(kT, self.top)))
+        least = float(measure.error_below(np.minimum(kT, self.top)))
         return max(mean, least, at_top * float(share)) + 2000 * EPS
 
     def _rule(self, stretch: int) -> Nodes:
-        return rule_for(self.measure, 2.0 ** (stretch * STRETCH), 2.0 ** ((stretch + 1) * STRETCH))
+        low, high = 2.0 ** (stretch * STRETCH), 2.0 ** ((stretch + 1) * STRETCH)
+        return rule_for(self.measure.eased(high), low, high)
 
     def _over(
         self, work: Callable[[FloatArray, FloatArray, Nodes], tuple[FloatArray, ...]], *columns: FloatArray
@@ -101,13 +103,16 @@ class OverNodes(Ensemble):
         return tuple(results)
 
     def _stretches(self, kT: FloatArray) -> Iterator[tuple[NDArray[np.intp], Nodes]]:
-        keys = np.floor(np.log2(kT) / STRETCH).astype(int)
+        keys = _stretch(kT)
         for key in np.unique(keys):
             yield np.flatnonzero(keys == key), self._rules(int(key))
 
     def below(self, number: FloatArray) -> FloatArray:
         """See `Ensemble.below`: bisection of Omega in ln E, from the pure power at the bottom."""
-        return energy_below(self.measure, number)
+        rough = (
+            self.measure.eased(ROUGHLY * self.measure.scale) if self.measure.scale < np.inf else self.measure
+        )
+        return energy_below(rough, number)
 
     def boltzmann(self, kT: FloatArray) -> tuple[FloatArray, FloatArray]:
         """See `Ensemble.boltzmann`."""
@@ -169,8 +174,12 @@ class NodeBose(OverNodes):
         return Sums(*self._over(bose_sums, alpha, kT))
 
 
+def _stretch(kT: FloatArray) -> NDArray[np.int_]:
+    return np.asarray(np.floor(np.log2(kT) / STRETCH).astype(int))
+
+
 def energy_below(measure: Measure, number: FloatArray) -> FloatArray:
-    """An energy (J) within a factor 2 of where Omega reaches `number`; the top where it does not."""
+    """An energy (J) about where Omega reaches `number`; the top where it does not."""
     # From the bottom up: what lies near the top costs most, and is seldom needed.
     low = np.full(number.shape, measure.scale if measure.scale < inf else min(measure.top, 1e-30))
     for _ in range(2000):
@@ -181,4 +190,6 @@ def energy_below(measure: Measure, number: FloatArray) -> FloatArray:
         with np.errstate(divide="ignore", invalid="ignore"):
             jump = np.clip(np.log2(number / volume) / max(measure.exponent, 0.5), -30, 6)
         low = np.minimum(np.where(up | down, low * 2.0**jump, low), measure.top)
-    return low
+    with np.errstate(divide="ignore", invalid="ignore"):
+        nearer = low * np.clip(number / volume, 0.5, 2) ** (1 / max(measure.exponent, 0.5))
+    return np.where(volume > 0, np.minimum(nearer, measure.top), low)

@@ -8,6 +8,7 @@ import numpy as np
 from scipy.special import roots_jacobi
 
 from eoscore.state.ensembles import ensemble_of
+from eoscore.state.rule import rule_for
 
 if TYPE_CHECKING:
     from collections.abc import Callable
@@ -54,7 +55,8 @@ def over_place(
         return functions(np.zeros_like(kT), np.zeros_like(kT))
     if not np.isfinite(kT).any():  # no state, no density
         return functions(kT, kT)
-    rule = held.position.nodes(45.0 * float(np.nanmax(kT)))
+    hottest = float(np.nanmax(kT))
+    rule = rule_for(held.position.eased(hottest), float(np.nanmin(kT)), hottest)
     low, mass = _in_foot(rule.foot)
     energies, weights = np.concatenate([low, rule.v]), np.concatenate([mass, rule.w])
     local = held.model.local
