@@ -52,3 +52,13 @@ def test_walls_make_it_finite():
     reading = held(SLOW + " where r < 20 um").find(["N_c"], {"T": T})["N_c"]
     assert reading.value == pytest.approx(expected, rel=1e-8, abs=float(reading.error))
     assert reading.error < 1e-5 * reading.value
+
+
+def test_exact_levels_end_as_well():
+    """T_c of few particles by halving from below; more would want a temperature at which the sum has no end."""
+    trap = held(SLOW + "\n levels exact")
+    T = trap.T_c(N=3)
+    assert trap.N_c(T=T) == pytest.approx(3, rel=1e-9)
+    words = trap.find(["T_c"], {"N": 1e3})["T_c"].why
+    assert "V rises too slowly there" in words
+    assert trap.T_c(N=3) == T

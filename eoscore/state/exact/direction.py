@@ -9,6 +9,8 @@ from typing import TYPE_CHECKING, NamedTuple, Protocol
 
 import numpy as np
 
+from eoscore.errors import NoAnswerError
+
 if TYPE_CHECKING:
     from numpy.typing import NDArray
 
@@ -19,6 +21,7 @@ __all__ = ["END", "REACH", "Atoms", "Direction", "OnAtoms", "Oscillator", "Sums"
 CHUNK = 400_000  # numbers made at a time
 REACH = 42.0  # kT: e^-42 is dropped
 END = 700.0  # numbers below e^-700 cost a hundred times as much
+ENDLESS = 1e-6  # of the partition function beyond its last level that is too much
 ENOUGH = 1e-6  # relative error of a partition function that asks for no more known levels
 SPARE = 1.25  # further, so that a search for a temperature does not begin again at each step
 
@@ -138,19 +141,25 @@ class OnAtoms(ABC):
             while self._apart(kT) > ENOUGH and self.refined(REACH * kT):
                 self._kept.clear()
             self._good.add(octave)
-        return self._as_far(kT, coarse=False)
+        found = self._as_far(kT, coarse=False)
+        if _beyond(found, kT) > ENDLESS:
+            raise NoAnswerError(
+                "so many states lie far out that their sum does not end at this temperature: V rises too slowly there; "
+                "lower T or N, or give the trap a wall (`where`)"
+            )
+        return found
 
     def error_at(self, kT: float) -> float:
         """See `Direction`: twice what fewer of the known levels give differently."""
-        self.atoms(kT)
-        return self._known + self._apart(kT)
+        return self._known + 10 * _beyond(self.atoms(kT), kT) + self._apart(kT)
 
     def _as_far(self, kT: float, *, coarse: bool) -> Atoms:
         upto, atoms = self._kept.get(coarse, (0.0, None))
         if atoms is None or upto < REACH * kT:
-            upto = self._farthest = max(SPARE * REACH * kT, self._farthest)
+            upto = max(SPARE * REACH * kT, self._farthest)
             atoms = _ascending(self.made(upto, coarse=coarse))
             self._kept[coarse] = upto, atoms
+            self._farthest = upto  # not where that was too far
         return atoms
 
     def _apart(self, kT: float) -> float:
@@ -173,6 +182,14 @@ class OnAtoms(ABC):
             for which in np.array_split(same, same.size * few // CHUNK + 1):
                 whole[which] = _summed(flat[which], e[:few], rows[:, :few])
         return Sums(*(whole[:, k].reshape(np.shape(beta)) for k in range(3)))
+
+
+def _beyond(atoms: Atoms, kT: float) -> float:
+    """The share of a partition function that its last part has before `REACH`: what lies beyond is like it."""
+    x = atoms.e / kT
+    fading = atoms.w * np.exp(-np.minimum(x, END))
+    last = (x > 0.95 * REACH) & (x <= REACH)
+    return float(np.abs(fading[last]).sum() / (1 + fading[x <= REACH].sum()))
 
 
 def _ascending(atoms: Atoms) -> Atoms:

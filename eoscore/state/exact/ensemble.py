@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from eoscore.errors import NoAnswerError
 from eoscore.gas.multiples import multiples_of
 from eoscore.state.ensemble import EPS, Ensemble
 from eoscore.state.exact.direction import END, OnAtoms
@@ -118,6 +119,30 @@ class ExactLevels(Ensemble):
             states = prod(1 + direction.below(kT[-1]) for direction in self.directions) - 1
             held.append(max(states, held[-1]))
         return np.exp(np.interp(np.log(np.maximum(number, 1e-3)), np.log(held), np.log(kT)))
+
+    def saturated_kT(self, number: FloatArray) -> FloatArray | None:
+        """See `Ensemble.saturated_kT`: None, but by halving where the search would begin above the last sum."""
+        try:
+            self._point(0.0, float(self.below(number).max()))
+        except NoAnswerError:
+            return np.array([self._halved(each) for each in number.tolist()])
+        return None
+
+    def _halved(self, number: float) -> float:
+        """kT (J) from below, where sums over levels end before the temperature at which as many lie below kT."""
+        low, high, words = 0.02 * self.gap, float(self.below(np.array([number]))[0]), None
+        while high - low > 4 * EPS * high:
+            middle = (low * high) ** 0.5
+            try:
+                above, ends = self._point(0.0, middle)[0] > number, None
+            except NoAnswerError as error:
+                above, ends = True, error
+            low, high, words = (low, middle, ends) if above else (middle, high, words)
+            if middle in (low, high) and (low * high) ** 0.5 in (low, high):
+                break
+        if words is not None:
+            raise words
+        return high
 
     def boltzmann(self, kT: FloatArray) -> tuple[FloatArray, FloatArray]:
         """See `Ensemble.boltzmann`."""
