@@ -101,8 +101,8 @@ def _settled(chart: Chart, bottom: Array, n: Array, radius: float | Array, steps
         curve = np.einsum("nij,njk,nkl->nil", flat, bend, flat) - outward[:, None, None] * flat
         size, axes = np.linalg.eigh(curve)
         along = np.einsum("nji,nj->ni", axes, across)
-        floor = LEVEL_BEND * np.max(np.abs(size), axis=1, keepdims=True) + 1e-300
-        step = -np.einsum("nij,nj->ni", axes, along / np.maximum(np.abs(size), floor))
+        floor = LEVEL_BEND * np.maximum(np.max(np.abs(size), axis=1), np.linalg.norm(across, axis=1)) + 1e-300
+        step = -np.einsum("nij,nj->ni", axes, along / np.maximum(np.abs(size), floor[:, None]))
         length = np.linalg.norm(step, axis=1)
         step *= np.minimum(1.0, trust / np.maximum(length, 1e-300))[:, None]
         trial = n + step
