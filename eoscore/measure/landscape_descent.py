@@ -53,7 +53,12 @@ def descend(chart: Chart, starts: Array, radius: Array) -> tuple[Array, Array]:
         small = length <= 1e-15 * np.linalg.norm(points[now], axis=1)
         active[now] = ~small & (radius[now] > 1e-17 * np.linalg.norm(points[now], axis=1)) & (length > 0)
         active[now] &= (radius[now] > least) & (np.linalg.norm(points[now], axis=1) < chart.reach)
-    points = points if walled else _polished(chart, points)
+    polished = _polished(chart, points)
+    if walled:
+        held = [bool(held_walls(chart, x, g)) for x, g in zip(points, slope, strict=True)]
+        free = ~np.array(held, bool) & np.all(chart.margins(polished) >= 0, axis=0)
+        polished = np.where(free[:, None], polished, points)
+    points = polished
     if chart.creases and chart.nudge:
         return settled(chart, points, value, first, 1e9 * chart.nudge)
     return points, value

@@ -116,7 +116,8 @@ def _falls(chart: Chart, points: Array, aside: float) -> NDArray[np.bool_]:
     slope = np.nan_to_num(chart.slopes(points))
     size = np.linalg.norm(slope, axis=1)
     step = slope * (aside / np.maximum(size, 1e-300))[:, None]
-    lower = chart.value(points - step) < chart.value(points) - 0.5 * size * aside
+    here = chart.value(points)
+    lower = chart.value(points - step) < here - 0.5 * size * aside - 1e-15 * np.abs(here)
     return np.asarray(lower & (size > 0))
 
 

@@ -301,3 +301,28 @@ def test_between_opposed_coils_the_tip_holds_until_a_coil_lets_it_fall():
     assert found.bottom.position == (0, 0)
     assert found.depth == pytest.approx(-top.fun, rel=1e-9, abs=0)
     assert found.escape.position[1] == pytest.approx(top.x, rel=1e-6, abs=0)
+
+
+def test_the_deepest_of_nine_tweezers_that_sag():
+    """Wells hardly touch: the bottom is that of the deepest, one part in a hundred deeper than the next."""
+    depths = {
+        (i, j): 1 - 0.01 * k for k, (i, j) in enumerate([(-3, 3), (0, 0), (3, -3), (0, 3), (3, 3), (-3, -3)])
+    }
+    spread = 1 + (z / 5e-6) ** 2
+    v = SR84 * G * z
+    for (i, j), depth in depths.items():
+        across = (x - i * 1e-6) ** 2 + (y - j * 1e-6) ** 2
+        v = v - depth * E / spread * exp(-2 * across / (1.44e-12 * spread))
+    found = survey(Field(("x", "y", "z"), v)).bottom
+    assert found.position[:2] == pytest.approx((-3e-6, 3e-6), rel=1e-3)
+    low = minimize_scalar(
+        lambda h: -1e12 * E / (1 + (h / 5e-6) ** 2) + 1e12 * SR84 * G * h, bounds=(-1e-6, 0)
+    )
+    assert found.value == pytest.approx(1e-12 * low.fun, rel=1e-6)
+
+
+def test_a_wall_far_from_the_bottom_changes_no_frequency():
+    """By the same field without the wall, whose curvatures are exact."""
+    field = Field(("x", "y", "z"), crossed().formula + SR84 * G * (0.1 * x + 0.05 * y))
+    walled = survey(Field(field.coordinates, field.formula, (x + 2e-5,)))
+    np.testing.assert_allclose(walled.bottom.curvatures, survey(field).bottom.curvatures, rtol=1e-12)
