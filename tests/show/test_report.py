@@ -178,6 +178,15 @@ def test_intervals_of_samples_are_on_the_page_and_in_its_command(tmp_path):
         assert words in page
 
 
+def test_a_trap_that_holds_in_a_grid_only_is_shown_from_there(tmp_path):
+    text = "gas g { isotope Sr-84 }\ntrap t { P = 0 W\nV(x) = P*(1 s/m)*abs(x) }\n"
+    (tmp_path / "a.tarn").write_text(
+        text + "find S for g in t with N = 9, T = 1 nK over P = [0 W, 1e-24 W]\n"
+    )
+    assert reported(tmp_path / "a.tarn", "--out", tmp_path / "a.html").return_value == 0
+    assert "g in t at P = 1e-24 W: cut along x" in (tmp_path / "a.html").read_text()
+
+
 def test_a_faulty_file_has_no_page(tmp_path):
     (tmp_path / "a.tarn").write_text("f = 2 khz")
     words = ["report", str(tmp_path / "a.tarn"), "--out", str(tmp_path / "a.html")]

@@ -11,12 +11,14 @@ import numpy as np
 from eoscore.answer.record import FoundAnswer
 from eoscore.errors import EoscoreError, NoAnswerError
 from eoscore.place import TrapPlace
+from eoscore.show.prefix import quantity
 
 if TYPE_CHECKING:
     from collections.abc import Iterator, Mapping, Sequence
 
     from eoscore.answer.lab import Lab
     from eoscore.answer.record import Answer
+    from eoscore.language.binding import Binding
     from eoscore.language.question import Question
     from eoscore.state import HeldGas, State
 
@@ -27,6 +29,7 @@ __all__ = ["Subject", "subjects"]
 class Subject:
     """A gas held in a place, or the reason why it is not; SI numbers of the first questions that give them.
 
+    `at`: the point of a grid, where it is held there and not with the values of the file.
     A gas that is brought there from elsewhere has the temperature that was found.
     """
 
@@ -35,11 +38,13 @@ class Subject:
     held: HeldGas | None
     why: str = ""
     given: dict[str, float] = field(default_factory=dict)
+    at: str = ""
 
     @property
     def name(self) -> str:
         """`strontium in crossed`."""
-        return self.gas if self.place is None else f"{self.gas} in {self.place}"
+        name = self.gas if self.place is None else f"{self.gas} in {self.place}"
+        return f"{name} at {self.at}" if self.at else name
 
     @property
     def number(self) -> str | None:
@@ -93,12 +98,9 @@ def subjects(lab: Lab, answers: Sequence[Answer]) -> Iterator[Subject]:
 
 
 def _subject(lab: Lab, gas: str, place: str | None, asked: list[tuple[Question, Answer]]) -> Subject:
-    first = asked[0][0]
-    binding = lab.program.bind(gas, place, lab.program.conditions(first).values)
-    try:
-        held = lab.held.of(binding, first.dimension)
-    except NoAnswerError as fault:
-        return Subject(gas, place, None, fault.why)
+    held, at = _first_held(lab, _bindings(lab, gas, place, asked), asked[0][0].dimension)
+    if isinstance(held, str):
+        return Subject(gas, place, None, held)
     given: dict[str, float] = {}
     for question, answer in asked:
         told = dict(lab.program.conditions(question).given)
@@ -109,7 +111,36 @@ def _subject(lab: Lab, gas: str, place: str | None, asked: list[tuple[Question, 
                 told.setdefault(axis.name, float(axis.values[axis.points // 2]))
         for name, value in told.items():
             given.setdefault(name, value)
-    return Subject(gas, place, held, given=given)
+    return Subject(gas, place, held, given=given, at=at)
+
+
+def _first_held(
+    lab: Lab, bindings: Iterator[tuple[Binding, str]], dimension: int | None
+) -> tuple[HeldGas | str, str]:
+    """The first that is held, with its words; where none is, why the first is not."""
+    why = ""
+    for binding, words in bindings:
+        try:
+            return lab.held.of(binding, dimension), words
+        except NoAnswerError as fault:
+            why = why or fault.why
+    return why, ""
+
+
+def _bindings(
+    lab: Lab, gas: str, place: str | None, asked: list[tuple[Question, Answer]]
+) -> Iterator[tuple[Binding, str]]:
+    """What the first question asks about; where that holds nothing, the ends of the grids over the trap, in words."""
+    yield lab.program.bind(gas, place, lab.program.conditions(asked[0][0]).values), ""
+    for question, answer in asked:
+        axes = [axis for axis in question.over if not axis.thermodynamic]
+        if not axes or not isinstance(answer, FoundAnswer):
+            continue
+        for end in (-1, 0):
+            moved = {axis.name: float(axis.values[end]) for axis in axes}
+            words = (f"{name} = {quantity(value, answer.over_units[name])}" for name, value in moved.items())
+            values = {**lab.program.conditions(question).values, **moved}
+            yield lab.program.bind(gas, place, values), ", ".join(words)
 
 
 def _arrived(given: Mapping[str, float], answer: Answer) -> dict[str, float]:
