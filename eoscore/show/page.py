@@ -76,7 +76,8 @@ def error_text(finding: Finding) -> str:
     if worst == 0.0:
         return "exact"
     power = math.floor(math.log10(worst))
-    return f"{math.ceil(worst / 10.0**power - 1e-9)}e{power} relative"
+    digit = math.ceil(worst / 10.0**power - 1e-9)
+    return f"1e{power + 1} relative" if digit == 10 else f"{digit}e{power} relative"
 
 
 def _notes(answer: Answer) -> Iterator[str]:
