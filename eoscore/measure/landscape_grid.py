@@ -16,6 +16,10 @@ if TYPE_CHECKING:
 
 __all__ = ["Grid", "Leak"]
 
+MOST_RAYS = 6000  # straight ways out that are looked at between walls
+DECADE = 5  # looks along each in a factor 10, over nine of these
+LOOKS = 9 * DECADE + 1
+
 
 @dataclass(frozen=True)
 class Leak:
@@ -116,16 +120,51 @@ class Grid:
     def leak(self, bottom: Array) -> Leak | None:
         """The lowest level at which the point joins the far end of the grid; None if it never does.
 
-        Levels are bisected; the regions below a level are found by labelling, diagonal neighbours joined.
+        Levels are bisected; the regions below a level are found by labelling, diagonal neighbours joined. Between
+        walls the straight ways out from all points count as well: no far end may lie between walls that are oblique.
         """
+        along_grid = self._leak_at_ends(bottom)
+        straight = self._leak_along_rays(bottom) if self.chart.walls else None
+        if along_grid is None or straight is None:
+            return along_grid or straight
+        lower = straight.energy < along_grid.energy - 1e-9 * abs(along_grid.energy - along_grid.bottom)
+        return straight if lower else along_grid
+
+    def _leak_along_rays(self, bottom: Array) -> Leak | None:
+        """The same where the ways out lead straight away from the bottom, from grid points on."""
+        index = np.argwhere(np.isfinite(self.v))
+        index = index[:: 1 + len(index) // MOST_RAYS]
+        points = self.points(index)
+        rays = bottom + np.geomspace(1, 1e9, LOOKS)[:, None, None] * (points - bottom)
+        heights = self.chart.value(rays)
+        with np.errstate(all="ignore"):
+            before, after = (
+                heights[-1 - DECADE] - heights[-1 - 2 * DECADE],
+                heights[-1] - heights[-1 - DECADE],
+            )
+            grows = (after > 0.5 * before) & (
+                after > 1e-12 * np.abs(heights[0] - self.v[self.nearest(bottom)])
+            )
+        exits = np.where(grows | np.isnan(after), np.inf, np.max(heights, axis=0))
+        exits[np.linalg.norm(points - bottom, axis=1) <= 1e8 * self.chart.nudge] = np.inf
+        found = self._lowest_join(self.nearest(bottom), index, exits)
+        if found is None:
+            return None
+        level, out = found
+        best = out[np.argmin(exits[out])]
+        top, low = int(np.argmax(heights[:, best])), float(self.v[self.nearest(bottom)])
+        last = np.argwhere(self.v == level)
+        if exits[best] >= level and not last.size:
+            place = rays[top, best]
+            return Leak(level, low, place, points[best] - bottom, at_infinity=top == LOOKS - 1)
+        nearest = last[np.argsort(np.linalg.norm(self.points(last) - bottom, axis=1), kind="stable")]
+        place = self.points(nearest[:1])[0] if last.size else points[best]
+        return Leak(level, low, place, points[best] - bottom, at_infinity=False)
+
+    def _lowest_join(self, start: tuple[int, ...], ends: Index, exits: Array) -> tuple[float, Index] | None:
+        """The lowest level at which the start joins ends that lead out at it or below, and these ends."""
         from scipy import ndimage
 
-        edge = np.ones(self.shape, bool)
-        edge[(slice(1, -1),) * self.v.ndim] = False
-        ends = np.argwhere(edge & np.isfinite(self.v))
-        start = self.nearest(bottom)
-        exits = self._exits(ends, float(self.v[start]))
-        self.lowest_exit = float(np.min(exits, initial=np.inf))
         levels = np.unique(np.concatenate([self.v[np.isfinite(self.v)], exits[np.isfinite(exits)]]))
         levels = levels[levels >= self.v[start]]
         structure = np.ones((3,) * self.v.ndim)
@@ -140,8 +179,20 @@ class Grid:
         while high - low > 1:
             middle = (low + high) // 2
             low, high = (low, middle) if joined(levels[middle]).size else (middle, high)
-        level = float(levels[high])
-        out = joined(level)
+        return float(levels[high]), joined(float(levels[high]))
+
+    def _leak_at_ends(self, bottom: Array) -> Leak | None:
+
+        edge = np.ones(self.shape, bool)
+        edge[(slice(1, -1),) * self.v.ndim] = False
+        ends = np.argwhere(edge & np.isfinite(self.v))
+        start = self.nearest(bottom)
+        exits = self._exits(ends, float(self.v[start]))
+        self.lowest_exit = float(np.min(exits, initial=np.inf))
+        found = self._lowest_join(start, ends, exits)
+        if found is None:
+            return None
+        level, out = found
         chosen = tuple(ends[out[np.argmin(exits[out])]])
         outward = self.points(np.array([chosen]))[0] - bottom
         last = np.argwhere(self.v == level)

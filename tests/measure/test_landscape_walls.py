@@ -89,3 +89,21 @@ def test_walls_that_just_meet_leave_no_slit():
     top = -minimize_scalar(minus_v, bounds=(25e-6, 35e-6), method="bounded", options=options).fun
     low = minimize_scalar(lambda u: -minus_v(u), bounds=(-5e-6, 5e-6), method="bounded", options=options).fun
     assert found.depth == pytest.approx(top - low, rel=1e-9, abs=0)
+
+
+@pytest.mark.parametrize("turn", [20.0, 65.0, 110.0])
+def test_a_leak_between_two_oblique_walls(turn):
+    """A wedge that opens along no axis of the coordinates: on its middle line V is that of one dimension."""
+    c, s = math.cos(math.radians(turn)), math.sin(math.radians(turn))
+    along, across = c * x + s * y, c * y - s * x
+    v = -E * exp(-2 * (along**2 + across**2) / S**2) + 0.05 * E * along / S
+    walls = (0.5 * S - 0.2 * along - across, 0.5 * S - 0.2 * along + across)
+    found = survey(Field(("x", "y"), v, walls))
+
+    def minus_v(u):
+        return math.exp(-2 * u * u) - 0.05 * u
+
+    options = {"xatol": 1e-12}
+    top = -minimize_scalar(minus_v, bounds=(-3, -0.5), method="bounded", options=options).fun
+    low = minimize_scalar(lambda u: -minus_v(u), bounds=(-0.5, 0.5), method="bounded", options=options).fun
+    assert found.depth == pytest.approx((top - low) * E, rel=1e-9, abs=0)
