@@ -27,10 +27,11 @@ SEEN = 0.02
 CLOSE = 0.15  # of the depth: a pass this near the grid's level is the one the grid has seen
 
 
-def lowest_way_out(chart: Chart, grid: Grid, leak: Leak | None, minima: Array) -> Pass | None:
+def lowest_way_out(chart: Chart, grid: Grid, leak: Leak | None, minima: Array) -> tuple[Pass | None, float]:
     """The highest pass of the lowest way from the first of the minima (n, d) to the outside; None if none is found.
 
     Each pass found is descended on both sides, so the way is a real one: its energy bounds the escape from above.
+    Where the grid has seen a lower one, its nearest pass is given with the share of the depth that may be wrong.
     """
     found: list[Pass] = []
     best = None
@@ -45,12 +46,16 @@ def lowest_way_out(chart: Chart, grid: Grid, leak: Leak | None, minima: Array) -
     if best is None and chart.walls:
         found = _distinct(chart, found + others + _along_walls(chart, grid, minima[0]))
         best = _through(chart, found, minima)
-    if (
-        best is None and leak is not None
-    ):  # a long chain of wells: the grid has seen that this is its highest pass
-        seen = [one for one in found if abs(one.value - leak.energy) < SEEN * (leak.energy - leak.bottom)]
-        best = min(seen, key=lambda one: abs(one.value - leak.energy), default=None)
-    return best
+    if leak is None:
+        return best, 0.0
+    # A long chain of wells, some of them unknown: the grid has seen a way, and that this is its highest pass.
+    seen = [one for one in found if abs(one.value - leak.energy) < SEEN * (leak.energy - leak.bottom)]
+    nearest = min(seen, key=lambda one: abs(one.value - leak.energy), default=None)
+    if best is None:
+        return nearest, 0.0
+    if best.value - leak.energy <= SEEN * (leak.energy - leak.bottom):
+        return best, 0.0
+    return (best, 0.0) if nearest is None else (nearest, SEEN)
 
 
 def _through(chart: Chart, passes: list[Pass], minima: Array) -> Pass | None:

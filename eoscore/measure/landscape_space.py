@@ -152,14 +152,16 @@ def _escape(
     """The leak of the grid made exact: the pass near it, or the limit at infinity; and its relative error."""
     limit = leak.energy if leak is not None and leak.at_infinity else np.inf
     if leak is None or (leak.at_infinity and grid.lowest_exit >= limit):
-        found = None
+        found, guessed = None, 0.0
     else:
-        found = lowest_way_out(chart, grid, leak, minima)
+        found, guessed = lowest_way_out(chart, grid, leak, minima)
     if found is not None and found.value < limit:
         way = found.way if found.way @ (found.point - minima[0]) >= 0 else -found.way
         doubt = 1e-12 if leak is None or leak.energy > found.value - 0.3 * (found.value - low) else 0.3
         place = np.where(chart.radial, np.abs(found.point), found.point)
-        return Escape(chart.names, found.value, tuple(place.tolist()), tuple(way.tolist())), doubt
+        return Escape(chart.names, found.value, tuple(place.tolist()), tuple(way.tolist())), max(
+            doubt, guessed
+        )
     if leak is None:
         return None, 1e-12
     out = tuple((leak.outward / np.linalg.norm(leak.outward)).tolist())

@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 
 import pytest
-from scipy.optimize import minimize_scalar
+from scipy.optimize import fsolve, minimize_scalar
 
 from eoscore.formula import call, constant
 from eoscore.formula.field import Field
@@ -107,3 +107,32 @@ def test_a_leak_between_two_oblique_walls(turn):
     top = -minimize_scalar(minus_v, bounds=(-3, -0.5), method="bounded", options=options).fun
     low = minimize_scalar(lambda u: -minus_v(u), bounds=(-0.5, 0.5), method="bounded", options=options).fun
     assert found.depth == pytest.approx((top - low) * E, rel=1e-9, abs=0)
+
+
+def test_a_way_out_over_a_well_that_is_not_known_says_what_it_may_be_wrong_by():
+    """The saddle between two wells, by SciPy's root finder; a hill beside them offers a higher way out."""
+    pieces = [
+        (-2.1616, 0.8637, 1.0725, -0.9097),
+        (-2.3017, -2.2439, 0.7765, 1.968),
+        (0.4514, 2.4192, 1.3051, 0.815),
+    ]
+    v = (-0.0227 * x - 0.1189 * y) * (E / S)
+    for a, b, w, depth in pieces:
+        v = v - depth * E * exp(-2 * ((x / S - a) ** 2 + (y / S - b) ** 2) / w**2)
+
+    def slope(u):
+        parts = [
+            (math.exp(-2 * ((u[0] - a) ** 2 + (u[1] - b) ** 2) / w**2) * 4 * d / w**2, a, b)
+            for a, b, w, d in pieces
+        ]
+        return (
+            -0.0227 + sum(e * (u[0] - a) for e, a, _ in parts),
+            -0.1189 + sum(e * (u[1] - b) for e, _, b in parts),
+        )
+
+    turned = (0.9926 * x + 0.1211 * y) / S + 2.606
+    found = survey(Field(("x", "y"), v, (turned,)))
+    place = fsolve(slope, (-2.045, -1.047), xtol=1e-13)
+    height = float(v.evaluate({"x": place[0] * S, "y": place[1] * S})) - found.bottom.value
+    assert found.depth == pytest.approx(height, rel=found.error, abs=0)
+    assert found.error <= 0.02
