@@ -84,7 +84,11 @@ class Angular:
         if about_axis:
             self.start[0] = 0.0
         area = 2 * pi if self.shape == "circle" else 4 * pi
-        self.limit = area * self.det * 2 ** (self.power / 2) / self.power * (self.ring or 1.0)
+        form = self.det
+        if self._far_along_coordinates(bottom, region):
+            self.frame = np.diag(1 / np.sqrt(np.diag(np.asarray(bottom.hessian))))
+            self.det = float(np.prod(np.diag(self.frame)))
+        self.limit = area * form * 2 ** (self.power / 2) / self.power * (self.ring or 1.0)
         self.exponent = self.power / self.degree if self.degree else None
         self.share = share
         self.line = self._line(region)
@@ -120,6 +124,14 @@ class Angular:
         found, error = self.patches.settled(sweep, allowed, (stretch, parts))
         worst = (error.reshape(parts, -1) * weights()).max(axis=1)
         return self.det * found.reshape(parts, -1), self.det * worst
+
+    def _far_along_coordinates(self, bottom: Minimum, region: Region) -> bool:
+        """Whether arms reach far along the coordinates, so that these make a better frame than the principal axes."""
+        if self.shape != "cube" or self.degree != 2:
+            return False
+        unit = 1 / np.sqrt(np.diag(np.asarray(bottom.hessian)))
+        points = (region.points(beyond=False) - self.start) / unit
+        return bool(np.max(np.abs(points), initial=0.0) > FAR * self.radius(self.end))
 
     def radius(self, v: float) -> float:
         """q at an energy in the form that V has at the bottom: q^2/2, or q for a cone; 1 where that is unknown."""

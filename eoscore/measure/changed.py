@@ -19,6 +19,9 @@ class Changed(Measure):
     """`factor` times the part of a measure below `top`."""
 
     def __init__(self, origin: Measure, factor: float, top: float) -> None:
+        if isinstance(origin, Changed):
+            factor *= origin.factor
+            origin = origin.origin
         super().__init__(
             origin.exponent,
             top=top,
@@ -27,7 +30,9 @@ class Changed(Measure):
             breaks=origin.breaks,
             scale=origin.scale,
         )
-        self.origin, self.factor, self.bounded = origin, factor, origin.bounded
+        self.origin: Measure = origin
+        self.factor: float = factor
+        self.bounded = origin.bounded
 
     @property
     def error(self) -> float:

@@ -10,6 +10,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from eoscore.errors import NoAnswerError
+from eoscore.measure.changed import Changed
 from eoscore.measure.crowded import Crowd
 from eoscore.measure.powers import Powers
 from eoscore.measure.rules import graded, legendre, quartering
@@ -64,6 +65,8 @@ def _sampled(a: Measure, b: Measure, parent: Sampled | None = None, kT: float = 
     """The convolution as a function of energy; with a parent, for sums at temperatures up to kT."""
 
     def ease(kT: float) -> Sampled:
+        if not isinstance(b if isinstance(_origin(a), Sampled) else a, Powers):
+            return joined  # the general rules ask for the density at places of their own
         pair = a.eased(kT), b.eased(kT)
         return joined if pair == (a, b) else _sampled(*pair, joined, kT)
 
@@ -71,7 +74,7 @@ def _sampled(a: Measure, b: Measure, parent: Sampled | None = None, kT: float = 
         _function(a, b),
         a.exponent + b.exponent,
         scale=min(a.scale, b.scale),
-        foot=max([m.foot for m in (a, b) if isinstance(m, Sampled)], default=None),
+        foot=max([m.foot for m in (_origin(a), _origin(b)) if isinstance(m, Sampled)], default=None),
         top=min(a.top, b.top),
         error=lambda v: a.error_below(v) + b.error_below(v) + ROUNDING,
         route=a.route if b.powers() else b.route if a.powers() else f"{a.route} * {b.route}",
@@ -86,9 +89,16 @@ def _sampled(a: Measure, b: Measure, parent: Sampled | None = None, kT: float = 
 def _function(a: Measure, b: Measure) -> Callable[[FloatArray], FloatArray]:
     """Omega of the two together as a function of energies."""
     for one, other in ((a, b), (b, a)):
-        if isinstance(one, Sampled) and isinstance(other, Powers):
-            return partial(smeared, one, other)
+        whole = _origin(one)
+        if isinstance(whole, Sampled) and isinstance(other, Powers):
+            factor = one.factor if isinstance(one, Changed) else 1.0
+            return partial(smeared, whole, Powers([(factor * c, k) for c, k in other.terms]))
     return partial(_volume, a, b)
+
+
+def _origin(measure: Measure) -> Measure:
+    """The measure itself, or the one of which it is a multiple or a part."""
+    return measure.origin if isinstance(measure, Changed) else measure
 
 
 def _factor(measure: Measure) -> float | None:

@@ -16,7 +16,7 @@ from eoscore.measure.landscape_grid import Leak
 if TYPE_CHECKING:
     from eoscore.measure.landscape_chart import Array, Chart
 
-__all__ = ["lowest_valley"]
+__all__ = ["lowest_valley", "settled", "starts"]
 
 FIRST_STEPS, STEPS = 80, 5  # Newton steps on the first sphere, and on each that follows
 SHRINK = 0.6  # ratio of radii on the way back
@@ -36,12 +36,12 @@ def lowest_valley(chart: Chart, bottom: Array, value: float, least: float, far: 
     """
     if chart.walls:
         return None
-    n = _settled(chart, bottom, _starts(chart.dimension), far, FIRST_STEPS)
+    n = settled(chart, bottom, starts(chart.dimension), far, FIRST_STEPS)
     n = _distinct(n, _v(chart, bottom, n, far))
     heights = [_v(chart, bottom, n, far)]
     farther = n
     for factor in BEYOND:
-        farther = _settled(chart, bottom, farther, factor * far, FIRST_STEPS)
+        farther = settled(chart, bottom, farther, factor * far, FIRST_STEPS)
         heights.append(_v(chart, bottom, farther, factor * far))
     first, second, third = (np.asarray(height) for height in heights[1:])
     with np.errstate(all="ignore"):
@@ -55,7 +55,7 @@ def lowest_valley(chart: Chart, bottom: Array, value: float, least: float, far: 
         best = int(np.argmin(np.maximum(np.max(chart.value(rough), axis=0), third[out])))
     path = _way_back(chart, bottom, n[out][[best]], least, far, FIRST_STEPS)[:, 0]
     radius = np.linalg.norm(path - bottom, axis=1, keepdims=True)
-    path = bottom + radius * _settled(chart, bottom, (path - bottom) / radius, radius, FIRST_STEPS)
+    path = bottom + radius * settled(chart, bottom, (path - bottom) / radius, radius, FIRST_STEPS)
     v, limit, outward = chart.value(path), float(third[out][best]), n[out][best]
     top = int(np.argmax(v))
     if limit >= v[top] - LEVEL * abs(v[top] - value):
@@ -68,7 +68,7 @@ def _way_back(chart: Chart, bottom: Array, n: Array, least: float, far: float, s
     places, radius = [bottom + far * n], far
     while radius > least:
         radius *= SHRINK
-        n = _settled(chart, bottom, n, radius, steps)
+        n = settled(chart, bottom, n, radius, steps)
         places.append(bottom + radius * n)
     corners = np.array([*places, np.broadcast_to(bottom, n.shape)])
     share = (np.arange(LOOKS) / LOOKS)[:, None, None]
@@ -76,7 +76,7 @@ def _way_back(chart: Chart, bottom: Array, n: Array, least: float, far: float, s
     return np.asarray(path.reshape(-1, *n.shape))
 
 
-def _starts(dimension: int) -> Array:
+def starts(dimension: int) -> Array:
     """Unit vectors (n, d) along the axes, between them, and at random."""
     between = [p for p in product((-1.0, 0.0, 1.0), repeat=dimension) if any(p)]
     random = np.random.default_rng(3).normal(size=(RANDOM, dimension))
@@ -88,7 +88,7 @@ def _v(chart: Chart, bottom: Array, n: Array, radius: float | Array) -> Array:
     return chart.value(bottom + radius * n)
 
 
-def _settled(chart: Chart, bottom: Array, n: Array, radius: float | Array, steps: int) -> Array:
+def settled(chart: Chart, bottom: Array, n: Array, radius: float | Array, steps: int) -> Array:
     """Directions (n, d) moved to a minimum of V on the sphere by Newton steps of at most half a radian."""
     value = _v(chart, bottom, n, radius)
     trust = np.full(len(n), 0.5)

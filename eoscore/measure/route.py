@@ -10,6 +10,7 @@ import numpy as np
 
 from eoscore.errors import NoAnswerError
 from eoscore.measure.about import about
+from eoscore.measure.arms import along_arms
 from eoscore.measure.cells import cells
 from eoscore.measure.composed import composed
 from eoscore.measure.convolve import convolve
@@ -65,10 +66,7 @@ def _of_one(field: Field, landscape: Landscape | None, ceiling: float) -> Measur
     if not landscape.holds:
         raise NoAnswerError(landscape.why)
     found = (
-        flat(field, landscape, measure_of)
-        or line(field, landscape)
-        or about(field, landscape, ceiling)
-        or cells(field, landscape, ceiling)
+        flat(field, landscape, measure_of) or line(field, landscape) or _in_space(field, landscape, ceiling)
     )
     if found is None:
         raise NoAnswerError(
@@ -77,3 +75,13 @@ def _of_one(field: Field, landscape: Landscape | None, ceiling: float) -> Measur
     # A pass at a place of its own keeps the region below it away from everything that lies further out.
     found.bounded = landscape.escape is not None and landscape.escape.position is not None
     return found
+
+
+def _in_space(field: Field, landscape: Landscape, ceiling: float) -> Measure | None:
+    """By rays or cells, in coordinates along the arms where these leave the axes."""
+    turned = along_arms(field, landscape, min(landscape.depth, ceiling))
+    if turned is None:
+        return about(field, landscape, ceiling) or cells(field, landscape, ceiling)
+    field, landscape, unit = turned
+    found = about(field, landscape, ceiling) or cells(field, landscape, ceiling)
+    return found and found.scaled(unit)

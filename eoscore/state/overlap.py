@@ -8,7 +8,7 @@ import numpy as np
 from scipy.special import roots_jacobi
 
 from eoscore.state.ensembles import ensemble_of
-from eoscore.state.rule import rule_for
+from eoscore.state.rule import smooth_rule
 
 if TYPE_CHECKING:
     from collections.abc import Callable
@@ -56,7 +56,7 @@ def over_place(
     if not np.isfinite(kT).any():  # no state, no density
         return functions(kT, kT)
     hottest = float(np.nanmax(kT))
-    rule = rule_for(held.position.eased(hottest), float(np.nanmin(kT)), hottest)
+    rule = smooth_rule(held.position.eased(hottest), float(np.nanmin(kT)), hottest)
     low, mass = _in_foot(rule.foot)
     energies, weights = np.concatenate([low, rule.v]), np.concatenate([mass, rule.w])
     local = held.model.local

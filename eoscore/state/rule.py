@@ -17,8 +17,9 @@ if TYPE_CHECKING:
     from eoscore.measure import Measure
     from eoscore.state.reading import FloatArray
 
-__all__ = ["REACH", "rule_for"]
+__all__ = ["REACH", "rule_for", "smooth_rule"]
 
+LOW = 1e-5  # of kT
 REACH = 45.0  # e^-45 = 3e-20 is dropped
 NEGLIGIBLE = 1e-17
 SOARING, MODEST = 1e3, 4.5  # times the growth by the power at the bottom, or by this one
@@ -47,6 +48,22 @@ def rule_for(measure: Measure, low: float, high: float) -> Nodes:
     if abs(first + w.sum() - last) > max(AGREED, measure.error) * last:
         return _condensed(_with_low_foot(measure.nodes(end), low), end)
     return Nodes(v, w, Foot(first / edge**k, k, edge))
+
+
+def smooth_rule(measure: Measure, low: float, high: float) -> Nodes:
+    """The same for functions of sqrt(v), as local densities are, by the measure's own nodes: it may be rough.
+
+    The foot reaches up to LOW kT, with a share of its 3/2 power at most.
+    """
+    end = min(measure.top, REACH * high)
+    rule = measure.nodes(end)
+    edge = max(LOW * low, rule.foot.edge)
+    if rule.foot.exponent == 0:
+        return rule
+    above = rule.v > edge
+    share = rule.foot.volume + float(rule.w[~above].sum())
+    foot = Foot(share / edge**rule.foot.exponent, rule.foot.exponent, edge)
+    return _condensed(Nodes(rule.v[above], rule.w[above], foot), end)
 
 
 def _soars(measure: Measure, kT: float, end: float) -> bool:
