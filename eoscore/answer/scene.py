@@ -36,7 +36,7 @@ class Scene:
             return _finite(self.given[name])
         if name in self.found:
             return _finite(self.found[name].value)
-        return self._solved(name, self.given)
+        return self._solved(name, self.given) if self.given else None  # no state, whose trap would be measured
 
     def _solved(self, name: str, given: Mapping[str, NDArray[np.float64]]) -> NDArray[np.float64] | None:
         try:

@@ -45,12 +45,14 @@ def local_picture(scene: Scene) -> Iterator[Caution]:
 def _wavelengths(scene: Scene) -> float | None:
     """The width of the region with V below kT, from its volume, in thermal wavelengths."""
     held, T = scene.held, scene.temperature
+    if T is None:
+        return None
     try:
         position = held.position
     except EoscoreError:
         return None
-    wave = None if T is None else scene.number("lambda_T")
-    if position is None or T is None or wave is None or not held.dimension:
+    wave = scene.number("lambda_T")
+    if position is None or wave is None or not held.dimension:
         return None
     reached = np.array([min(K_B * T, held.top)])
     return float(position.volume(reached)[0] ** (1.0 / held.dimension) / wave.max())

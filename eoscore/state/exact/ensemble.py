@@ -122,6 +122,8 @@ class ExactLevels(Ensemble):
 
     def saturated_kT(self, number: FloatArray) -> FloatArray | None:
         """See `Ensemble.saturated_kT`: None, but by halving where the search would begin above the last sum."""
+        if not number.size:
+            return None
         try:
             self._point(0.0, float(self.below(number).max()))
         except NoAnswerError:
