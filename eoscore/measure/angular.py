@@ -9,8 +9,9 @@ from typing import TYPE_CHECKING, Literal
 
 import numpy as np
 
-from eoscore.formula import evaluate_many, gradient, variable
+from eoscore.formula import evaluate_many, variable
 from eoscore.formula.field import Field
+from eoscore.measure.frame import frame_of
 from eoscore.measure.moments import along_rays, edges_of, weights
 from eoscore.measure.patches import Box, Patches, eased
 from eoscore.measure.rays import Line, Rays, unstretched
@@ -31,7 +32,6 @@ __all__ = ["ROOTS", "Angular"]
 Shape = Literal["cube", "circle", "about axis"]  # `about axis`: (rho, z) directions, rho >= 0
 
 ON_AXIS = 1e-9  # of the width of a well: a bottom this close to the axis lies on it
-ASIDE = 1e-10  # m beside the tip of a cone
 ROOTS = 1e-13  # error of the roots
 BENT = 1e-2  # change of V against its form at the bottom, at which the form ends
 EARLY, BEGIN = 0.2, 1e-3  # of the reach there, and of that of all energies: where a walk begins at the latest
@@ -44,7 +44,6 @@ PROBES = 60  # points that tell whether V is even
 EVEN = 1e-13  # relative difference of even values
 MANY = 9_000  # rays, of a potential without symmetries, from which on less accuracy will do
 FEW = 2  # by which the number of rays is divided for a try
-DEGREES = {"quadratic": 2, "ring": 2, "cone": 1}
 
 
 class Angular:
@@ -66,7 +65,7 @@ class Angular:
         *,
         few: bool = False,
     ) -> None:
-        self.degree, self.frame = _frame(field, bottom, region, end)
+        self.degree, self.frame = frame_of(field, bottom, region, end)
         self.start, self.v_min, self.end = np.array(bottom.position), bottom.value, end
         turning = field.coordinates == ("rho", "z")
         if turning and self.degree == 2 and abs(bottom.position[0]) <= self._slack():
@@ -255,36 +254,3 @@ def _directions(shape: Shape, side: FloatArray, point: FloatArray) -> FloatArray
     found[rows, (axis + 1) % 3] = point[:, 0]
     found[rows, (axis + 2) % 3] = point[:, 1]
     return found
-
-
-def _frame(field: Field, bottom: Minimum, region: Region, end: float) -> tuple[int, FloatArray]:
-    """The power with which V rises from a bottom (0: unknown), and the frame in which it does so in all directions.
-
-    On a pass V rises along some axes of the frame as it falls along others, by `end` at a distance of 1.
-    """
-    degree = DEGREES.get(bottom.kind, 0)
-    frame = _well_frame(bottom) if degree == 2 else _cone_frame(field, bottom) if degree == 1 else None
-    if frame is not None:
-        return degree, frame
-    curvature, axes = np.linalg.eigh(np.nan_to_num(np.asarray(bottom.hessian)))
-    if curvature[0] < 0 and np.abs(curvature).min() > 1e-10 * np.abs(curvature).max():
-        return 0, np.asarray(axes * np.sqrt(2 * end / np.abs(curvature)))
-    return 0, np.diag(np.ptp(region.points(beyond=True), axis=0) / 2)
-
-
-def _well_frame(bottom: Minimum) -> FloatArray | None:
-    """Columns along the principal axes, so long that V = q^2/2 along each; None where V is level along one."""
-    curvature, axes = np.linalg.eigh(np.nan_to_num(np.asarray(bottom.hessian)))
-    return np.asarray(axes / np.sqrt(curvature)) if curvature[0] > 1e-10 * curvature[-1] else None
-
-
-def _cone_frame(field: Field, bottom: Minimum) -> FloatArray | None:
-    """Columns along the coordinates, so long that V = q on the average of both sides of the tip; None without one."""
-    d = len(field.coordinates)
-    steps = ASIDE * np.concatenate([np.eye(d), -np.eye(d)])
-    points = dict(zip(field.coordinates, (np.array(bottom.position) + steps).T, strict=True))
-    slopes = [
-        np.broadcast_to(g, 2 * d) for g in evaluate_many(gradient(field.formula, field.coordinates), points)
-    ]
-    steepness = np.array([(slope[i] - slope[d + i]) / 2 for i, slope in enumerate(slopes)])
-    return np.diag(1 / steepness) if np.all(steepness > 0) else None
