@@ -26,11 +26,11 @@ FIRST, STEP, SPHERES = (
 )  # the first sphere, in the least reach of the form at the bottom; ratio; how many
 FAR = 2.0  # times its widest reach: a place held out there is in an arm
 MOST = 12  # directions that are followed
-STEPS = 80  # of Newton's rule on a sphere
+STEPS = 25  # of Newton's rule on a sphere
 BELOW = 0.999  # of the level: a way over the pass itself is no arm
 ALIGNED = 1e-3  # radians: an arm this close to an axis needs no other
 LOOKS = 60  # places on the way to a sphere, all of which are held
-ASIDE = 0.1  # radians from arms on one sphere to where arms on the next are looked for: two may part there
+ASIDE = np.array([0.05, 0.15, 0.5, 1.0])  # from arms on one sphere to where those on the next are looked for
 APART = 0.05  # radians between arms that are two
 ALIKE = 0.02  # radians between ends of arms that are one
 
@@ -71,7 +71,8 @@ def _arms(field: Field, bottom: Minimum, level: float) -> list[FloatArray]:
             spheres.append(n)
         n = n[:MOST]
         radius *= STEP
-        n = np.concatenate([n, *(n + aside for aside in ASIDE * starts(len(centre)))])
+        soft = _softest(chart, centre + radius * n, n)
+        n = np.concatenate([n, *(n + side * soft for side in (*ASIDE, *-ASIDE))])
         n /= np.linalg.norm(n, axis=1, keepdims=True)
     arms: list[FloatArray] = []
     for sphere in reversed(spheres):
@@ -82,6 +83,15 @@ def _arms(field: Field, bottom: Minimum, level: float) -> list[FloatArray]:
             if all(abs(float(arm @ other)) < np.cos(APART) for other in arms):
                 arms.append(arm)
     return arms
+
+
+def _softest(chart: Chart, points: FloatArray, n: FloatArray) -> FloatArray:
+    """The directions across n (n, d) in which V rises least: there an arm parts into two."""
+    bend = np.nan_to_num(chart.jet(points)[2])
+    across = np.eye(n.shape[1]) - n[:, :, None] * n[:, None, :]
+    curve = across @ bend @ across
+    far = 1e3 * np.max(np.abs(curve), axis=(1, 2))[:, None, None]
+    return np.asarray(np.linalg.eigh(curve + far * n[:, :, None] * n[:, None, :])[1][:, :, 0])
 
 
 def _distinct(n: FloatArray) -> FloatArray:
