@@ -19,7 +19,7 @@ if TYPE_CHECKING:
 
 __all__ = ["REACH", "rule_for", "smooth_rule"]
 
-LOW = 1e-5  # of kT
+LOW, FAINT = 1e-5, 1e-10  # of kT, and of the states below kT: as high and as full a foot may be
 REACH = 45.0  # e^-45 = 3e-20 is dropped
 NEGLIGIBLE = 1e-17
 SOARING, MODEST = 1e3, 4.5  # times the growth by the power at the bottom, or by this one
@@ -53,13 +53,13 @@ def rule_for(measure: Measure, low: float, high: float) -> Nodes:
 def smooth_rule(measure: Measure, low: float, high: float) -> Nodes:
     """The same for functions of sqrt(v), as local densities are, by the measure's own nodes: it may be rough.
 
-    The foot reaches up to LOW kT, with a share of its 3/2 power at most.
+    The foot reaches up to LOW kT, or to where it holds the share FAINT.
     """
     end = min(measure.top, REACH * high)
     rule = measure.nodes(end)
-    edge = max(LOW * low, rule.foot.edge)
     if rule.foot.exponent == 0:
         return rule
+    edge = max(low * min(LOW, FAINT ** (1 / rule.foot.exponent)), rule.foot.edge)
     above = rule.v > edge
     share = rule.foot.volume + float(rule.w[~above].sum())
     foot = Foot(share / edge**rule.foot.exponent, rule.foot.exponent, edge)
