@@ -6,7 +6,7 @@ import multiprocessing
 import os
 import signal
 import threading
-from concurrent.futures import ProcessPoolExecutor
+from concurrent.futures import BrokenExecutor, ProcessPoolExecutor
 from contextlib import contextmanager
 from multiprocessing import resource_tracker
 from typing import TYPE_CHECKING, Self
@@ -51,9 +51,13 @@ class Crew:
         if self._executor is None:
             context = multiprocessing.get_context("spawn")
             self._executor = ProcessPoolExecutor(self.count, context, _begin)
-            with _interrupts_held_back():
-                for _ in range(self.count):  # each starts one
-                    self._executor.submit(os.getpid)
+            try:
+                with _interrupts_held_back():
+                    for _ in range(self.count):  # each starts one
+                        self._executor.submit(os.getpid)
+            except OSError as closed:  # one was killed while the next was begun
+                message = "a worker died while the others were begun"
+                raise BrokenExecutor(message) from closed
         return self._executor
 
     def replace(self, *, useful: bool) -> None:

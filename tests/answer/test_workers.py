@@ -7,6 +7,7 @@ import os
 import signal
 import threading
 import time
+from concurrent.futures import ProcessPoolExecutor
 
 import numpy as np
 import pytest
@@ -47,6 +48,22 @@ def test_a_worker_that_is_killed_is_replaced(whole):
     killer.start()
     (answer,) = eoscore.loads(TEXT).answers(workers=2)
     killer.join()
+    same(whole, answer)
+
+
+def test_workers_are_replaced_when_a_pipe_closes_while_they_begin(whole, monkeypatch):
+    """As it does where one is killed just before the next is started."""
+    submit, calls = ProcessPoolExecutor.submit, []
+
+    def closed_once(self, *args):
+        calls.append(args)
+        if len(calls) == 2:
+            message = "handle is closed"
+            raise OSError(message)
+        return submit(self, *args)
+
+    monkeypatch.setattr(ProcessPoolExecutor, "submit", closed_once)
+    (answer,) = eoscore.loads(TEXT).answers(workers=2)
     same(whole, answer)
 
 
