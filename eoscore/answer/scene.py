@@ -36,7 +36,8 @@ class Scene:
             return _finite(self.given[name])
         if name in self.found:
             return _finite(self.found[name].value)
-        return self._solved(name, self.given) if self.given else None  # no state, whose trap would be measured
+        # Without conditions there is no state, and no need to measure the trap.
+        return self._solved(name, self.given) if self.given else None
 
     def _solved(self, name: str, given: Mapping[str, NDArray[np.float64]]) -> NDArray[np.float64] | None:
         try:
