@@ -27,9 +27,9 @@ FIRST, STEP, SPHERES = (
 FAR = 2.0  # times its widest reach: a place held out there is in an arm
 MOST = 12  # directions that are followed
 STEPS = 25  # of Newton's rule on a sphere
-BELOW = 0.999  # of the level: a way over the pass itself is no arm
+BELOW = 0.99  # of the level: a way over the pass itself is no arm
 ALIGNED = 1e-3  # radians: an arm this close to an axis needs no other
-LOOKS = 60  # places on the way to a sphere, all of which are held
+LOOKS = 100  # places on the way to a sphere, all of which are held
 ASIDE = np.array([0.05, 0.15, 0.5, 1.0])  # from arms on one sphere to where those on the next are looked for
 APART = 0.05  # radians between arms that are two
 ALIKE = 0.02  # radians between ends of arms that are one
@@ -61,7 +61,7 @@ def _arms(field: Field, bottom: Minimum, level: float) -> list[FloatArray]:
     spheres: list[FloatArray] = []
     for _ in range(SPHERES):
         n = settled(chart, centre, n, radius, STEPS)
-        ways = centre + radius * np.linspace(0, 1, LOOKS)[1:, None, None] * n
+        ways = centre + np.geomspace(FIRST * near, radius, LOOKS)[:, None, None] * n
         n = _distinct(n[np.all(chart.value(ways) < bottom.value + BELOW * level, axis=0)])
         if not len(n):
             break
