@@ -19,11 +19,8 @@ if TYPE_CHECKING:
 
 __all__ = ["along_arms"]
 
-FIRST, STEP, SPHERES = (
-    0.3,
-    1.6,
-    60,
-)  # the first sphere, in the least reach of the form at the bottom; ratio; how many
+FIRST, STEP = 0.3, 1.6  # the first sphere, in the least reach of the form at the bottom, and the ratio of two
+SPHERES = 60
 FAR = 2.0  # times its widest reach: a place held out there is in an arm
 MOST = 12  # directions that are followed
 STEPS = 25  # of Newton's rule on a sphere
@@ -32,6 +29,7 @@ ALIGNED = 1e-3  # radians: an arm this close to an axis needs no other
 LOOKS = 100  # places on the way to a sphere, all of which are held
 ASIDE = np.array([0.05, 0.15, 0.5, 1.0])  # from arms on one sphere to where those on the next are looked for
 APART = 0.05  # radians between arms that are two
+FLAT = 1e-2  # volume of the unit cell of arms that lie in one plane, or nearly so
 ALIKE = 0.02  # radians between ends of arms that are one
 
 
@@ -48,7 +46,7 @@ def along_arms(field: Field, landscape: Landscape, level: float) -> tuple[Field,
     if not 1 <= len(arms) <= d or all(np.max(np.abs(arm)) > 1 - ALIGNED**2 / 2 for arm in arms):
         return None
     frame = np.concatenate([arms, _rest(np.array(arms))]).T
-    return _within(field, landscape, frame)
+    return _within(field, landscape, frame) if abs(np.linalg.det(frame)) > FLAT else None
 
 
 def _arms(field: Field, bottom: Minimum, level: float) -> list[FloatArray]:
