@@ -12,6 +12,8 @@ if TYPE_CHECKING:
 
 __all__ = ["OutOfTimeError", "deadline"]
 
+AGAIN = 1.0  # s from an error that was lost to the next
+
 
 class OutOfTimeError(BaseException):
     """The time allowed is over. Not an `Exception`, so that no library's own `except Exception` swallows it."""
@@ -22,22 +24,25 @@ def deadline(seconds: float) -> Iterator[None]:
     """Raise `OutOfTimeError` in the calling thread once `seconds` have passed within the block.
 
     Works in any thread and on any system, which signals do not. SymPy is pure Python, so the error arrives
-    between two of its steps.
+    between two of its steps; where that is a step in which Python ignores errors, such as the end of an object,
+    it comes again.
     """
-    lock, over = threading.Lock(), False
+    lock, done = threading.Lock(), threading.Event()
     thread = ctypes.c_ulong(threading.get_ident())
+    raise_in = ctypes.pythonapi.PyThreadState_SetAsyncExc
 
     def interrupt() -> None:
-        with lock:
-            if not over:
-                ctypes.pythonapi.PyThreadState_SetAsyncExc(thread, ctypes.py_object(OutOfTimeError))
+        wait = seconds
+        while not done.wait(wait):
+            with lock:
+                if not done.is_set():
+                    raise_in(thread, ctypes.py_object(OutOfTimeError))
+            wait = AGAIN
 
-    timer = threading.Timer(seconds, interrupt)
-    timer.daemon = True
-    timer.start()
+    threading.Thread(target=interrupt, daemon=True).start()
     try:
         yield
     finally:
         with lock:
-            over = True
-        timer.cancel()
+            done.set()
+            raise_in(thread, None)  # takes back an error that has not arrived yet

@@ -37,3 +37,19 @@ def _swallowing() -> None:
 def test_a_library_that_swallows_exceptions_does_not_swallow_the_limit():
     with pytest.raises(OutOfTimeError), deadline(0.05):
         _swallowing()
+
+
+class _Dying:
+    def __del__(self):
+        _busy(0.2)
+
+
+@pytest.mark.filterwarnings("ignore::pytest.PytestUnraisableExceptionWarning")
+def test_a_limit_that_is_lost_at_the_end_of_an_object_comes_again(monkeypatch):
+    """Python prints and drops what is raised in `__del__`."""
+    monkeypatch.setattr("eoscore.symbolic.deadline.AGAIN", 0.3)
+    started = time.perf_counter()
+    with pytest.raises(OutOfTimeError), deadline(0.05):
+        _Dying()
+        _busy(20)
+    assert time.perf_counter() - started < 10
