@@ -44,12 +44,16 @@ class _Dying:
         _busy(0.2)
 
 
+def _outliving() -> None:
+    _Dying()
+    _busy(20)
+
+
 @pytest.mark.filterwarnings("ignore::pytest.PytestUnraisableExceptionWarning")
 def test_a_limit_that_is_lost_at_the_end_of_an_object_comes_again(monkeypatch):
     """Python prints and drops what is raised in `__del__`."""
     monkeypatch.setattr("eoscore.symbolic.deadline.AGAIN", 0.3)
     started = time.perf_counter()
     with pytest.raises(OutOfTimeError), deadline(0.05):
-        _Dying()
-        _busy(20)
+        _outliving()
     assert time.perf_counter() - started < 10
