@@ -43,6 +43,14 @@ def test_from_the_text_to_the_critical_temperature(benchmark, trap):
 
 
 @pytest.mark.benchmark(group="general trap")
+def test_traps_in_a_row(benchmark):
+    """Eight of a thousand traps: each has a landscape and a measure of its own."""
+    question = "find T_c for strontium in crossed with N = 2e5 over w = even(50 um, 60 um, 8)\n"
+    _, seconds = benchmark.pedantic(answered, args=(question,), rounds=1)
+    benchmark.extra_info["cpu_seconds for a thousand"] = seconds / 8 * 1000
+
+
+@pytest.mark.benchmark(group="general trap")
 def test_critical_number_beside_cubature(benchmark):
     """The same N_c at 300 nK: the ratio of processor seconds, and the error that cubature has reached by then."""
     T = 300e-9

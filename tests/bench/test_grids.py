@@ -30,16 +30,6 @@ trap bowl {
 STATES = (
     "find f_0, mu for strontium in bowl over N = geometric(1e4, 1e6, {n}), T = even(20 nK, 500 nK, {n})\n"
 )
-CROSSED = """
-trap crossed {
-    P = 1.5 W
-    w = 55 um
-    zR = pi*w^2 / (1064 nm)
-    s = 7.4e-37 J.m2/W
-    beam(d2, l) = 2*P/(pi*w^2) / (1 + (l/zR)^2) * exp(-2*d2/(w^2*(1 + (l/zR)^2)))
-    V(x, y, z) = -s*beam(y^2 + z^2, x) - s*beam(x^2 + z^2, y) + m*g_n*z
-}
-"""
 POWERS = "find T_c for strontium in bowl with N = 1e5 over f = even(50 Hz, 90 Hz, 1000)\n"
 
 
@@ -72,13 +62,6 @@ def test_a_million_states_written_to_netcdf(benchmark, tmp_path):
 
 def test_a_thousand_traps(benchmark):
     benchmark.pedantic(lambda: eoscore.loads(GAS + BOWL + POWERS).answers(), rounds=1)
-
-
-def test_traps_of_two_beams(benchmark):
-    """Eight of a thousand traps: each has a landscape and a measure of its own."""
-    text = GAS + CROSSED + "find T_c for strontium in crossed with N = 1e5 over w = even(50 um, 60 um, 8)\n"
-    benchmark.pedantic(lambda: eoscore.loads(text).answers(), rounds=1)
-    benchmark.extra_info["seconds for a thousand"] = benchmark.stats.stats.mean / 8 * 1000
 
 
 def test_a_grid_beside_the_engine(benchmark):
