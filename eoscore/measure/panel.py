@@ -82,13 +82,6 @@ class Panel:
             return np.asarray(((v - self.lo) / width) ** (1 / POWER))
         return np.asarray(1 - ((self.hi - v) / width) ** (1 / POWER))
 
-    def slope(self, t: FloatArray) -> FloatArray:
-        """dv/dt."""
-        if self.kind == "log":
-            return self.energy(t) * log(self.hi / self.lo)
-        from_break = t if self.kind == "left" else 1 - t
-        return np.asarray((self.hi - self.lo) * POWER * from_break ** (POWER - 1))
-
     def parts(self, count: int) -> list[Panel]:
         """The panel in parts of equal length in t."""
         edges = np.linspace(self.start, self.stop, count + 1).tolist()

@@ -112,11 +112,10 @@ class Table:
         which, _, s = self._locate(np.array([v]))
         return int(which[0]), float(s[0])
 
-    def local(self, which: Which, v: FloatArray, near: FloatArray | None = None) -> FloatArray:
-        """The coordinates s in [0, 1] of energies in panels; `near`: distance from the break where better known."""
+    def local(self, which: Which, v: FloatArray) -> FloatArray:
+        """The coordinates s in [0, 1] of energies in panels."""
         lo, hi, kind, start, stop = (column[which] for column in self._shape)
-        if near is None:
-            near = np.where(kind == CODE["left"], v - lo, hi - v)
+        near = np.where(kind == CODE["left"], v - lo, hi - v)
         root = np.maximum(near / (hi - lo), 0.0) ** (1 / POWER)
         t = np.where(
             kind == 0, np.log(v / lo) / np.log(hi / lo), np.where(kind == CODE["left"], root, 1 - root)
